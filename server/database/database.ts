@@ -1,0 +1,43 @@
+import { mkdirSync } from 'node:fs';
+import { join } from 'node:path';
+import type { DataSource, EntityManager } from 'typeorm';
+import { makeReadSource, makeWriteSource } from './data-source.ts';
+import { makeWriteGate, type Write } from './write-gate.ts';
+
+/** The database as the rest of the server sees it: one way to read, one way to write. */
+export interface Database {
+  file: string;
+  /** Committed rows only; cannot write. */
+  read: EntityManager;
+  write: Write;
+  close(): Promise<void>;
+}
+
+/** The database file within a data folder. */
+export function databaseFile(dataDir: string): string {
+  return join(dataDir, 'shoalmark.sqlite');
+}
+
+/** Opens the database, made if missing, and runs the migrations that it lacks. */
+export async function openDatabase(dataDir: string): Promise<Database> {
+  mkdirSync(dataDir, { recursive: true });
+  const file = databaseFile(dataDir);
+  const writer = await makeWriteSource(file).initialize();
+  let reader: DataSource;
+  try {
+    await writer.runMigrations();
+    reader = await makeReadSource(file).initialize();
+  } catch (error) {
+    await writer.destroy();
+    throw error;
+  }
+  return {
+    file,
+    read: reader.manager,
+    write: makeWriteGate(writer),
+    async close() {
+      await reader.destroy();
+      await writer.destroy();
+    },
+  };
+}

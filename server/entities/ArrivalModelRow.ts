@@ -1,0 +1,36 @@
+import { Column, Entity, Index, PrimaryColumn, JoinColumn, ManyToOne, type Relation } from 'typeorm';
+import type { Site } from './Site.ts';
+
+/** A fitted model of arrivals and length of stay. Its parameters never change once it is fitted. */
+@Entity({ name: 'arrival_model' })
+@Index(['siteId', 'status'])
+export class ArrivalModelRow {
+  @PrimaryColumn('text') id: string;
+  @Column('text') siteId: string;
+
+  @ManyToOne('Site', { nullable: false })
+  @JoinColumn({ name: 'siteId' })
+  site: Relation<Site>;
+
+  @Column('text') status: 'fitting' | 'candidate' | 'in use' | 'retired' | 'failed';
+  @Column('integer') createdAt: number;
+  @Column('text') fittedByPersonId: string;
+  @Column('text') fittedBy: string;
+  @Column('integer', { nullable: true }) fittedAt: number | null;
+  @Column('text', { nullable: true }) approvedBy: string | null;
+  @Column('integer', { nullable: true }) approvedAt: number | null;
+  @Column('integer', { nullable: true }) retiredAt: number | null;
+  @Column('text', { nullable: true }) reason: string | null;
+  @Column('text', { nullable: true }) error: string | null;
+  @Column('text', { nullable: true }) jobId: string | null;
+  @Column('text') engineVersion: string;
+  @Column('integer', { nullable: true }) trainedFrom: number | null;
+  @Column('integer', { nullable: true }) trainedTo: number | null;
+  @Column('integer', { default: 0 }) visits: number;
+  /** JSON: the logs it was fitted on. */
+  @Column('text', { default: '[]' }) lineage: string;
+  /** JSON: arrival model, stay model, calendar; as the engine made it. Null until fitted. */
+  @Column('text', { nullable: true, select: false }) parameters: string | null;
+  /** JSON: what the pages show of it. Null until fitted. */
+  @Column('text', { nullable: true, select: false }) detail: string | null;
+}

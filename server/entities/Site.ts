@@ -1,0 +1,24 @@
+import { Column, Entity, JoinColumn, ManyToOne, PrimaryColumn, type Relation } from 'typeorm';
+import type { HealthGroup } from './HealthGroup.ts';
+
+/** One emergency department. All its local times are in its own zone. */
+@Entity({ name: 'site' })
+export class Site {
+  @PrimaryColumn('text') id: string;
+  @Column('text') groupId: string;
+  @ManyToOne('HealthGroup', { nullable: false })
+  @JoinColumn({ name: 'groupId' })
+  group: Relation<HealthGroup>;
+  @Column('text') name: string;
+  /** IANA name. */
+  @Column('text') timeZone: string;
+  /** ISO 3166-1 alpha-2, for public holidays. */
+  @Column('text') country: string;
+  @Column('text', { nullable: true }) region: string | null;
+  /** The risk that staffed beds are planned to, 0..1. */
+  @Column('real') planningRisk: number;
+  /** Stays longer than this are cut (censored) here, hours. */
+  @Column('integer', { default: 72 }) stayCapHours: number;
+  /** Past counts below this are suppressed in exports and briefs. */
+  @Column('integer', { default: 5 }) smallNumberMinimum: number;
+}

@@ -1,0 +1,125 @@
+import { localDate, makeZone } from '../../../shared/domain/zoned-time.ts';
+import { countHourly } from '../../../shared/forecasting/count-hourly.ts';
+import { fitArrivals } from '../../../shared/forecasting/fit-arrivals.ts';
+import { fitStays } from '../../../shared/forecasting/fit-stays.ts';
+import type { CalendarDay, ExposureGap } from '../../../shared/forecasting/visit-table.ts';
+import { coveredSpans, gapsBetween } from '../../database/covered-spans.ts';
+import { readSiteVisits } from '../../database/read-visits.ts';
+import type { FitReply, FitRequest } from './fit-input.ts';
+import { blockNames, ratesOf, stayFindings, streamsOf } from './fitted-detail.ts';
+
+/** Fits a site's model on a thread of its own. A RangeError of the engine (too little history…) is an answer, not a fault. */
+export default function fit(request: FitRequest): FitReply {
+  const tell = (share: number, text: string) => {
+    request.progress.postMessage({ share, text });
+  };
+  try {
+    return fitSite(request, tell);
+  } catch (error) {
+    if (error instanceof RangeError) return { refused: `The model could not be fitted: ${error.message}.` };
+    throw error;
+  } finally {
+    request.progress.close();
+  }
+}
+
+function fitSite(request: FitRequest, tell: (share: number, text: string) => void): FitReply {
+  const { databaseFile, siteId, timeZone, calendar, now } = request;
+  tell(0.02, 'Reading visits');
+  const { table, areaIds, lineage, facts } = readSiteVisits(databaseFile, siteId);
+  if (!facts || table.length === 0) return { refused: 'No accepted visit log holds a visit that counts.' };
+  const zone = makeZone(timeZone);
+  const capSeconds = request.stayCapHours * 3600;
+  // A log speaks until it was taken; one selected by departures has not seen the last long stayers yet.
+  const covered = coveredSpans(lineage, now, capSeconds);
+  if (covered.length === 0) return { refused: 'The accepted logs cover no time that can be used yet.' };
+  const from = covered[0].from;
+  const to = covered[covered.length - 1].to;
+  const gaps: ExposureGap[] = [
+    ...gapsBetween(covered).map((gap) => ({ area: null, ...gap })),
+    ...request.gaps
+      .filter((gap) => gap.to > from && gap.from < to)
+      .flatMap((gap) => {
+        const area = gap.areaId === null ? null : areaIds.indexOf(gap.areaId);
+        return area === -1 ? [] : [{ area, from: Math.max(gap.from, from), to: Math.min(gap.to, to) }];
+      }),
+  ];
+  tell(0.1, 'Counting arrivals by hour');
+  const counts = countHourly(table, areaIds.length, zone, from, to, gaps);
+  const known = daysUntil(calendar, localDate(zone.toLocal(to)));
+  const arrival = fitArrivals({
+    counts,
+    calendar: known,
+    onProgress: (share) => {
+      tell(0.12 + 0.5 * share, 'Fitting arrivals');
+    },
+  });
+  const stay = fitStays({
+    visits: table,
+    areas: areaIds.length,
+    zone,
+    window: { from, to },
+    facts: { ...facts, takenAt: Math.min(facts.takenAt, to) },
+    capHours: request.stayCapHours,
+    gaps,
+    calendar,
+    onProgress: (share) => {
+      tell(0.62 + 0.33 * share, 'Fitting length of stay');
+    },
+  });
+  tell(0.97, 'Writing down what was found');
+  const areaName = (index: number) => request.areaNames[areaIds[index]] ?? areaIds[index];
+  return {
+    refused: null,
+    parameters: { areaIds, arrival, stay, calendar },
+    lineage,
+    trainedFrom: from,
+    trainedTo: to,
+    visits: table.length,
+    detail: {
+      settings: {
+        'weekly profile, half-life in weeks': finite(arrival.settings.profileHalfLifeWeeks),
+        'variation beyond Poisson': arrival.structure,
+        'level, standard deviation a day': Math.sqrt(arrival.levelVariancePerDay),
+        'stays cut at, hours': stay.capHours,
+        'departure blocks, hours': stay.blockHours,
+        'weeks of history': arrival.weeksOfHistory,
+      },
+      areas: areaIds.map((areaId, index) => {
+        const { rate, low, high } = ratesOf(arrival, index);
+        return { areaId, name: areaName(index), ratePerHour: rate, rateLow: low, rateHigh: high };
+      }),
+      streams: streamsOf(stay, areaIds),
+      departureBlocks: blockNames(stay),
+      variation: {
+        sharedDayCv: Math.sqrt(Math.expm1(arrival.factorVariance)),
+        dayCorrelation: arrival.factorCorrelation,
+        outflowCv: Math.sqrt(stay.outflow.admitted.variance),
+        outflowCorrelation: stay.outflow.admitted.correlation,
+        structure: arrival.structure,
+      },
+      findings: [
+        ...[...arrival.cautions, ...stay.cautions].map((text) => ({
+          name: 'Caution',
+          size: '',
+          meaning: nameAreas(text, areaName),
+          concern: true,
+        })),
+        ...stayFindings(stay, table.length),
+      ],
+    },
+  };
+}
+
+/** The engine numbers areas from 1; a page calls them by name. */
+function nameAreas(text: string, areaName: (index: number) => string): string {
+  return text.replace(/\barea (\d+)\b/gi, (_, number: string) => areaName(Number(number) - 1));
+}
+
+function daysUntil(calendar: readonly CalendarDay[], date: string): CalendarDay[] {
+  return calendar.filter((day) => day.date <= date);
+}
+
+function finite(value: number | null): number | null {
+  return value !== null && Number.isFinite(value) ? value : null;
+}

@@ -1,0 +1,123 @@
+import { dispositions } from '../../../shared/domain/disposition.ts';
+import { hourOfWeek, hoursOfWeek } from '../../../shared/domain/hour-of-week.ts';
+import type { ArrivalModel } from '../../../shared/forecasting/arrival-model.ts';
+import { profileError } from '../../../shared/forecasting/profile-error.ts';
+import { expectedRates } from '../../../shared/forecasting/rate-draws.ts';
+import { gridOfLocalHours } from '../../../shared/forecasting/rate-grid.ts';
+import {
+  blockHazards,
+  expectedShares,
+  streamsPerArea,
+  type StayModel,
+} from '../../../shared/forecasting/stay-model.ts';
+import type { FittedDetail } from './fit-input.ts';
+
+const normalLimit = 1.959964;
+
+/** Hour-of-week rates at the level of the training's end, each with its own 95 % posterior interval. */
+export function ratesOf(model: ArrivalModel, area: number): { rate: number[]; low: number[]; high: number[] } {
+  // A whole week after the training's end, from a Monday, without unusual days.
+  const monday =
+    model.endLocalHour - hourOfWeek(model.endLocalHour) + (hourOfWeek(model.endLocalHour) > 0 ? hoursOfWeek : 0);
+  const grid = gridOfLocalHours(monday, new Float64Array(hoursOfWeek).fill(1));
+  const rates = expectedRates({ ...model, calendar: [] }, grid, [])[area];
+  const { profile, own } = model.areas[area];
+  const error = profileError(
+    profile,
+    Array.from({ length: hoursOfWeek }, (_, hour) => hour),
+    model.coarse,
+  );
+  const levelVariance = model.site.covariance[0] + own.covariance[0];
+  const width = Array.from(error.variance, (variance) => Math.exp(normalLimit * Math.sqrt(variance + levelVariance)));
+  return {
+    rate: Array.from(rates),
+    low: Array.from(rates, (rate, hour) => rate / width[hour]),
+    high: Array.from(rates, (rate, hour) => rate * width[hour]),
+  };
+}
+
+/** Length of stay by care area and disposition, and for boarding. */
+export function streamsOf(stay: StayModel, areaIds: readonly string[]): FittedDetail['streams'] {
+  return stay.streams
+    .filter((stream) => stream.visits > 0)
+    .map((stream) => {
+      const shares = expectedShares(stay.shares[stream.area]);
+      const isBoarding = stream.stream >= dispositions.length;
+      const hazards = blockHazards(stream);
+      const mean = stream.hazard.shape / stream.hazard.rate;
+      const [low, high] = stream.limits ?? [mean, mean];
+      return {
+        areaId: areaIds[stream.area],
+        disposition: isBoarding ? 'boarding' : dispositions[stream.stream],
+        visits: stream.visits,
+        share: isBoarding ? 0 : shares.reduce((sum, block) => sum + block[stream.stream], 0) / shares.length,
+        meanHours: 1 / (stream.departuresPerHour ?? mean),
+        meanLow: 1 / high,
+        meanHigh: low > 0 ? 1 / low : 720,
+        censored: stream.censored,
+        departureFactor: Array.from(hazards, (hazard) => hazard / mean),
+      };
+    });
+}
+
+/** Names of the departure blocks: weekdays first, then weekends and holidays. */
+export function blockNames(stay: StayModel): string[] {
+  const perDay = 24 / stay.blockHours;
+  const clock = (hour: number) => `${String(hour % 24).padStart(2, '0')}:00`;
+  return ['Weekday', 'Weekend or holiday'].flatMap((day) =>
+    Array.from(
+      { length: perDay },
+      (_, block) => `${day} ${clock(block * stay.blockHours)}–${clock((block + 1) * stay.blockHours)}`,
+    ),
+  );
+}
+
+/** What the log's stays and times look like, as effect sizes in words. */
+export function stayFindings(stay: StayModel, visits: number): FittedDetail['findings'] {
+  const percent = (share: number) => `${(100 * share).toFixed(share < 0.1 ? 1 : 0)} %`;
+  const { heaping, leftOut } = stay;
+  const findings: FittedDetail['findings'] = [
+    {
+      name: 'Times on the full hour',
+      size: `${percent(heaping.departuresOnTheHour)} of departures, ${percent(heaping.arrivalsOnTheHour)} of arrivals`,
+      meaning:
+        heaping.departuresOnTheHour > 3 * heaping.expectedOnTheHour
+          ? 'Many departures are written on the full hour: departures are entered late, and the hour they fall in is uncertain.'
+          : `Evenly spread minutes would give ${percent(heaping.expectedOnTheHour)}: times are written as they happen.`,
+      concern: heaping.departuresOnTheHour > 3 * heaping.expectedOnTheHour,
+    },
+    {
+      name: 'Stays cut at the cap',
+      size: `${percent(stay.overCapShare)} stay longer than ${String(stay.capHours)} h`,
+      meaning:
+        stay.overCapShare > 0.02
+          ? 'Many very long stays: check for visits that were never closed.'
+          : 'They count as still present at the cap.',
+      concern: stay.overCapShare > 0.02,
+    },
+    {
+      name: 'How departures vary by day',
+      size: `± ${percent(Math.sqrt(stay.outflow.others.variance))}, for admitted patients ± ${percent(Math.sqrt(stay.outflow.admitted.variance))}`,
+      meaning: `A slow day is followed by another: correlation from day to day ${stay.outflow.admitted.correlation.toFixed(2)} for admitted patients. This moves need more than arrivals do.`,
+      concern: false,
+    },
+  ];
+  const unusable = leftOut.endsBeforeStart + leftOut.over30Days + leftOut.departureUnknown;
+  if (unusable > 0) {
+    findings.push({
+      name: 'Stays that could not be used',
+      size: `${String(unusable)} of ${String(visits)} visits`,
+      meaning: `${String(leftOut.departureUnknown)} without a departure, ${String(leftOut.endsBeforeStart)} ending before they start, ${String(leftOut.over30Days)} over 30 days. Their arrivals count all the same.`,
+      concern: unusable > visits * 0.02,
+    });
+  }
+  const shaped = stay.streams.filter((stream) => stream.shape !== null && stream.stream < streamsPerArea);
+  findings.push({
+    name: 'Shape of stays',
+    size: `${String(shaped.length)} of ${String(stay.streams.filter((stream) => stream.visits > 0).length)} streams have enough stays for a shape of their own`,
+    meaning:
+      'Where that shape moves tonight’s P90 by a bed or more it is used in place of the exponential; Tonight says which.',
+    concern: false,
+  });
+  return findings;
+}

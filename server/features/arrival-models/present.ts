@@ -1,0 +1,56 @@
+import type { EntityManager } from 'typeorm';
+import type { ModelDetail, ModelSummary } from '../../../shared/api/arrival-models.ts';
+import { ArrivalModelRow } from '../../entities/ArrivalModelRow.ts';
+import type { Caller } from '../../http/caller.ts';
+import type { FittedDetail } from './fit-input.ts';
+
+/** A model as lists show it. */
+export function presentModel(row: ArrivalModelRow, caller: Caller): ModelSummary {
+  const { trainedFrom, trainedTo } = row;
+  return {
+    id: row.id,
+    status: row.status,
+    fittedAt: row.fittedAt,
+    fittedBy: row.fittedBy,
+    approvedAt: row.approvedAt,
+    approvedBy: row.approvedBy,
+    retiredAt: row.retiredAt,
+    reason: row.reason,
+    trainedFrom,
+    trainedTo,
+    visits: row.visits,
+    weeksOfHistory: trainedFrom !== null && trainedTo !== null ? (trainedTo - trainedFrom) / (7 * 86_400) : 0,
+    error: row.error,
+    jobId: row.jobId,
+    fittedByCaller: row.fittedByPersonId === caller.person.id,
+  };
+}
+
+/** A model's page; what the fit made is empty until it is fitted. */
+export async function presentModelDetail(
+  read: EntityManager,
+  row: ArrivalModelRow,
+  caller: Caller,
+): Promise<ModelDetail> {
+  const { detail } = await read.findOneOrFail(ArrivalModelRow, {
+    where: { id: row.id },
+    select: { id: true, detail: true },
+  });
+  const fitted: FittedDetail =
+    detail === null
+      ? {
+          settings: {},
+          areas: [],
+          streams: [],
+          departureBlocks: [],
+          variation: { sharedDayCv: 0, dayCorrelation: 0, outflowCv: 0, outflowCorrelation: 0, structure: '' },
+          findings: [],
+        }
+      : (JSON.parse(detail) as FittedDetail);
+  return {
+    ...presentModel(row, caller),
+    engineVersion: row.engineVersion,
+    lineage: JSON.parse(row.lineage) as ModelDetail['lineage'],
+    ...fitted,
+  };
+}

@@ -1,0 +1,30 @@
+import type { Express } from 'express';
+import { cancelJob, listJobs, type Job as JobReply } from '../../../shared/api/jobs.ts';
+import type { Dependencies } from '../../dependencies.ts';
+import { Job } from '../../entities/Job.ts';
+import { conflict, notFound } from '../../errors.ts';
+import { recordAudit } from '../../http/audit.ts';
+import { addSiteRoute, type RouteTable } from '../../http/route.ts';
+
+/** Background work of a site. */
+export function addJobRoutes(app: Express, table: RouteTable, deps: Dependencies): void {
+  const { database } = deps;
+
+  addSiteRoute(app, table, deps, listJobs, async ({ site }) => {
+    const jobs = await database.read.find(Job, { where: { siteId: site.id }, order: { createdAt: 'DESC' }, take: 100 });
+    return { jobs: jobs.map(presentJob) };
+  });
+
+  addSiteRoute(app, table, deps, cancelJob, async (context) => {
+    const where = { id: context.params.jobId, siteId: context.site.id };
+    if (!(await database.read.existsBy(Job, where))) throw notFound('This job');
+    if (!(await deps.jobs.cancel(where.id))) throw conflict('The job had already ended.', 'Nothing more to do.');
+    await database.write((manager) => recordAudit(manager, context, 'job.cancelled', where.id));
+    return presentJob(await database.read.findOneByOrFail(Job, where));
+  });
+}
+
+function presentJob(job: Job): JobReply {
+  const { id, kind, title, status, progress, progressText, error, createdAt, endedAt } = job;
+  return { id, kind, title, status, progress, progressText, error, createdAt, endedAt };
+}

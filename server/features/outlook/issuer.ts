@@ -1,0 +1,108 @@
+import { createHash } from 'node:crypto';
+import type { z } from 'zod';
+import type { outlookTrigger } from '../../../shared/api/outlooks.ts';
+import { engineVersion } from '../../../shared/forecasting/engine-version.ts';
+import { newId } from '../../database/new-id.ts';
+import { readModelInUse, readModelParameters } from '../../database/read-model.ts';
+import type { Dependencies } from '../../dependencies.ts';
+import { OutlookRow } from '../../entities/OutlookRow.ts';
+import { Site } from '../../entities/Site.ts';
+import { softwareVersion } from '../../software-version.ts';
+import { buildOutlookInput } from './build-input.ts';
+import { computeOutlook } from './compute-outlook.ts';
+
+export type OutlookTrigger = z.infer<typeof outlookTrigger>;
+
+/** What came of a wish for an outlook. */
+export type Issued =
+  { outlookId: string; reason: null } | { outlookId: null; reason: 'no model' | 'no staffed-bed plan' };
+
+interface SiteQueue {
+  running: Promise<Issued>;
+  /** At most one further run waits: it will see everything that is stored by the time it starts. */
+  next: Promise<Issued> | null;
+}
+
+/**
+ * Issues outlooks. Wishes of one site that come in while it computes are answered together by one
+ * further run, which sees everything stored before it starts.
+ */
+export class OutlookIssuer {
+  private readonly deps: Dependencies;
+  private readonly queues = new Map<string, SiteQueue>();
+
+  constructor(deps: Dependencies) {
+    this.deps = deps;
+  }
+
+  /** True while an outlook of the site is being computed. */
+  computing(siteId: string): boolean {
+    return this.queues.has(siteId);
+  }
+
+  /** Computes and stores a new outlook from what is stored now. */
+  issue(siteId: string, trigger: OutlookTrigger): Promise<Issued> {
+    const queue = this.queues.get(siteId);
+    if (queue) {
+      queue.next ??= queue.running.catch(() => undefined).then(() => this.run(siteId, trigger));
+      return queue.next;
+    }
+    return this.run(siteId, trigger);
+  }
+
+  /** Waits for everything under way. */
+  async settle(): Promise<void> {
+    while (this.queues.size > 0) {
+      await Promise.allSettled([...this.queues.values()].map((queue) => queue.next ?? queue.running));
+    }
+  }
+
+  private run(siteId: string, trigger: OutlookTrigger): Promise<Issued> {
+    const running = this.issueNow(siteId, trigger);
+    const queue: SiteQueue = { running, next: null };
+    this.queues.set(siteId, queue);
+    running
+      .catch(() => undefined)
+      .finally(() => {
+        if (this.queues.get(siteId) === queue && queue.next === null) this.queues.delete(siteId);
+      });
+    return running;
+  }
+
+  private async issueNow(siteId: string, trigger: OutlookTrigger): Promise<Issued> {
+    const { database, clock, simulation } = this.deps;
+    const site = await database.read.findOneByOrFail(Site, { id: siteId });
+    const model = await readModelInUse(database.read, siteId);
+    if (!model) return { outlookId: null, reason: 'no model' };
+    const parameters = await readModelParameters(database.read, model.id);
+    const input = await buildOutlookInput(database.read, site, parameters.areaIds, clock());
+    if (!input) return { outlookId: null, reason: 'no staffed-bed plan' };
+    const startedAt = performance.now();
+    const result = JSON.stringify(await computeOutlook(simulation, parameters, input));
+    const computeMilliseconds = performance.now() - startedAt;
+    const outlookId = newId();
+    await database.write((manager) =>
+      manager.insert(OutlookRow, {
+        id: outlookId,
+        siteId,
+        issuedAt: input.issuedAt,
+        trigger,
+        modelId: model.id,
+        seed: input.seed,
+        replications: input.replications,
+        engineVersion,
+        softwareVersion,
+        computeMilliseconds,
+        input: JSON.stringify(input),
+        result,
+        digest: digestOf(result),
+      }),
+    );
+    return { outlookId, reason: null };
+  }
+}
+
+/** SHA-256 of a result's text; equal digests mean equal digits. */
+export function digestOf(result: string): string {
+  return createHash('sha256').update(result).digest('hex');
+}

@@ -1,0 +1,149 @@
+import type { Express, Request } from 'express';
+import * as oidc from 'openid-client';
+import { getSession, signIn, signInCallback, signOut } from '../../../shared/api/session.ts';
+import type { Dependencies } from '../../dependencies.ts';
+import { recordAudit } from '../../http/audit.ts';
+import { addRoute, type RouteTable } from '../../http/route.ts';
+import { presentSession } from './present.ts';
+import { makeProvider } from './provider.ts';
+import { recognisePerson } from './recognise-person.ts';
+
+const signInMinutes = 15;
+
+/** Sign-in by OpenID Connect: authorization code with PKCE, state and nonce. */
+export function addSignInRoutes(app: Express, table: RouteTable, deps: Dependencies): void {
+  const { config, database, logger } = deps;
+  const provider = makeProvider(config);
+  const redirectUri = `${config.baseUrl}/auth/callback`;
+
+  addRoute(app, table, deps, getSession, ({ req, caller, now }) => presentSession(deps, caller, req.sessionID, now));
+
+  addRoute(app, table, deps, signIn, async ({ req, res, query, now }) => {
+    let configuration: oidc.Configuration;
+    try {
+      configuration = await provider();
+    } catch (error) {
+      logger.error({ err: error }, 'the identity provider cannot be reached');
+      res.redirect('/sign-in?problem=unreachable');
+      return undefined;
+    }
+    const codeVerifier = oidc.randomPKCECodeVerifier();
+    const state = oidc.randomState();
+    const nonce = oidc.randomNonce();
+    const fresh = query.fresh === '1';
+    req.session.signIn = { state, nonce, codeVerifier, returnTo: localPath(query.returnTo), fresh, startedAt: now };
+    await saveSession(req);
+    res.redirect(
+      oidc.buildAuthorizationUrl(configuration, {
+        redirect_uri: redirectUri,
+        scope: 'openid profile email groups',
+        code_challenge: await oidc.calculatePKCECodeChallenge(codeVerifier),
+        code_challenge_method: 'S256',
+        state,
+        nonce,
+        ...(fresh ? { prompt: 'login', max_age: '0' } : {}),
+      }).href,
+    );
+    return undefined;
+  });
+
+  addRoute(app, table, deps, signInCallback, async (context) => {
+    const { req, res, now } = context;
+    const underWay = req.session.signIn;
+    if (!underWay || underWay.startedAt < now - signInMinutes * 60) {
+      res.redirect('/sign-in?problem=expired');
+      return undefined;
+    }
+    let tokens: oidc.TokenEndpointResponse & oidc.TokenEndpointResponseHelpers;
+    try {
+      // The address is built from the configured one, never from the Host header.
+      const current = new URL(req.originalUrl, config.baseUrl);
+      tokens = await oidc.authorizationCodeGrant(await provider(), current, {
+        pkceCodeVerifier: underWay.codeVerifier,
+        expectedState: underWay.state,
+        expectedNonce: underWay.nonce,
+        idTokenExpected: true,
+        ...(underWay.fresh ? { maxAge: signInMinutes * 60 } : {}),
+      });
+    } catch (error) {
+      logger.warn({ err: error }, 'a sign-in was refused');
+      res.redirect('/sign-in?problem=refused');
+      return undefined;
+    }
+    const claims = tokens.claims();
+    if (!claims) throw new Error('the identity provider sent no id token');
+    const email = typeof claims.email === 'string' ? claims.email : '';
+    const person = await database.write(async (manager) => {
+      const recognised = await recognisePerson(
+        manager,
+        {
+          issuer: claims.iss,
+          subject: claims.sub,
+          name: typeof claims.name === 'string' && claims.name !== '' ? claims.name : email || claims.sub,
+          email,
+          emailVerified: claims.email_verified === true,
+        },
+        now,
+      );
+      const caller = { person: recognised, rolesAt: new Map(), installationRoles: [] };
+      await recordAudit(manager, { ...context, caller }, 'person.signed-in', recognised.id);
+      return recognised;
+    });
+    // A new session id at sign-in, so that one planted before is worth nothing.
+    await new Promise<void>((resolve, reject) => {
+      req.session.regenerate((error: unknown) => {
+        if (error) reject(error instanceof Error ? error : new Error('the session could not be renewed'));
+        else resolve();
+      });
+    });
+    req.session.personId = person.id;
+    req.session.signedInAt = now;
+    req.session.idToken = tokens.id_token ?? '';
+    await saveSession(req);
+    res.redirect(underWay.returnTo);
+    return undefined;
+  });
+
+  addRoute(app, table, deps, signOut, async (context) => {
+    const { req, res } = context;
+    const idToken = req.session.idToken;
+    await database.write((manager) =>
+      recordAudit(manager, context, 'person.signed-out', context.caller?.person.id ?? ''),
+    );
+    await new Promise<void>((resolve, reject) => {
+      req.session.destroy((error: unknown) => {
+        if (error) reject(error instanceof Error ? error : new Error('the session could not be ended'));
+        else resolve();
+      });
+    });
+    res.clearCookie('shoalmark');
+    let redirectTo = '/sign-in';
+    try {
+      const configuration = await provider();
+      if (configuration.serverMetadata().end_session_endpoint !== undefined) {
+        redirectTo = oidc.buildEndSessionUrl(configuration, {
+          post_logout_redirect_uri: `${config.baseUrl}/sign-in`,
+          ...(idToken ? { id_token_hint: idToken } : {}),
+        }).href;
+      }
+    } catch (error) {
+      logger.warn({ err: error }, 'the identity provider could not be asked to end its session');
+    }
+    return { redirectTo };
+  });
+}
+
+/** Only a path of this application may be returned to; never another host. */
+function localPath(path: string | undefined): string {
+  if (path === undefined || !path.startsWith('/') || path.startsWith('//') || path.includes('\\')) return '/';
+  return path;
+}
+
+function saveSession(req: Request): Promise<void> {
+  return new Promise((resolve, reject) => {
+    req.session.save((error: unknown) => {
+      if (error) reject(error instanceof Error ? error : new Error('the session could not be stored'));
+      else resolve();
+    });
+  });
+}

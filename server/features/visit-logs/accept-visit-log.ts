@@ -1,0 +1,110 @@
+import type { acceptVisitLog as contract } from '../../../shared/api/visit-logs.ts';
+import { newId } from '../../database/new-id.ts';
+import { VisitLog } from '../../entities/VisitLog.ts';
+import { badInput, HttpError } from '../../errors.ts';
+import { recordAudit } from '../../http/audit.ts';
+import type { SiteContext } from '../../http/route.ts';
+import { findChecked } from './checked-file.ts';
+import { fileRefused, problemFaults } from './check-visit-log.ts';
+import { importJobKind, type ImportPayload } from './import-payload.ts';
+import { refuseRepeat } from './find-repeat.ts';
+import { periodOf } from './period.ts';
+
+const clockTolerance = 300;
+
+/** Accepts a checked file: a log marked loading, and the job that fills it, in one write. */
+export async function acceptVisitLog({
+  deps,
+  site,
+  caller,
+  now,
+  body,
+  ...request
+}: SiteContext<typeof contract>): Promise<{ logId: string; jobId: string }> {
+  const checked = await findChecked(deps.config.dataDir, site.id, body.checkId, now);
+  if (!checked) {
+    throw new HttpError(
+      404,
+      'Check not found',
+      'There is no checked file of this id: it was discarded, or its hour is over.',
+      {
+        kept: 'Nothing was stored.',
+        next: 'Send the file again.',
+      },
+    );
+  }
+  const { report } = checked;
+  if (report.problemRows > 0 && !body.goodRowsOnly) {
+    throw new HttpError(
+      422,
+      'The file has problem rows',
+      `${report.problemRows.toLocaleString('en')} of ${report.rows.toLocaleString('en')} rows cannot be accepted, and the file was to be accepted whole.`,
+      {
+        kept: 'Nothing was loaded; the checked file waits until its hour is over.',
+        next: 'Correct the file and send it again, or accept the good rows only.',
+        faults: problemFaults(report),
+      },
+    );
+  }
+  const { facts } = body;
+  if (facts.takenAt > now + clockTolerance) {
+    throw badInput('The extract cannot have been taken in the future.', [
+      { at: 'facts.takenAt', message: 'Enter when the extract was taken, not later than now.' },
+    ]);
+  }
+  if (report.lastTimeAt !== null && facts.takenAt < report.lastTimeAt) {
+    throw badInput('The extract was taken before the last time that it holds.', [
+      { at: 'facts.takenAt', message: 'Enter a time that is not before the last arrival or departure in the file.' },
+    ]);
+  }
+  const period = periodOf(report, site.timeZone, facts.takenAt);
+  if (!period) throw fileRefused(problemFaults(report), false, 'No row of the file can be read as a visit.');
+
+  const problems = new Map<string, number>();
+  for (const { problem, rows } of [...report.problems, ...body.leftOutBeforeSending]) {
+    problems.set(problem, (problems.get(problem) ?? 0) + rows);
+  }
+  const logId = newId();
+  const jobId = await deps.database.write(async (manager) => {
+    await refuseRepeat(manager, site, checked.sha256);
+    const [{ last }] = await manager.query<{ last: number | null }[]>(
+      'SELECT MAX("number") AS "last" FROM "visit_log"',
+    );
+    const payload: ImportPayload = { logId, checkId: checked.checkId };
+    const job = await deps.jobs.enqueue(manager, {
+      kind: importJobKind,
+      title: `Load ${checked.fileName}`,
+      siteId: site.id,
+      payload,
+      createdBy: caller.person.name,
+    });
+    await manager.insert(VisitLog, {
+      id: logId,
+      number: (last ?? 0) + 1,
+      siteId: site.id,
+      status: 'loading',
+      fileName: checked.fileName,
+      sha256: checked.sha256,
+      rows: report.goodRows,
+      periodFrom: period.from,
+      periodTo: period.to,
+      ...facts,
+      problems: [...problems].map(([kind, rows]) => ({ kind, rows })),
+      visitsByArea: report.visitsByArea.map(({ area, visits }) => ({ areaCode: area, visits })),
+      uploadedBy: caller.person.name,
+      uploadedAt: now,
+      readyAt: null,
+      withdrawnBy: null,
+      withdrawnAt: null,
+      reason: null,
+      jobId: job,
+    });
+    await recordAudit(manager, { ...request, caller, site, now }, 'visit-log.accepted', logId, {
+      rows: report.goodRows,
+      leftOut: report.problemRows,
+      sha256: checked.sha256,
+    });
+    return job;
+  });
+  return { logId, jobId };
+}

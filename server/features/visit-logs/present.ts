@@ -1,0 +1,81 @@
+import type { VisitLogCheck, VisitLogDetail, VisitLogSummary } from '../../../shared/api/visit-logs.ts';
+import { visitLogLimits } from '../../../shared/api/visit-logs.ts';
+import type { Span } from '../../database/counting-spans.ts';
+import type { CareArea } from '../../entities/CareArea.ts';
+import type { VisitLog } from '../../entities/VisitLog.ts';
+import type { CheckedFile } from './checked-file.ts';
+import { periodOf } from './period.ts';
+
+/** A log as the list shows it. @param counts the spans of its period that count; see database/counting-spans */
+export function presentVisitLog(log: VisitLog, counts: readonly Span[]): VisitLogSummary {
+  return {
+    id: log.id,
+    status: log.status,
+    fileName: log.fileName,
+    rows: log.rows,
+    period: { from: log.periodFrom, to: log.periodTo },
+    counts: log.status === 'ready' ? [...counts] : [],
+    leftOutRows: log.problems.reduce((sum, { rows }) => sum + rows, 0),
+    uploadedBy: log.uploadedBy,
+    uploadedAt: log.uploadedAt,
+    readyAt: log.readyAt,
+    withdrawnBy: log.withdrawnBy,
+    withdrawnAt: log.withdrawnAt,
+    reason: log.reason,
+    jobId: log.jobId,
+  };
+}
+
+/** A log as its own page shows it: still no visit. */
+export function presentVisitLogDetail(
+  log: VisitLog,
+  counts: readonly Span[],
+  areas: readonly CareArea[],
+): VisitLogDetail {
+  return {
+    ...presentVisitLog(log, counts),
+    sha256: log.sha256,
+    facts: { selectedBy: log.selectedBy, takenAt: log.takenAt, missingDeparture: log.missingDeparture },
+    leftOut: log.problems.map(({ kind, rows }) => ({ problem: kind, rows })),
+    visitsByArea: presentAreas(
+      log.visitsByArea.map(({ areaCode, visits }) => ({ area: areaCode, visits })),
+      areas,
+    ),
+  };
+}
+
+/** What the check found. @param now UTC seconds */
+export function presentCheck(
+  checked: CheckedFile,
+  areas: readonly CareArea[],
+  timeZone: string,
+  now: number,
+): VisitLogCheck {
+  const { report } = checked;
+  return {
+    checkId: checked.checkId,
+    keptUntil: checked.checkedAt + visitLogLimits.checkKeptFor,
+    fileName: checked.fileName,
+    sha256: checked.sha256,
+    bytes: checked.bytes,
+    rows: report.rows,
+    goodRows: report.goodRows,
+    problemRows: report.problemRows,
+    problems: report.problems,
+    identicalRows: report.identicalRows,
+    period: periodOf(report, timeZone, now),
+    lastTimeAt: report.lastTimeAt,
+    visitsByArea: presentAreas(report.visitsByArea, areas),
+    recorded: report.recorded,
+  };
+}
+
+function presentAreas(counts: readonly { area: number; visits: number }[], areas: readonly CareArea[]) {
+  return areas
+    .map((area) => ({
+      areaId: area.id,
+      name: area.name,
+      visits: counts.find((count) => count.area === area.code)?.visits ?? 0,
+    }))
+    .filter((area) => area.visits > 0);
+}

@@ -1,0 +1,137 @@
+import { closeSync, openSync, readSync } from 'node:fs';
+import type { MessagePort } from 'node:worker_threads';
+import { canonicalPlaces, canonicalReading } from '../../../shared/domain/canonical-visit.ts';
+import { notText, notUtf8 } from '../../../shared/domain/sniff-file.ts';
+import { VisitFileReader, type FileOutcome } from '../../../shared/domain/visit-file.ts';
+import { notRecorded } from '../../../shared/domain/visit-row.ts';
+import { makeRecordParser } from './parse-records.ts';
+
+/** What the thread is given. */
+export interface ReadVisitLogInput {
+  file: string;
+  /** UTC seconds. */
+  now: number;
+  areas: { id: string; name: string; code: number }[];
+  /** Gets good rows as JSON arrays, some thousands at a time, and answers each with anything; null to check only. */
+  port: MessagePort | null;
+}
+
+/** One piece of good rows: [rowNumber, areaCode, arrival, bed space, admission decision, departure, disposition, byAmbulance]. */
+export interface RowsMessage {
+  json: string;
+  rows: number;
+}
+
+const pieceBytes = 1 << 20;
+const rowsAMessage = 4000;
+const mostUnanswered = 2;
+
+/** Reads a file that stands on the disk, checks every row, and hands on the good ones. */
+export default async function readVisitLog({ file, now, areas, port }: ReadVisitLogInput): Promise<FileOutcome> {
+  const codes = new Map<string, number>();
+  for (const area of areas) codes.set(area.name, area.code);
+  for (const area of areas) codes.set(area.id, area.code);
+  const out = port ? new RowsOut(port) : null;
+  const reader = new VisitFileReader({
+    parse: makeRecordParser(),
+    places: (header) => canonicalPlaces(header, now),
+    reading: canonicalReading(codes),
+    now,
+    ...(out
+      ? {
+          onVisit: (visit, rowNumber) => {
+            out.add(
+              `[${String(rowNumber)},${String(visit.area)},${String(visit.arrivalAt)},${orNull(visit.bedSpaceAt)},${orNull(visit.admissionDecisionAt)},${orNull(visit.departureAt)},${codeOrNull(visit.disposition)},${codeOrNull(visit.byAmbulance)}]`,
+            );
+          },
+        }
+      : {}),
+  });
+  const outcome = await readAll(file, reader, out);
+  await out?.finish();
+  return outcome;
+}
+
+const orNull = (value: number) => (Number.isNaN(value) ? 'null' : String(value));
+const codeOrNull = (code: number) => (code === notRecorded ? 'null' : String(code));
+
+async function readAll(file: string, reader: VisitFileReader, out: RowsOut | null): Promise<FileOutcome> {
+  const refuse = (message: string): FileOutcome => ({ refused: [{ at: 'file', message }], identifying: false });
+  const decoder = new TextDecoder('utf-8', { fatal: true, ignoreBOM: false });
+  const handle = openSync(file, 'r');
+  try {
+    const piece = new Uint8Array(pieceBytes);
+    for (let first = true; ; first = false) {
+      const bytes = piece.subarray(0, readSync(handle, piece, 0, pieceBytes, null));
+      if (first) {
+        const reason = notText(bytes);
+        if (reason !== null) return refuse(reason);
+      }
+      let text: string;
+      try {
+        text = decoder.decode(bytes, { stream: bytes.length > 0 });
+      } catch {
+        return refuse(notUtf8);
+      }
+      if (!reader.push(text) || bytes.length === 0) return reader.end();
+      await out?.room();
+    }
+  } finally {
+    closeSync(handle);
+  }
+}
+
+/** Sends rows on in pieces and waits while too many are unanswered, so that memory stays small. */
+class RowsOut {
+  private readonly port: MessagePort;
+  private lines: string[] = [];
+  private waiting: string[][] = [];
+  private unanswered = 0;
+  private wake: (() => void) | null = null;
+
+  constructor(port: MessagePort) {
+    this.port = port;
+    port.on('message', () => {
+      this.unanswered -= 1;
+      this.send();
+      this.wake?.();
+    });
+  }
+
+  add(line: string): void {
+    this.lines.push(line);
+    if (this.lines.length < rowsAMessage) return;
+    this.waiting.push(this.lines);
+    this.lines = [];
+    this.send();
+  }
+
+  /** Resolves once all that was added is sent or nearly so. */
+  async room(): Promise<void> {
+    while (this.waiting.length > 0) await this.answer();
+  }
+
+  async finish(): Promise<void> {
+    if (this.lines.length > 0) this.waiting.push(this.lines);
+    this.lines = [];
+    this.send();
+    while (this.waiting.length > 0 || this.unanswered > 0) await this.answer();
+    this.port.close();
+  }
+
+  private send(): void {
+    while (this.unanswered < mostUnanswered) {
+      const lines = this.waiting.shift();
+      if (!lines) return;
+      this.unanswered += 1;
+      const message: RowsMessage = { json: `[${lines.join(',')}]`, rows: lines.length };
+      this.port.postMessage(message);
+    }
+  }
+
+  private answer(): Promise<void> {
+    return new Promise((resolve) => {
+      this.wake = resolve;
+    });
+  }
+}

@@ -1,0 +1,115 @@
+import type { Express, Request, Response } from 'express';
+import type { z } from 'zod';
+import type { BodyOf, Contract, ParamsOf, QueryOf, ReplyOf } from '../../shared/api/contract.ts';
+import { badInput, type Fault } from '../errors.ts';
+import type { Dependencies } from '../dependencies.ts';
+import type { Site } from '../entities/Site.ts';
+import { authorize } from './authorize.ts';
+import type { Caller } from './caller.ts';
+
+/** What a handler is given. Everything in it is checked. */
+export interface RouteContext<C = unknown> {
+  deps: Dependencies;
+  params: ParamsOf<C>;
+  query: QueryOf<C>;
+  body: BodyOf<C>;
+  /** Who asks; null only on public routes. */
+  caller: Caller | null;
+  /** The site of `:siteId`; the caller holds the route's permission there. */
+  site: Site | null;
+  /** UTC seconds at the start of the request. */
+  now: number;
+  requestId: string;
+  address: string;
+  req: Request;
+  res: Response;
+}
+
+/** A context on a route of a site for a signed-in person: the common case. */
+export type SiteContext<C> = RouteContext<C> & { caller: Caller; site: Site };
+
+/** Either sends the reply itself (returns undefined) or returns what the contract's reply schema holds. */
+type Handler<C> = (context: RouteContext<C>) => Promise<ReplyOf<C> | undefined>;
+
+/** Every registered contract, for the API description and for the test that tries every route. */
+export interface RouteTable {
+  contracts: Contract[];
+}
+
+/**
+ * Puts a contract's route into the application: authorise, check, handle, check the reply. A rejection
+ * goes to the error handler (Express 5). A reply that breaks its own contract is our fault: 500.
+ */
+export function addRoute<C extends Contract>(
+  app: Express,
+  table: RouteTable,
+  deps: Dependencies,
+  contract: C,
+  handler: Handler<C>,
+): void {
+  table.contracts.push(contract);
+  app[contract.method](contract.path, async (req, res) => {
+    const now = deps.clock();
+    const { caller, site } = await authorize(deps, req, contract, now);
+    const params = check(contract.params, req.params, 'address');
+    const query = check(contract.query, req.query, 'query');
+    if (contract.body && !req.is('application/json')) {
+      throw badInput(
+        'The request must be application/json.',
+        [],
+        'Send JSON with the header content-type: application/json.',
+      );
+    }
+    const body = check(contract.body, req.body, 'body');
+    const reply = await handler({
+      deps,
+      params: params as ParamsOf<C>,
+      query: query as QueryOf<C>,
+      body: body as BodyOf<C>,
+      caller,
+      site,
+      now,
+      requestId: requestIdOf(req),
+      address: req.ip ?? '',
+      req,
+      res,
+    });
+    if (res.headersSent || res.writableEnded) return;
+    const status = contract.status ?? 200;
+    res.setHeader('cache-control', 'no-store');
+    if (status === 204) res.status(204).end();
+    else res.status(status).json(contract.reply.parse(reply));
+  });
+}
+
+/** Adds routes of a site: the handler's caller and site are there. */
+export function addSiteRoute<C extends Contract>(
+  app: Express,
+  table: RouteTable,
+  deps: Dependencies,
+  contract: C,
+  handler: (context: SiteContext<C>) => Promise<ReplyOf<C> | undefined>,
+): void {
+  if (!contract.path.startsWith('/api/sites/:siteId')) throw new RangeError(`${contract.path} is not a path of a site`);
+  addRoute(app, table, deps, contract, (context) => {
+    const { caller, site } = context;
+    if (!caller || !site) throw new Error('a route of a site was reached without a caller');
+    return handler({ ...context, caller, site });
+  });
+}
+
+/** The id that this request carries in the log and in its answer. */
+export function requestIdOf(req: Request): string {
+  return typeof req.id === 'string' ? req.id : '';
+}
+
+function check(schema: z.ZodType | undefined, value: unknown, where: string): unknown {
+  if (!schema) return undefined;
+  const parsed = schema.safeParse(value ?? {});
+  if (parsed.success) return parsed.data;
+  const faults: Fault[] = parsed.error.issues.slice(0, 100).map((issue) => ({
+    at: issue.path.length > 0 ? issue.path.join('.') : where,
+    message: issue.message,
+  }));
+  throw badInput(`${String(faults.length)} ${faults.length === 1 ? 'fault' : 'faults'} in the ${where}.`, faults);
+}

@@ -1,0 +1,13 @@
+import 'express-session';
+
+declare module 'express-session' {
+  interface SessionData {
+    personId: string;
+    /** When the person signed in here, UTC seconds. */
+    signedInAt: number;
+    /** Kept for the provider's end of a sign-out. */
+    idToken: string;
+    /** A sign-in under way. */
+    signIn: { state: string; nonce: string; codeVerifier: string; returnTo: string; fresh: boolean; startedAt: number };
+  }
+}

@@ -1,0 +1,19 @@
+import { existsSync, readFileSync } from 'node:fs';
+import { join } from 'node:path';
+import express, { type Express } from 'express';
+import { nonceOf } from './security-headers.ts';
+
+/** Serves the built client: hashed assets for a year, and the page with this reply's nonce for every other address. */
+export function serveClient(app: Express, clientDir: string): void {
+  const indexFile = join(clientDir, 'index.html');
+  if (!existsSync(indexFile)) return;
+  const page = readFileSync(indexFile, 'utf8');
+  app.use('/assets', express.static(join(clientDir, 'assets'), { immutable: true, maxAge: '1y', fallthrough: false }));
+  app.use(express.static(clientDir, { index: false, maxAge: '1h' }));
+  app.get('/{*path}', (_req, res) => {
+    res
+      .setHeader('cache-control', 'no-store')
+      .type('html')
+      .send(page.replaceAll('__CSP_NONCE__', nonceOf(res)));
+  });
+}

@@ -1,0 +1,267 @@
+import type { EntityManager } from 'typeorm';
+import { In, LessThanOrEqual } from 'typeorm';
+import type { Clock } from '../clock.ts';
+import type { Database } from '../database/database.ts';
+import { newId } from '../database/new-id.ts';
+import { Job } from '../entities/Job.ts';
+import type { Logger } from '../log.ts';
+
+/** What a handler is given besides what it closed over. */
+export interface JobContext {
+  job: Job;
+  payload: unknown;
+  /** Aborts when the job is cancelled or the server stops. */
+  signal: AbortSignal;
+  /** Tells how far it is: a share 0..1 and a few words. Written at most twice a second. */
+  progress: (share: number, text: string) => void;
+}
+
+export type JobHandler = (context: JobContext) => Promise<void>;
+
+/** Tidies up after a job that ended without success, in the same transaction. */
+export type JobSettler = (manager: EntityManager, job: Job, error: string) => Promise<void>;
+
+/** A kind of job: how it is done, and what is left to tidy when it fails for good or is cancelled. */
+export interface JobKind {
+  run: JobHandler;
+  settle?: JobSettler;
+}
+
+/** A failure that a retry cannot mend. */
+export class PermanentJobError extends Error {
+  override name = 'PermanentJobError';
+}
+
+export interface JobSpec {
+  kind: string;
+  title: string;
+  siteId: string | null;
+  payload: unknown;
+  createdBy: string;
+  /** Not before this instant; at once if not stated. */
+  runAfter?: number;
+  maxAttempts?: number;
+}
+
+const leaseSeconds = 60;
+const pollMilliseconds = 1000;
+
+/**
+ * Background work in the database: it survives a restart, is retried with growing pauses, shows its
+ * progress and can be cancelled. One process works the queue.
+ */
+export class JobQueue {
+  private readonly database: Database;
+  private readonly clock: Clock;
+  private readonly logger: Logger;
+  private readonly width: number;
+  private kinds: Record<string, JobKind> = {};
+  private readonly running = new Map<string, { abort: AbortController; ended: Promise<void> }>();
+  private timer: NodeJS.Timeout | null = null;
+  private stopped = true;
+  private looking: Promise<void> | null = null;
+
+  constructor(database: Database, clock: Clock, logger: Logger, width = 2) {
+    this.database = database;
+    this.clock = clock;
+    this.logger = logger;
+    this.width = width;
+  }
+
+  /** Adds a job within the caller's transaction; it starts once that is committed. */
+  async enqueue(manager: EntityManager, spec: JobSpec): Promise<string> {
+    const now = this.clock();
+    const id = newId();
+    await manager.insert(Job, {
+      id,
+      kind: spec.kind,
+      title: spec.title,
+      siteId: spec.siteId,
+      payload: JSON.stringify(spec.payload),
+      status: 'queued',
+      attempts: 0,
+      maxAttempts: spec.maxAttempts ?? 3,
+      runAfter: spec.runAfter ?? now,
+      leaseUntil: null,
+      progress: 0,
+      progressText: 'Waiting to start',
+      error: null,
+      createdBy: spec.createdBy,
+      createdAt: now,
+      startedAt: null,
+      endedAt: null,
+    });
+    setImmediate(() => {
+      this.wake();
+    });
+    return id;
+  }
+
+  /** Begins to work. Jobs that a dead process left running are queued again, or failed when their attempts are used up. */
+  async start(kinds: Record<string, JobKind>): Promise<void> {
+    this.kinds = kinds;
+    await this.database.write(async (manager) => {
+      for (const job of await manager.findBy(Job, { status: 'running' })) {
+        if (job.attempts < job.maxAttempts) {
+          const change = { status: 'queued' as const, leaseUntil: null, progressText: 'Queued again after a restart' };
+          await manager.update(Job, { id: job.id }, change);
+        } else {
+          await this.endBadly(manager, job, 'failed', 'The server stopped while this ran.');
+        }
+      }
+    });
+    this.stopped = false;
+    this.timer = setInterval(() => {
+      this.wake();
+    }, pollMilliseconds);
+    this.wake();
+  }
+
+  /** Ends what runs (it is queued again at the next start) and waits for it. */
+  async stop(): Promise<void> {
+    this.stopped = true;
+    if (this.timer) clearInterval(this.timer);
+    await this.looking;
+    for (const { abort } of this.running.values()) abort.abort();
+    await Promise.all([...this.running.values()].map(({ ended }) => ended));
+  }
+
+  /** Cancels a job that waits or runs; false if it had ended. */
+  async cancel(jobId: string): Promise<boolean> {
+    const cancelled = await this.database.write(async (manager) => {
+      const job = await manager.findOneBy(Job, { id: jobId, status: In(['queued', 'running']) });
+      if (job) await this.endBadly(manager, job, 'cancelled', 'Cancelled.');
+      return job !== null;
+    });
+    this.running.get(jobId)?.abort.abort();
+    return cancelled;
+  }
+
+  /** Waits until nothing is queued for now and nothing runs (for tests and the demo's start). */
+  async idle(): Promise<void> {
+    for (;;) {
+      const waiting = await this.database.read.countBy(Job, [
+        { status: 'running' },
+        { status: 'queued', runAfter: LessThanOrEqual(this.clock()) },
+      ]);
+      if (waiting === 0 && this.running.size === 0) return;
+      this.wake();
+      await new Promise((resolve) => setTimeout(resolve, 25));
+    }
+  }
+
+  private wake(): void {
+    if (this.stopped || this.looking) return;
+    this.looking = this.take()
+      .catch((error: unknown) => {
+        this.logger.error({ err: error }, 'the job queue could not be read');
+      })
+      .finally(() => {
+        this.looking = null;
+      });
+  }
+
+  private async take(): Promise<void> {
+    while (!this.stopped && this.running.size < this.width) {
+      const now = this.clock();
+      const next = await this.database.read.findOne(Job, {
+        where: { status: 'queued', runAfter: LessThanOrEqual(now) },
+        order: { runAfter: 'ASC', createdAt: 'ASC' },
+      });
+      if (!next) return;
+      const claimed = await this.database.write((manager) =>
+        manager.update(
+          Job,
+          { id: next.id, status: 'queued' },
+          {
+            status: 'running',
+            attempts: next.attempts + 1,
+            startedAt: now,
+            leaseUntil: now + leaseSeconds,
+            progressText: 'Started',
+          },
+        ),
+      );
+      if (claimed.affected !== 1) continue;
+      const abort = new AbortController();
+      const job = { ...next, attempts: next.attempts + 1 };
+      const ended = this.work(job, abort).finally(() => {
+        this.running.delete(job.id);
+        this.wake();
+      });
+      this.running.set(job.id, { abort, ended });
+    }
+  }
+
+  private async work(job: Job, abort: AbortController): Promise<void> {
+    let latest: { progress: number; progressText: string } | null = null;
+    const keep = setInterval(() => {
+      const change = { leaseUntil: this.clock() + leaseSeconds, ...latest };
+      latest = null;
+      this.database
+        .write((manager) => manager.update(Job, { id: job.id, status: 'running' }, change))
+        .catch((error: unknown) => {
+          this.logger.warn({ err: error, jobId: job.id }, 'progress of a job could not be written');
+        });
+    }, 500);
+    try {
+      const kind = this.kinds[job.kind] as JobKind | undefined;
+      if (!kind) throw new PermanentJobError(`No handler for jobs of kind ${job.kind}.`);
+      await kind.run({
+        job,
+        payload: JSON.parse(job.payload) as unknown,
+        signal: abort.signal,
+        progress: (share, text) => {
+          latest = { progress: Math.min(1, Math.max(0, share)), progressText: text };
+        },
+      });
+      await this.end(job, { status: 'done', progress: 1, progressText: 'Done', error: null });
+    } catch (error) {
+      await this.fail(job, abort, error);
+    } finally {
+      clearInterval(keep);
+    }
+  }
+
+  private async fail(job: Job, abort: AbortController, error: unknown): Promise<void> {
+    const message = error instanceof Error ? error.message : String(error);
+    if (abort.signal.aborted) {
+      // Cancelled rows already say so; what a stopping server ended is queued again at the next start.
+      return;
+    }
+    this.logger.warn({ err: error, jobId: job.id, kind: job.kind }, 'a job failed');
+    if (error instanceof PermanentJobError || job.attempts >= job.maxAttempts) {
+      await this.database.write(async (manager) => {
+        if (await manager.existsBy(Job, { id: job.id, status: 'running' })) {
+          await this.endBadly(manager, job, 'failed', message);
+        }
+      });
+      return;
+    }
+    await this.end(job, {
+      status: 'queued',
+      runAfter: this.clock() + 5 * 4 ** (job.attempts - 1),
+      progressText: 'Failed, will be tried again',
+      error: message,
+    });
+  }
+
+  private async endBadly(
+    manager: EntityManager,
+    job: Job,
+    status: 'failed' | 'cancelled',
+    error: string,
+  ): Promise<void> {
+    const progressText = status === 'failed' ? 'Failed' : 'Cancelled';
+    await manager.update(Job, { id: job.id }, { status, error, progressText, leaseUntil: null, endedAt: this.clock() });
+    const kind = this.kinds[job.kind] as JobKind | undefined;
+    await kind?.settle?.(manager, job, error);
+  }
+
+  private async end(job: Job, change: Partial<Job>): Promise<void> {
+    const ended = change.status === 'queued' ? {} : { endedAt: this.clock() };
+    await this.database.write((manager) =>
+      manager.update(Job, { id: job.id, status: 'running' }, { ...change, ...ended, leaseUntil: null }),
+    );
+  }
+}

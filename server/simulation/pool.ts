@@ -1,0 +1,50 @@
+import type { MessagePort } from 'node:worker_threads';
+import { Piscina } from 'piscina';
+
+/** Threads for work that would stop the server from answering: parsing, fits, simulation. */
+export interface SimulationPool {
+  readonly threads: number;
+  /**
+   * Runs a worker module's default export on a thread.
+   * @param worker URL of the module, made with `workerUrl` beside the caller.
+   * @throws an AbortError once `signal` aborts; the thread is ended and replaced.
+   */
+  run<Output>(
+    worker: URL,
+    input: unknown,
+    options?: { signal?: AbortSignal; transferList?: readonly Transferable[] },
+  ): Promise<Output>;
+  close(): Promise<void>;
+}
+
+type Transferable = ArrayBuffer | MessagePort;
+
+/**
+ * URL of a worker module beside the caller: `.ts` when the server runs from source, `.js` when built.
+ * @param here the caller's import.meta.url
+ * @param name the file's name without ending, for instance 'fit.worker'
+ */
+export function workerUrl(here: string, name: string): URL {
+  return new URL(`./${name}${here.endsWith('.ts') ? '.ts' : '.js'}`, here);
+}
+
+/** Starts a pool of threads. They are made when first needed and kept for a minute of idleness. */
+export function makeSimulationPool(threads: number): SimulationPool {
+  const fromSource = import.meta.url.endsWith('.ts');
+  const piscina = new Piscina({
+    minThreads: 0,
+    maxThreads: threads,
+    idleTimeout: 60_000,
+    execArgv: fromSource ? ['--import', 'tsx'] : [],
+  });
+  return {
+    threads,
+    run: (worker, input, options = {}) =>
+      piscina.run(input, {
+        filename: worker.href,
+        ...(options.signal ? { signal: options.signal } : {}),
+        ...(options.transferList ? { transferList: [...options.transferList] } : {}),
+      }) as Promise<never>,
+    close: () => piscina.destroy(),
+  };
+}

@@ -1,0 +1,111 @@
+import { mkdirSync } from 'node:fs';
+import { createServer, type Server } from 'node:http';
+import { fileURLToPath } from 'node:url';
+import { createApp } from './app.ts';
+import { systemClock } from './clock.ts';
+import type { Config } from './config.ts';
+import { openDatabase } from './database/database.ts';
+import type { Dependencies } from './dependencies.ts';
+import { ConfigError } from './errors.ts';
+import { OutlookIssuer } from './features/outlook/issuer.ts';
+import { SessionStore } from './http/session-store.ts';
+import { JobQueue } from './jobs/queue.ts';
+import { makeJobKinds } from './jobs/registry.ts';
+import { startTimetable } from './jobs/timetable.ts';
+import { sweepVisitLogs } from './features/visit-logs/sweep-visit-logs.ts';
+import { makeLogger } from './log.ts';
+import { makeSimulationPool } from './simulation/pool.ts';
+
+export interface RunningServer {
+  url: string;
+  deps: Dependencies;
+  issuer: OutlookIssuer;
+  /** Stops gracefully: no new requests, running work ended or queued again, database closed. */
+  stop(): Promise<void>;
+}
+
+/** Folder of the built client, from source and from the build alike. */
+function clientDir(): string {
+  const root = import.meta.url.endsWith('.ts') ? '../dist/client' : '../client';
+  return fileURLToPath(new URL(root, import.meta.url));
+}
+
+/** Opens everything without listening: the database, threads, jobs and the issuer. */
+export async function openServer(
+  config: Config,
+): Promise<{ deps: Dependencies; issuer: OutlookIssuer; close: () => Promise<void> }> {
+  try {
+    mkdirSync(config.dataDir, { recursive: true, mode: 0o700 });
+  } catch (error) {
+    throw new ConfigError(
+      `Cannot start: DATA_DIR cannot be made or written (${error instanceof Error ? error.message : String(error)}).`,
+    );
+  }
+  const logger = makeLogger(config.logLevel);
+  const clock = systemClock(config.clockOffset);
+  const database = await openDatabase(config.dataDir);
+  const pool = makeSimulationPool(config.threads);
+  const simulation = makeSimulationPool(config.threads);
+  const jobs = new JobQueue(database, clock, logger);
+  const deps: Dependencies = { config, database, clock, logger, pool, simulation, jobs };
+  const issuer = new OutlookIssuer(deps);
+  return {
+    deps,
+    issuer,
+    async close() {
+      await jobs.stop();
+      await issuer.settle();
+      await pool.close();
+      await simulation.close();
+      await database.close();
+    },
+  };
+}
+
+/** Starts the server: migrates, sweeps what a crash left, listens, works jobs and the timetable. */
+export async function startServer(config: Config): Promise<RunningServer> {
+  const { deps, issuer, close } = await openServer(config);
+  await sweepVisitLogs(deps);
+  const sessions = new SessionStore(deps.database, deps.clock);
+  const app = createApp(deps, issuer, sessions, clientDir());
+  const server = createServer(app.express);
+  await listen(server, config);
+  await deps.jobs.start(makeJobKinds(deps));
+  const timetable = startTimetable(deps, issuer, sessions);
+  deps.logger.info({ url: config.baseUrl }, 'listening');
+  return {
+    url: config.baseUrl,
+    deps,
+    issuer,
+    async stop() {
+      await timetable.stop();
+      const closed = new Promise<void>((resolve) => {
+        server.close(() => {
+          resolve();
+        });
+      });
+      server.closeIdleConnections();
+      const force = setTimeout(() => {
+        server.closeAllConnections();
+      }, 5000);
+      await closed;
+      clearTimeout(force);
+      await close();
+    },
+  };
+}
+
+function listen(server: Server, config: Config): Promise<void> {
+  return new Promise((resolve, reject) => {
+    server.once('error', (error: NodeJS.ErrnoException) => {
+      reject(
+        new ConfigError(
+          error.code === 'EADDRINUSE'
+            ? `Cannot start: PORT ${String(config.port)} is in use.`
+            : `Cannot start: HOST ${config.host} and PORT ${String(config.port)} cannot be listened on (${error.message}).`,
+        ),
+      );
+    });
+    server.listen(config.port, config.host, resolve);
+  });
+}

@@ -1,0 +1,179 @@
+import { z } from 'zod';
+import { defineContract } from './contract.ts';
+import { id, instant, siteParams } from './common.ts';
+
+const figures = z.array(z.number());
+const percentiles = z.object({
+  p5: figures,
+  p10: figures,
+  p25: figures,
+  p50: figures,
+  p75: figures,
+  p90: figures,
+  p95: figures,
+  mean: figures,
+});
+const chance = z.object({ chance: z.number().min(0).max(1), se: z.number().min(0) });
+const needByHour = z.object({
+  need: percentiles,
+  staffed: figures,
+  shortfall: z.array(chance),
+  shortfallWithin: z.array(chance),
+  headroom: figures,
+  bedsNeeded: figures,
+});
+
+/** One area of an outlook; the meaning of each figure stands with the engine's result type. */
+export const areaOutlook = needByHour.extend({
+  areaId: id,
+  counted: z.boolean(),
+  shifts: z.array(
+    z.object({
+      name: z.string(),
+      from: instant,
+      to: instant,
+      someTime: chance,
+      bedsForPlanningRisk: z.int(),
+      bedsForAlertLimit: z.int(),
+    }),
+  ),
+  firstHourPastLimit: z.int().nullable(),
+  bedsToAdd: figures,
+  bedsThatDoNotExist: figures,
+  boardingOut: z.object({ patients: z.int(), by: instant }).nullable(),
+  admittedLeaving: percentiles,
+  arrivalsToAdmit: percentiles,
+  bedHoursShort: z.object({ mean: z.number(), p90: z.number() }),
+  peak: z.object({ p50: z.number(), p90: z.number(), p95: z.number() }),
+});
+
+export const outlookResult = z.object({
+  engineVersion: z.string(),
+  hours: z.array(instant),
+  areas: z.array(areaOutlook),
+  pooled: needByHour,
+  someAreaShort: z.array(chance),
+  someAreaShortByShift: z.array(chance),
+  arrivalsSoFar: z
+    .object({ counted: z.int(), expected: z.number(), p10: z.number(), p90: z.number(), factor: z.number() })
+    .nullable(),
+  lengthOfStay: z.enum(['exponential', 'empirical']),
+  replications: z.int(),
+});
+
+export const outlookTrigger = z.enum([
+  'census saved',
+  'staffed beds changed',
+  'model approved',
+  'timetable',
+  'log accepted',
+]);
+
+/** An issued outlook as it is kept: never changed once issued. */
+export const outlook = z.object({
+  id,
+  issuedAt: instant,
+  trigger: outlookTrigger,
+  /** The census entries it was computed from, one an area; null where the area had none. */
+  census: z.array(
+    z.object({
+      areaId: id,
+      takenAt: instant.nullable(),
+      present: z.int().nullable(),
+      waiting: z.int().nullable(),
+      boarding: z.int().nullable(),
+    }),
+  ),
+  undecided: z.object({ takenAt: instant, waiting: z.int() }).nullable(),
+  /** Staffed beds in force, as steps; the first at or before issuedAt. */
+  staffedBeds: z.array(z.object({ areaId: id, steps: z.array(z.object({ at: instant, beds: z.int() })) })),
+  model: z.object({
+    id,
+    fittedAt: instant,
+    approvedAt: instant.nullable(),
+    trainedTo: instant,
+    weeksOfHistory: z.number(),
+  }),
+  planningRisk: z.number(),
+  seed: z.int(),
+  softwareVersion: z.string(),
+  computeMilliseconds: z.number(),
+  result: outlookResult,
+});
+export type Outlook = z.infer<typeof outlook>;
+
+/** What was true in an hour that has passed; a figure is given only where a census or a log speaks. */
+export const pastHour = z.object({
+  at: instant,
+  areas: z.array(
+    z.object({
+      areaId: id,
+      present: z.int().nullable(),
+      staffed: z.int(),
+      source: z.enum(['census', 'log']).nullable(),
+    }),
+  ),
+});
+
+/** A caution that is true now; the page shows it where the decision is made. */
+export const caution = z.object({
+  kind: z.enum([
+    'little history',
+    'winter not seen yet',
+    'model old',
+    'census old',
+    'without a census',
+    'area not counted',
+    'gap in the log',
+    'unusual day',
+  ]),
+  text: z.string(),
+});
+export type Caution = z.infer<typeof caution>;
+
+export const tonight = z.object({
+  now: instant,
+  outlook: outlook.nullable(),
+  /** The outlook is being computed anew. */
+  computing: z.boolean(),
+  /** Why there is no outlook, and what to do about it. */
+  missing: z
+    .object({ reason: z.enum(['no model', 'no staffed-bed plan', 'not computed yet']), next: z.string() })
+    .nullable(),
+  past: z.array(pastHour),
+  cautions: z.array(caution),
+  /** One line on why the outlook moved since the last, null where there is none. */
+  moved: z.string().nullable(),
+});
+export type Tonight = z.infer<typeof tonight>;
+
+export const getTonight = defineContract({
+  id: 'getTonight',
+  method: 'get',
+  path: '/api/sites/:siteId/tonight',
+  access: 'outlook:read',
+  summary: 'The newest outlook of the site, the hours just past and the cautions that hold now.',
+  params: siteParams,
+  reply: tonight,
+});
+
+export const getOutlook = defineContract({
+  id: 'getOutlook',
+  method: 'get',
+  path: '/api/sites/:siteId/outlooks/:outlookId',
+  access: 'outlook:read',
+  summary: 'An outlook exactly as it was issued.',
+  params: siteParams.extend({ outlookId: id }),
+  reply: outlook,
+});
+
+export const repeatOutlook = defineContract({
+  id: 'repeatOutlook',
+  method: 'post',
+  path: '/api/sites/:siteId/outlooks/:outlookId/repeat',
+  access: 'outlook:read',
+  summary:
+    'Computes an issued outlook again from its stored inputs and says whether every digit is the same. Stores nothing.',
+  params: siteParams.extend({ outlookId: id }),
+  reply: z.object({ sameDigits: z.boolean(), storedDigest: z.string(), repeatedDigest: z.string() }),
+});

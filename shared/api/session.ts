@@ -1,0 +1,71 @@
+import { z } from 'zod';
+import { permissions, roles } from '../domain/permission.ts';
+import { defineContract } from './contract.ts';
+import { id } from './common.ts';
+
+export const sessionSite = z.object({
+  id,
+  name: z.string(),
+  groupName: z.string(),
+  timeZone: z.string(),
+  roles: z.array(z.enum(roles)),
+  permissions: z.array(z.enum(permissions)),
+});
+
+export const session = z.object({
+  person: z.object({ id, name: z.string(), email: z.string() }).nullable(),
+  /** Sites at which the person holds a role, in the order of their names. */
+  sites: z.array(sessionSite),
+  /** Roles held for the installation (administrator). */
+  installationRoles: z.array(z.enum(roles)),
+  installationPermissions: z.array(z.enum(permissions)),
+  /** Whom to ask for a role. */
+  administratorContact: z.string(),
+  /** Sent back as header x-csrf-token by every writing request. */
+  csrfToken: z.string(),
+  /** The server's clock, UTC seconds. */
+  now: z.int(),
+});
+export type Session = z.infer<typeof session>;
+
+export const getSession = defineContract({
+  id: 'getSession',
+  method: 'get',
+  path: '/api/session',
+  access: 'public',
+  summary: 'Who is signed in, with which roles, and the anti-forgery token.',
+  reply: session,
+});
+
+export const signIn = defineContract({
+  id: 'signIn',
+  method: 'get',
+  path: '/auth/sign-in',
+  access: 'public',
+  summary: 'Starts sign-in: redirects to the identity provider.',
+  query: z.object({
+    /** Where to go afterwards: a path of this application. */
+    returnTo: z.string().max(500).optional(),
+    /** "1" asks the identity provider for a fresh sign-in. */
+    fresh: z.string().max(1).optional(),
+  }),
+  reply: z.undefined(),
+});
+
+export const signInCallback = defineContract({
+  id: 'signInCallback',
+  method: 'get',
+  path: '/auth/callback',
+  access: 'public',
+  summary: 'The identity provider sends the person back here.',
+  reply: z.undefined(),
+});
+
+export const signOut = defineContract({
+  id: 'signOut',
+  method: 'post',
+  path: '/auth/sign-out',
+  access: 'signed-in',
+  summary: 'Ends the session here; the reply says where to end it at the identity provider.',
+  reply: z.object({ redirectTo: z.string() }),
+});

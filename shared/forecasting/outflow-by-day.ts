@@ -1,0 +1,95 @@
+import type { StayTallies } from './collect-stays.ts';
+import { estimateOutflow, smoothOutflow } from './outflow-factor.ts';
+import type { DailyOutflow } from './outflow-factor.ts';
+import type { BlockCells } from './stay-clock.ts';
+import { admittedStream, blockHazards, boardingStream, streamsPerArea } from './stay-model.ts';
+import type { OutflowFactor, StayStream } from './stay-model.ts';
+
+/** Streams with their outflow factors. */
+export interface OutflowFit {
+  streams: StayStream[];
+  others: OutflowFactor;
+  admitted: OutflowFactor;
+  dayStartsAt: number;
+  /** The day's factor in every cell, for a stream offset (admitted and boarding share one). */
+  factorByCell: (stream: number) => Float64Array;
+}
+
+type Group = 'others' | 'admitted';
+
+function groupOf(stream: number): Group {
+  return stream === admittedStream || stream === boardingStream ? 'admitted' : 'others';
+}
+
+/** Departures and their compensator by day, one group of streams; boarding is part of the admitted stay and not counted twice. */
+function daily(
+  cells: BlockCells,
+  days: Int32Array,
+  span: { from: number; to: number },
+  tallies: StayTallies,
+  streams: readonly StayStream[],
+  group: Group,
+): DailyOutflow {
+  const firstDay = days[0];
+  const size = days[days.length - 1] - firstDay + 1;
+  const departures = new Float64Array(size);
+  const expected = new Float64Array(size);
+  for (let index = 0; index < streams.length; index += 1) {
+    if (index % streamsPerArea === boardingStream || groupOf(index % streamsPerArea) !== group) continue;
+    const hazards = blockHazards(streams[index]);
+    for (let c = 0; c < days.length; c += 1) {
+      departures[days[c] - firstDay] += tallies.departures[index][c];
+      expected[days[c] - firstDay] += hazards[cells.block[c]] * tallies.hoursAtRisk[index][c];
+    }
+  }
+  const inside: number[] = [];
+  for (let d = 0; d < size; d += 1) if (expected[d] > 0.5) inside.push(d);
+  // Past the last arrival used, only the longest stays remain to be seen: those days say little and not about a typical mix.
+  const lastDay = days[Math.max(0, cells.startAt.findLastIndex((at) => at < span.to) - 1)] - firstDay;
+  const kept = inside.filter((d) => d <= lastDay);
+  return {
+    day: Int32Array.from(kept, (d) => d + firstDay),
+    departures: Float64Array.from(kept, (d) => departures[d]),
+    expected: Float64Array.from(kept, (d) => expected[d]),
+  };
+}
+
+function spread(days: Int32Array, outflow: DailyOutflow, factor: OutflowFactor): Float64Array {
+  const smooth = smoothOutflow(outflow, factor);
+  const byDay = new Map<number, number>();
+  outflow.day.forEach((day, i) => byDay.set(day, smooth[i]));
+  return Float64Array.from(days, (day) => byDay.get(day) ?? 1);
+}
+
+/**
+ * Fits streams and outflow factors in turn: hazards given the factors, then the factors' variance and correlation from
+ * departures against expected, then each day's factor by smoothing. The day is cut at midnight or at 04:00, whichever
+ * leaves the factor more of the variance to explain.
+ */
+export function fitOutflowByDay(
+  cells: BlockCells,
+  span: { from: number; to: number },
+  fitStreams: (factorByCell: (stream: number) => Float64Array) => StayStream[],
+  rounds: number,
+  tallies: StayTallies,
+): OutflowFit {
+  const ones = new Float64Array(cells.block.length).fill(1);
+  let streams = fitStreams(() => ones);
+  const first = [cells.dayAtMidnight, cells.dayAtFour].map((days) =>
+    (['others', 'admitted'] as const).reduce(
+      (sum, group) => sum + estimateOutflow(daily(cells, days, span, tallies, streams, group)).variance,
+      0,
+    ),
+  );
+  const dayStartsAt = first[1] > first[0] ? 4 : 0;
+  const days = dayStartsAt === 4 ? cells.dayAtFour : cells.dayAtMidnight;
+  for (let round = 0; ; round += 1) {
+    const others = daily(cells, days, span, tallies, streams, 'others');
+    const admitted = daily(cells, days, span, tallies, streams, 'admitted');
+    const factors = { others: estimateOutflow(others), admitted: estimateOutflow(admitted) };
+    const byCell = { others: spread(days, others, factors.others), admitted: spread(days, admitted, factors.admitted) };
+    const factorByCell = (stream: number): Float64Array => byCell[groupOf(stream)];
+    streams = fitStreams(factorByCell);
+    if (round + 1 >= rounds) return { streams, ...factors, dayStartsAt, factorByCell };
+  }
+}

@@ -1,0 +1,138 @@
+import { drawGamma } from '../stochastic/gamma.ts';
+import { drawNormal } from '../stochastic/normal.ts';
+import type { RandomStream } from '../stochastic/random.ts';
+import type { ArrivalModel, LiveArrivals, RateGrid } from './arrival-model.ts';
+import { profileHour } from './calendar-effect.ts';
+import { choleskyFactor } from './cholesky.ts';
+import { forecastCalendar } from './log-level-belief.ts';
+import { profileError } from './profile-error.ts';
+import { distinctHoursOfWeek } from './rate-grid.ts';
+import { forecastBelief, type ForecastBelief } from './site-belief.ts';
+import type { CalendarDay } from './visit-table.ts';
+
+/**
+ * Mean arrivals per hour of every area in every stretch of a grid, all random factors at their mean.
+ * @returns per area, one figure a stretch, arrivals an hour. Cost: pieces² once, then linear.
+ */
+export function expectedRates(
+  model: ArrivalModel,
+  grid: RateGrid,
+  calendar: readonly CalendarDay[],
+  live?: LiveArrivals,
+): Float64Array[] {
+  const index = forecastCalendar(model, calendar);
+  const belief = forecastBelief(model, grid, index, live);
+  const site = meanMultipliers(model, belief);
+  return model.areas.map(({ profile }, area) => {
+    const own = belief.own[area];
+    return Float64Array.from(grid.localHour, (localHour, i) => {
+      const at = belief.place[i];
+      const factor = Math.exp(own.mean[at] + own.covariance[at * belief.pieces + at] / 2);
+      return profile.ratePerHour[profileHour(index, localHour)] * site[at] * factor;
+    });
+  });
+}
+
+function meanMultipliers(model: ArrivalModel, belief: ForecastBelief): Float64Array {
+  const size = belief.site.mean.length;
+  return Float64Array.from({ length: belief.pieces }, (_, k) => {
+    const mean = Math.exp(belief.site.mean[k] + belief.site.covariance[k * size + k] / 2);
+    const gamma = belief.gamma?.[k];
+    if (!gamma || gamma.shape === 0) return mean;
+    return mean * Math.exp(model.factorVariance / 2) * (gamma.shape / gamma.rate);
+  });
+}
+
+/**
+ * Makes a function that fills `out` (per area, one rate per stretch) with one joint draw of the rates of all areas and
+ * stretches: error of the weekly profile, level and its drift since training, season, calendar effects, the shared factor
+ * and each area's own, and the error of the shared factor's variance; after arrivals already counted, if any.
+ * Means agree with `expectedRates`. A draw makes no garbage and takes the same number of uniforms each time (the gamma
+ * structure apart), so replications may be paired.
+ * Cost: making, pieces³; a draw, areas × (stretches + pieces²/2), about 12 µs for 5 areas × 36 stretches.
+ */
+export function makeRateDraw(
+  model: ArrivalModel,
+  grid: RateGrid,
+  calendar: readonly CalendarDay[],
+  live?: LiveArrivals,
+): (stream: RandomStream, out: Float64Array[]) => void {
+  const index = forecastCalendar(model, calendar);
+  const belief = forecastBelief(model, grid, index, live);
+  const { pieces, place, hasFactor, gamma } = belief;
+  const stretches = place.length;
+  const siteSize = belief.site.mean.length;
+  const siteFactor = choleskyFactor(belief.site.covariance, siteSize);
+  const siteMean = belief.site.mean;
+  // exp(u) has mean exp(σ²/2); the gamma factor, whose mean is 1, stands for it at the same level.
+  const gammaShift = gamma ? model.factorVariance / 2 : 0;
+  const sdError = hasFactor ? model.factorLogSdError : 0;
+
+  const hours = grid.localHour.map((localHour) => profileHour(index, localHour));
+  const distinct = distinctHoursOfWeek(hours);
+  const areas = model.areas.map((area, a) => {
+    const error = profileError(area.profile, distinct.hours, model.coarse);
+    const own = belief.own[a];
+    const flat = own.covariance.every((value) => value === 0);
+    return {
+      logRate: Float64Array.from(distinct.hours, (hour, i) => Math.log(area.profile.ratePerHour[hour]) - error.variance[i] / 2),
+      error,
+      ownMean: own.mean,
+      ownFactor: flat ? null : choleskyFactor(own.covariance, pieces),
+    };
+  });
+
+  const z = new Float64Array(Math.max(siteSize, pieces, ...areas.map(({ error }) => error.rank)));
+  const site = new Float64Array(pieces);
+  const own = new Float64Array(pieces);
+  const hourLog = new Float64Array(distinct.hours.length);
+  const hourPlace = distinct.place;
+
+  return (stream, out) => {
+    for (let i = 0; i < siteSize; i += 1) z[i] = drawNormal(stream);
+    const scale = sdError > 0 ? Math.exp(sdError * drawNormal(stream)) - 1 : 0;
+    for (let k = 0; k < pieces; k += 1) {
+      let x = siteMean[k] + gammaShift;
+      for (let j = 0; j <= k; j += 1) x += siteFactor[k * siteSize + j] * z[j];
+      if (scale !== 0) {
+        let u = 0;
+        const row = (pieces + k) * siteSize;
+        for (let j = 0; j <= pieces + k; j += 1) u += siteFactor[row + j] * z[j];
+        x += scale * u;
+      }
+      site[k] = x;
+    }
+    if (gamma) {
+      for (let k = 0; k < pieces; k += 1) {
+        const { shape, rate, day } = gamma[k];
+        if (shape === 0) continue;
+        // Pieces of one day share its factor.
+        const log = k > 0 && gamma[k - 1].day === day ? z[0] : Math.log(drawGamma(stream, shape) / rate);
+        z[0] = log;
+        site[k] += log;
+      }
+    }
+    for (let a = 0; a < areas.length; a += 1) {
+      const { logRate, error, ownMean, ownFactor } = areas[a];
+      if (ownFactor) {
+        for (let k = 0; k < pieces; k += 1) z[k] = drawNormal(stream);
+        for (let k = 0; k < pieces; k += 1) {
+          let x = site[k] + ownMean[k];
+          for (let j = 0; j <= k; j += 1) x += ownFactor[k * pieces + j] * z[j];
+          own[k] = x;
+        }
+      } else {
+        for (let k = 0; k < pieces; k += 1) own[k] = site[k] + ownMean[k];
+      }
+      const { rank, common, ownSd } = error;
+      for (let r = 0; r < rank; r += 1) z[r] = drawNormal(stream);
+      for (let h = 0; h < hourLog.length; h += 1) {
+        let x = logRate[h] + ownSd[h] * drawNormal(stream);
+        for (let r = 0; r < rank; r += 1) x += common[h * rank + r] * z[r];
+        hourLog[h] = x;
+      }
+      const rates = out[a];
+      for (let i = 0; i < stretches; i += 1) rates[i] = Math.exp(hourLog[hourPlace[i]] + own[place[i]]);
+    }
+  };
+}

@@ -1,0 +1,75 @@
+import { newcomersUnderShape, sharesNotBoarding, streamOfBoarders, survivalOf } from './census-start.ts';
+import type { ExpectedPresent } from './census-start.ts';
+import { binomialLaw, gammaPoissonLaw, mixtureFromZero, sumOfLaws } from './count-law.ts';
+import type { AreaFlows } from './need-flows.ts';
+import type { OutlookInput } from './outlook-types.ts';
+import { pmfQuantile } from '../stochastic/pmf.ts';
+import type { StayModel, StayShape } from './stay-model.ts';
+
+/**
+ * Which length of stay an outlook uses: the stays' own shape when it moves the 90th percentile of need by one bed or more
+ * in any area at any segment's end before the night is over, else the exponential. Both are compared without parameter
+ * and factor variation, in closed form: newcomers Poisson with mean ∫ λ(u)·S(A(u, t)) du, those present binomial.
+ * Cost: areas × streams × segments².
+ */
+export function chooseStayLaw(
+  stay: StayModel,
+  input: OutlookInput,
+  flows: readonly AreaFlows[],
+  plain: readonly ExpectedPresent[],
+  shaped: readonly ExpectedPresent[],
+  shapesOf: (area: number) => (StayShape | null)[],
+  untilHours: number,
+): 'exponential' | 'empirical' {
+  for (let area = 0; area < flows.length; area += 1) {
+    const shapes = shapesOf(area);
+    if (shapes.every((shape) => shape === null)) continue;
+    const none = shapes.map(() => null);
+    const exponential = percentiles(stay, area, input, flows[area], plain[area], none, untilHours);
+    const empirical = percentiles(stay, area, input, flows[area], shaped[area], shapes, untilHours);
+    if (exponential.some((value, k) => value !== empirical[k])) return 'empirical';
+  }
+  return 'exponential';
+}
+
+function percentiles(
+  stay: StayModel,
+  area: number,
+  input: OutlookInput,
+  flow: AreaFlows,
+  present: ExpectedPresent,
+  shapes: readonly (StayShape | null)[],
+  untilHours: number,
+): number[] {
+  const { census } = input.areas[area];
+  const { hours, ratePerHour, hazardPerHour } = flow.ahead;
+  const count = hours.length;
+  const newcomers = new Float64Array(count);
+  ratePerHour.forEach((rate, s) => {
+    newcomersUnderShape(hours, rate, hazardPerHour[s], shapes[s]).forEach((mean, k) => {
+      newcomers[k] += mean;
+    });
+  });
+  const others = census === null ? present.means : sharesNotBoarding(stay, area, present.means);
+  const boarder = streamOfBoarders(stay, area);
+  const spent = new Float64Array(hazardPerHour.length);
+  const found: number[] = [];
+  let elapsed = 0;
+  for (let k = 0; k < count && elapsed < untilHours; k += 1) {
+    elapsed += hours[k];
+    if (k < flow.startSegment) continue;
+    let alive = 0;
+    for (let s = 0; s < spent.length; s += 1) {
+      spent[s] += hazardPerHour[s][k] * hours[k];
+      if (others[s] > 0) alive += others[s] * survivalOf(present.remaining[s], spent[s]);
+    }
+    let law = gammaPoissonLaw(newcomers[k] + (census === null ? alive : 0), 0);
+    if (census !== null) {
+      const still = survivalOf(present.remaining[boarder], spent[boarder]);
+      law = sumOfLaws(law, binomialLaw(census.present - census.boarding, Math.min(1, alive)));
+      law = sumOfLaws(law, binomialLaw(census.boarding, still));
+    }
+    found.push(pmfQuantile(mixtureFromZero([{ weight: 1, law }]), 0.9));
+  }
+  return found;
+}

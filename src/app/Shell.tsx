@@ -1,0 +1,130 @@
+import { useEffect, useRef } from 'react';
+import { NavLink, Outlet, ScrollRestoration, useLocation, useNavigation, useParams } from 'react-router-dom';
+import type { Permission } from '../../shared/domain/permission.ts';
+import { Menu } from '../components/Menu.tsx';
+import { PanelBoundary } from '../components/PanelBoundary.tsx';
+import { ThemeSwitch } from '../components/ThemeSwitch.tsx';
+import { useSession } from '../features/sign-in/session.ts';
+import type { SessionSite } from '../features/sign-in/session.ts';
+import { SignOutButton } from '../features/sign-in/SignOutButton.tsx';
+import { classNames } from '../lib/class-names.ts';
+import { lastSite } from '../lib/last-site.ts';
+import { paths } from './paths.ts';
+import { SiteSwitcher } from './SiteSwitcher.tsx';
+
+function useCurrentSite(): SessionSite | undefined {
+  const { siteId } = useParams();
+  const { sites } = useSession();
+  return sites.find((site) => site.id === (siteId ?? lastSite())) ?? sites[0];
+}
+
+const sideLink = ({ isActive }: { isActive: boolean }) =>
+  classNames(
+    'inline-flex min-h-11 items-center font-semibold',
+    isActive ? 'font-extrabold text-ink' : 'text-ink2 hover:text-ink',
+  );
+
+/** Every page's frame: the name, the places along time, what stands apart, and whose session it is. */
+export function Shell() {
+  const session = useSession();
+  const site = useCurrentSite();
+  const location = useLocation();
+  const navigation = useNavigation();
+  const mainRef = useRef<HTMLElement>(null);
+  const firstPage = useRef(true);
+  const may = (permission: Permission) => site?.permissions.includes(permission) ?? false;
+
+  // A new page is announced and read from its start; the first one leaves the focus alone.
+  useEffect(() => {
+    if (firstPage.current) firstPage.current = false;
+    else mainRef.current?.focus({ preventScroll: true });
+  }, [location.pathname]);
+
+  const apart = (
+    <>
+      {site && may('visit-log:read') ? (
+        <NavLink to={paths.visitLogs(site.id)} className={sideLink}>
+          Logs
+        </NavLink>
+      ) : null}
+      {site && may('arrival-model:read') ? (
+        <NavLink to={paths.arrivalModels(site.id)} className={sideLink}>
+          Arrival model
+        </NavLink>
+      ) : null}
+      <NavLink to={paths.howNumbersAreMade()} className={sideLink}>
+        How the numbers are made
+      </NavLink>
+      <ThemeSwitch />
+    </>
+  );
+
+  return (
+    <div className="flex min-h-dvh flex-col">
+      <a
+        href="#main"
+        className="absolute left-2 top-2 z-40 -translate-y-20 rounded-button bg-act px-4 py-2 font-bold text-act-ink focus:translate-y-0"
+        onClick={(event) => {
+          event.preventDefault();
+          mainRef.current?.focus();
+          mainRef.current?.scrollIntoView();
+        }}
+      >
+        Skip to the page
+      </a>
+      <header className="page-pad flex min-h-14 items-center gap-x-6 pt-1 print:hidden">
+        <SiteSwitcher site={site} sites={session.sites} />
+        <nav aria-label="Places along time" className="flex flex-1 items-center gap-6">
+          {site && may('outlook:read') ? (
+            <NavLink
+              to={paths.tonight(site.id)}
+              className={({ isActive }) =>
+                classNames(
+                  'inline-flex min-h-11 items-center border-b-[3px] text-body',
+                  isActive
+                    ? 'border-act font-extrabold text-ink'
+                    : 'border-transparent font-bold text-ink2 hover:text-ink',
+                )
+              }
+            >
+              Tonight
+            </NavLink>
+          ) : null}
+        </nav>
+        <nav aria-label="More" className="hidden items-center gap-6 text-side xl:flex">
+          {apart}
+          <Menu label={session.person.name}>
+            <p className="text-quiet text-ink2">{session.person.email}</p>
+            <SignOutButton className="mt-3 w-full" />
+          </Menu>
+        </nav>
+        <div className="text-side xl:hidden">
+          <Menu label="More">
+            <nav aria-label="More" className="flex flex-col items-start">
+              {apart}
+            </nav>
+            <p className="mt-2 border-t border-hair pt-3 font-bold">{session.person.name}</p>
+            <p className="text-quiet text-ink2">{session.person.email}</p>
+            <SignOutButton className="mt-3 w-full" />
+          </Menu>
+        </div>
+      </header>
+      <main
+        id="main"
+        ref={mainRef}
+        tabIndex={-1}
+        aria-busy={navigation.state === 'loading' || undefined}
+        className="flex-1"
+      >
+        <PanelBoundary key={location.pathname}>
+          <Outlet />
+        </PanelBoundary>
+      </main>
+      <footer className="page-pad pt-4 pb-5 text-quiet text-ink2">
+        <b className="text-ink">Planning aid.</b> Not for decisions about any individual patient. Follow your hospital’s
+        clinical governance, escalation policy and local law; a licensed clinician’s judgement comes first.
+      </footer>
+      <ScrollRestoration />
+    </div>
+  );
+}

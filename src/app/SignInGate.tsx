@@ -1,0 +1,61 @@
+import { useQueryClient } from '@tanstack/react-query';
+import { useEffect, useRef } from 'react';
+import { Navigate, Outlet, useLocation } from 'react-router-dom';
+import { ProblemNotice } from '../components/Notice.tsx';
+import { Skeleton } from '../components/Skeleton.tsx';
+import { SessionProvider, sessionKey, useSessionQuery } from '../features/sign-in/session.ts';
+import type { SignedInSession } from '../features/sign-in/session.ts';
+import type { Session } from '../../shared/api/session.ts';
+import { onSignedOut } from '../lib/api-client.ts';
+import { SignedOutPage } from '../pages/SignedOutPage.tsx';
+import { paths } from './paths.ts';
+
+/**
+ * Lets signed-in people through. A session that ends while a page is open hides the page but keeps
+ * it, so that nothing typed is lost if signing in again happens in another tab.
+ */
+export function SignInGate() {
+  const queryClient = useQueryClient();
+  const location = useLocation();
+  const query = useSessionQuery();
+  const lastSession = useRef<SignedInSession | null>(null);
+
+  useEffect(
+    () =>
+      onSignedOut(() => {
+        queryClient.setQueryData<Session>(sessionKey, (session) =>
+          session ? { ...session, person: null, sites: [] } : session,
+        );
+      }),
+    [queryClient],
+  );
+
+  if (query.data?.person) lastSession.current = { ...query.data, person: query.data.person };
+  const here = location.pathname + location.search;
+
+  if (!query.data) {
+    return (
+      <main className="page-pad mx-auto max-w-3xl py-16">
+        {query.error ? (
+          <ProblemNotice error={query.error} onRetry={() => void query.refetch()} retrying={query.isFetching} />
+        ) : (
+          <Skeleton className="h-11 w-3/5" label="Loading" />
+        )}
+      </main>
+    );
+  }
+  if (!query.data.person && !lastSession.current) {
+    return <Navigate to={paths.signIn(here === '/' ? undefined : here)} replace />;
+  }
+  const signedOut = !query.data.person;
+  return (
+    <>
+      {signedOut ? <SignedOutPage returnTo={here} /> : null}
+      <SessionProvider value={lastSession.current}>
+        <div hidden={signedOut}>
+          <Outlet />
+        </div>
+      </SessionProvider>
+    </>
+  );
+}

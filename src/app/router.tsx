@@ -1,0 +1,78 @@
+import { createBrowserRouter } from 'react-router-dom';
+import { ErrorPage } from './ErrorPage.tsx';
+import { HomeRedirect } from './HomeRedirect.tsx';
+import { Shell } from './Shell.tsx';
+import { SignInGate } from './SignInGate.tsx';
+import { SiteGate } from './SiteGate.tsx';
+import { Skeleton } from '../components/Skeleton.tsx';
+import { NotFoundPage } from '../pages/NotFoundPage.tsx';
+import { SignInPage } from '../pages/SignInPage.tsx';
+
+function PageSkeleton() {
+  return (
+    <div className="page-pad pt-4">
+      <Skeleton className="h-11 w-3/5" label="Loading the page" />
+      <Skeleton className="mt-3 h-6 w-2/5" />
+    </div>
+  );
+}
+
+/** Every address of the client. Each page is its own chunk. */
+export function makeRouter() {
+  return createBrowserRouter([
+    { path: '/sign-in', element: <SignInPage />, errorElement: <ErrorPage /> },
+    {
+      element: <SignInGate />,
+      errorElement: <ErrorPage />,
+      hydrateFallbackElement: <PageSkeleton />,
+      children: [
+        { path: '/', element: <HomeRedirect /> },
+        {
+          element: <Shell />,
+          errorElement: <ErrorPage />,
+          children: [
+            {
+              path: '/sites/:siteId',
+              element: <SiteGate />,
+              errorElement: <ErrorPage />,
+              children: [
+                {
+                  path: 'tonight',
+                  lazy: async () => ({ Component: (await import('../pages/TonightPage.tsx')).TonightPage }),
+                },
+                {
+                  path: 'logs',
+                  lazy: async () => ({ Component: (await import('../pages/VisitLogsPage.tsx')).VisitLogsPage }),
+                },
+                {
+                  path: 'logs/new',
+                  lazy: async () => ({ Component: (await import('../pages/NewVisitLogPage.tsx')).NewVisitLogPage }),
+                },
+                {
+                  path: 'logs/:logId',
+                  lazy: async () => ({ Component: (await import('../pages/VisitLogPage.tsx')).VisitLogPage }),
+                },
+                {
+                  path: 'models',
+                  lazy: async () => ({ Component: (await import('../pages/ArrivalModelsPage.tsx')).ArrivalModelsPage }),
+                },
+                {
+                  path: 'models/:modelId',
+                  lazy: async () => ({ Component: (await import('../pages/ArrivalModelPage.tsx')).ArrivalModelPage }),
+                },
+                { path: '*', element: <NotFoundPage /> },
+              ],
+            },
+            {
+              path: '/how',
+              lazy: async () => ({
+                Component: (await import('../pages/HowNumbersAreMadePage.tsx')).HowNumbersAreMadePage,
+              }),
+            },
+            { path: '*', element: <NotFoundPage /> },
+          ],
+        },
+      ],
+    },
+  ]);
+}

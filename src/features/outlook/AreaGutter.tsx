@@ -1,0 +1,136 @@
+import { useId } from 'react';
+import type { CareArea } from '../../../shared/api/sites.ts';
+import { RiskMark } from '../../../shared/charts/RiskMark.tsx';
+import { bedsAt } from '../../../shared/domain/bed-schedule.ts';
+import { formatChance, riskStep, riskWord } from '../../../shared/domain/risk-word.ts';
+import { formatAge, formatTime } from '../../lib/format.ts';
+import { CensusFields, CensusSave } from './CensusFields.tsx';
+import { StaffedTonight } from './StaffedTonight.tsx';
+import type { BoardArea, SomeTime } from './tonight-board.ts';
+import { useCensusEntryContext } from './use-census-entry.ts';
+
+export interface Rights {
+  enterCensus: boolean;
+  changeBeds: boolean;
+}
+
+/** Word, mark and figure of the chance of any shortfall before a shift ends; an hour's chance is another thing. */
+export function SomeTimeLine({
+  someTime,
+  timeZone,
+  subject = '',
+}: {
+  someTime: SomeTime;
+  timeZone: string;
+  subject?: string;
+}) {
+  const { chance } = someTime.chance;
+  const step = riskStep(chance);
+  return (
+    <p className="text-label text-ink2 tight">
+      <RiskMark step={step} className="mr-1 inline-block h-4 w-5 align-[-2px] text-ink" />
+      <span className={step >= 3 ? 'font-extrabold text-ink' : 'font-semibold'}>{riskWord(chance)}</span> {subject}
+      {someTime.until === 'tonight'
+        ? 'some time tonight'
+        : `some time before ${formatTime(someTime.until.before, timeZone)}`}
+      , <b className="text-ink">{formatChance(chance).replace(' ', '\u00a0')}</b>
+    </p>
+  );
+}
+
+const captions = ['Present', 'Waiting', 'Boarding', 'Staffed'];
+
+/** The captions of the four figures; once above the areas and again under an open row. */
+export function FigureCaptions() {
+  return (
+    <div className="grid grid-cols-4 gap-1.5 text-center text-small font-semibold text-ink2 tighter" aria-hidden="true">
+      {captions.map((caption) => (
+        <span key={caption}>{caption}</span>
+      ))}
+    </div>
+  );
+}
+
+/** An area's name, its risk in words, and its four figures: present, waiting, boarding, staffed beds now. */
+export function AreaGutter({
+  area,
+  index,
+  row,
+  siteId,
+  timeZone,
+  now,
+  rights,
+  open,
+}: {
+  area: CareArea;
+  index: number;
+  /** Null while there is no outlook. */
+  row: BoardArea | null;
+  siteId: string;
+  timeZone: string;
+  now: number;
+  rights: Rights;
+  open: boolean;
+}) {
+  const { census } = useCensusEntryContext();
+  const formId = useId();
+  const counted = census?.areas.find((candidate) => candidate.areaId === area.id);
+  const inForce = row && row.staffed.length > 0 ? bedsAt(row.staffed, now) : null;
+  const limit = `${String(Math.round(area.alertLimit * 100))}\u00a0%`;
+  const firstPast = row?.firstPast ?? null;
+  return (
+    <div>
+      <div className="flex flex-wrap items-baseline justify-between gap-x-3">
+        <h3 className="text-area font-stretch-[92%]">{area.name}</h3>
+        {row?.counted === false || !counted ? <p className="text-label font-bold text-ink2">Not counted</p> : null}
+      </div>
+      {row?.someTime ? <SomeTimeLine someTime={row.someTime} timeZone={timeZone} /> : null}
+      {row && firstPast !== null ? (
+        <p className="text-label text-ink2 tight">
+          Past {limit} {row.columns.some((column) => column.kind === 'forecast') ? 'from' : 'at'}{' '}
+          <b className="text-ink">
+            {formatTime(row.columns.filter((column) => column.kind === 'forecast')[firstPast].at, timeZone)}
+          </b>
+          {Math.max(...row.bedsToAdd) > 0 ? (
+            <>
+              {' '}
+              · up to{' '}
+              <b className="text-ink">
+                +{Math.max(...row.bedsToAdd.filter((_, at) => row.chances[at].chance > area.alertLimit))}
+              </b>{' '}
+              {area.spaceKind === 'chair' ? 'chairs' : 'beds'}
+            </>
+          ) : null}
+        </p>
+      ) : null}
+      {counted && now - counted.takenAt > 2 * 3600 ? (
+        <p className="text-label font-extrabold text-ink">Counted {formatAge(now - counted.takenAt)} ago</p>
+      ) : null}
+      <div className="mt-1.5 grid grid-cols-4 gap-1.5">
+        {rights.enterCensus ? (
+          <CensusFields index={index} areaName={area.name} formId={formId} />
+        ) : (
+          (['present', 'waiting', 'boarding'] as const).map((field) => (
+            <Figure key={field} name={`${area.name}, ${field}`} value={counted?.[field]} />
+          ))
+        )}
+        {rights.changeBeds ? (
+          <StaffedTonight area={area} siteId={siteId} inForce={inForce} />
+        ) : (
+          <Figure name={`${area.name}, staffed now`} value={inForce} />
+        )}
+      </div>
+      {open ? <FigureCaptions /> : null}
+      {rights.enterCensus ? <CensusSave index={index} timeZone={timeZone} /> : null}
+    </div>
+  );
+}
+
+function Figure({ name, value }: { name: string; value: number | null | undefined }) {
+  return (
+    <span className="py-1 text-center text-census">
+      <span className="sr-only">{name}: </span>
+      {value ?? '–'}
+    </span>
+  );
+}

@@ -1,0 +1,131 @@
+import { useId } from 'react';
+import { NeedStrip } from '../../../shared/charts/NeedStrip.tsx';
+import { formatChance, riskWord } from '../../../shared/domain/risk-word.ts';
+import { formatSigned } from '../../lib/format.ts';
+import { AreaGutter } from './AreaGutter.tsx';
+import type { Rights } from './AreaGutter.tsx';
+import { BoardRow } from './BoardRow.tsx';
+import { ChanceTable } from './ChanceTable.tsx';
+import type { StripRow } from './ChanceTable.tsx';
+import { LimitPanel } from './LimitPanel.tsx';
+import { pastHours } from './tonight-board.ts';
+import type { BoardArea } from './tonight-board.ts';
+
+/** Rows of figures under an area's drawing; an open row also answers how many beds to add. */
+function rowsOf(row: BoardArea, open: boolean, hourNames: readonly string[]): StripRow[] {
+  const rows: StripRow[] = [
+    {
+      kind: 'chance',
+      label: row.area.spaces <= 8 ? 'Chance, in the hour' : 'Chance of shortfall',
+      chances: row.chances,
+      limit: row.area.alertLimit,
+      counted: row.counted,
+      words: open,
+    },
+  ];
+  if (!row.counted) return rows;
+  if (open && row.bedsToAdd.some((beds) => beds > 0)) {
+    rows.push({
+      kind: 'figures',
+      label: row.area.spaceKind === 'chair' ? 'Chairs to add' : 'Beds to add',
+      strong: true,
+      figures: row.bedsToAdd.map((beds, index) => {
+        const missing = row.bedsThatDoNotExist[index];
+        return {
+          text: beds > 0 ? `+${String(beds)}` : '',
+          spoken: `${String(beds)} to add at ${hourNames[index]}${missing > 0 ? `, of which ${String(missing)} do not exist` : ''}`,
+        };
+      }),
+    });
+  }
+  rows.push({
+    kind: 'figures',
+    label: 'Headroom at P90',
+    figures: row.headroom.map((beds, index) => ({
+      text: formatSigned(beds),
+      spoken: `headroom ${formatSigned(beds)} at ${hourNames[index]}`,
+      strong: beds < 0,
+    })),
+  });
+  return rows;
+}
+
+/** What the drawing shows, in one sentence. */
+export function summariseArea(row: BoardArea, hourNames: readonly string[]): string {
+  const { area } = row;
+  if (!row.counted) return `${area.name} is not counted; the outline is what the model expects on such a night.`;
+  const peak = Math.max(...row.chances.map((cell) => cell.chance));
+  const at = row.chances.findIndex((cell) => cell.chance === peak);
+  const past =
+    row.firstPast === null ? 'No hour is past its limit' : `Past its limit first at ${hourNames[row.firstPast]}`;
+  return `${area.name}: highest chance of a shortfall ${formatChance(peak)}, ${riskWord(peak)}, at ${hourNames[at]}. ${past}.`;
+}
+
+/** One care area: its figures in the gutter, its drawing over the hours, its chances hour by hour. */
+export function AreaRow({
+  row,
+  index,
+  open,
+  onToggle,
+  siteId,
+  timeZone,
+  now,
+  rights,
+  columnWidth,
+  hourNames,
+}: {
+  row: BoardArea;
+  index: number;
+  open: boolean;
+  onToggle: () => void;
+  siteId: string;
+  timeZone: string;
+  now: number;
+  rights: Rights;
+  columnWidth: number;
+  hourNames: readonly string[];
+}) {
+  const id = useId();
+  return (
+    <BoardRow
+      gutter={
+        <>
+          <AreaGutter {...{ area: row.area, index, row, siteId, timeZone, now, rights, open }} />
+          <button
+            type="button"
+            aria-expanded={open}
+            onClick={onToggle}
+            className="link mt-1 min-h-6 cursor-pointer text-label font-semibold text-ink2 print:hidden"
+          >
+            {open ? `Close ${row.area.name}` : `Open ${row.area.name}`}
+          </button>
+        </>
+      }
+      strip={
+        <div className={open ? 'pt-5' : 'pt-2'}>
+          <p className="sr-only">{summariseArea(row, hourNames)}</p>
+          <NeedStrip
+            id={id}
+            columns={row.columns}
+            staffed={row.staffed}
+            unit={row.area.spaceKind === 'chair' ? 'chairs' : 'staffed'}
+            columnWidth={columnWidth}
+            height={open ? 104 : 52}
+            tall={open}
+            counted={row.counted}
+          />
+          <ChanceTable
+            caption={`${row.area.name}, hour by hour`}
+            hourNames={hourNames}
+            pastColumns={pastHours}
+            columnWidth={columnWidth}
+            rows={rowsOf(row, open, hourNames)}
+          />
+          {open && row.firstPast !== null ? (
+            <LimitPanel row={row} columnWidth={columnWidth} hourNames={hourNames} timeZone={timeZone} />
+          ) : null}
+        </div>
+      }
+    />
+  );
+}

@@ -1,0 +1,65 @@
+import type { Site } from '../../../shared/api/sites.ts';
+import { formatChance, riskWord } from '../../../shared/domain/risk-word.ts';
+import { DataTable } from '../../components/DataTable.tsx';
+import { formatNumber, formatSigned } from '../../lib/format.ts';
+import type { Board, BoardArea } from './tonight-board.ts';
+
+/** Every figure of the hours ahead, area by area: the proof behind the drawing. */
+export function OutlookTables({ board, site, hourNames }: { board: Board; site: Site; hourNames: readonly string[] }) {
+  return (
+    <div className="grid gap-8">
+      {board.areas.map((row) => (
+        <AreaTable key={row.area.id} row={row} hourNames={hourNames} />
+      ))}
+      <p className="text-quiet text-ink2">
+        Percentiles of need, patients who would be in the area with bed spaces unlimited. Staffed beds are those in
+        force at each full hour. Times are those of {site.name} ({site.timeZone}).
+      </p>
+    </div>
+  );
+}
+
+function AreaTable({ row, hourNames }: { row: BoardArea; hourNames: readonly string[] }) {
+  const ahead = row.columns.filter((column) => column.kind === 'forecast');
+  const percentile = (key: 'p5' | 'p25' | 'p50' | 'p75' | 'p90' | 'p95', header: string) => ({
+    key,
+    header,
+    figure: true,
+    cell: (index: number) => formatNumber(ahead[index][key]),
+  });
+  return (
+    <DataTable<number>
+      caption={row.counted ? row.area.name : `${row.area.name}: not counted, as the model expects`}
+      rows={ahead.map((_, index) => index)}
+      rowKey={(index) => hourNames[index]}
+      columns={[
+        { key: 'hour', header: 'At', rowHeader: true, cell: (index) => hourNames[index] },
+        percentile('p5', 'P5'),
+        percentile('p25', 'P25'),
+        percentile('p50', 'Median'),
+        percentile('p75', 'P75'),
+        percentile('p90', 'P90'),
+        percentile('p95', 'P95'),
+        { key: 'staffed', header: 'Staffed', figure: true, cell: (index) => formatNumber(ahead[index].staffed) },
+        { key: 'headroom', header: 'Headroom', figure: true, cell: (index) => formatSigned(row.headroom[index]) },
+        {
+          key: 'chance',
+          header: row.area.spaces <= 8 ? 'Chance within the hour' : 'Chance of shortfall',
+          figure: true,
+          cell: (index) => {
+            const { chance, se } = row.chances[index];
+            const word = row.counted ? `, ${riskWord(chance)}` : '';
+            return `${formatChance(chance)}${word} (± ${formatNumber(se * 196, 1)})`;
+          },
+        },
+        { key: 'add', header: 'Beds to add', figure: true, cell: (index) => formatNumber(row.bedsToAdd[index]) },
+        {
+          key: 'missing',
+          header: 'Of which do not exist',
+          figure: true,
+          cell: (index) => formatNumber(row.bedsThatDoNotExist[index]),
+        },
+      ]}
+    />
+  );
+}

@@ -1,0 +1,102 @@
+import { useState } from 'react';
+import { Link } from 'react-router-dom';
+import type { Outlook, Tonight } from '../../../shared/api/outlooks.ts';
+import type { Site } from '../../../shared/api/sites.ts';
+import { localDate } from '../../../shared/domain/zoned-time.ts';
+import { Dialog } from '../../components/Dialog.tsx';
+import { PanelBoundary } from '../../components/PanelBoundary.tsx';
+import { formatTime, formatWeekday, zoneOf } from '../../lib/format.ts';
+import { useMediaQuery } from '../../lib/use-media-query.ts';
+import type { Rights } from './AreaGutter.tsx';
+import { AreaRow } from './AreaRow.tsx';
+import { DepartmentRow } from './DepartmentRow.tsx';
+import { OutlookTables } from './OutlookTables.tsx';
+import { RibbonRow } from './RibbonRow.tsx';
+import { RiskKey } from './RiskKey.tsx';
+import { buildBoard, pastHours } from './tonight-board.ts';
+import { UndecidedRow } from './UndecidedRow.tsx';
+import { useRibbon } from './use-ribbon.ts';
+
+/** The night board: ribbon, department, areas in the site's own order, area not decided, key. */
+export function TonightBoard({
+  tonight,
+  outlook,
+  site,
+  rights,
+  worstAreaId,
+  howHref,
+}: {
+  tonight: Tonight;
+  outlook: Outlook;
+  site: Site;
+  rights: Rights;
+  /** Opens by itself. */
+  worstAreaId: string | null;
+  howHref: string;
+}) {
+  const desktop = useMediaQuery('(min-width: 1100px)');
+  const columnWidth = desktop ? 38 : 40;
+  const zone = zoneOf(site.timeZone);
+  const board = buildBoard(tonight, outlook, site, zone);
+  const firstAhead = board.hours[pastHours]?.at;
+  const ribbon = useRibbon(columnWidth, pastHours - (desktop ? 3 : 2), firstAhead);
+  const [opened, setOpened] = useState<ReadonlyMap<string, boolean>>(new Map());
+  const [tableOpen, setTableOpen] = useState(false);
+
+  const today = localDate(zone.toLocal(tonight.now));
+  const hourNames = board.hours.slice(pastHours).map((hour) => {
+    const time = formatTime(hour.at, site.timeZone);
+    return localDate(zone.toLocal(hour.at)) === today ? time : `${time} ${formatWeekday(hour.at, site.timeZone)}`;
+  });
+  const isOpen = (areaId: string) => opened.get(areaId) ?? areaId === worstAreaId;
+  const shared = { siteId: site.id, timeZone: site.timeZone, now: tonight.now, rights, columnWidth, hourNames };
+
+  return (
+    <>
+      <div
+        ref={ribbon.ref}
+        role="region"
+        aria-label="Hours, step with the arrow keys"
+        tabIndex={0}
+        onKeyDown={ribbon.handleKeyDown}
+        className="night-board relative overflow-x-auto overflow-y-clip"
+      >
+        <div className="relative w-max pb-2">
+          <i aria-hidden="true" className="now-line" style={{ ['--past' as string]: pastHours }} />
+          <RibbonRow {...{ board, outlook, site, columnWidth, ribbon }} now={tonight.now} />
+          <PanelBoundary>
+            <DepartmentRow {...{ board, outlook, tonight, site, rights, columnWidth, hourNames }} />
+          </PanelBoundary>
+          {board.areas.map((row, index) => (
+            <PanelBoundary key={row.area.id}>
+              <AreaRow
+                {...shared}
+                row={row}
+                index={index}
+                open={isOpen(row.area.id)}
+                onToggle={() => setOpened(new Map(opened).set(row.area.id, !isOpen(row.area.id)))}
+              />
+            </PanelBoundary>
+          ))}
+          <UndecidedRow rights={rights} timeZone={site.timeZone} />
+        </div>
+      </div>
+      <div className="page-pad flex flex-wrap items-center gap-x-6 gap-y-2 border-t border-hair pt-3">
+        <RiskKey />
+        <button
+          type="button"
+          className="link min-h-6 cursor-pointer text-quiet font-semibold print:hidden"
+          onClick={() => setTableOpen(true)}
+        >
+          The table behind this
+        </button>
+        <Link to={howHref} className="link text-quiet font-semibold print:hidden">
+          How the numbers are made
+        </Link>
+      </div>
+      <Dialog title={`The hours ahead, ${site.name}`} open={tableOpen} onClose={() => setTableOpen(false)}>
+        <OutlookTables {...{ board, site, hourNames }} />
+      </Dialog>
+    </>
+  );
+}

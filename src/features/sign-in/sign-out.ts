@@ -1,0 +1,8 @@
+import { signOut as signOutRoute } from '../../../shared/api/session.ts';
+import { call } from '../../lib/api-client.ts';
+
+/** Ends the session at both ends. By fetch, since a form post that is sent on elsewhere is refused by the content policy. */
+export async function signOut(): Promise<void> {
+  const { redirectTo } = await call(signOutRoute, { kept: 'You are still signed in.' });
+  window.location.assign(redirectTo);
+}

@@ -1,0 +1,46 @@
+import { Navigate, useSearchParams } from 'react-router-dom';
+import { paths } from '../app/paths.ts';
+import { Notice } from '../components/Notice.tsx';
+import { useDocumentTitle } from '../components/PageHead.tsx';
+import { ThemeSwitch } from '../components/ThemeSwitch.tsx';
+import { SignInRibbon } from '../features/sign-in/SignInRibbon.tsx';
+import { useSessionQuery } from '../features/sign-in/session.ts';
+
+/** Where to come back to: an address within the product, never another site. */
+export function safeReturnTo(given: string | null): string {
+  return given && /^\/(?![/\\])/.test(given) ? given : '/';
+}
+
+/** Sign-in by the hospital account. A link, since a form that is sent on elsewhere is refused by the content policy. */
+export function SignInPage() {
+  useDocumentTitle('Sign in');
+  const [search] = useSearchParams();
+  const returnTo = safeReturnTo(search.get('returnTo'));
+  const session = useSessionQuery();
+  if (session.data?.person) return <Navigate to={returnTo} replace />;
+  return (
+    <main className="min-h-dvh">
+      <SignInRibbon />
+      <div className="page-pad max-w-[26.5rem] pb-10">
+        <h1 className="text-headline-phone">Sign in</h1>
+        <p className="mt-1 text-lede text-ink2">Emergency department arrival forecasts and bed planning.</p>
+        {search.get('problem') ? (
+          <Notice kind="caution" className="mt-5" title="Signing in did not work">
+            <p>The hospital account did not confirm who you are. Try again; if it stays, tell your administrator.</p>
+          </Notice>
+        ) : null}
+        <a
+          href={paths.startSignIn(returnTo)}
+          className="mt-6 flex min-h-13 items-center justify-center rounded-button bg-act px-5 text-body font-extrabold text-act-ink hover:bg-act-strong"
+        >
+          Continue with your hospital account
+        </a>
+        <p className="mt-6 text-quiet text-ink2">
+          <b className="text-ink">Planning aid.</b> Not for decisions about any individual patient. Nothing here
+          identifies one, and no figures are shown before you sign in.
+        </p>
+        <ThemeSwitch className="link mt-4 min-h-11 cursor-pointer text-quiet font-semibold text-ink2" />
+      </div>
+    </main>
+  );
+}

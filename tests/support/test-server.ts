@@ -1,0 +1,123 @@
+import { createHmac, randomBytes } from 'node:crypto';
+import { mkdtempSync, rmSync } from 'node:fs';
+import { tmpdir } from 'node:os';
+import { join } from 'node:path';
+import supertest from 'supertest';
+import { createApp, type App } from '../../server/app.ts';
+import type { Config } from '../../server/config.ts';
+import { openDatabase } from '../../server/database/database.ts';
+import type { Dependencies } from '../../server/dependencies.ts';
+import { SessionRow } from '../../server/entities/SessionRow.ts';
+import { OutlookIssuer } from '../../server/features/outlook/issuer.ts';
+import { antiForgeryToken } from '../../server/http/anti-forgery.ts';
+import { SessionStore } from '../../server/http/session-store.ts';
+import { JobQueue } from '../../server/jobs/queue.ts';
+import { makeJobKinds } from '../../server/jobs/registry.ts';
+import { makeLogger } from '../../server/log.ts';
+import { makeSimulationPool } from '../../server/simulation/pool.ts';
+
+export const testConfig: Config = {
+  production: false,
+  host: '127.0.0.1',
+  port: 4310,
+  dataDir: '',
+  baseUrl: 'http://127.0.0.1:4310',
+  trustProxy: false,
+  oidc: { issuerUrl: 'http://127.0.0.1:9', clientId: 'shoalmark', clientSecret: 'test-client-secret' },
+  sessionSecret: 'test-session-secret-0123456789abcdef',
+  smtpUrl: null,
+  mailFrom: 'Shoalmark <shoalmark@localhost>',
+  logLevel: 'silent',
+  administratorContact: 'the test administrator',
+  threads: 1,
+  clockOffset: 0,
+};
+
+/** An application on a database file of its own, with a clock that the test moves. */
+export interface TestServer {
+  app: App;
+  deps: Dependencies;
+  issuer: OutlookIssuer;
+  /** UTC seconds; set it to move time. */
+  time: { now: number };
+  /** Works the job queue with the real handlers until nothing waits. */
+  workJobs(): Promise<void>;
+  /** A client that carries a signed-in person's cookie and anti-forgery token. */
+  signedInAs(personId: string): Promise<SignedIn>;
+  nobody(): ReturnType<typeof supertest>;
+  close(): Promise<void>;
+}
+
+export interface SignedIn {
+  cookie: string;
+  csrfToken: string;
+  get(path: string): supertest.Test;
+  send(method: 'post' | 'put' | 'patch' | 'delete', path: string, body?: object): supertest.Test;
+}
+
+/** Opens an application for a test. Sessions use the real clock; everything else the test's. */
+export async function openTestServer({
+  now = 1_790_000_000,
+  config = {},
+} = {}): Promise<TestServer> {
+  const dataDir = mkdtempSync(join(tmpdir(), 'shoalmark-test-'));
+  const time = { now };
+  const full: Config = { ...testConfig, dataDir, ...config };
+  const database = await openDatabase(dataDir);
+  const logger = makeLogger(full.logLevel);
+  const clock = () => time.now;
+  const pool = makeSimulationPool(1);
+  const simulation = makeSimulationPool(full.threads);
+  const jobs = new JobQueue(database, clock, logger);
+  const deps: Dependencies = { config: full, database, clock, logger, pool, simulation, jobs };
+  const issuer = new OutlookIssuer(deps);
+  const realClock = () => Math.floor(Date.now() / 1000);
+  const app = createApp(deps, issuer, new SessionStore(database, realClock), null);
+  let working = false;
+
+  return {
+    app,
+    deps,
+    issuer,
+    time,
+    async workJobs() {
+      if (!working) await jobs.start(makeJobKinds(deps));
+      working = true;
+      await jobs.idle();
+    },
+    async signedInAs(personId) {
+      const sid = randomBytes(16).toString('hex');
+      const session = {
+        cookie: { originalMaxAge: null, httpOnly: true, path: '/', sameSite: 'lax' },
+        personId,
+        signedInAt: realClock(),
+        idToken: '',
+      };
+      await database.write((manager) =>
+        manager.insert(SessionRow, { sid, expiresAt: realClock() + 3600, data: JSON.stringify(session) }),
+      );
+      const signature = createHmac('sha256', full.sessionSecret).update(sid).digest('base64').replace(/=+$/, '');
+      const cookie = `shoalmark=${encodeURIComponent(`s:${sid}.${signature}`)}`;
+      const csrfToken = antiForgeryToken(full.sessionSecret, sid);
+      const client = supertest(app.express);
+      return {
+        cookie,
+        csrfToken,
+        get: (path) => client.get(path).set('cookie', cookie),
+        send: (method, path, body) => {
+          const request = client[method](path).set('cookie', cookie).set('x-csrf-token', csrfToken);
+          return body === undefined ? request : request.send(body);
+        },
+      };
+    },
+    nobody: () => supertest(app.express),
+    async close() {
+      if (working) await jobs.stop();
+      await issuer.settle();
+      await pool.close();
+      await simulation.close();
+      await database.close();
+      rmSync(dataDir, { recursive: true, force: true });
+    },
+  };
+}
