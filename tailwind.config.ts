@@ -176,8 +176,8 @@ export default {
     },
   },
   plugins: [
-    plugin(({ addBase }) => {
-      addBase({
+    plugin((api) => {
+      api.addBase({
         ':root': { ...variables(light), colorScheme: 'light' },
         '@media (prefers-color-scheme: dark)': {
           ':root:not([data-theme="light"])': { ...variables(dark), colorScheme: 'dark' },

@@ -1,6 +1,6 @@
 import tailwindcss from '@tailwindcss/vite';
 import react from '@vitejs/plugin-react';
-import { defineConfig } from 'vite';
+import { defineConfig } from 'vitest/config';
 
 const server = 'http://127.0.0.1:4310';
 
@@ -17,4 +17,59 @@ export default defineConfig({
     assetsInlineLimit: 0,
   },
   server: { proxy: { '/api': server, '/auth': server, '/healthz': server } },
+  test: {
+    projects: [
+      {
+        test: {
+          name: 'shared',
+          environment: 'node',
+          include: ['tests/shared/**/*.test.ts'],
+          env: { TZ: 'UTC' },
+          testTimeout: 60_000,
+        },
+      },
+      {
+        // The same zone-dependent tests on a machine far from Greenwich.
+        test: {
+          name: 'shared, machine in Auckland',
+          environment: 'node',
+          include: ['tests/shared/domain/**/*.test.ts'],
+          env: { TZ: 'Pacific/Auckland' },
+          testTimeout: 60_000,
+        },
+      },
+      {
+        test: {
+          name: 'server',
+          environment: 'node',
+          include: ['tests/server/**/*.test.ts'],
+          setupFiles: ['tests/support/setup-server.ts'],
+          testTimeout: 60_000,
+          hookTimeout: 60_000,
+        },
+      },
+      {
+        plugins: [react()],
+        test: {
+          name: 'client',
+          environment: 'jsdom',
+          include: ['tests/src/**/*.test.{ts,tsx}', 'tests/shared/**/*.test.tsx'],
+          setupFiles: ['tests/support/setup-client.ts'],
+          testTimeout: 20_000,
+        },
+      },
+      {
+        // A real browser on the built product with its demo; after everything else, one at a time.
+        test: {
+          name: 'journeys',
+          environment: 'node',
+          include: ['tests/journeys/**/*.test.ts'],
+          fileParallelism: false,
+          sequence: { groupOrder: 1 },
+          testTimeout: 180_000,
+          hookTimeout: 180_000,
+        },
+      },
+    ],
+  },
 });

@@ -16,10 +16,15 @@ export type Say = (text: string) => void;
  * everything is loaded through the product's own sign-in, upload, fit, approval and census; later starts
  * add the visits since and a fresh census.
  */
-export async function buildDemo(server: RunningServer, baseUrl: string, say: Say): Promise<void> {
-  const { database, clock } = server.deps;
+export async function buildDemo(server: RunningServer, say: Say): Promise<void> {
+  const { database, clock, config } = server.deps;
   const now = clock();
-  const signIn = (username: string) => signInToDemo(baseUrl, username, demoPassword);
+  const host = ['0.0.0.0', '::'].includes(config.host) ? '127.0.0.1' : config.host;
+  const addresses = {
+    baseUrl: config.baseUrl,
+    localUrl: `http://${host.includes(':') ? `[${host}]` : host}:${String(config.port)}`,
+  };
+  const signIn = (username: string) => signInToDemo(addresses, username, demoPassword);
   if (await isSeeded(database)) {
     const topped = await topUpVisits(database, await signIn('steward'), now);
     if (topped > 0) {

@@ -16,30 +16,49 @@ interface Reply {
 
 /**
  * Signs an account of the demo in as a browser would: from the product to the stand-in provider, through
- * its form, and back. Only loopback addresses are called.
+ * its form, and back.
+ * @param addresses the configured BASE_URL, and where the server listens on this machine
  */
-export async function signInToDemo(baseUrl: string, username: string, password: string): Promise<DemoCaller> {
+export async function signInToDemo(
+  addresses: { baseUrl: string; localUrl: string },
+  username: string,
+  password: string,
+): Promise<DemoCaller> {
+  const { baseUrl, localUrl } = addresses;
   const jar = new Map<string, string>();
   const agent = new Agent({ keepAlive: false });
+
+  // BASE_URL may be a proxy's address: what is meant for it goes to the server itself.
+  function local(url: URL): URL {
+    return url.origin === new URL(baseUrl).origin ? new URL(url.pathname + url.search, localUrl) : url;
+  }
 
   function call(method: string, url: URL, headers: Record<string, string> = {}, body?: string): Promise<Reply> {
     return new Promise((resolve, reject) => {
       const cookie = [...jar].map(([name, value]) => `${name}=${value}`).join('; ');
-      const sent = request(url, { agent, method, headers: { ...headers, ...(cookie ? { cookie } : {}) } }, (res) => {
-        const chunks: Buffer[] = [];
-        res.on('data', (chunk: Buffer) => chunks.push(chunk));
-        res.on('error', reject);
-        res.on('end', () => {
-          for (const line of res.headers['set-cookie'] ?? []) {
-            const [pair] = line.split(';');
-            const at = pair.indexOf('=');
-            const value = pair.slice(at + 1);
-            if (value === '') jar.delete(pair.slice(0, at));
-            else jar.set(pair.slice(0, at), value);
-          }
-          resolve({ status: res.statusCode ?? 0, headers: res.headers, text: Buffer.concat(chunks).toString('utf8') });
-        });
-      });
+      const sent = request(
+        local(url),
+        { agent, method, headers: { ...headers, ...(cookie ? { cookie } : {}) } },
+        (res) => {
+          const chunks: Buffer[] = [];
+          res.on('data', (chunk: Buffer) => chunks.push(chunk));
+          res.on('error', reject);
+          res.on('end', () => {
+            for (const line of res.headers['set-cookie'] ?? []) {
+              const [pair] = line.split(';');
+              const at = pair.indexOf('=');
+              const value = pair.slice(at + 1);
+              if (value === '') jar.delete(pair.slice(0, at));
+              else jar.set(pair.slice(0, at), value);
+            }
+            resolve({
+              status: res.statusCode ?? 0,
+              headers: res.headers,
+              text: Buffer.concat(chunks).toString('utf8'),
+            });
+          });
+        },
+      );
       sent.on('error', reject);
       sent.end(body);
     });

@@ -39,10 +39,13 @@ export async function startMailbox({ smtpPort, httpPort }: { smtpPort: number; h
       stream.on('end', () => {
         const recipients = session.envelope.rcptTo.map(({ address }) => address);
         const received = { id: nextId, receivedAt: new Date().toISOString(), recipients };
-        mails.unshift({ ...readMail(Buffer.concat(chunks)), ...received });
         nextId += 1;
-        mails.length = Math.min(mails.length, kept);
-        callback();
+        readMail(Buffer.concat(chunks)).then((mail) => {
+          mails.unshift({ ...mail, ...received });
+          mails.sort((a, b) => b.id - a.id);
+          mails.length = Math.min(mails.length, kept);
+          callback();
+        }, callback);
       });
     },
   });

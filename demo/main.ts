@@ -27,8 +27,12 @@ try {
     });
   }
 } catch (error) {
-  process.stderr.write(
-    `${error instanceof ConfigError ? error.message : String(error instanceof Error ? error.stack : error)}\n`,
-  );
+  const inUse = error instanceof Error && 'code' in error && error.code === 'EADDRINUSE' && 'port' in error;
+  const line = inUse
+    ? `Cannot start: port ${String(error.port)} is in use. The demo takes PORT and the three after it; set PORT to another.`
+    : error instanceof ConfigError
+      ? error.message
+      : String(error instanceof Error ? error.stack : error);
+  process.stderr.write(`${line}\n`);
   process.exit(1);
 }

@@ -45,7 +45,7 @@ export async function startDemo(env: Record<string, string | undefined>, say: Sa
   });
   const mailbox = await startMailbox({ smtpPort: port + 2, httpPort: port + 3 });
   const server = await startServer(config);
-  await buildDemo(server, config.baseUrl, say);
+  await buildDemo(server, say);
   return {
     server,
     url: config.baseUrl,

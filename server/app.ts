@@ -63,6 +63,7 @@ export function createApp(
           method: req.method,
           path: req.url.split('?')[0],
         }),
+        res: (res: { statusCode: number }) => ({ statusCode: res.statusCode }),
       },
     }),
   );
@@ -114,10 +115,10 @@ export function createApp(
     app,
     routes,
     deps,
-    async (siteId) => (await issuer.issue(siteId, 'staffed beds changed')).outlookId,
+    async (siteId) => (await issuer.issueAfterSaving(siteId, 'staffed beds changed')).outlookId,
   );
   addArrivalModelRoutes(app, routes, deps, async (siteId) => {
-    await issuer.issue(siteId, 'model approved');
+    await issuer.issueAfterSaving(siteId, 'model approved');
   });
   addVisitLogRoutes(app, routes, deps);
   addJobRoutes(app, routes, deps);

@@ -1,3 +1,4 @@
+import { isIP } from 'node:net';
 import { resolve } from 'node:path';
 import { z } from 'zod';
 import { ConfigError } from './errors.ts';
@@ -26,13 +27,18 @@ export interface Config {
 
 const port = z.coerce.number().int().min(1).max(65_535);
 const webUrl = z.url({ protocol: /^https?$/ }).transform((url) => url.replace(/\/$/, ''));
+/** Our own paths are absolute: they cannot be put below another. */
+const origin = webUrl.refine((url) => new URL(url).origin === url, 'scheme, host and port only, without a path');
 
 const schema = z.object({
   HOST: z.string().min(1).default('127.0.0.1'),
   PORT: port.default(4310),
   DATA_DIR: z.string().min(1).optional(),
-  BASE_URL: webUrl.optional(),
-  TRUST_PROXY: z.string().optional(),
+  BASE_URL: origin.optional(),
+  TRUST_PROXY: z
+    .string()
+    .refine(isTrustProxy, 'a number of proxies, their addresses or subnets with commas between, loopback, or false')
+    .optional(),
   OIDC_ISSUER_URL: webUrl,
   OIDC_CLIENT_ID: z.string().min(1),
   OIDC_CLIENT_SECRET: z.string().min(1),
@@ -58,36 +64,27 @@ export const demoSecrets = [
 export function readConfig(env: Record<string, string | undefined>, { production }: { production: boolean }): Config {
   const given = Object.fromEntries(Object.entries(env).filter(([, value]) => value !== undefined && value !== ''));
   const parsed = schema.safeParse(given);
-  if (!parsed.success) {
-    const faults = parsed.error.issues.map((issue) => {
-      const name = String(issue.path[0]);
-      return `${name} ${name in given ? `is wrong (${issue.message})` : 'is missing'}`;
-    });
+  const faults = parsed.success
+    ? []
+    : parsed.error.issues.map((issue) => {
+        const name = String(issue.path[0]);
+        return `${name} ${name in given ? `is wrong (${issue.message})` : 'is missing'}`;
+      });
+  if (production) faults.push(...productionFaults(given, faults));
+  if (!parsed.success || faults.length > 0) {
     throw new ConfigError(`Cannot start: ${faults.join('; ')}. README.md lists every setting.`);
   }
   const value = parsed.data;
   const baseUrl =
     value.BASE_URL ?? `http://${value.HOST.includes(':') ? `[${value.HOST}]` : value.HOST}:${String(value.PORT)}`;
-  if (production) {
-    const faults: string[] = [];
-    for (const name of ['SESSION_SECRET', 'OIDC_CLIENT_SECRET'] as const) {
-      if ((demoSecrets as readonly string[]).includes(value[name])) faults.push(`${name} is the demo's`);
-    }
-    if (new Set(value.SESSION_SECRET).size < 8) faults.push('SESSION_SECRET is too plain');
-    if (value.BASE_URL === undefined) faults.push('BASE_URL is missing');
-    else if (!baseUrl.startsWith('https://'))
-      faults.push('BASE_URL must begin with https:// (session cookies are sent over TLS only)');
-    if (!value.OIDC_ISSUER_URL.startsWith('https://')) faults.push('OIDC_ISSUER_URL must begin with https://');
-    if ('CLOCK_OFFSET' in given) faults.push('CLOCK_OFFSET is for tests only');
-    if (faults.length > 0) throw new ConfigError(`Cannot start: ${faults.join('; ')}. README.md lists every setting.`);
-  }
   return {
     production,
     host: value.HOST,
     port: value.PORT,
     dataDir: readDataDir(env),
     baseUrl,
-    trustProxy: readTrustProxy(value.TRUST_PROXY),
+    // Production speaks plain HTTP to a proxy that ends TLS; unless told otherwise it is on the same machine.
+    trustProxy: readTrustProxy(value.TRUST_PROXY ?? (production ? 'loopback' : 'false')),
     oidc: {
       issuerUrl: value.OIDC_ISSUER_URL,
       clientId: value.OIDC_CLIENT_ID,
@@ -103,8 +100,49 @@ export function readConfig(env: Record<string, string | undefined>, { production
   };
 }
 
-function readTrustProxy(text: string | undefined): number | string | false {
-  if (text === undefined || text === 'false' || text === '0') return false;
+/** What a production start refuses besides what is wrong anywhere; a setting that is faulty already is not named twice. */
+function productionFaults(given: Record<string, string | undefined>, known: readonly string[]): string[] {
+  const faults: string[] = [];
+  const sound = (name: string) => !known.some((fault) => fault.startsWith(`${name} `));
+  const refuse = (name: string, why: string) => {
+    if (sound(name)) faults.push(`${name} ${why}`);
+  };
+  const { SESSION_SECRET = '', OIDC_CLIENT_SECRET = '', BASE_URL, OIDC_ISSUER_URL = '' } = given;
+  const isDemos = (secret: string) => (demoSecrets as readonly string[]).includes(secret);
+  if (isDemos(SESSION_SECRET)) refuse('SESSION_SECRET', 'is the demo’s');
+  else if (new Set(SESSION_SECRET).size < 8) refuse('SESSION_SECRET', 'is too plain');
+  if (isDemos(OIDC_CLIENT_SECRET)) refuse('OIDC_CLIENT_SECRET', 'is the demo’s');
+  if (BASE_URL === undefined) refuse('BASE_URL', 'is missing');
+  else if (!isHttps(BASE_URL)) refuse('BASE_URL', 'must begin with https:// (session cookies are sent over TLS only)');
+  if (!isHttps(OIDC_ISSUER_URL)) refuse('OIDC_ISSUER_URL', 'must begin with https://');
+  if (given.TRUST_PROXY === 'false' || given.TRUST_PROXY === '0')
+    refuse('TRUST_PROXY', 'must name the proxy that ends TLS (without one nobody can sign in)');
+  if ('CLOCK_OFFSET' in given) refuse('CLOCK_OFFSET', 'is for tests only');
+  return faults;
+}
+
+function isHttps(url: string): boolean {
+  return /^https:\/\//i.test(url);
+}
+
+function isTrustProxy(text: string): boolean {
+  if (text === 'false' || /^\d{1,2}$/.test(text)) return true;
+  return text
+    .split(',')
+    .map((part) => part.trim())
+    .every((part) => {
+      const [address, bits, ...more] = part.split('/');
+      if (['loopback', 'linklocal', 'uniquelocal'].includes(part)) return true;
+      const family = isIP(address);
+      const widest = family === 4 ? 32 : 128;
+      return (
+        family > 0 && more.length === 0 && (bits === undefined || (/^\d{1,3}$/.test(bits) && Number(bits) <= widest))
+      );
+    });
+}
+
+function readTrustProxy(text: string): number | string | false {
+  if (text === 'false' || text === '0') return false;
   const hops = Number(text);
   return Number.isInteger(hops) ? hops : text;
 }

@@ -65,11 +65,16 @@ export async function openServer(
 /** Starts the server: migrates, sweeps what a crash left, listens, works jobs and the timetable. */
 export async function startServer(config: Config): Promise<RunningServer> {
   const { deps, issuer, close } = await openServer(config);
-  await sweepVisitLogs(deps);
   const sessions = new SessionStore(deps.database, deps.clock);
   const app = createApp(deps, issuer, sessions, clientDir());
   const server = createServer(app.express);
-  await listen(server, config);
+  try {
+    await sweepVisitLogs(deps);
+    await listen(server, config);
+  } catch (error) {
+    await close();
+    throw error;
+  }
   await deps.jobs.start(makeJobKinds(deps));
   const timetable = startTimetable(deps, issuer, sessions);
   deps.logger.info({ url: config.baseUrl }, 'listening');

@@ -6,7 +6,11 @@ import type { VisitLineage } from './read-visits.ts';
  * period's start until its period's end or the time it was taken, whichever is first; one selected by
  * departures lacks the long stayers of its end, so the last `capSeconds` before that are left out.
  */
-export function coveredSpans(lineage: readonly VisitLineage[], now: number, capSeconds: number): Span[] {
+export function coveredSpans(
+  lineage: readonly Pick<VisitLineage, 'periodFrom' | 'periodTo' | 'facts'>[],
+  now: number,
+  capSeconds: number,
+): Span[] {
   const spans = lineage
     .map(({ periodFrom, periodTo, facts }) => {
       const end = Math.min(periodTo, facts.takenAt, now);

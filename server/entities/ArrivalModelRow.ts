@@ -23,6 +23,9 @@ export class ArrivalModelRow {
   @Column('text', { nullable: true }) reason: string | null;
   @Column('text', { nullable: true }) error: string | null;
   @Column('text', { nullable: true }) jobId: string | null;
+  /** The same approved model before its level was moved on by newer visits; structure and approval are its own. */
+  @Column('text', { nullable: true }) refreshedFromId: string | null;
+  @Column('integer', { nullable: true }) refreshedAt: number | null;
   @Column('text') engineVersion: string;
   @Column('integer', { nullable: true }) trainedFrom: number | null;
   @Column('integer', { nullable: true }) trainedTo: number | null;

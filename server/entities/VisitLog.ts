@@ -53,9 +53,9 @@ export class VisitLog {
   @Column('text')
   missingDeparture: 'still present' | 'unknown';
 
-  /** Rows left out by kind of problem: kinds and counts only, never a row. */
+  /** Rows left out, and by kind of problem (a row may have several): counts only, never a row. */
   @Column('simple-json')
-  problems: { kind: string; rows: number }[];
+  problems: { rows: number; kinds: { kind: string; rows: number }[] };
 
   /** Accepted rows by care area: the area's code and how many. */
   @Column('simple-json')

@@ -19,7 +19,8 @@ export async function authorize(
   contract: Contract,
   now: number,
 ): Promise<{ caller: Caller | null; site: Site | null }> {
-  const personId = req.session.personId;
+  // Health checks lie outside the paths that have sessions.
+  const personId = (req.session as Request['session'] | undefined)?.personId;
   const caller = personId === undefined ? null : await readCaller(deps.database.read, personId, now);
   if (contract.access === 'public') return { caller, site: null };
   if (!caller) throw notSignedIn();

@@ -1,5 +1,5 @@
 import type { ErrorRequestHandler } from 'express';
-import { HttpError } from '../errors.ts';
+import { HttpError, notFound } from '../errors.ts';
 import type { Logger } from '../log.ts';
 import { requestIdOf } from './route.ts';
 
@@ -11,7 +11,7 @@ export function makeErrorHandler(logger: Logger): ErrorRequestHandler {
       return;
     }
     const requestId = requestIdOf(req);
-    const known = error instanceof HttpError ? error : fromBodyParser(error);
+    const known = error instanceof HttpError ? error : fromExpress(error);
     if (!known) logger.error({ err: error, requestId, method: req.method, path: req.path }, 'a request failed');
     const answer =
       known ??
@@ -32,24 +32,28 @@ export function makeErrorHandler(logger: Logger): ErrorRequestHandler {
   };
 }
 
-/** express.json()'s own errors carry a status and a type. */
-function fromBodyParser(error: unknown): HttpError | null {
-  if (!(error instanceof Error) || !('type' in error) || !('status' in error)) return null;
+/**
+ * Errors that Express and its middleware raise over what a client sent: those of http-errors mark
+ * themselves as fit to be shown (`expose`), an address that cannot be decoded is a URIError.
+ */
+function fromExpress(error: unknown): HttpError | null {
+  if (!(error instanceof Error) || !('status' in error) || typeof error.status !== 'number') return null;
+  const { status } = error;
+  const isClients = error instanceof URIError || ('expose' in error && error.expose === true);
+  if (!isClients || status < 400 || status >= 500) return null;
+  if (status === 404) return notFound('This address');
   const kept = 'Nothing was stored.';
-  if (error.type === 'entity.too.large') {
+  if (status === 413) {
     return new HttpError(413, 'Too large', 'The request is larger than this route takes.', {
       kept,
       next: 'Send less at once.',
     });
   }
-  if (error.type === 'entity.parse.failed') {
+  if ('type' in error && error.type === 'entity.parse.failed') {
     return new HttpError(400, 'Input refused', 'The request is not valid JSON.', { kept, next: 'Send valid JSON.' });
   }
-  if (typeof error.status === 'number' && error.status >= 400 && error.status < 500) {
-    return new HttpError(error.status, 'Input refused', 'The request could not be read.', {
-      kept,
-      next: 'Check the request and send it again.',
-    });
-  }
-  return null;
+  return new HttpError(status, 'Input refused', 'The request could not be read.', {
+    kept,
+    next: 'Check the request and send it again.',
+  });
 }

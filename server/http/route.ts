@@ -1,7 +1,7 @@
 import type { Express, Request, Response } from 'express';
 import type { z } from 'zod';
 import type { BodyOf, Contract, ParamsOf, QueryOf, ReplyOf } from '../../shared/api/contract.ts';
-import { badInput, type Fault } from '../errors.ts';
+import { badInput, HttpError, type Fault } from '../errors.ts';
 import type { Dependencies } from '../dependencies.ts';
 import type { Site } from '../entities/Site.ts';
 import { authorize } from './authorize.ts';
@@ -54,11 +54,10 @@ export function addRoute<C extends Contract>(
     const params = check(contract.params, req.params, 'address');
     const query = check(contract.query, req.query, 'query');
     if (contract.body && !req.is('application/json')) {
-      throw badInput(
-        'The request must be application/json.',
-        [],
-        'Send JSON with the header content-type: application/json.',
-      );
+      throw new HttpError(415, 'Input refused', 'The request must be application/json.', {
+        kept: 'Nothing was stored.',
+        next: 'Send JSON with the header content-type: application/json.',
+      });
     }
     const body = check(contract.body, req.body, 'body');
     const reply = await handler({

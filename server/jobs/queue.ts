@@ -117,7 +117,7 @@ export class JobQueue {
     this.wake();
   }
 
-  /** Ends what runs (it is queued again at the next start) and waits for it. */
+  /** Ends what runs (it is queued again, for the next start) and waits for it. */
   async stop(): Promise<void> {
     this.stopped = true;
     if (this.timer) clearInterval(this.timer);
@@ -126,14 +126,19 @@ export class JobQueue {
     await Promise.all([...this.running.values()].map(({ ended }) => ended));
   }
 
-  /** Cancels a job that waits or runs; false if it had ended. */
-  async cancel(jobId: string): Promise<boolean> {
+  /**
+   * Cancels a job that waits or runs; false if it had ended.
+   * @param alongside what belongs to the cancelling (its audit row), in the same transaction
+   */
+  async cancel(jobId: string, alongside?: (manager: EntityManager) => Promise<void>): Promise<boolean> {
     const cancelled = await this.database.write(async (manager) => {
       const job = await manager.findOneBy(Job, { id: jobId, status: In(['queued', 'running']) });
-      if (job) await this.endBadly(manager, job, 'cancelled', 'Cancelled.');
-      return job !== null;
+      if (!job) return false;
+      await this.endBadly(manager, job, 'cancelled', 'Cancelled.');
+      await alongside?.(manager);
+      return true;
     });
-    this.running.get(jobId)?.abort.abort();
+    if (cancelled) this.running.get(jobId)?.abort.abort();
     return cancelled;
   }
 
@@ -185,10 +190,15 @@ export class JobQueue {
       if (claimed.affected !== 1) continue;
       const abort = new AbortController();
       const job = { ...next, attempts: next.attempts + 1 };
-      const ended = this.work(job, abort).finally(() => {
-        this.running.delete(job.id);
-        this.wake();
-      });
+      const ended = this.work(job, abort)
+        .catch((error: unknown) => {
+          // The database took no end of the job (full, say): it stays marked as running until the next start.
+          this.logger.error({ err: error, jobId: job.id }, 'the end of a job could not be written');
+        })
+        .finally(() => {
+          this.running.delete(job.id);
+          this.wake();
+        });
       this.running.set(job.id, { abort, ended });
     }
   }
@@ -226,7 +236,12 @@ export class JobQueue {
   private async fail(job: Job, abort: AbortController, error: unknown): Promise<void> {
     const message = error instanceof Error ? error.message : String(error);
     if (abort.signal.aborted) {
-      // Cancelled rows already say so; what a stopping server ended is queued again at the next start.
+      // Cancelled rows already say so and are left alone. What a stopping server ended was no failed attempt.
+      await this.end(job, {
+        status: 'queued',
+        attempts: job.attempts - 1,
+        progressText: 'Waiting for the server to start again',
+      });
       return;
     }
     this.logger.warn({ err: error, jobId: job.id, kind: job.kind }, 'a job failed');

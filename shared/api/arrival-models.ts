@@ -24,6 +24,8 @@ export const modelSummary = z.object({
   trainedTo: instant.nullable(),
   visits: z.int(),
   weeksOfHistory: z.number(),
+  /** When its level was last moved on by newer visits, without a new fit. */
+  refreshedAt: instant.nullable(),
   /** Why a fit failed. */
   error: z.string().nullable(),
   jobId: id.nullable(),

@@ -23,7 +23,6 @@ export const problemCount = z.object({
   /** Row numbers of the first few, 1 for the first row after the header. */
   examples: z.array(count),
 });
-export type ProblemCount = z.infer<typeof problemCount>;
 
 /** What the check of an uploaded file found; it holds no visit. */
 export const visitLogCheck = z.object({
@@ -63,8 +62,11 @@ export const extractFacts = z.object({
 });
 export type ExtractFactsInput = z.infer<typeof extractFacts>;
 
-/** Rows left out, by kind of problem. */
-const leftOut = z.array(z.object({ problem: z.string().min(1).max(60), rows: z.int().min(1) })).max(100);
+/** Rows left out: how many, and by kind of problem; a row may have several. */
+const leftOut = z.object({
+  rows: count,
+  kinds: z.array(z.object({ problem: z.string().min(1).max(60), rows: z.int().min(1) })).max(100),
+});
 
 export const visitLogStatus = z.enum(['loading', 'ready', 'withdrawn', 'failed']);
 
@@ -92,6 +94,7 @@ export type VisitLogSummary = z.infer<typeof visitLogSummary>;
 export const visitLogDetail = visitLogSummary.extend({
   sha256: z.string(),
   facts: extractFacts,
+  /** By kind of problem; a row may have several. */
   leftOut: z.array(z.object({ problem: z.string(), rows: count })),
   visitsByArea: z.array(z.object({ areaId: id, name: z.string(), visits: count })),
 });
@@ -158,7 +161,7 @@ export const acceptVisitLog = defineContract({
     goodRowsOnly: z.boolean(),
     facts: extractFacts,
     /** Rows that the sender itself left out before sending. */
-    leftOutBeforeSending: leftOut.default([]),
+    leftOutBeforeSending: leftOut.default({ rows: 0, kinds: [] }),
   }),
   status: 202,
   reply: z.object({ logId: id, jobId: id }),

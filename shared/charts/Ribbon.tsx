@@ -32,6 +32,7 @@ export function Ribbon({
   shifts,
   events = [],
   columnWidth,
+  viewStart = 0,
   timeOf,
 }: {
   id: string;
@@ -39,6 +40,8 @@ export function Ribbon({
   shifts: readonly ShiftTime[];
   events?: readonly RibbonEvent[];
   columnWidth: number;
+  /** Where the first view begins, pixels: a shift that runs before it is named there. */
+  viewStart?: number;
   timeOf: (at: number) => string;
 }) {
   const width = hours.length * columnWidth;
@@ -51,7 +54,7 @@ export function Ribbon({
     const to = x(shift.to);
     const previous = shifts[index - 1];
     const handover = previous && previous.to > shift.from ? x(previous.to) : from;
-    const labelX = Math.max(from, handover) + 7;
+    const labelX = Math.max(from, handover, to > viewStart + 40 ? viewStart : 0) + 7;
     const full = `${shift.name} ${timeOf(shift.from)}–${timeOf(shift.to)}`;
     const text = full.length * 7 + 8 < to - labelX ? full : shift.name.length * 7.4 < to - labelX ? shift.name : '';
     busy.push([strand, from, to]);

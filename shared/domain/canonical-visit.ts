@@ -64,17 +64,18 @@ const codes = new Map<string, number>(dispositions.map((name) => [name, disposit
  */
 export function canonicalReading(areas: ReadonlyMap<string, number>): VisitReading {
   return {
-    time: parseInstant,
+    time: (text) => parseInstant(text),
     area: (text) => areas.get(text) ?? -1,
     disposition: (text) => codes.get(text) ?? codes.get(text.toLowerCase()) ?? -1,
     ambulance: (text) => (text === 'yes' ? 1 : text === 'no' ? 0 : -1),
   };
 }
 
+const timeText = (at: number) => (Number.isNaN(at) ? '' : formatInstant(at));
+
 /** One line of the product's own visit log, without its end. @param areaId of the visit's care area */
 export function canonicalLine(visit: VisitRow, areaId: string): string {
-  const time = (at: number) => (Number.isNaN(at) ? '' : formatInstant(at));
   const disposition = visit.disposition === notRecorded ? '' : dispositions[visit.disposition];
   const ambulance = visit.byAmbulance === notRecorded ? '' : visit.byAmbulance === 1 ? 'yes' : 'no';
-  return `${time(visit.arrivalAt)},${time(visit.bedSpaceAt)},${time(visit.admissionDecisionAt)},${time(visit.departureAt)},${areaId},${disposition},${ambulance}`;
+  return `${timeText(visit.arrivalAt)},${timeText(visit.bedSpaceAt)},${timeText(visit.admissionDecisionAt)},${timeText(visit.departureAt)},${areaId},${disposition},${ambulance}`;
 }

@@ -52,7 +52,7 @@ const byRarity = (kind: IdentifierKind): Finding => ({ kind, certainty: 'by rari
 /** Signs that identify wherever they stand in a text, notes included. */
 export function findInText(text: string): Finding | null {
   if (email.test(text)) return sure('e-mail address');
-  if (/^\d{1,2}\.\d{1,2}\.\d{2,4}\b/.test(text) === false && webAddress.test(text)) return sure('web address');
+  if (!/^\d{1,2}\.\d{1,2}\.\d{2,4}\b/.test(text) && webAddress.test(text)) return sure('web address');
   if (ipv4.test(text) || (text.includes('::') ? ipv6.test(text) : /(?:[0-9a-f]{1,4}:){7}/i.test(text)))
     return sure('IP address');
   if (birthWord.test(text) && /\d/.test(text)) return sure('date of birth');

@@ -1,6 +1,6 @@
 import { withArticle, type IdentifierKind } from './identifier-kind.ts';
 import { VisitReportBuilder, type VisitReport } from './visit-report.ts';
-import { readVisitRow, visitColumnNames, type ColumnPlaces, type VisitReading, type VisitRow } from './visit-row.ts';
+import { visitColumnNames, VisitRowReader, type ColumnPlaces, type VisitReading, type VisitRow } from './visit-row.ts';
 
 /** A fault of the whole file: where, and what to do about it. */
 export interface FileFault {
@@ -46,7 +46,7 @@ export class VisitFileReader {
   private rest = '';
   private width = 0;
   private rowsRead = 0;
-  private places: ColumnPlaces | null = null;
+  private rows: VisitRowReader | null = null;
   private refused: { faults: FileFault[]; identifying: boolean } | null = null;
 
   constructor(options: VisitFileOptions) {
@@ -63,7 +63,7 @@ export class VisitFileReader {
   /** Reads what is left and tells the outcome. */
   end(): FileOutcome {
     this.take('', true);
-    if (!this.refused && this.places === null)
+    if (!this.refused && this.rows === null)
       this.refuse('file', 'The file is empty. Choose a file with a header row and at least one visit.');
     const found = this.builder.identifiers();
     if (!this.refused && found.length > 0) {
@@ -104,7 +104,7 @@ export class VisitFileReader {
       if (this.refused) return;
     }
     this.rest = this.rest.slice(piece.consumed);
-    const row = this.places === null ? 'the header' : `row ${String(this.rowsRead + 1)}`;
+    const row = this.rows === null ? 'the header' : `row ${String(this.rowsRead + 1)}`;
     if (isLast ? piece.openQuote : this.rest.length > longestRecord) {
       this.refuse(
         row,
@@ -117,14 +117,14 @@ export class VisitFileReader {
 
   private takeRecord(record: string[]): void {
     if (record.length === 1 && record[0].trim() === '') return;
-    if (this.places === null) {
+    if (this.rows === null) {
       const header = record.map((name, index) => (index === 0 ? name.replace(/^\uFEFF/, '') : name).trim());
       const found = this.options.places(header);
       if ('faults' in found) {
         this.refused = found;
         return;
       }
-      this.places = found.places;
+      this.rows = new VisitRowReader(found.places, this.options.reading, this.options.now, this.builder);
       this.width = record.length;
       return;
     }
@@ -140,7 +140,7 @@ export class VisitFileReader {
       this.builder.problem('wrong number of fields', null);
       return;
     }
-    const visit = readVisitRow(record, this.places, this.options.reading, this.options.now, this.builder);
+    const visit = this.rows.read(record);
     if (visit) {
       this.builder.good(visit);
       this.options.onVisit?.(visit, this.rowsRead);

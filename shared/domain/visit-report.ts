@@ -141,15 +141,20 @@ export class VisitReportBuilder implements RowListener {
   }
 }
 
-/** A number of 52 bits made of a visit's columns (FNV-1a twice over 32-bit words): equal rows have equal marks. */
+let high = 0;
+let low = 0;
+
+/** FNV-1a, and a second mix of the same kind beside it, over 32-bit words. */
+function mix(value: number): void {
+  const word = Number.isNaN(value) ? 0x7fffffff : value;
+  high = Math.imul(high ^ word, 0x01000193);
+  low = Math.imul(low ^ (word + (high >>> 15)), 0x85ebca6b);
+}
+
+/** A number of 52 bits made of a visit's columns: equal rows have equal marks. */
 function markOf(visit: VisitRow): number {
-  let high = 0x811c9dc5;
-  let low = 0x01000193;
-  const mix = (value: number) => {
-    const word = Number.isNaN(value) ? 0x7fffffff : value;
-    high = Math.imul(high ^ word, 0x01000193);
-    low = Math.imul(low ^ (word + (high >>> 15)), 0x85ebca6b);
-  };
+  high = 0x811c9dc5;
+  low = 0x01000193;
   mix(visit.area);
   mix(visit.arrivalAt);
   mix(visit.bedSpaceAt);

@@ -66,7 +66,7 @@ export type TimeReading = number | 'skipped' | 'repeated';
 
 /** How the texts of a file are understood; -1 stands for a value that is none of those known. */
 export interface VisitReading {
-  time(text: string): TimeReading;
+  time(text: string, column: VisitColumn): TimeReading;
   area(text: string): number;
   disposition(text: string): number;
   ambulance(text: string): number;
@@ -89,84 +89,117 @@ const longestStay = 30 * 86_400;
 /** Clocks of two machines may differ by as much. */
 const clockTolerance = 300;
 
-/**
- * Turns one record into a visit, or tells everything that is wrong with it.
- * @param fields as many as the header has
- * @param now UTC seconds
- * @returns null if anything was wrong
- */
-export function readVisitRow(
-  fields: readonly string[],
-  places: ColumnPlaces,
-  reading: VisitReading,
-  now: number,
-  listener: RowListener,
-): VisitRow | null {
-  let good = true;
-  const wrong = (kind: RowProblem, column: VisitColumn) => {
-    good = false;
-    listener.problem(kind, column);
-  };
-  const textOf = (column: VisitColumn) => (places[column] < 0 ? '' : fields[places[column]].trim());
-  const timeOf = (column: VisitColumn): number => {
-    const text = textOf(column);
+/** Turns records into visits, or tells everything that is wrong with them. */
+export class VisitRowReader {
+  private readonly places: ColumnPlaces;
+  private readonly reading: VisitReading;
+  private readonly latest: number;
+  private readonly listener: RowListener;
+  private fields: readonly string[] = [];
+  private good = true;
+
+  /** @param now UTC seconds */
+  constructor(places: ColumnPlaces, reading: VisitReading, now: number, listener: RowListener) {
+    this.places = places;
+    this.reading = reading;
+    this.latest = now + clockTolerance;
+    this.listener = listener;
+  }
+
+  /**
+   * @param fields of one record, as many as the header has
+   * @returns null if anything was wrong
+   */
+  read(fields: readonly string[]): VisitRow | null {
+    this.fields = fields;
+    this.good = true;
+    const arrivalAt = this.time('arrival_at');
+    const bedSpaceAt = this.time('bed_space_at');
+    const admissionDecisionAt = this.time('admission_decision_at');
+    const departureAt = this.time('departure_at');
+    const area = this.area();
+    const disposition = this.disposition();
+    const byAmbulance = this.ambulance();
+
+    // Comparisons with NaN are false, so times that are not recorded pass.
+    if (departureAt < arrivalAt) this.wrong('before arrival', 'departure_at');
+    else if (departureAt - arrivalAt > longestStay) this.wrong('stay over 30 days', 'departure_at');
+    if (bedSpaceAt < arrivalAt) this.wrong('before arrival', 'bed_space_at');
+    if (bedSpaceAt > departureAt) this.wrong('after departure', 'bed_space_at');
+    if (admissionDecisionAt < arrivalAt) this.wrong('before arrival', 'admission_decision_at');
+    if (admissionDecisionAt > departureAt) this.wrong('after departure', 'admission_decision_at');
+
+    if (!this.good) return null;
+    return { area, arrivalAt, bedSpaceAt, admissionDecisionAt, departureAt, disposition, byAmbulance };
+  }
+
+  private wrong(kind: RowProblem, column: VisitColumn): void {
+    this.good = false;
+    this.listener.problem(kind, column);
+  }
+
+  private text(column: VisitColumn): string {
+    const place = this.places[column];
+    return place < 0 ? '' : this.fields[place].trim();
+  }
+
+  private time(column: VisitColumn): number {
+    const text = this.text(column);
     if (text === '') {
-      if (column === 'arrival_at') wrong('time missing', column);
+      if (column === 'arrival_at') this.wrong('time missing', column);
       return NaN;
     }
-    const time = reading.time(text);
+    const time = this.reading.time(text, column);
     if (typeof time === 'string') {
-      wrong(time === 'skipped' ? 'time skipped' : 'time repeated', column);
+      this.wrong(time === 'skipped' ? 'time skipped' : 'time repeated', column);
       return NaN;
     }
     if (Number.isNaN(time)) {
-      listener.odd(column, text);
-      wrong('time unreadable', column);
+      this.listener.odd(column, text);
+      this.wrong('time unreadable', column);
     } else if (time < year2000) {
       // No log of visits reaches back so far: such a column holds dates of birth.
-      listener.identifier(column, 'date of birth');
-      wrong('time before 2000', column);
-    } else if (time > now + clockTolerance) {
-      wrong('time in the future', column);
+      this.listener.identifier(column, 'date of birth');
+      this.wrong('time before 2000', column);
+    } else if (time > this.latest) {
+      this.wrong('time in the future', column);
     }
     return time;
-  };
+  }
 
-  const arrivalAt = timeOf('arrival_at');
-  const bedSpaceAt = timeOf('bed_space_at');
-  const admissionDecisionAt = timeOf('admission_decision_at');
-  const departureAt = timeOf('departure_at');
-
-  const areaText = textOf('care_area');
-  let area = -1;
-  if (areaText === '') wrong('area missing', 'care_area');
-  else {
-    area = reading.area(areaText);
-    if (area < 0) {
-      listener.odd('care_area', areaText);
-      wrong('area unknown', 'care_area');
+  private area(): number {
+    const text = this.text('care_area');
+    if (text === '') {
+      this.wrong('area missing', 'care_area');
+      return -1;
     }
-  }
-  const dispositionText = textOf('disposition');
-  const disposition = dispositionText === '' ? notRecorded : reading.disposition(dispositionText);
-  if (disposition < 0) {
-    listener.odd('disposition', dispositionText);
-    wrong('disposition unknown', 'disposition');
-  }
-  const ambulanceText = textOf('arrived_by_ambulance');
-  const byAmbulance = ambulanceText === '' ? notRecorded : reading.ambulance(ambulanceText);
-  if (byAmbulance < 0) {
-    listener.odd('arrived_by_ambulance', ambulanceText);
-    wrong('ambulance unknown', 'arrived_by_ambulance');
+    const area = this.reading.area(text);
+    if (area < 0) {
+      this.listener.odd('care_area', text);
+      this.wrong('area unknown', 'care_area');
+    }
+    return area;
   }
 
-  // Comparisons with NaN are false, so times that are not recorded pass.
-  if (departureAt < arrivalAt) wrong('before arrival', 'departure_at');
-  else if (departureAt - arrivalAt > longestStay) wrong('stay over 30 days', 'departure_at');
-  if (bedSpaceAt < arrivalAt) wrong('before arrival', 'bed_space_at');
-  if (bedSpaceAt > departureAt) wrong('after departure', 'bed_space_at');
-  if (admissionDecisionAt < arrivalAt) wrong('before arrival', 'admission_decision_at');
-  if (admissionDecisionAt > departureAt) wrong('after departure', 'admission_decision_at');
+  private disposition(): number {
+    const text = this.text('disposition');
+    if (text === '') return notRecorded;
+    const disposition = this.reading.disposition(text);
+    if (disposition < 0) {
+      this.listener.odd('disposition', text);
+      this.wrong('disposition unknown', 'disposition');
+    }
+    return disposition;
+  }
 
-  return good ? { area, arrivalAt, bedSpaceAt, admissionDecisionAt, departureAt, disposition, byAmbulance } : null;
+  private ambulance(): number {
+    const text = this.text('arrived_by_ambulance');
+    if (text === '') return notRecorded;
+    const byAmbulance = this.reading.ambulance(text);
+    if (byAmbulance < 0) {
+      this.listener.odd('arrived_by_ambulance', text);
+      this.wrong('ambulance unknown', 'arrived_by_ambulance');
+    }
+    return byAmbulance;
+  }
 }

@@ -40,7 +40,7 @@ export function fitAreaOwn(
       series,
       { ...still, levelVariancePerDay, factorVariance },
       firstState(ownEffectPriors, factorVariance, 0),
-      informationScale,
+      { informationScale },
     );
   const start = [Math.log(known?.levelVariancePerDay ?? 1e-5), Math.log(1e-3)];
   const at = (x: readonly number[]): [number, number] => [

@@ -48,7 +48,7 @@ export interface ArrivalSettings {
 
 /** A log-linear effect on the rate of a day, with its prior. */
 export interface EffectPrior {
-  /** `season sin 1`, `holiday`, `after holiday`, or `own:` or `around:` and the day's name. */
+  /** `season sin 1`, `holiday`, `after holiday`, or `own:` or `before:` and the day's name. */
   key: string;
   mean: number;
   sd: number;

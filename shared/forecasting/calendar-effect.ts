@@ -5,11 +5,11 @@ import type { CalendarDay } from './visit-table.ts';
 
 /** Prior spread, on the log scale, of what public holidays have in common, of each one's own part, and of the day after. */
 const holidaySd = 0.2;
-const ownHolidaySd = 0.07;
+const ownHolidaySd = 0.1;
 const afterHolidaySd = 0.07;
-/** The days around a holiday differ too (the week of Christmas): by so much, on so many days either side. */
-const aroundHolidaySd = 0.05;
-const aroundDays = 3;
+/** The days before a holiday differ too, people being away: by so much, for so many days. */
+const beforeHolidaySd = 0.05;
+const beforeDays = 6;
 /** An event or closure without a stated effect and without a past: as likely a third more as a quarter less. */
 const unknownEventSd = 0.2;
 
@@ -65,11 +65,11 @@ export function effectsOfDay(index: CalendarIndex, day: number): [key: string, v
   else if (isPublicHoliday(index, day - 1) && isoWeekday(day * 86_400) < 6) effects.push(['after holiday', 1]);
   for (const entry of entries) effects.push([`own:${entry.name}`, 1]);
   if (!holiday && index.byDay.size > 0) {
-    const around = new Set<string>();
-    for (let near = day - aroundDays; near <= day + aroundDays; near += 1) {
-      for (const entry of index.byDay.get(near) ?? []) if (entry.kind === 'public holiday') around.add(entry.name);
+    const before = new Set<string>();
+    for (let near = day + 1; near <= day + beforeDays; near += 1) {
+      for (const entry of index.byDay.get(near) ?? []) if (entry.kind === 'public holiday') before.add(entry.name);
     }
-    for (const name of around) effects.push([`around:${name}`, 1]);
+    for (const name of before) effects.push([`before:${name}`, 1]);
   }
   return effects;
 }
@@ -79,7 +79,7 @@ export function effectPrior(key: string, index: CalendarIndex, seasonSd: number)
   if (key.startsWith('season')) return { key, mean: 0, sd: key.endsWith('1') ? seasonSd : seasonSd / 2 };
   if (key === 'holiday') return { key, mean: 0, sd: holidaySd };
   if (key === 'after holiday') return { key, mean: 0, sd: afterHolidaySd };
-  if (key.startsWith('around:')) return { key, mean: 0, sd: aroundHolidaySd };
+  if (key.startsWith('before:')) return { key, mean: 0, sd: beforeHolidaySd };
   const name = key.slice('own:'.length);
   const known = index.all.filter((entry) => entry.name === name);
   const stated = known.find((entry) => entry.statedEffect)?.statedEffect;

@@ -13,6 +13,9 @@ export interface ChosenDynamics extends LevelDynamics {
 /** Spells last some days: neither the next block nor the next season. */
 export const spellCorrelationPerDay = 0.85;
 
+/** How variable days are changes over the years: a past day's score weighs half after so many days. */
+const memoryDays = 364;
+
 /** Mild priors, on log, log and logit scales: they decide where little history cannot, and fade with it. */
 const priors = {
   levelVariance: { centre: Math.log(3e-5), sd: 1.5 },
@@ -38,14 +41,17 @@ export function chooseDynamics(
 ): ChosenDynamics {
   const candidates = given.structure === undefined ? factorStructures : [given.structure];
   let best: (ChosenDynamics & { score: number }) | undefined;
+  let from: readonly number[] = [];
   const scores: ChosenDynamics['scores'] = [];
   for (const structure of candidates) {
     const series = withEffectsKnown(gatherBlocks(hourly, blockCuts[structure], index, keys), effects);
-    const found = findDynamics(series, structure, given);
+    const found = findDynamics(series, structure, given, from);
+    from = found.x;
     const hours = hourly.expected.reduce((n, expected) => n + (expected > 0 ? 1 : 0), 0);
     const score = -(found.logProbability + series.withinLogProbability) / Math.max(hours, 1);
     scores.push({ structure, logScore: score });
-    if (!best || score < best.score) best = { ...found.dynamics, structure, factorLogSdError: found.logSdError, scores, score };
+    if (!best || score < best.score)
+      best = { ...found.dynamics, structure, factorLogSdError: found.logSdError, scores, score };
   }
   if (!best) throw new RangeError('no structure to choose from');
   const { score: _, ...chosen } = best;
@@ -63,7 +69,8 @@ function findDynamics(
   series: BlockSeries,
   structure: FactorStructure,
   given: Partial<ArrivalSettings>,
-): { dynamics: LevelDynamics; logProbability: number; logSdError: number } {
+  from: readonly number[],
+): { dynamics: LevelDynamics; logProbability: number; logSdError: number; x: number[] } {
   const varies = structure !== 'none' && given.factorVariance !== 0;
   const correlated = varies && isAutoregressive(structure);
   const free = [
@@ -72,7 +79,12 @@ function findDynamics(
     correlated && given.factorCorrelation === undefined,
     given.spellVariance === undefined,
   ];
-  const all = [priors.levelVariance.centre, priors.factorVariance.centre, priors.correlation.centre, priors.spellVariance.centre];
+  const all = [
+    priors.levelVariance.centre,
+    priors.factorVariance.centre,
+    priors.correlation.centre,
+    priors.spellVariance.centre,
+  ];
   const dynamicsAt = (x: readonly number[]): LevelDynamics => ({
     levelVariancePerDay: given.levelVariancePerDay ?? clampExp(x[0], -20, -4),
     factorVariance: varies ? (given.factorVariance ?? clampExp(x[1], -14, 0)) : 0,
@@ -80,9 +92,10 @@ function findDynamics(
     spellVariance: given.spellVariance ?? clampExp(x[3], -16, -2),
     spellCorrelationPerDay,
   });
-  const run = (x: readonly number[]): number => {
+  const run = (x: readonly number[], scoreHalfLifeDays = Infinity): number => {
     const dynamics = dynamicsAt(x);
-    return filterLevel(series, dynamics, firstState([], dynamics.factorVariance, dynamics.spellVariance)).logProbability;
+    const start = firstState([], dynamics.factorVariance, dynamics.spellVariance);
+    return filterLevel(series, dynamics, start, { scoreHalfLifeDays }).logProbability;
   };
   const places = [0, 1, 2, 3].filter((i) => free[i]);
   const spread = (x: readonly number[]): number[] => {
@@ -92,10 +105,19 @@ function findDynamics(
   };
   const sds = [priors.levelVariance.sd, priors.factorVariance.sd, priors.correlation.sd, priors.spellVariance.sd];
   const objective = (x: readonly number[]): number =>
-    -run(spread(x)) + places.reduce((sum, place, i) => sum + 0.5 * ((x[i] - all[place]) / sds[place]) ** 2, 0);
+    -run(spread(x), memoryDays) +
+    places.reduce((sum, place, i) => sum + 0.5 * ((x[i] - all[place]) / sds[place]) ** 2, 0);
 
   const start = places.map((place) => all[place]);
-  const found = places.length > 0 ? minimise(objective, start, places.map(() => -1), 25 + 20 * places.length) : { x: [] };
+  const found =
+    places.length > 0
+      ? minimise(
+          objective,
+          start,
+          places.map(() => -1),
+          25 + 20 * places.length,
+        )
+      : { x: [] };
   const x = spread(found.x);
   let logSdError = given.factorLogSdError ?? 0;
   const at = places.indexOf(1);
@@ -106,7 +128,7 @@ function findDynamics(
     const curvature = (moved(step) - 2 * moved(0) + moved(-step)) / (step * step);
     logSdError = Math.min(0.75, 0.5 / Math.sqrt(Math.max(curvature, 0.1)));
   }
-  return { dynamics: dynamicsAt(x), logProbability: run(x), logSdError };
+  return { dynamics: dynamicsAt(x), logProbability: run(x), logSdError, x };
 }
 
 function clampExp(value: number, low: number, high: number): number {

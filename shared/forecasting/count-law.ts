@@ -2,7 +2,7 @@ import { binomialPmf } from '../stochastic/binomial.ts';
 import { gammaPoissonPmf } from '../stochastic/gamma-poisson.ts';
 
 /**
- * A law of counts kept only where it matters: `pmf[i]` is the chance of first + i. Chances below 1e-15 of the highest
+ * A law of counts kept only where it matters: `pmf[i]` is the chance of first + i. Chances below 1e-13 of the highest
  * are left out, so that a hundred thousand laws an answer cost milliseconds.
  */
 export interface CountLaw {
@@ -10,80 +10,82 @@ export interface CountLaw {
   pmf: Float64Array;
 }
 
-const negligible = 1e-15;
-let room = new Float64Array(1024);
+const negligible = 1e-13;
+let below = new Float64Array(512);
+let above = new Float64Array(512);
 
-/** Terms outward from the mode by the ratio of neighbours, until negligible; into `room`, then copied out. */
-function outward(
-  mode: number,
-  height: number,
-  most: number,
-  up: (n: number) => number,
-  down: (n: number) => number,
-): CountLaw {
-  const least = negligible * height;
-  let first = mode;
-  for (let n = mode, term = height; n > 0; n -= 1) {
-    term *= down(n);
-    if (!(term > least)) break;
-    first = n - 1;
-    if (mode - first >= room.length) room = grown(mode - first);
-    room[mode - first] = term;
-  }
-  const below = mode - first;
-  const head = room.slice(0, below + 1);
-  let last = mode;
-  for (let n = mode, term = height; n < most; n += 1) {
-    term *= up(n);
-    if (!(term > least)) break;
-    last = n + 1;
-    if (last - mode >= room.length) room = grown(last - mode);
-    room[last - mode] = term;
-  }
-  const pmf = new Float64Array(last - first + 1);
-  for (let i = 1; i <= below; i += 1) pmf[below - i] = head[i];
-  pmf[below] = height;
-  for (let i = 1; i <= last - mode; i += 1) pmf[below + i] = room[i];
-  return { first, pmf };
-}
-
-function grown(least: number): Float64Array<ArrayBuffer> {
-  const larger = new Float64Array(2 * Math.max(least, room.length));
+function grown(room: Float64Array): Float64Array<ArrayBuffer> {
+  const larger = new Float64Array(2 * room.length);
   larger.set(room);
   return larger;
+}
+
+/** Joins terms below the mode (nearest first), the mode and terms above it. */
+function joined(mode: number, height: number, lower: number, upper: number): CountLaw {
+  const pmf = new Float64Array(lower + 1 + upper);
+  for (let i = 0; i < lower; i += 1) pmf[lower - 1 - i] = below[i];
+  pmf[lower] = height;
+  for (let i = 0; i < upper; i += 1) pmf[lower + 1 + i] = above[i];
+  return { first: mode - lower, pmf };
 }
 
 /** The gamma–Poisson law: Poisson with a gamma factor of mean 1 and variance φ on its mean; φ = 0 is the Poisson law. */
 export function gammaPoissonLaw(mean: number, phi: number): CountLaw {
   if (!(mean > 0)) return { first: 0, pmf: new Float64Array([1]) };
   const mode = phi < 1 ? Math.floor(mean * (1 - phi)) : 0;
-  const spread = (1 + mean * phi) / mean;
-  return outward(
-    mode,
-    gammaPoissonPmf(mode, mean, phi),
-    1e7,
-    (n) => (1 + n * phi) / ((n + 1) * spread),
-    (n) => (n * spread) / (1 + (n - 1) * phi),
-  );
+  const height = gammaPoissonPmf(mode, mean, phi);
+  const least = negligible * height;
+  const ratio = mean / (1 + mean * phi);
+  let upper = 0;
+  for (let n = mode, term = height; ; n += 1) {
+    term *= ((1 + n * phi) * ratio) / (n + 1);
+    if (!(term > least)) break;
+    if (upper === above.length) above = grown(above);
+    above[upper] = term;
+    upper += 1;
+  }
+  let lower = 0;
+  for (let n = mode, term = height; n > 0; n -= 1) {
+    term *= n / ((1 + (n - 1) * phi) * ratio);
+    if (!(term > least)) break;
+    if (lower === below.length) below = grown(below);
+    below[lower] = term;
+    lower += 1;
+  }
+  return joined(mode, height, lower, upper);
 }
 
 /** The binomial law. */
 export function binomialLaw(patients: number, chance: number): CountLaw {
-  if (!(chance > 0)) return { first: 0, pmf: new Float64Array([1]) };
+  if (!(patients * chance > negligible)) return { first: 0, pmf: new Float64Array([1]) };
   if (chance >= 1) return { first: patients, pmf: new Float64Array([1]) };
   const mode = Math.min(patients, Math.floor((patients + 1) * chance));
+  const height = binomialPmf(mode, patients, chance);
+  const least = negligible * height;
   const odds = chance / (1 - chance);
-  return outward(
-    mode,
-    binomialPmf(mode, patients, chance),
-    patients,
-    (n) => ((patients - n) * odds) / (n + 1),
-    (n) => n / ((patients - n + 1) * odds),
-  );
+  let upper = 0;
+  for (let n = mode, term = height; n < patients; n += 1) {
+    term *= ((patients - n) * odds) / (n + 1);
+    if (!(term > least)) break;
+    if (upper === above.length) above = grown(above);
+    above[upper] = term;
+    upper += 1;
+  }
+  let lower = 0;
+  for (let n = mode, term = height; n > 0; n -= 1) {
+    term *= n / ((patients - n + 1) * odds);
+    if (!(term > least)) break;
+    if (lower === below.length) below = grown(below);
+    below[lower] = term;
+    lower += 1;
+  }
+  return joined(mode, height, lower, upper);
 }
 
 /** The law of the sum of two independent counts. */
 export function sumOfLaws(a: CountLaw, b: CountLaw): CountLaw {
+  if (a.pmf.length === 1 && a.pmf[0] === 1) return { first: a.first + b.first, pmf: b.pmf };
+  if (b.pmf.length === 1 && b.pmf[0] === 1) return { first: a.first + b.first, pmf: a.pmf };
   const [wide, narrow] = a.pmf.length >= b.pmf.length ? [a.pmf, b.pmf] : [b.pmf, a.pmf];
   const pmf = new Float64Array(wide.length + narrow.length - 1);
   for (let j = 0; j < narrow.length; j += 1) {

@@ -5,6 +5,7 @@ import { baselineNames, makeBaselines, type BaselineName } from './baselines.ts'
 import { indexCalendar } from './calendar-effect.ts';
 import { forecastFromDraws, type CountForecast } from './count-forecast.ts';
 import { countLevels, hoursPerLevel, sumRuns, type CountLevel } from './count-levels.ts';
+import { firstHours } from './first-hours.ts';
 import { fitArrivals } from './fit-arrivals.ts';
 import { makeRateDraw } from './rate-draws.ts';
 import { scoreCount, summariseScores, type ScoredCount, type ScoreSummary } from './score-summary.ts';
@@ -50,13 +51,20 @@ export function evaluateArrivals(
   const { weeks, draws, seed, chooseEveryWeeks, onProgress } = { ...usualEvaluation, ...options };
   const length = counts.exposureHours.length;
   const firstOrigin = length - weeks * hoursOfWeek;
-  if (!(Number.isInteger(weeks) && weeks >= 1)) throw new RangeError(`weeks must be a whole number from 1, got ${weeks}`);
+  if (!(Number.isInteger(weeks) && weeks >= 1))
+    throw new RangeError(`weeks must be a whole number from 1, got ${weeks}`);
   if (firstOrigin < 8 * hoursOfWeek) {
-    throw new RangeError(`${weeks} weeks of evaluation need 8 weeks before them; the log has ${(length / hoursOfWeek).toFixed(1)}`);
+    throw new RangeError(
+      `${weeks} weeks of evaluation need 8 weeks before them; the log has ${(length / hoursOfWeek).toFixed(1)}`,
+    );
   }
   const total = new Float64Array(length);
   for (const arrivals of counts.counts) for (let i = 0; i < length; i += 1) total[i] += arrivals[i];
-  const site: HourlyCounts = { firstLocalHour: counts.firstLocalHour, exposureHours: counts.exposureHours, counts: [total] };
+  const site: HourlyCounts = {
+    firstLocalHour: counts.firstLocalHour,
+    exposureHours: counts.exposureHours,
+    counts: [total],
+  };
   const baselines = makeBaselines(site, indexCalendar(calendar, 0));
 
   const empty = (): Record<CountLevel, ScoredCount[]> => ({ hour: [], shift: [], day: [], week: [] });
@@ -97,7 +105,12 @@ export function evaluateArrivals(
     const days = sumRuns(total, origin, origin + ahead, 24);
     for (let d = 0; d < days.length; d += 1) {
       const at = origin + 24 * d;
-      const naive = sumRuns(total, at - hoursOfWeek * Math.ceil((d + 1) / 7), at - hoursOfWeek * Math.ceil((d + 1) / 7) + 24, 24);
+      const naive = sumRuns(
+        total,
+        at - hoursOfWeek * Math.ceil((d + 1) / 7),
+        at - hoursOfWeek * Math.ceil((d + 1) / 7) + 24,
+        24,
+      );
       if (counts.exposureHours[at] > 0) leads[d].push(scoreCount(forecasts.day[d], days[d], week, naive[0]));
     }
     onProgress?.((week + 1) / weeks);
@@ -121,16 +134,6 @@ export function evaluateArrivals(
     fromLocalHour: counts.firstLocalHour + firstOrigin,
     toLocalHour: counts.firstLocalHour + length,
     choices,
-  };
-}
-
-/** The counts of the first hours only: what was known at an origin. */
-export function firstHours(counts: HourlyCounts, length: number): HourlyCounts {
-  return {
-    firstLocalHour: counts.firstLocalHour,
-    exposureHours: counts.exposureHours.slice(0, length),
-    counts: counts.counts.map((arrivals) => arrivals.slice(0, length)),
-    ...(counts.areaExposure ? { areaExposure: counts.areaExposure.map((hours) => hours.slice(0, length)) } : {}),
   };
 }
 

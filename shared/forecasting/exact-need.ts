@@ -1,4 +1,5 @@
 import type { Pmf } from '../stochastic/convolve.ts';
+import type { CountLaw } from './count-law.ts';
 import { binomialLaw, gammaPoissonLaw, mixtureFromZero, sumOfLaws } from './count-law.ts';
 import type { FactorNode } from './factor-nodes.ts';
 
@@ -8,7 +9,7 @@ export interface NeedStream {
   hazardPerHour: ArrayLike<number>;
 }
 
-/** Patients counted at the start, each of them in stream s with chance `shares[s]`, on their own. */
+/** Patients counted at the start, each of them in stream s with chance `shares[s]`, on their own; what is missing to 1 is elsewhere. */
 export interface PresentGroup {
   patients: number;
   shares: readonly number[];
@@ -27,8 +28,11 @@ export interface ExactNeedInput {
   arrivalVariance?: number;
   /** Factor on all hazards, constant over the horizon; one node of 1 by default. */
   outflowFactor?: readonly FactorNode[];
+  /** Only the end of the last segment is wanted. */
+  onlyLast?: boolean;
 }
 
+const nobody = Float64Array.of(1);
 const one: readonly FactorNode[] = [{ value: 1, weight: 1 }];
 
 function check(input: ExactNeedInput): void {
@@ -48,8 +52,8 @@ function check(input: ExactNeedInput): void {
       throw new RangeError(`present[${g}].patients must be a count, got ${group.patients}`);
     }
     const sum = group.shares.reduce((a, b) => a + b, 0);
-    if (group.shares.length !== streams.length || !(Math.abs(sum - 1) < 1e-9)) {
-      throw new RangeError(`present[${g}].shares must be one a stream and sum to 1`);
+    if (group.shares.length !== streams.length || !(sum >= 0 && sum < 1 + 1e-9)) {
+      throw new RangeError(`present[${g}].shares must be one a stream and sum to 1 at most`);
     }
   });
 }
@@ -86,14 +90,15 @@ export function exactNeed(input: ExactNeedInput): Pmf[] {
       }
     });
   });
-  return Array.from({ length: count }, (_, k) =>
+  const wanted = input.onlyLast === true ? [count - 1] : Array.from({ length: count }, (_, k) => k);
+  return wanted.map((k) =>
     mixtureFromZero(
       outflowNodes.map((node, o) => {
-        let law = gammaPoissonLaw(means[o][k], arrivalVariance);
+        let left: CountLaw = { first: 0, pmf: nobody };
         present.forEach((group, g) => {
-          if (group.patients > 0) law = sumOfLaws(law, binomialLaw(group.patients, survivals[o][g][k]));
+          if (group.patients > 0) left = sumOfLaws(left, binomialLaw(group.patients, survivals[o][g][k]));
         });
-        return { weight: node.weight, law };
+        return { weight: node.weight, law: sumOfLaws(left, gammaPoissonLaw(means[o][k], arrivalVariance)) };
       }),
     ),
   );

@@ -68,6 +68,8 @@ export function finiteBeds(input: FiniteBedsInput): Float64Array[] {
   } else state.set(Array.from(start));
   let jump = new Float64Array(most + 1);
   let next = new Float64Array(most + 1);
+  const down = new Float64Array(most + 1);
+  const stay = new Float64Array(most + 1);
   const results: Float64Array[] = [];
   for (let k = 0; k < hours.length; k += 1) {
     const rate = ratePerHour[k];
@@ -78,6 +80,11 @@ export function finiteBeds(input: FiniteBedsInput): Float64Array[] {
     const mean = (total * hours[k]) / pieces;
     const up = total > 0 ? rate / total : 0;
     const one = total > 0 ? hazard / total : 0;
+    // Chances of a jump down from n and of none; written so that neither can turn negative.
+    for (let n = 0; n <= most; n += 1) {
+      down[n] = Math.min(n, servers) * one;
+      stay[n] = Math.max(0, servers - n) * one + (n < most ? 0 : up);
+    }
     for (let p = 0; p < pieces && mean > 0; p += 1) {
       const sum = new Float64Array(most + 1);
       jump.set(state);
@@ -87,7 +94,7 @@ export function finiteBeds(input: FiniteBedsInput): Float64Array[] {
         weightSum += weight;
         if (weight > 0) for (let n = 0; n <= most; n += 1) sum[n] += weight * jump[n];
         if (j > mean && (weight < 1e-17 || weightSum >= 1 - 1e-16)) break;
-        step(jump, next, most, servers, up, one);
+        step(jump, next, up, stay, down);
         [jump, next] = [next, jump];
       }
       state = sum;
@@ -98,12 +105,13 @@ export function finiteBeds(input: FiniteBedsInput): Float64Array[] {
 }
 
 /** One jump of the uniformised chain: to = from · P. */
-function step(from: Float64Array, to: Float64Array, most: number, servers: number, up: number, one: number): void {
-  for (let n = 0; n <= most; n += 1) {
-    // 1 − λ/q − min(n, c)·μ/q, written so that it cannot turn negative.
-    let chance = from[n] * ((n < servers ? (servers - n) * one : 0) + (n < most ? 0 : up));
-    if (n > 0) chance += from[n - 1] * up;
-    if (n < most) chance += from[n + 1] * (n + 1 < servers ? (n + 1) * one : servers * one);
-    to[n] = chance;
+function step(from: Float64Array, to: Float64Array, up: number, stay: Float64Array, down: Float64Array): void {
+  const last = from.length - 1;
+  if (last === 0) {
+    to[0] = from[0];
+    return;
   }
+  to[0] = from[0] * stay[0] + from[1] * down[1];
+  for (let n = 1; n < last; n += 1) to[n] = from[n - 1] * up + from[n] * stay[n] + from[n + 1] * down[n + 1];
+  to[last] = from[last - 1] * up + from[last] * stay[last];
 }

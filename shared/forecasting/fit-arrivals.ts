@@ -1,4 +1,4 @@
-import type { ArrivalModel, ArrivalSettings, EffectPrior, HourlyCounts } from './arrival-model.ts';
+import type { ArrivalModel, ArrivalSettings, HourlyCounts } from './arrival-model.ts';
 import { fitAreaOwn, noOwn, type AreaOwn } from './area-own.ts';
 import { arrivalCautions } from './arrival-cautions.ts';
 import { blockCuts, expectHourly, gatherBlocks, type HourlyExpectation } from './block-series.ts';
@@ -7,12 +7,12 @@ import { checkHourlyCounts } from './check-hourly-counts.ts';
 import { chooseDynamics, spellCorrelationPerDay } from './choose-dynamics.ts';
 import { chooseHalfLife } from './choose-half-life.ts';
 import { factorMoments } from './factor-moments.ts';
-import { effectSum, filterLevel, firstEffect, firstState, smoothLevel, type LevelDynamics } from './level-filter.ts';
+import { filterLevel, firstState, type LevelDynamics } from './level-filter.ts';
+import { levelsByDay } from './levels-by-day.ts';
 import { profileExposure, roughProfile } from './profile-exposure.ts';
 import type { CalendarDay } from './visit-table.ts';
 import { fitWeeklyProfile } from './weekly-profile.ts';
 
-const daily = { hours: 24, cut: 0 };
 /** How level and factor move until they are chosen. */
 const firstDynamics: LevelDynamics = { levelVariancePerDay: 3e-5, factorVariance: 3e-3, factorCorrelation: 0.3, spellVariance: 4e-4, spellCorrelationPerDay };
 const weeksForSeason = 104;
@@ -91,7 +91,7 @@ export function fitArrivals(input: {
 
   const effects = effectPriors(index, firstDay, firstDay + days, seasonSd);
   const keys = effects.map(({ key }) => key);
-  const settled = levelsOf(hourly, index, effects);
+  const settled = levelsByDay(hourly, index, effects, firstDynamics);
   const dynamics = chooseDynamics(hourly, index, keys, settled.effects, settings);
   onProgress?.(0.9);
   const series = gatherBlocks(hourly, blockCuts[dynamics.structure], index, keys);
@@ -168,18 +168,8 @@ function scoreLevels(counts: HourlyCounts, index: CalendarIndex, seasonSd: numbe
   const hourly = expectHourly(counts, rough, index);
   const firstDay = counts.firstLocalHour / 24;
   const priors = effectPriors(index, firstDay, firstDay + counts.exposureHours.length / 24, seasonSd);
-  const { dayFactor, score } = levelsOf(hourly, index, priors);
+  const { dayFactor, score } = levelsByDay(hourly, index, priors, firstDynamics);
   return { index, seasonSd, rough, dayFactor, score };
-}
-
-function levelsOf(hourly: HourlyExpectation, index: CalendarIndex, priors: readonly EffectPrior[]) {
-  const keys = priors.map(({ key }) => key);
-  const series = gatherBlocks(hourly, daily, index, keys);
-  const run = filterLevel(series, firstDynamics, firstState(priors, firstDynamics.factorVariance, firstDynamics.spellVariance));
-  const effects = run.state.mean.slice(firstEffect);
-  const level = smoothLevel(series, firstDynamics, effects);
-  const dayFactor = level.map((value, k) => Math.exp(value + effectSum(series, k, effects)));
-  return { effects, dayFactor, score: run.logProbability + series.withinLogProbability };
 }
 
 /** The factor's variance as found for the whole site, shared out between what areas share and what each has of its own. */

@@ -1,15 +1,15 @@
 import type { Zone } from '../domain/zoned-time.ts';
-import { fitCensoredExponential } from '../stochastic/censored-exponential.ts';
 import { collectStays, tallyStays } from './collect-stays.ts';
 import type { CollectedStays, StayTallies } from './collect-stays.ts';
 import { fitBedSpace } from './fit-bed-space.ts';
 import { reportHeaping } from './heaping.ts';
+import { fitStreams } from './fit-streams.ts';
 import { fitOutflowByDay } from './outflow-by-day.ts';
 import { cutBlocks, holidayNumbers } from './stay-clock.ts';
 import { blockHazards, boardingStream, streamsPerArea } from './stay-model.ts';
-import type { StayModel, StayStream } from './stay-model.ts';
+import type { StayModel } from './stay-model.ts';
 import { fitStayShapes } from './stay-shape.ts';
-import { chooseBlockShrinkage, shrinkShares } from './stay-shrinkage.ts';
+import { shrinkShares } from './stay-shrinkage.ts';
 import type { CalendarDay, ExposureGap, ExtractFacts, VisitTable } from './visit-table.ts';
 
 /** What a fit of length of stay needs. Instants are UTC seconds. */
@@ -151,74 +151,6 @@ function spreadUnknown(stays: CollectedStays, tallies: StayTallies, areas: numbe
       tallies.censored[index] += (unknown * count) / total;
     });
   }
-}
-
-function limitsOf(departures: number, hoursAtRisk: number): [low: number, high: number] {
-  const fit = fitCensoredExponential(departures, hoursAtRisk, 0.95);
-  return [fit.lower, fit.upper];
-}
-
-/** μ and g of every stream, with the time at risk weighed by the outflow factor of its cell. */
-function fitStreams(
-  tallies: StayTallies,
-  factorByCell: (stream: number) => Float64Array,
-  block: Uint8Array,
-  blockHours: number,
-): StayStream[] {
-  const blocks = (2 * 24) / blockHours;
-  const streams = tallies.departures.map((departures, index): StayStream => {
-    const stream = index % streamsPerArea;
-    const factors = factorByCell(stream);
-    const risk = tallies.hoursAtRisk[index];
-    const blockDepartures = new Array<number>(blocks).fill(0);
-    const blockHoursAtRisk = new Array<number>(blocks).fill(0);
-    let plainRisk = 0;
-    for (let c = 0; c < block.length; c += 1) {
-      blockDepartures[block[c]] += departures[c];
-      blockHoursAtRisk[block[c]] += risk[c] * factors[c];
-      plainRisk += risk[c];
-    }
-    const left = blockDepartures.reduce((a, b) => a + b, 0);
-    return {
-      area: Math.floor(index / streamsPerArea),
-      stream,
-      visits: tallies.visits[index],
-      censored: tallies.censored[index],
-      departures: left,
-      hoursAtRisk: plainRisk,
-      departuresPerHour: left > 0 && plainRisk > 0 ? left / plainRisk : null,
-      limits: plainRisk > 0 ? limitsOf(left, plainRisk) : null,
-      hazard: { shape: left, rate: blockHoursAtRisk.reduce((a, b) => a + b, 0) },
-      shrinkage: 1,
-      blockDepartures,
-      blockHoursAtRisk,
-      shape: null,
-    };
-  });
-  for (let kind = 0; kind < streamsPerArea; kind += 1) {
-    // A site without a single such departure borrows from all streams together.
-    const alike = pooled(streams.filter((stream) => stream.stream === kind));
-    const perHour = alike ?? pooled(streams) ?? 0.25;
-    for (const stream of streams.filter((one) => one.stream === kind)) {
-      // One departure's weight at the pooled hazard; stays of length 0 alone still give a finite hazard, 1 a minute at most.
-      stream.hazard = {
-        shape: stream.hazard.shape + 1,
-        rate: Math.max(stream.hazard.rate + 1 / perHour, (stream.hazard.shape + 1) / 60),
-      };
-      const mean = stream.hazard.shape / stream.hazard.rate;
-      stream.shrinkage = chooseBlockShrinkage(
-        stream.blockDepartures,
-        stream.blockHoursAtRisk.map((hours) => hours * mean),
-      );
-    }
-  }
-  return streams;
-}
-
-function pooled(streams: readonly StayStream[]): number | null {
-  const shape = streams.reduce((sum, stream) => sum + stream.departures, 0);
-  const rate = streams.reduce((sum, stream) => sum + stream.hoursAtRisk, 0);
-  return shape > 0 && rate > 0 ? shape / rate : null;
 }
 
 function cautionsOf(model: StayModel, askedCap: number): string[] {

@@ -13,6 +13,18 @@ export interface LevelDynamics {
   spellCorrelationPerDay: number;
 }
 
+export interface FilterOptions {
+  /**
+   * 1 − share per block, where the expectation is conditional on the site's total (multinomial); predictions are then
+   * scored by the normal density with that variance.
+   */
+  informationScale?: Float64Array;
+  /** The first block is the one that the start already stands in (its hours were counted in part). */
+  sameBlock?: boolean;
+  /** Days after which a block's score weighs half in the sum; all alike by default. */
+  scoreHalfLifeDays?: number;
+}
+
 export interface FilterResult {
   state: LevelState;
   /** Sum of the log probabilities of the blocks, each given all before it (lower is worse). */
@@ -54,16 +66,15 @@ export function firstState(
  * scored as gamma–Poisson with the variance of the log predictor.
  *
  * @param start belief just before the first block, for the state after the block before it
- * @param informationScale 1 − share, where the expectation is conditional on the site's total (multinomial), per block;
- *   predictions are then scored by the normal density with that variance
  * Cost: blocks × (3 + effects)².
  */
 export function filterLevel(
   series: BlockSeries,
   dynamics: LevelDynamics,
   start: LevelState,
-  informationScale?: Float64Array,
+  { informationScale, sameBlock = false, scoreHalfLifeDays = Infinity }: FilterOptions = {},
 ): FilterResult {
+  const keep = 2 ** (-series.daysPerBlock / scoreHalfLifeDays);
   const size = start.mean.length;
   const mean = Float64Array.from(start.mean);
   const p = Float64Array.from(start.covariance);
@@ -76,17 +87,19 @@ export function filterLevel(
   let logProbability = 0;
   let blocks = 0;
   for (let k = 0; k < series.expected.length; k += 1) {
-    p[0] += drift;
-    mean[1] *= rho;
-    mean[2] *= spellRho;
-    for (let j = 0; j < size; j += 1) {
-      p[size + j] *= rho;
-      p[j * size + 1] *= rho;
-      p[2 * size + j] *= spellRho;
-      p[j * size + 2] *= spellRho;
+    if (k > 0 || !sameBlock) {
+      p[0] += drift;
+      mean[1] *= rho;
+      mean[2] *= spellRho;
+      for (let j = 0; j < size; j += 1) {
+        p[size + j] *= rho;
+        p[j * size + 1] *= rho;
+        p[2 * size + j] *= spellRho;
+        p[j * size + 2] *= spellRho;
+      }
+      p[size + 1] += fresh;
+      p[2 * size + 2] += spellFresh;
     }
-    p[size + 1] += fresh;
-    p[2 * size + 2] += spellFresh;
     const expected = series.expected[k];
     if (!(expected > 0)) continue;
 
@@ -108,9 +121,9 @@ export function filterLevel(
     if (informationScale) {
       const spread = predicted * scale + predicted * predicted * variance + 1e-9;
       const gap = observed - predicted;
-      logProbability -= 0.5 * (Math.log(2 * Math.PI * spread) + (gap * gap) / spread);
+      logProbability = keep * logProbability - 0.5 * (Math.log(2 * Math.PI * spread) + (gap * gap) / spread);
     } else {
-      logProbability += gammaPoissonLogPmf(observed, predicted, Math.expm1(variance));
+      logProbability = keep * logProbability + gammaPoissonLogPmf(observed, predicted, Math.expm1(variance));
     }
     blocks += 1;
     if (variance === 0) continue;

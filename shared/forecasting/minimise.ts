@@ -1,7 +1,8 @@
 /**
  * Nelder & Mead (1965) simplex search for a minimum, without derivatives.
  * @param start first point; @param step length of the first simplex in each direction
- * @returns the best point and its value after at most `evaluations` calls. Values that are not finite count as +Infinity.
+ * @returns the best point and its value after about `evaluations` calls, or when the simplex differs by less
+ *   than 0.02 (log scores are minimised here; such a difference means nothing). Values that are not finite count as +Infinity.
  */
 export function minimise(
   f: (x: readonly number[]) => number,
@@ -21,7 +22,7 @@ export function minimise(
   while (calls < evaluations) {
     simplex.sort((a, b) => a.value - b.value);
     const worst = simplex[n];
-    if (worst.value - simplex[0].value < 1e-3) break;
+    if (worst.value - simplex[0].value < 0.02) break;
     const centre = start.map((_, j) => simplex.slice(0, n).reduce((sum, point) => sum + point.x[j], 0) / n);
     const towards = (share: number) => at(centre.map((v, j) => v + share * (worst.x[j] - v)));
     const reflected = towards(-1);

@@ -37,6 +37,8 @@ export interface NeedPart {
   /** [(area · hours + hour) · boarderSize + k]: of the replications short at the full hour, fewest of the counted boarders who, gone, end it; last: not even all of them. */
   boarderSize: number;
   boardersNeeded: Int32Array;
+  /** 1 where a replication was short in a shift, [(area · shifts + shift) · replications + replication − from]; the pooled row is "some area". */
+  shortByReplication: Uint8Array;
   /** Bed-hours short until the last hour, [area · replications + replication − from]; the pooled row is the areas' sum. */
   bedHoursShort: Float32Array;
   /** Patients simulated: those present and newcomers. */
@@ -51,7 +53,7 @@ export function makeNeedPart(plan: NeedPlan, from: number, to: number): NeedPart
   const size = plan.areas.reduce((sum, area) => Math.max(sum, area.highest), 0) + 1;
   const pooledSize = plan.areas.reduce((sum, area) => sum + area.highest, 0) + 1;
   const boarderSize = plan.areas.reduce((most, area) => Math.max(most, area.boarders), 0) + 2;
-  const flowSize = Math.min(size, 256);
+  const flowSize = Math.min(size, 64);
   return {
     fromReplication: from,
     toReplication: to,
@@ -73,6 +75,7 @@ export function makeNeedPart(plan: NeedPlan, from: number, to: number): NeedPart
     arrivalsToAdmit: new Int32Array(areas * hours * flowSize),
     boarderSize,
     boardersNeeded: new Int32Array(areas * hours * boarderSize),
+    shortByReplication: new Uint8Array((areas + 1) * shifts * (to - from)),
     bedHoursShort: new Float32Array((areas + 1) * (to - from)),
     patients: 0,
   };
@@ -116,6 +119,7 @@ export function mergeNeedParts(parts: readonly NeedPart[]): NeedPart {
   const merged: NeedPart = {
     ...first,
     toReplication: last.toReplication,
+    shortByReplication: new Uint8Array(rows * first.shifts * total),
     bedHoursShort: new Float32Array(rows * total),
     patients: sorted.reduce((sum, part) => sum + part.patients, 0),
   };
@@ -127,6 +131,10 @@ export function mergeNeedParts(parts: readonly NeedPart[]): NeedPart {
   for (const part of sorted) {
     const count = part.toReplication - part.fromReplication;
     const at = part.fromReplication - first.fromReplication;
+    for (let row = 0; row < rows * first.shifts; row += 1) {
+      const own = part.shortByReplication.subarray(row * count, (row + 1) * count);
+      merged.shortByReplication.set(own, row * total + at);
+    }
     for (let row = 0; row < rows; row += 1) {
       merged.bedHoursShort.set(part.bedHoursShort.subarray(row * count, (row + 1) * count), row * total + at);
     }

@@ -81,6 +81,7 @@ export const purposes = {
   undecided: 6,
   thinning: 7,
   extra: 8,
+  surge: 9,
 } as const;
 
 /** Changes tried against "as is"; the draws stay the same, so that differences can be taken replication by replication. */
@@ -95,6 +96,6 @@ export interface NeedChange {
   beds?: (Int32Array | null)[];
   /** Boarding patients of an area who are gone by a time (hours since the start) if still there. */
   boardersOut?: { area: number; patients: number; byHours: number }[];
-  /** From a time on, an area takes no arrivals: they go to another area, or elsewhere with `to` null. */
+  /** Between two times an area takes no arrivals: they go to another area, or elsewhere with `to` null. Ascending for one area. */
   closed?: { area: number; fromHours: number; toHours: number; to: number | null }[];
 }

@@ -98,7 +98,14 @@ export function outlookSentence(input: {
     judged.push({ area, outlook, chances, past, peak, peakIndex: window[chances.indexOf(peak)] ?? -1 });
   }
 
-  if (judged.length === 0 || window.length === 0) {
+  if (window.length === 0) {
+    return {
+      headline: 'This outlook has run out.',
+      lede: [{ text: 'Enter a census: a new outlook is computed from it at once.', strong: true }],
+      worstAreaId: null,
+    };
+  }
+  if (judged.length === 0) {
     return {
       headline: 'No area has a census. Enter one before you act.',
       lede: [

@@ -32,6 +32,9 @@ export interface PreparedNeed {
   plan: NeedPlan;
   lengthOfStay: 'exponential' | 'empirical';
   live: LiveArrivals | null;
+  /** Expected flows and patients present, exponential stays: what the exact method starts from. */
+  flows: AreaFlows[];
+  expected: ExpectedPresent[];
 }
 
 const pastHours = 96;
@@ -193,7 +196,7 @@ export function prepareNeed(model: OutlookModel, input: OutlookInput): PreparedN
     drawRates: makeRateDraw(arrival, grid, calendar, live ?? undefined),
     drawStays: makeStayDraw(stay, staying),
   };
-  return { plan, lengthOfStay, live };
+  return { plan, lengthOfStay, live, flows, expected: plain };
 }
 
 function publicHolidays(calendar: readonly CalendarDay[]): string[] {

@@ -110,7 +110,7 @@ export function makeNeedRecorder(
     }
   }
 
-  function addShifts(a: number): void {
+  function addShifts(a: number, row: number): void {
     for (let s = 0; s < shifts; s += 1) {
       let most = 0;
       let short = 0;
@@ -120,6 +120,7 @@ export function makeNeedRecorder(
       }
       part.shiftPeak[(a * shifts + s) * size + (most < size ? most : size - 1)] += 1;
       part.shiftShort[a * shifts + s] += short;
+      part.shortByReplication[(a * shifts + s) * rows + row] = short;
     }
   }
 
@@ -168,7 +169,7 @@ export function makeNeedRecorder(
       part.bedHoursShort[a * rows + row] = short * hoursPerBin;
       allShort += short;
       addHours(part.need, part.within, a, size);
-      addShifts(a);
+      addShifts(a, row);
       addBoarders(a, areaBeds[a], trace.boarderBin[a]);
       addFlows(a, trace.admittedOut[a], trace.admittedIn[a]);
     }
@@ -180,6 +181,7 @@ export function makeNeedRecorder(
       let short = 0;
       for (let p = pieces.shiftFrom[s]; p < pieces.shiftTo[s]; p += 1) short |= someShort[p];
       part.shiftShort[areas * shifts + s] += short;
+      part.shortByReplication[(areas * shifts + s) * rows + row] = short;
     }
   };
 }

@@ -1,14 +1,14 @@
 import { newcomersUnderShape, sharesNotBoarding, streamOfBoarders, survivalOf } from './census-start.ts';
 import type { ExpectedPresent } from './census-start.ts';
-import { binomialLaw, gammaPoissonLaw, mixtureFromZero, sumOfLaws } from './count-law.ts';
+import { binomialLaw, gammaPoissonLaw, sumOfLaws } from './count-law.ts';
+import type { CountLaw } from './count-law.ts';
 import type { AreaFlows } from './need-flows.ts';
 import type { OutlookInput } from './outlook-types.ts';
-import { pmfQuantile } from '../stochastic/pmf.ts';
 import type { StayModel, StayShape } from './stay-model.ts';
 
 /**
- * Which length of stay an outlook uses: the stays' own shape when it moves the 90th percentile of need by one bed or more
- * in any area at any segment's end before the night is over, else the exponential. Both are compared without parameter
+ * Which length of stay an outlook uses: the stays' own shape when it moves the 90th percentile of need by one bed (half a
+ * bed and more rounds to one) in any area at any segment's end before the night is over, else the exponential. Both are compared without parameter
  * and factor variation, in closed form: newcomers Poisson with mean ∫ λ(u)·S(A(u, t)) du, those present binomial.
  * Cost: areas × streams × segments².
  */
@@ -27,7 +27,7 @@ export function chooseStayLaw(
     const none = shapes.map(() => null);
     const exponential = percentiles(stay, area, input, flows[area], plain[area], none, untilHours);
     const empirical = percentiles(stay, area, input, flows[area], shaped[area], shapes, untilHours);
-    if (exponential.some((value, k) => value !== empirical[k])) return 'empirical';
+    if (exponential.some((value, k) => Math.abs(value - empirical[k]) >= 0.5)) return 'empirical';
   }
   return 'exponential';
 }
@@ -69,7 +69,17 @@ function percentiles(
       law = sumOfLaws(law, binomialLaw(census.present - census.boarding, Math.min(1, alive)));
       law = sumOfLaws(law, binomialLaw(census.boarding, still));
     }
-    found.push(pmfQuantile(mixtureFromZero([{ weight: 1, law }]), 0.9));
+    found.push(smoothQuantile(law, 0.9));
   }
   return found;
+}
+
+/** A percentile between whole numbers, linear within each number's own chance: it moves with the law, not in jumps. */
+function smoothQuantile(law: CountLaw, p: number): number {
+  let sum = 0;
+  for (let i = 0; i < law.pmf.length; i += 1) {
+    if (sum + law.pmf[i] >= p) return law.first + i - 0.5 + (p - sum) / law.pmf[i];
+    sum += law.pmf[i];
+  }
+  return law.first + law.pmf.length - 0.5;
 }

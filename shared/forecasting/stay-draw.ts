@@ -107,11 +107,14 @@ export function makeStayDraw(stay: StayModel, segments: StaySegments): DrawStays
   const hazards = makeShapeDraws(
     drawn.flatMap(({ stream }) => [
       stream.hazard.shape,
-      ...blocks.map((block) => stream.shrinkage + stream.blockDepartures[block]),
+      ...blocks.map((block) => stream.blockStrength[block] + stream.blockDepartures[block]),
     ]),
   );
   const exposed = Float64Array.from(
     drawn.flatMap(({ stream }) => blocks.map((block) => stream.blockHoursAtRisk[block])),
+  );
+  const held = Float64Array.from(
+    drawn.flatMap(({ stream }) => blocks.map((block) => stream.blockStrength[block] / stream.blockPrior[block])),
   );
   const sharing = makeShapeDraws(stay.shares.flatMap((shares) => shareBlocks.flatMap((block) => shares.alpha[block])));
   const blockPlace = segments.block.map((block) => blocks.indexOf(block));
@@ -133,9 +136,8 @@ export function makeStayDraw(stay: StayModel, segments: StaySegments): DrawStays
       const { stream, s } = drawn[n];
       const factor = factors[stream.stream === admittedStream || stream.stream === boardingStream ? 1 : 0];
       const mu = gammas[n * perStream] / stream.hazard.rate;
-      const k = stream.shrinkage;
       for (let b = 0; b < blocks.length; b += 1) {
-        const g = gammas[n * perStream + 1 + b] / (k + mu * exposed[n * blocks.length + b]);
+        const g = gammas[n * perStream + 1 + b] / (held[n * blocks.length + b] + mu * exposed[n * blocks.length + b]);
         byBlock[b] = mu * g;
       }
       const from = s * count;

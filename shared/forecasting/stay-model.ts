@@ -15,8 +15,9 @@ export interface GammaPosterior {
 
 /**
  * How long the stays of one stream are: departures come at hazard μ · g(block), piecewise constant.
- * `hazard` is the posterior of μ (per hour); g of block b given μ has posterior
- * Gamma(shrinkage + departures[b], shrinkage + μ · hoursAtRisk[b]), so a block with little data stays near 1.
+ * `hazard` is the posterior of μ (per hour); g of block b given μ has posterior Gamma(strength[b] + departures[b],
+ * strength[b] / prior[b] + μ · hoursAtRisk[b]), so a block with little data stays near its prior: the pattern of the
+ * site's streams of the same disposition, itself held to 1.
  */
 export interface StayStream {
   area: number;
@@ -33,8 +34,9 @@ export interface StayStream {
   /** 95 % limits of it by the χ² relation; null without time at risk. */
   limits: [low: number, high: number] | null;
   hazard: GammaPosterior;
-  /** Strength with which the block factors are held to 1, in departures; chosen by marginal likelihood. */
-  shrinkage: number;
+  /** Strength with which the block factors are held to their prior, in departures; chosen by marginal likelihood, and never more than the prior itself rests on. */
+  blockStrength: number[];
+  blockPrior: number[];
   /** By block of the day, ordinary weekdays first, then weekends and holidays. */
   blockDepartures: number[];
   blockHoursAtRisk: number[];
@@ -138,7 +140,10 @@ export function blockHazards(stream: StayStream): Float64Array {
   const mean = stream.hazard.shape / stream.hazard.rate;
   return Float64Array.from(stream.blockDepartures, (departures, block) => {
     const expected = mean * stream.blockHoursAtRisk[block];
-    return (mean * (stream.shrinkage + departures)) / (stream.shrinkage + expected);
+    return (
+      (mean * (stream.blockStrength[block] + departures)) /
+      (stream.blockStrength[block] / stream.blockPrior[block] + expected)
+    );
   });
 }
 

@@ -17,12 +17,17 @@ export function endOfTonight(shifts: readonly Pick<ShiftRisk, 'from' | 'to'>[], 
   return now + (until > 0 ? until : until + 86_400);
 }
 
-/** Indexes of the outlook's hours that lie after now and before the end of the coming night. */
+/**
+ * Indexes of the outlook's hours that lie after now and before the end of the coming night. In the
+ * last minutes of a night, with no full hour of it left, the coming night is the next one.
+ */
 export function hoursOfTonight(
   result: { hours: readonly number[]; areas: readonly { shifts: readonly Pick<ShiftRisk, 'from' | 'to'>[] }[] },
   now: number,
   zone: Zone,
 ): number[] {
-  const end = endOfTonight(result.areas[0]?.shifts ?? [], now, zone);
+  const first = result.hours.find((at) => at > now);
+  if (first === undefined) return [];
+  const end = endOfTonight(result.areas[0]?.shifts ?? [], first, zone);
   return result.hours.flatMap((at, index) => (at > now && at < end ? [index] : []));
 }

@@ -20,8 +20,8 @@ function useCurrentSite(): SessionSite | undefined {
 
 const sideLink = ({ isActive }: { isActive: boolean }) =>
   classNames(
-    'inline-flex min-h-11 items-center font-semibold',
-    isActive ? 'font-extrabold text-ink' : 'text-ink2 hover:text-ink',
+    'inline-flex min-h-11 items-center',
+    isActive ? 'font-extrabold text-ink' : 'font-semibold text-ink2 hover:text-ink',
   );
 
 /** Every page's frame: the name, the places along time, what stands apart, and whose session it is. */

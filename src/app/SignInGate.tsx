@@ -1,5 +1,5 @@
 import { useQueryClient } from '@tanstack/react-query';
-import { useEffect, useRef } from 'react';
+import { useEffect, useState } from 'react';
 import { Navigate, Outlet, useLocation } from 'react-router-dom';
 import { ProblemNotice } from '../components/Notice.tsx';
 import { Skeleton } from '../components/Skeleton.tsx';
@@ -18,7 +18,7 @@ export function SignInGate() {
   const queryClient = useQueryClient();
   const location = useLocation();
   const query = useSessionQuery();
-  const lastSession = useRef<SignedInSession | null>(null);
+  const [lastSession, setLastSession] = useState<SignedInSession | null>(null);
 
   useEffect(
     () =>
@@ -30,7 +30,8 @@ export function SignInGate() {
     [queryClient],
   );
 
-  if (query.data?.person) lastSession.current = { ...query.data, person: query.data.person };
+  const session = query.data?.person ? (query.data as SignedInSession) : null;
+  if (session && session !== lastSession) setLastSession(session);
   const here = location.pathname + location.search;
 
   if (!query.data) {
@@ -44,14 +45,14 @@ export function SignInGate() {
       </main>
     );
   }
-  if (!query.data.person && !lastSession.current) {
+  if (!session && !lastSession) {
     return <Navigate to={paths.signIn(here === '/' ? undefined : here)} replace />;
   }
-  const signedOut = !query.data.person;
+  const signedOut = !session;
   return (
     <>
       {signedOut ? <SignedOutPage returnTo={here} /> : null}
-      <SessionProvider value={lastSession.current}>
+      <SessionProvider value={session ?? lastSession}>
         <div hidden={signedOut}>
           <Outlet />
         </div>

@@ -7,7 +7,7 @@ import { paths } from './paths.ts';
 export function SiteSwitcher({ site, sites }: { site: SessionSite | undefined; sites: readonly SessionSite[] }) {
   const navigate = useNavigate();
   return (
-    <div className="flex items-center gap-2.5">
+    <div className="flex items-center gap-2.5 xl:w-[calc(var(--gutter)-1.5rem)]">
       <Link to={paths.home()} aria-label="Shoalmark, first page">
         <Mark className="h-9 w-9" />
       </Link>

@@ -10,7 +10,7 @@ export function makeQueryClient(): QueryClient {
         networkMode: 'always',
         staleTime: 10_000,
         retry: (failures, error) =>
-          failures < 2 && !(error instanceof ApiError && error.status >= 400 && error.status < 500),
+          failures < 2 && error instanceof ApiError && (error.status === 0 || error.status >= 500),
       },
       mutations: { networkMode: 'always', retry: false },
     },

@@ -4,8 +4,8 @@ import type { BodyInputOf, Contract, ParamsOf, ReplyOf } from '../../shared/api/
 import { ApiError } from './api-error.ts';
 
 // The widest contract there is; a contract's own schemas are read through the types below.
-type AnyContract = Contract<z.ZodType, z.ZodType, z.ZodType, z.ZodType>;
-type QueryInputOf<C> = C extends Contract<z.ZodType, infer Q, z.ZodType, z.ZodType> ? z.input<Q> : never;
+type AnyContract = Contract;
+type QueryInputOf<C> = C extends Contract<z.ZodType, infer Q> ? z.input<Q> : never;
 
 // A contract without a schema for a part has `unknown` there; such a part must be left out.
 type Part<Key extends string, Value> = unknown extends Value ? { [key in Key]?: undefined } : { [key in Key]: Value };
@@ -56,11 +56,11 @@ export function addressOf(path: string, params: unknown, query?: unknown): strin
   const filled = path.replace(/:([A-Za-z]+)/g, (_, name: string) => {
     const value = given.get(name);
     if (value === undefined || value === null) throw new RangeError(`${path} needs ${name}`);
-    return encodeURIComponent(String(value));
+    return encodeURIComponent(plain(name, value));
   });
   const search = new URLSearchParams();
   for (const [name, value] of Object.entries((query ?? {}) as Record<string, unknown>)) {
-    if (value !== undefined && value !== null) search.set(name, String(value));
+    if (value !== undefined && value !== null) search.set(name, plain(name, value));
   }
   const tail = search.toString();
   return tail ? `${filled}?${tail}` : filled;
@@ -84,6 +84,12 @@ export async function readProblem(response: Response): Promise<ApiError> {
     detail: `It answered ${String(response.status)} without saying why.`,
     next: 'Try again in a minute. If it happens again, tell your administrator.',
   });
+}
+
+/** Parameters are ids, numbers and switches; anything else is a fault of the caller. */
+function plain(name: string, value: unknown): string {
+  if (typeof value === 'string' || typeof value === 'number' || typeof value === 'boolean') return String(value);
+  throw new RangeError(`${name} must be a text, a number or a switch`);
 }
 
 function unreachable(options: LooseOptions, writing: boolean): ApiError {

@@ -27,7 +27,11 @@ export interface StayLogTruth {
 }
 
 /** Draws a visit log from a known truth, hour by hour: each patient departs when ∫ μ·g·f dt reaches their drawn stay. */
-export function simulateStayLog(truth: StayLogTruth): { visits: VisitTable; factors: Float64Array[]; firstDay: number } {
+export function simulateStayLog(truth: StayLogTruth): {
+  visits: VisitTable;
+  factors: Float64Array[];
+  firstDay: number;
+} {
   const { zone, from, days } = truth;
   const stream = makeStream(truth.seed, 1);
   const span = days + 20;
@@ -47,8 +51,9 @@ export function simulateStayLog(truth: StayLogTruth): { visits: VisitTable; fact
     const weekday = (((Math.floor(local / 86_400) + 3) % 7) + 7) % 7;
     return truth.hourFactor(Math.floor(local / 3600) % 24, weekday >= 5);
   });
-  const dayOf = Int32Array.from({ length: hours }, (_, h) =>
-    Math.floor(zone.toLocal(from + h * 3600) / 86_400) - firstDay,
+  const dayOf = Int32Array.from(
+    { length: hours },
+    (_, h) => Math.floor(zone.toLocal(from + h * 3600) / 86_400) - firstDay,
   );
   const area: number[] = [];
   const arrivalAt: number[] = [];

@@ -38,6 +38,7 @@ export interface TestServer {
   app: App;
   deps: Dependencies;
   issuer: OutlookIssuer;
+  sessions: SessionStore;
   /** UTC seconds; set it to move time. */
   time: { now: number };
   /** Works the job queue with the real handlers until nothing waits. */
@@ -55,11 +56,12 @@ export interface SignedIn {
   send(method: 'post' | 'put' | 'patch' | 'delete', path: string, body?: object): supertest.Test;
 }
 
-/** Opens an application for a test. Sessions use the real clock; everything else the test's. */
+/** Opens an application for a test. Sessions use the real clock; everything else the test's. Outlooks are of few replications. */
 export async function openTestServer({
   now = 1_790_000_000,
   config = {},
-} = {}): Promise<TestServer> {
+  replications = 400,
+}: { now?: number; config?: Partial<Config>; replications?: number } = {}): Promise<TestServer> {
   const dataDir = mkdtempSync(join(tmpdir(), 'shoalmark-test-'));
   const time = { now };
   const full: Config = { ...testConfig, dataDir, ...config };
@@ -70,15 +72,17 @@ export async function openTestServer({
   const simulation = makeSimulationPool(full.threads);
   const jobs = new JobQueue(database, clock, logger);
   const deps: Dependencies = { config: full, database, clock, logger, pool, simulation, jobs };
-  const issuer = new OutlookIssuer(deps);
+  const issuer = new OutlookIssuer(deps, replications);
   const realClock = () => Math.floor(Date.now() / 1000);
-  const app = createApp(deps, issuer, new SessionStore(database, realClock), null);
+  const sessions = new SessionStore(database, realClock);
+  const app = createApp(deps, issuer, sessions, null);
   let working = false;
 
   return {
     app,
     deps,
     issuer,
+    sessions,
     time,
     async workJobs() {
       if (!working) await jobs.start(makeJobKinds(deps));

@@ -1,4 +1,4 @@
-import { Initial1796102262155 } from './1796102262155-Initial.ts';
+import { Initial1796104800519 } from './1796104800519-Initial.ts';
 
 /** In order of their dates. */
-export const migrations = [Initial1796102262155];
+export const migrations = [Initial1796104800519];

@@ -1,12 +1,14 @@
 import { localDate, makeZone } from '../../../shared/domain/zoned-time.ts';
 import { countHourly } from '../../../shared/forecasting/count-hourly.ts';
 import { fitArrivals } from '../../../shared/forecasting/fit-arrivals.ts';
+import { arrivalDiagnostics } from '../../../shared/forecasting/arrival-diagnostics.ts';
 import { fitStays } from '../../../shared/forecasting/fit-stays.ts';
+import { weeklyRates } from '../../../shared/forecasting/weekly-rates.ts';
 import type { CalendarDay, ExposureGap } from '../../../shared/forecasting/visit-table.ts';
 import { coveredSpans, gapsBetween } from '../../database/covered-spans.ts';
 import { readSiteVisits } from '../../database/read-visits.ts';
 import type { FitReply, FitRequest } from './fit-input.ts';
-import { blockNames, ratesOf, stayFindings, streamsOf } from './fitted-detail.ts';
+import { blockNames, stayFindings, streamsOf } from './fitted-detail.ts';
 
 /** Fits a site's model on a thread of its own. A RangeError of the engine (too little history…) is an answer, not a fault. */
 export default function fit(request: FitRequest): FitReply {
@@ -86,8 +88,8 @@ function fitSite(request: FitRequest, tell: (share: number, text: string) => voi
         'weeks of history': arrival.weeksOfHistory,
       },
       areas: areaIds.map((areaId, index) => {
-        const { rate, low, high } = ratesOf(arrival, index);
-        return { areaId, name: areaName(index), ratePerHour: rate, rateLow: low, rateHigh: high };
+        const { ratePerHour, low, high } = weeklyRates(arrival, index);
+        return { areaId, name: areaName(index), ratePerHour, rateLow: low, rateHigh: high };
       }),
       streams: streamsOf(stay, areaIds),
       departureBlocks: blockNames(stay),
@@ -105,6 +107,7 @@ function fitSite(request: FitRequest, tell: (share: number, text: string) => voi
           meaning: nameAreas(text, areaName),
           concern: true,
         })),
+        ...arrivalDiagnostics(arrival, counts, table.arrivalAt).findings,
         ...stayFindings(stay, table.length),
       ],
     },

@@ -1,9 +1,4 @@
 import { dispositions } from '../../../shared/domain/disposition.ts';
-import { hourOfWeek, hoursOfWeek } from '../../../shared/domain/hour-of-week.ts';
-import type { ArrivalModel } from '../../../shared/forecasting/arrival-model.ts';
-import { profileError } from '../../../shared/forecasting/profile-error.ts';
-import { expectedRates } from '../../../shared/forecasting/rate-draws.ts';
-import { gridOfLocalHours } from '../../../shared/forecasting/rate-grid.ts';
 import {
   blockHazards,
   expectedShares,
@@ -11,30 +6,6 @@ import {
   type StayModel,
 } from '../../../shared/forecasting/stay-model.ts';
 import type { FittedDetail } from './fit-input.ts';
-
-const normalLimit = 1.959964;
-
-/** Hour-of-week rates at the level of the training's end, each with its own 95 % posterior interval. */
-export function ratesOf(model: ArrivalModel, area: number): { rate: number[]; low: number[]; high: number[] } {
-  // A whole week after the training's end, from a Monday, without unusual days.
-  const monday =
-    model.endLocalHour - hourOfWeek(model.endLocalHour) + (hourOfWeek(model.endLocalHour) > 0 ? hoursOfWeek : 0);
-  const grid = gridOfLocalHours(monday, new Float64Array(hoursOfWeek).fill(1));
-  const rates = expectedRates({ ...model, calendar: [] }, grid, [])[area];
-  const { profile, own } = model.areas[area];
-  const error = profileError(
-    profile,
-    Array.from({ length: hoursOfWeek }, (_, hour) => hour),
-    model.coarse,
-  );
-  const levelVariance = model.site.covariance[0] + own.covariance[0];
-  const width = Array.from(error.variance, (variance) => Math.exp(normalLimit * Math.sqrt(variance + levelVariance)));
-  return {
-    rate: Array.from(rates),
-    low: Array.from(rates, (rate, hour) => rate / width[hour]),
-    high: Array.from(rates, (rate, hour) => rate * width[hour]),
-  };
-}
 
 /** Length of stay by care area and disposition, and for boarding. */
 export function streamsOf(stay: StayModel, areaIds: readonly string[]): FittedDetail['streams'] {

@@ -20,6 +20,7 @@ export function presentModel(row: ArrivalModelRow, caller: Caller): ModelSummary
     trainedTo,
     visits: row.visits,
     weeksOfHistory: trainedFrom !== null && trainedTo !== null ? (trainedTo - trainedFrom) / (7 * 86_400) : 0,
+    refreshedAt: row.refreshedAt,
     error: row.error,
     jobId: row.jobId,
     fittedByCaller: row.fittedByPersonId === caller.person.id,

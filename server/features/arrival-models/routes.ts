@@ -1,6 +1,7 @@
 import type { Express } from 'express';
 import { In } from 'typeorm';
 import { approveModel, fitModel, getModel, listModels, retireModel } from '../../../shared/api/arrival-models.ts';
+import { withArticle } from '../../../shared/domain/identifier-kind.ts';
 import { screenNote } from '../../../shared/domain/screen-note.ts';
 import { engineVersion } from '../../../shared/forecasting/engine-version.ts';
 import { newId } from '../../database/new-id.ts';
@@ -32,17 +33,20 @@ export function addArrivalModelRoutes(
     const kind = screenNote(reason);
     if (kind !== null) {
       throw badInput('The reason was refused.', [
-        { at: 'reason', message: `It seems to hold a ${kind}. Say it without anything that identifies a person.` },
+        { at: 'reason', message: `It seems to hold ${withArticle(kind)}. Say it without anything that identifies a person.` },
       ]);
     }
   }
 
   addSiteRoute(app, table, deps, listModels, async ({ site, caller }) => {
-    const rows = await database.read.find(ArrivalModelRow, {
+    const all = await database.read.find(ArrivalModelRow, {
       where: { siteId: site.id },
       order: { createdAt: 'DESC' },
-      take: 200,
+      take: 1000,
     });
+    // A model whose level was moved on is listed once, as it is now.
+    const movedOn = new Set(all.map((row) => row.refreshedFromId));
+    const rows = all.filter((row) => !movedOn.has(row.id));
     const readyLogs = await database.read.countBy(VisitLog, { siteId: site.id, status: 'ready' });
     return { models: rows.map((row) => presentModel(row, caller)), readyLogs };
   });

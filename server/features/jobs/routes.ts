@@ -1,8 +1,9 @@
 import type { Express } from 'express';
 import { cancelJob, listJobs, type Job as JobReply } from '../../../shared/api/jobs.ts';
+import { isGranted } from '../../../shared/domain/permission.ts';
 import type { Dependencies } from '../../dependencies.ts';
 import { Job } from '../../entities/Job.ts';
-import { conflict, notFound } from '../../errors.ts';
+import { conflict, notAllowed, notFound } from '../../errors.ts';
 import { recordAudit } from '../../http/audit.ts';
 import { addSiteRoute, type RouteTable } from '../../http/route.ts';
 
@@ -17,9 +18,15 @@ export function addJobRoutes(app: Express, table: RouteTable, deps: Dependencies
 
   addSiteRoute(app, table, deps, cancelJob, async (context) => {
     const where = { id: context.params.jobId, siteId: context.site.id };
-    if (!(await database.read.existsBy(Job, where))) throw notFound('This job');
-    if (!(await deps.jobs.cancel(where.id))) throw conflict('The job had already ended.', 'Nothing more to do.');
-    await database.write((manager) => recordAudit(manager, context, 'job.cancelled', where.id));
+    const job = await database.read.findOneBy(Job, where);
+    if (!job) throw notFound('This job');
+    // What concerns visit logs is the steward's alone.
+    const roles = context.caller.rolesAt.get(where.siteId) ?? [];
+    if (job.kind.startsWith('visit-log.') && !isGranted(roles, 'visit-log:upload')) throw notAllowed();
+    const cancelled = await deps.jobs.cancel(where.id, (manager) =>
+      recordAudit(manager, context, 'job.cancelled', where.id),
+    );
+    if (!cancelled) throw conflict('The job had already ended.', 'Nothing more to do.');
     return presentJob(await database.read.findOneByOrFail(Job, where));
   });
 }

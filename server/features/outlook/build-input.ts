@@ -9,7 +9,6 @@ import { readStaffedBedSteps } from '../../database/read-staffed-beds.ts';
 import type { Site } from '../../entities/Site.ts';
 
 export const outlookHours = 36;
-const defaultReplications = 10_000;
 
 /** The full local hours after an instant, UTC seconds. A clock change may put two within an hour of real time, or none. */
 export function fullHoursAfter(zone: Zone, at: number, count: number): number[] {
@@ -40,6 +39,7 @@ export async function buildOutlookInput(
   site: Site,
   modelAreaIds: readonly string[],
   now: number,
+  replications: number,
 ): Promise<OutlookInput | null> {
   const zone = makeZone(site.timeZone);
   const all = await readAreas(read, site.id);
@@ -83,7 +83,7 @@ export async function buildOutlookInput(
     shifts,
     arrivalsSince: arrivals ? arrivalsSinceMidnight(zone, arrivals) : null,
     seed: randomInt(0, 2 ** 31),
-    replications: defaultReplications,
+    replications,
   };
 }
 

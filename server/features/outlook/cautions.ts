@@ -1,8 +1,12 @@
 import type { Caution, Outlook } from '../../../shared/api/outlooks.ts';
+import type { Span } from '../../database/counting-spans.ts';
+import { gapsBetween } from '../../database/covered-spans.ts';
 import type { NewestCensus } from '../../database/read-census.ts';
 
 const hour = 3600;
 const day = 86_400;
+/** What the level of arrivals rests on most. */
+const recentWeeks = 8;
 
 /** What the cautions are judged by. */
 export interface CautionFacts {
@@ -12,12 +16,12 @@ export interface CautionFacts {
   census: NewestCensus;
   /** Unusual days within the outlook, by name and date. */
   unusualDays: { date: string; name: string }[];
-  /** End of the newest accepted log's period, if any. */
-  logTo: number | null;
+  /** The time that accepted logs speak for, ascending. */
+  covered: readonly Span[];
 }
 
 /** The cautions of product and policy that are true now, gravest first. */
-export function cautionsNow({ now, outlook, areas, census, unusualDays, logTo }: CautionFacts): Caution[] {
+export function cautionsNow({ now, outlook, areas, census, unusualDays, covered }: CautionFacts): Caution[] {
   const cautions: Caution[] = [];
   const ages = census.areas.map((area) => now - area.takenAt);
   if (ages.length === 0) {
@@ -38,6 +42,13 @@ export function cautionsNow({ now, outlook, areas, census, unusualDays, logTo }:
       cautions.push({ kind: 'census old', text: `Census ${formatAge(oldest)} old. Enter a new one before you act.` });
     }
   }
+  const unknown = areas.filter((area) => !outlook.result.areas.some((known) => known.areaId === area.id));
+  if (unknown.length > 0) {
+    cautions.push({
+      kind: 'area not counted',
+      text: `Not forecast: ${unknown.map((area) => area.name).join(', ')}. The model in use does not know ${unknown.length === 1 ? 'this area' : 'these areas'}. Fit a new one.`,
+    });
+  }
   const { model } = outlook;
   if (model.weeksOfHistory < 8) {
     cautions.push({
@@ -57,10 +68,22 @@ export function cautionsNow({ now, outlook, areas, census, unusualDays, logTo }:
       text: `The model was fitted ${String(Math.floor(modelAge / day))} days ago. Fit a new one.`,
     });
   }
-  if (logTo !== null && now - logTo > 14 * day) {
+  const logTo = covered.at(-1)?.to;
+  if (logTo !== undefined && now - logTo > 14 * day) {
     cautions.push({
       kind: 'gap in the log',
       text: `The newest visit log ends ${String(Math.floor((now - logTo) / day))} days ago: the level of arrivals since then is unknown.`,
+    });
+  }
+  const missing = gapsBetween(covered)
+    .map((gap) => Math.max(0, gap.to - Math.max(gap.from, now - recentWeeks * 7 * day)))
+    .filter((length) => length >= day)
+    .reduce((sum, length) => sum + length, 0);
+  if (missing > 0) {
+    const days = Math.floor(missing / day);
+    cautions.push({
+      kind: 'gap in the log',
+      text: `The visit logs leave out ${String(days)} ${days === 1 ? 'day' : 'days'} of the last ${String(recentWeeks)} weeks: the level of arrivals is less certain.`,
     });
   }
   for (const { date, name } of unusualDays) {

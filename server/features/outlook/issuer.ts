@@ -15,7 +15,8 @@ export type OutlookTrigger = z.infer<typeof outlookTrigger>;
 
 /** What came of a wish for an outlook. */
 export type Issued =
-  { outlookId: string; reason: null } | { outlookId: null; reason: 'no model' | 'no staffed-bed plan' };
+  | { outlookId: string; reason: null }
+  | { outlookId: null; reason: 'no model' | 'no staffed-bed plan' | 'the outlook could not be computed' };
 
 interface SiteQueue {
   running: Promise<Issued>;
@@ -29,10 +30,12 @@ interface SiteQueue {
  */
 export class OutlookIssuer {
   private readonly deps: Dependencies;
+  private readonly replications: number;
   private readonly queues = new Map<string, SiteQueue>();
 
-  constructor(deps: Dependencies) {
+  constructor(deps: Dependencies, replications = 10_000) {
     this.deps = deps;
+    this.replications = replications;
   }
 
   /** True while an outlook of the site is being computed. */
@@ -48,6 +51,16 @@ export class OutlookIssuer {
       return queue.next;
     }
     return this.run(siteId, trigger);
+  }
+
+  /** The same after something was saved: that stays saved, so a failure to compute is no failure of the request. */
+  async issueAfterSaving(siteId: string, trigger: OutlookTrigger): Promise<Issued> {
+    try {
+      return await this.issue(siteId, trigger);
+    } catch (error) {
+      this.deps.logger.error({ err: error, siteId, trigger }, 'an outlook could not be computed');
+      return { outlookId: null, reason: 'the outlook could not be computed' };
+    }
   }
 
   /** Waits for everything under way. */
@@ -75,7 +88,7 @@ export class OutlookIssuer {
     const model = await readModelInUse(database.read, siteId);
     if (!model) return { outlookId: null, reason: 'no model' };
     const parameters = await readModelParameters(database.read, model.id);
-    const input = await buildOutlookInput(database.read, site, parameters.areaIds, clock());
+    const input = await buildOutlookInput(database.read, site, parameters.areaIds, clock(), this.replications);
     if (!input) return { outlookId: null, reason: 'no staffed-bed plan' };
     const startedAt = performance.now();
     const result = JSON.stringify(await computeOutlook(simulation, parameters, input));

@@ -2,7 +2,8 @@ import type { EntityManager } from 'typeorm';
 import { bedsAt } from '../../../shared/domain/bed-schedule.ts';
 import type { Tonight } from '../../../shared/api/outlooks.ts';
 import type { Zone } from '../../../shared/domain/zoned-time.ts';
-import { countingSpans } from '../../database/counting-spans.ts';
+import { countingSpans, type Span } from '../../database/counting-spans.ts';
+import { coveredSpans } from '../../database/covered-spans.ts';
 import { readStaffedBedSteps } from '../../database/read-staffed-beds.ts';
 import type { CareArea } from '../../entities/CareArea.ts';
 import { Census } from '../../entities/Census.ts';
@@ -57,6 +58,12 @@ export async function readPastHours(
   }));
 }
 
+/** The time that a site's ready logs speak for, ascending. */
+export function coveredByLogs(logs: readonly VisitLog[], site: Site, now: number): Span[] {
+  const facts = logs.map((log) => ({ periodFrom: log.periodFrom, periodTo: log.periodTo, facts: log }));
+  return coveredSpans(facts, now, site.stayCapHours * hour);
+}
+
 async function nearestCounts(read: EntityManager, siteId: string, from: number, to: number): Promise<CensusArea[]> {
   return read
     .createQueryBuilder(CensusArea, 'area')
@@ -67,6 +74,7 @@ async function nearestCounts(read: EntityManager, siteId: string, from: number, 
       to: to + censusReach,
     })
     .orderBy('area.savedAt', 'DESC')
+    .addOrderBy('area.rowid', 'DESC')
     .getMany();
 }
 
@@ -81,12 +89,12 @@ async function presentInLogs(
   const logs = await read.find(VisitLog, { where: { siteId: site.id, status: 'ready' } });
   const spans = countingSpans(logs);
   const found = new Map<number, Map<number, number>>();
+  // Before the longest stay has passed since a log's start, who came earlier is missing from it.
+  const spoken = coveredByLogs(logs, site, now).map(({ from, to }) => ({ from: from + reach, to }));
   const codes = await read.query<{ code: number }[]>('SELECT code FROM care_area WHERE siteId = ?', [site.id]);
   for (const at of hours) {
-    const covering = logs.find(
-      (log) => log.takenAt >= at && (spans.get(log.number) ?? []).some((span) => span.from <= at && at < span.to),
-    );
-    if (covering && at <= now) found.set(at, new Map(codes.map(({ code }) => [code, 0])));
+    if (spoken.some((span) => span.from <= at && at < span.to))
+      found.set(at, new Map(codes.map(({ code }) => [code, 0])));
   }
   if (found.size === 0) return found;
   const first = Math.min(...found.keys());

@@ -10,7 +10,7 @@ import type { Site } from '../../entities/Site.ts';
 import { VisitLog } from '../../entities/VisitLog.ts';
 import { cautionsNow } from './cautions.ts';
 import type { OutlookIssuer } from './issuer.ts';
-import { readPastHours } from './past-hours.ts';
+import { coveredByLogs, readPastHours } from './past-hours.ts';
 import { presentOutlook, readNewestOutlooks } from './present.ts';
 import { whyMoved } from './why-moved.ts';
 
@@ -39,7 +39,7 @@ export async function presentTonight(
   const names = new Map(areas.map((area) => [area.id, area.name]));
   const census = await readNewestCensus(read, site.id, now - censusDroppedAfterSeconds, now);
   const lastHour = outlook.result.hours[outlook.result.hours.length - 1];
-  const logTo = (await read.maximum(VisitLog, 'takenAt', { siteId: site.id, status: 'ready' })) ?? null;
+  const logs = await read.findBy(VisitLog, { siteId: site.id, status: 'ready' });
   return {
     now,
     outlook,
@@ -52,7 +52,7 @@ export async function presentTonight(
       areas,
       census,
       unusualDays: await readCalendar(read, site, now, lastHour),
-      logTo,
+      covered: coveredByLogs(logs, site, now),
     }),
     moved: older ? whyMoved(outlook, await presentOutlook(read, older), names, site.timeZone) : null,
   };

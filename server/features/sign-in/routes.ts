@@ -54,6 +54,11 @@ export function addSignInRoutes(app: Express, table: RouteTable, deps: Dependenc
       res.redirect('/sign-in?problem=expired');
       return undefined;
     }
+    // An answer counts once, whatever comes of it; one that is not for this sign-in leaves it open.
+    if (new URL(req.originalUrl, config.baseUrl).searchParams.get('state') === underWay.state) {
+      delete req.session.signIn;
+      await saveSession(req);
+    }
     let tokens: oidc.TokenEndpointResponse & oidc.TokenEndpointResponseHelpers;
     try {
       // The address is built from the configured one, never from the Host header.
@@ -135,7 +140,7 @@ export function addSignInRoutes(app: Express, table: RouteTable, deps: Dependenc
 
 /** Only a path of this application may be returned to; never another host. */
 function localPath(path: string | undefined): string {
-  if (path === undefined || !path.startsWith('/') || path.startsWith('//') || path.includes('\\')) return '/';
+  if (path === undefined || !/^\/(?!\/)[^\\\p{Cc}]*$/u.test(path)) return '/';
   return path;
 }
 

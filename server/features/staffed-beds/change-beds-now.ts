@@ -1,5 +1,6 @@
 import type { ChangeBedsBody } from '../../../shared/api/staffed-beds.ts';
 import { shiftInCharge, shiftsBetween } from '../../../shared/domain/shift-times.ts';
+import { withArticle } from '../../../shared/domain/identifier-kind.ts';
 import { screenNote } from '../../../shared/domain/screen-note.ts';
 import { makeZone } from '../../../shared/domain/zoned-time.ts';
 import { newId } from '../../database/new-id.ts';
@@ -34,18 +35,20 @@ export async function changeBedsNow(
     });
   }
   const kind = screenNote(body.reason);
-  if (kind !== null)
+  if (kind !== null) {
     faults.push({
       at: 'reason',
-      message: `The reason seems to hold ${kind}. Say it without anything that identifies a person.`,
+      message: `The reason seems to hold ${withArticle(kind)}. Say it without anything that identifies a person.`,
     });
+  }
   if (faults.length > 0) throw badInput('The change was refused.', faults);
 
   const shifts = shiftsBetween(makeZone(site.timeZone), await readShifts(read, site.id), now, now + 2 * 86_400);
   const current = shiftInCharge(shifts, now);
   // The overlap at handover belongs to the incoming shift, so a shift is in charge until the next one starts.
-  const later = shifts.filter((shift) => shift.from > now);
-  const [ending, following] = body.until === 'end of this shift' ? [current, later[0]] : [later[0], later[1]];
+  const startAfter = (at: number) => shifts.find((shift) => shift.from > at);
+  const ending = body.until === 'end of this shift' ? current : startAfter(now);
+  const following = startAfter(ending && ending !== current ? ending.from : now);
   const untilAt = ending ? Math.min(ending.to, following?.from ?? ending.to) : null;
   if (untilAt === null)
     throw badInput('No shift is set for that time.', [{ at: 'until', message: 'Set the site’s shifts first.' }]);

@@ -1,4 +1,6 @@
 import type { EntityManager } from 'typeorm';
+import { withArticle } from '../../../shared/domain/identifier-kind.ts';
+import { screenNote } from '../../../shared/domain/screen-note.ts';
 import { newId } from '../../database/new-id.ts';
 import { readAreas } from '../../database/read-site.ts';
 import { StaffedBedPlan } from '../../entities/StaffedBedPlan.ts';
@@ -11,12 +13,14 @@ export interface PlanInput {
   reason: string;
 }
 
+/** More than a person reads; the count tells of the rest. */
+const faultsListed = 200;
 const days = ['Monday', 'Tuesday', 'Wednesday', 'Thursday', 'Friday', 'Saturday', 'Sunday'];
 
 /**
  * Saves a new version of a site's plan within the caller's transaction. Refused whole, with every cell
- * named, where an area is missing or unknown, a cell is below the area's safe minimum, or beyond the
- * bed spaces that exist.
+ * named, where an area is missing, unknown or named twice, a cell is below the area's safe minimum, or
+ * beyond the bed spaces that exist; and where the reason could identify a person.
  */
 export async function savePlan(
   manager: EntityManager,
@@ -38,6 +42,10 @@ export async function savePlan(
       faults.push({ at: `areas.${String(index)}`, message: 'This care area does not belong to the site.' });
       continue;
     }
+    if (input.areas.findIndex((other) => other.areaId === area.id) < index) {
+      faults.push({ at: `areas.${String(index)}`, message: `${area.name} is named twice.` });
+      continue;
+    }
     for (const [halfHour, beds] of planned.halfHours.entries()) {
       if (beds < area.safeMinimum) {
         faults.push({
@@ -52,7 +60,17 @@ export async function savePlan(
       }
     }
   }
-  if (faults.length > 0) throw badInput(`The plan has ${String(faults.length)} faults.`, faults.slice(0, 200));
+  const kind = screenNote(input.reason);
+  if (kind !== null) {
+    faults.push({
+      at: 'reason',
+      message: `The reason seems to hold ${withArticle(kind)}. Say it without anything that identifies a person.`,
+    });
+  }
+  if (faults.length > 0) {
+    const count = faults.length === 1 ? '1 fault' : `${String(faults.length)} faults`;
+    throw badInput(`The plan has ${count}.`, faults.slice(0, faultsListed));
+  }
   const last = await manager.findOne(StaffedBedPlan, { where: { siteId }, order: { version: 'DESC' } });
   const plan = await manager.save(
     manager.create(StaffedBedPlan, {

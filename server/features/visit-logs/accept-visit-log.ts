@@ -61,7 +61,7 @@ export async function acceptVisitLog({
   if (!period) throw fileRefused(problemFaults(report), false, 'No row of the file can be read as a visit.');
 
   const problems = new Map<string, number>();
-  for (const { problem, rows } of [...report.problems, ...body.leftOutBeforeSending]) {
+  for (const { problem, rows } of [...report.problems, ...body.leftOutBeforeSending.kinds]) {
     problems.set(problem, (problems.get(problem) ?? 0) + rows);
   }
   const logId = newId();
@@ -89,7 +89,10 @@ export async function acceptVisitLog({
       periodFrom: period.from,
       periodTo: period.to,
       ...facts,
-      problems: [...problems].map(([kind, rows]) => ({ kind, rows })),
+      problems: {
+        rows: report.problemRows + body.leftOutBeforeSending.rows,
+        kinds: [...problems].map(([kind, rows]) => ({ kind, rows })),
+      },
       visitsByArea: report.visitsByArea.map(({ area, visits }) => ({ areaCode: area, visits })),
       uploadedBy: caller.person.name,
       uploadedAt: now,
@@ -101,7 +104,7 @@ export async function acceptVisitLog({
     });
     await recordAudit(manager, { ...request, caller, site, now }, 'visit-log.accepted', logId, {
       rows: report.goodRows,
-      leftOut: report.problemRows,
+      leftOut: report.problemRows + body.leftOutBeforeSending.rows,
       sha256: checked.sha256,
     });
     return job;

@@ -65,7 +65,7 @@ export async function loadRows(
   }
 }
 
-const rowsADelete = 5000;
+const rowsADelete = 2000;
 
 /** Deletes the visits of a log in short writes, so that other work goes on between them. */
 export async function deleteRows(

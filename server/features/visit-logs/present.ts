@@ -15,7 +15,7 @@ export function presentVisitLog(log: VisitLog, counts: readonly Span[]): VisitLo
     rows: log.rows,
     period: { from: log.periodFrom, to: log.periodTo },
     counts: log.status === 'ready' ? [...counts] : [],
-    leftOutRows: log.problems.reduce((sum, { rows }) => sum + rows, 0),
+    leftOutRows: log.problems.rows,
     uploadedBy: log.uploadedBy,
     uploadedAt: log.uploadedAt,
     readyAt: log.readyAt,
@@ -36,7 +36,7 @@ export function presentVisitLogDetail(
     ...presentVisitLog(log, counts),
     sha256: log.sha256,
     facts: { selectedBy: log.selectedBy, takenAt: log.takenAt, missingDeparture: log.missingDeparture },
-    leftOut: log.problems.map(({ kind, rows }) => ({ problem: kind, rows })),
+    leftOut: log.problems.kinds.map(({ kind, rows }) => ({ problem: kind, rows })),
     visitsByArea: presentAreas(
       log.visitsByArea.map(({ areaCode, visits }) => ({ area: areaCode, visits })),
       areas,

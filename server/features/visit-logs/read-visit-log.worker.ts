@@ -23,8 +23,8 @@ export interface RowsMessage {
 }
 
 const pieceBytes = 1 << 20;
-const rowsAMessage = 4000;
-const mostUnanswered = 2;
+const rowsAMessage = 2000;
+const mostUnanswered = 3;
 
 /** Reads a file that stands on the disk, checks every row, and hands on the good ones. */
 export default async function readVisitLog({ file, now, areas, port }: ReadVisitLogInput): Promise<FileOutcome> {

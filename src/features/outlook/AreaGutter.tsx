@@ -3,7 +3,7 @@ import type { CareArea } from '../../../shared/api/sites.ts';
 import { RiskMark } from '../../../shared/charts/RiskMark.tsx';
 import { bedsAt } from '../../../shared/domain/bed-schedule.ts';
 import { formatChance, riskStep, riskWord } from '../../../shared/domain/risk-word.ts';
-import { formatAge, formatTime } from '../../lib/format.ts';
+import { formatAge, formatCount, formatTime } from '../../lib/format.ts';
 import { CensusFields, CensusSave } from './CensusFields.tsx';
 import { StaffedTonight } from './StaffedTonight.tsx';
 import type { BoardArea, SomeTime } from './tonight-board.ts';
@@ -41,10 +41,10 @@ export function SomeTimeLine({
 const captions = ['Present', 'Waiting', 'Boarding', 'Staffed'];
 
 /** The captions of the four figures; once above the areas and again under an open row. */
-export function FigureCaptions() {
+export function FigureCaptions({ staffed = true }: { staffed?: boolean }) {
   return (
     <div className="grid grid-cols-4 gap-1.5 text-center text-small font-semibold text-ink2 tighter" aria-hidden="true">
-      {captions.map((caption) => (
+      {captions.slice(0, staffed ? 4 : 3).map((caption) => (
         <span key={caption}>{caption}</span>
       ))}
     </div>
@@ -61,6 +61,7 @@ export function AreaGutter({
   now,
   rights,
   open,
+  toggle,
 }: {
   area: CareArea;
   index: number;
@@ -70,7 +71,10 @@ export function AreaGutter({
   timeZone: string;
   now: number;
   rights: Rights;
+  /** The captions stand under the figures. */
   open: boolean;
+  /** Opens and closes the row; absent where there is nothing to open. */
+  toggle?: { open: boolean; onToggle: () => void };
 }) {
   const { census } = useCensusEntryContext();
   const formId = useId();
@@ -78,27 +82,47 @@ export function AreaGutter({
   const inForce = row && row.staffed.length > 0 ? bedsAt(row.staffed, now) : null;
   const limit = `${String(Math.round(area.alertLimit * 100))}\u00a0%`;
   const firstPast = row?.firstPast ?? null;
+  const toAdd = Math.max(0, ...(row?.bedsToAdd ?? []));
   return (
     <div>
       <div className="flex flex-wrap items-baseline justify-between gap-x-3">
-        <h3 className="text-area font-stretch-[92%]">{area.name}</h3>
+        <h3 className="text-area font-stretch-[92%]">
+          {toggle ? (
+            <button
+              type="button"
+              aria-expanded={toggle.open}
+              onClick={toggle.onToggle}
+              className="inline-flex min-h-6 cursor-pointer items-center gap-1.5 [font-weight:inherit] hover:underline"
+            >
+              {area.name}
+              <svg
+                viewBox="0 0 10 10"
+                aria-hidden="true"
+                className="size-2.5 print:hidden"
+                fill="none"
+                stroke="var(--edge)"
+                strokeWidth="2"
+              >
+                <path d={toggle.open ? 'M1 7L5 3L9 7' : 'M1 3L5 7L9 3'} />
+              </svg>
+            </button>
+          ) : (
+            area.name
+          )}
+        </h3>
         {row?.counted === false || !counted ? <p className="text-label font-bold text-ink2">Not counted</p> : null}
       </div>
       {row?.someTime ? <SomeTimeLine someTime={row.someTime} timeZone={timeZone} /> : null}
       {row && firstPast !== null ? (
         <p className="text-label text-ink2 tight">
-          Past {limit} {row.columns.some((column) => column.kind === 'forecast') ? 'from' : 'at'}{' '}
+          Past {limit} from{' '}
           <b className="text-ink">
             {formatTime(row.columns.filter((column) => column.kind === 'forecast')[firstPast].at, timeZone)}
           </b>
-          {Math.max(...row.bedsToAdd) > 0 ? (
+          {toAdd > 0 ? (
             <>
-              {' '}
-              · up to{' '}
-              <b className="text-ink">
-                +{Math.max(...row.bedsToAdd.filter((_, at) => row.chances[at].chance > area.alertLimit))}
-              </b>{' '}
-              {area.spaceKind === 'chair' ? 'chairs' : 'beds'}
+              : up to{' '}
+              <b className="text-ink">{formatCount(toAdd, `more ${area.spaceKind}`, `more ${area.spaceKind}s`)}</b>
             </>
           ) : null}
         </p>
@@ -114,13 +138,13 @@ export function AreaGutter({
             <Figure key={field} name={`${area.name}, ${field}`} value={counted?.[field]} />
           ))
         )}
-        {rights.changeBeds ? (
+        {row === null ? null : rights.changeBeds ? (
           <StaffedTonight area={area} siteId={siteId} inForce={inForce} />
         ) : (
           <Figure name={`${area.name}, staffed now`} value={inForce} />
         )}
       </div>
-      {open ? <FigureCaptions /> : null}
+      {open ? <FigureCaptions staffed={row !== null} /> : null}
       {rights.enterCensus ? <CensusSave index={index} timeZone={timeZone} /> : null}
     </div>
   );

@@ -17,6 +17,7 @@ function rowsOf(row: BoardArea, open: boolean, hourNames: readonly string[]): St
     {
       kind: 'chance',
       label: row.area.spaces <= 8 ? 'Chance, in the hour' : 'Chance of shortfall',
+      short: row.area.spaces <= 8 ? 'In the hour' : 'Chance',
       chances: row.chances,
       limit: row.area.alertLimit,
       counted: row.counted,
@@ -28,6 +29,7 @@ function rowsOf(row: BoardArea, open: boolean, hourNames: readonly string[]): St
     rows.push({
       kind: 'figures',
       label: row.area.spaceKind === 'chair' ? 'Chairs to add' : 'Beds to add',
+      short: 'To add',
       strong: true,
       figures: row.bedsToAdd.map((beds, index) => {
         const missing = row.bedsThatDoNotExist[index];
@@ -41,6 +43,7 @@ function rowsOf(row: BoardArea, open: boolean, hourNames: readonly string[]): St
   rows.push({
     kind: 'figures',
     label: 'Headroom at P90',
+    short: 'Headroom',
     figures: row.headroom.map((beds, index) => ({
       text: formatSigned(beds),
       spoken: `headroom ${formatSigned(beds)} at ${hourNames[index]}`,
@@ -72,6 +75,7 @@ export function AreaRow({
   now,
   rights,
   columnWidth,
+  hiddenColumns,
   hourNames,
 }: {
   row: BoardArea;
@@ -83,23 +87,17 @@ export function AreaRow({
   now: number;
   rights: Rights;
   columnWidth: number;
+  hiddenColumns: number;
   hourNames: readonly string[];
 }) {
   const id = useId();
   return (
     <BoardRow
       gutter={
-        <>
-          <AreaGutter {...{ area: row.area, index, row, siteId, timeZone, now, rights, open }} />
-          <button
-            type="button"
-            aria-expanded={open}
-            onClick={onToggle}
-            className="link mt-1 min-h-6 cursor-pointer text-label font-semibold text-ink2 print:hidden"
-          >
-            {open ? `Close ${row.area.name}` : `Open ${row.area.name}`}
-          </button>
-        </>
+        <AreaGutter
+          {...{ area: row.area, index, row, siteId, timeZone, now, rights, open }}
+          toggle={{ open, onToggle }}
+        />
       }
       strip={
         <div className={open ? 'pt-5' : 'pt-2'}>
@@ -122,7 +120,7 @@ export function AreaRow({
             rows={rowsOf(row, open, hourNames)}
           />
           {open && row.firstPast !== null ? (
-            <LimitPanel row={row} columnWidth={columnWidth} hourNames={hourNames} timeZone={timeZone} />
+            <LimitPanel {...{ row, columnWidth, hiddenColumns, hourNames, timeZone }} />
           ) : null}
         </div>
       }

@@ -8,6 +8,8 @@ import { riskRuns } from './run-words.ts';
 export interface ChanceRow {
   kind: 'chance';
   label: string;
+  /** The same where only two narrow columns are free for it. */
+  short: string;
   chances: readonly { chance: number }[];
   /** The chance past which a cell carries the bar; null for rows without a limit. */
   limit: number | null;
@@ -20,6 +22,7 @@ export interface ChanceRow {
 export interface FigureRow {
   kind: 'figures';
   label: string;
+  short: string;
   figures: readonly { text: string; spoken: string; strong?: boolean }[];
   /** Stands in heavier type, as the answer rather than the ground. */
   strong?: boolean;
@@ -72,7 +75,7 @@ export function ChanceTable({
             <ChanceCells key={row.label} row={row} hourNames={hourNames} columnWidth={columnWidth} />
           ) : (
             <tr key={row.label}>
-              <RowName>{row.label}</RowName>
+              <RowName short={row.short}>{row.label}</RowName>
               {row.figures.map((figure, index) => (
                 <td
                   key={hourNames[index]}
@@ -93,13 +96,16 @@ export function ChanceTable({
   );
 }
 
-function RowName({ children }: { children: ReactNode }) {
+function RowName({ short, children }: { short: string; children: ReactNode }) {
   return (
     <th
       scope="row"
       className="p-0 pr-2 text-right align-middle text-small font-semibold whitespace-nowrap text-ink2 tighter"
     >
-      {children}
+      <span className="max-lg:sr-only">{children}</span>
+      <span aria-hidden="true" className="lg:hidden">
+        {short}
+      </span>
     </th>
   );
 }
@@ -119,7 +125,7 @@ function ChanceCells({
         <RunWords chances={row.chances.map((cell) => cell.chance)} columnWidth={columnWidth} />
       ) : null}
       <tr className={row.limit === null ? undefined : 'h-7.5'}>
-        <RowName>{row.label}</RowName>
+        <RowName short={row.short}>{row.label}</RowName>
         {row.chances.map(({ chance }, index) => {
           const past = row.counted && row.limit !== null && chance > row.limit;
           const step = riskStep(chance);

@@ -30,7 +30,7 @@ export function DepartmentFields({ fields }: { fields: readonly { field: Departm
             key={field}
             className="flex items-center gap-2 text-right text-small leading-tight font-semibold text-ink2 tight"
           >
-            <span className="max-w-24">{label}</span>
+            <span className="max-w-20">{label}</span>
             <span className="w-15">
               <FigureInput label={label} error={errors[field]?.message} {...form.register(field)} />
             </span>

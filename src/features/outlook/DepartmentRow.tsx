@@ -4,7 +4,6 @@ import type { Site } from '../../../shared/api/sites.ts';
 import { NeedStrip } from '../../../shared/charts/NeedStrip.tsx';
 import { bedsAt } from '../../../shared/domain/bed-schedule.ts';
 import { formatChance, riskWord } from '../../../shared/domain/risk-word.ts';
-import { Button } from '../../components/Button.tsx';
 import { formatNumber, formatSigned, formatTime } from '../../lib/format.ts';
 import { FigureCaptions, SomeTimeLine } from './AreaGutter.tsx';
 import type { Rights } from './AreaGutter.tsx';
@@ -53,9 +52,10 @@ export function DepartmentRow({
   const peak = Math.max(0, ...department.someAreaShort.map((cell) => cell.chance));
   const peakAt = department.someAreaShort.findIndex((cell) => cell.chance === peak);
   const soFar = outlook.result.arrivalsSoFar;
-  const figures = (label: string, values: readonly number[], spoken: string) => ({
+  const figures = (label: string, short: string, values: readonly number[], spoken: string) => ({
     kind: 'figures' as const,
     label,
+    short,
     figures: values.map((value, index) => ({
       text: formatNumber(value, 1),
       spoken: `${formatNumber(value, 1)} ${spoken}, the hour to ${hourNames[index]}`,
@@ -82,14 +82,19 @@ export function DepartmentRow({
             {soFar ? <p className="text-label text-ink2 tight">{arrivalsInWords(soFar)}</p> : null}
           </div>
           {rights.enterCensus ? (
-            <>
+            <div className="flex items-end justify-between gap-2">
               <DepartmentFields fields={[{ field: 'arrivalsSinceMidnight', label: 'Arrivals since midnight' }]} />
               {counts.length > 0 ? (
-                <Button look="second" className="w-full" onClick={nothingChanged} busy={saving} busyText="Saving…">
-                  Nothing changed: count again
-                </Button>
+                <button
+                  type="button"
+                  aria-disabled={saving || undefined}
+                  onClick={nothingChanged}
+                  className="hidden h-9.5 cursor-pointer rounded-button border-2 border-act px-1.5 text-small leading-none font-extrabold text-act tight hover:bg-act-soft lg:block print:hidden"
+                >
+                  {saving ? 'Saving…' : 'Nothing changed'}
+                </button>
               ) : null}
-            </>
+            </div>
           ) : null}
           <div>
             <FigureCaptions />
@@ -131,6 +136,7 @@ export function DepartmentRow({
               {
                 kind: 'chance',
                 label: 'Some area short',
+                short: 'Some short',
                 chances: department.someAreaShort,
                 limit: null,
                 counted: counts.length > 0,
@@ -139,6 +145,7 @@ export function DepartmentRow({
               {
                 kind: 'figures',
                 label: 'If beds were pooled',
+                short: 'If pooled',
                 figures: department.pooled.map(({ chance }, index) => ({
                   text: formatChance(chance).replace(' ', ''),
                   spoken: `${formatChance(chance)} if every bed could take any patient, ${hourNames[index]}`,
@@ -147,14 +154,25 @@ export function DepartmentRow({
               {
                 kind: 'figures',
                 label: 'Headroom, pooled',
+                short: 'Headroom',
                 figures: department.headroom.map((beds, index) => ({
                   text: formatSigned(beds),
                   spoken: `headroom ${formatSigned(beds)} if every bed could take any patient, ${hourNames[index]}`,
                   strong: beds < 0,
                 })),
               },
-              figures('Admitted, leaving', department.admittedLeaving, 'admitted patients expected to leave'),
-              figures('Arrivals to admit', department.arrivalsToAdmit, 'arrivals expected to need admission'),
+              figures(
+                'Admitted, leaving',
+                'Leaving',
+                department.admittedLeaving,
+                'admitted patients expected to leave',
+              ),
+              figures(
+                'Arrivals to admit',
+                'To admit',
+                department.arrivalsToAdmit,
+                'arrivals expected to need admission',
+              ),
             ]}
           />
           {tonight.outlook ? (

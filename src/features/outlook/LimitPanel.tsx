@@ -7,11 +7,14 @@ import type { BoardArea } from './tonight-board.ts';
 export function LimitPanel({
   row,
   columnWidth,
+  hiddenColumns,
   hourNames,
   timeZone,
 }: {
   row: BoardArea;
   columnWidth: number;
+  /** Columns that lie before the first view. */
+  hiddenColumns: number;
   hourNames: readonly string[];
   timeZone: string;
 }) {
@@ -25,9 +28,15 @@ export function LimitPanel({
   const { boardingOut } = row.outlook;
   const unit = area.spaceKind === 'chair' ? 'chair' : 'bed';
   return (
-    <div className="relative mt-1 print:max-w-full" style={{ marginLeft: (pastHours + firstPast) * columnWidth }}>
-      <div aria-hidden="true" className="absolute -top-2 left-0 h-2 w-[3px] bg-ink" />
-      <div className="w-[min(45rem,calc(100vw-4rem))] border-t-[3px] border-ink bg-paper px-4 py-3">
+    <div
+      className="relative pt-2"
+      style={{
+        ['--stem' as string]: `${String((pastHours + firstPast) * columnWidth)}px`,
+        ['--hidden' as string]: `${String(hiddenColumns * columnWidth)}px`,
+      }}
+    >
+      <div aria-hidden="true" className="absolute top-0 left-(--stem) h-2.5 w-[3px] bg-ink" />
+      <div className="limit-panel border-t-[3px] border-ink bg-paper px-4 py-3">
         <p className="font-extrabold">
           Past the {formatChance(area.alertLimit).replace(' ', '\u00a0')} limit{' '}
           {last > firstPast ? `from ${hourNames[firstPast]} to ${hourNames[last]}` : `at ${hourNames[firstPast]}`}.

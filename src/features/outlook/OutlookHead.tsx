@@ -8,6 +8,12 @@ import { Button } from '../../components/Button.tsx';
 import { PageHead } from '../../components/PageHead.tsx';
 import { formatAge, formatDate, formatDay, formatTime } from '../../lib/format.ts';
 
+const saidElsewhere: ReadonlySet<Tonight['cautions'][number]['kind']> = new Set([
+  'census old',
+  'model old',
+  'area not counted',
+]);
+
 /** Keeps a number and its sign on one line. */
 const bound = (text: string) => text.replace(/ %/g, '\u00a0%');
 
@@ -26,7 +32,8 @@ export function OutlookHead({
   /** Said when the page could not be refreshed: the last good outlook stays readable with its age. */
   staleNote: ReactNode;
 }) {
-  const others = tonight.cautions.filter((caution) => caution.kind !== 'census old' && caution.kind !== 'model old');
+  // What the sentence or the ages say already is not said twice.
+  const others = tonight.cautions.filter((caution) => !saidElsewhere.has(caution.kind));
   return (
     <PageHead
       tab={`Tonight, ${site.name}`}

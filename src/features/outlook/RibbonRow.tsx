@@ -35,6 +35,7 @@ export function RibbonRow({
   site,
   now,
   columnWidth,
+  hiddenColumns,
   ribbon,
 }: {
   board: Board;
@@ -42,6 +43,7 @@ export function RibbonRow({
   site: Site;
   now: number;
   columnWidth: number;
+  hiddenColumns: number;
   ribbon: Pick<ReturnType<typeof useRibbon>, 'place' | 'earlier' | 'later' | 'backToNow'>;
 }) {
   const zone = zoneOf(site.timeZone);
@@ -91,6 +93,7 @@ export function RibbonRow({
           <Ribbon
             id="ribbon"
             columnWidth={columnWidth}
+            viewStart={hiddenColumns * columnWidth}
             hours={hours.map((hour, index) => ({
               at: hour.at,
               label: formatHour(hour.at, site.timeZone),

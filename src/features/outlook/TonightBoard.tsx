@@ -12,7 +12,7 @@ import { AreaRow } from './AreaRow.tsx';
 import { DepartmentRow } from './DepartmentRow.tsx';
 import { OutlookTables } from './OutlookTables.tsx';
 import { RibbonRow } from './RibbonRow.tsx';
-import { RiskKey } from './RiskKey.tsx';
+import { RiskKey } from '../../components/RiskKey.tsx';
 import { buildBoard, pastHours } from './tonight-board.ts';
 import { UndecidedRow } from './UndecidedRow.tsx';
 import { useRibbon } from './use-ribbon.ts';
@@ -39,7 +39,8 @@ export function TonightBoard({
   const zone = zoneOf(site.timeZone);
   const board = buildBoard(tonight, outlook, site, zone);
   const firstAhead = board.hours[pastHours]?.at;
-  const ribbon = useRibbon(columnWidth, pastHours - (desktop ? 3 : 2), firstAhead);
+  const hiddenColumns = pastHours - (desktop ? 3 : 2);
+  const { ref, ...ribbon } = useRibbon(columnWidth, hiddenColumns, firstAhead);
   const [opened, setOpened] = useState<ReadonlyMap<string, boolean>>(new Map());
   const [tableOpen, setTableOpen] = useState(false);
 
@@ -49,12 +50,20 @@ export function TonightBoard({
     return localDate(zone.toLocal(hour.at)) === today ? time : `${time} ${formatWeekday(hour.at, site.timeZone)}`;
   });
   const isOpen = (areaId: string) => opened.get(areaId) ?? areaId === worstAreaId;
-  const shared = { siteId: site.id, timeZone: site.timeZone, now: tonight.now, rights, columnWidth, hourNames };
+  const shared = {
+    siteId: site.id,
+    timeZone: site.timeZone,
+    now: tonight.now,
+    rights,
+    columnWidth,
+    hiddenColumns,
+    hourNames,
+  };
 
   return (
     <>
       <div
-        ref={ribbon.ref}
+        ref={ref}
         role="region"
         aria-label="Hours, step with the arrow keys"
         tabIndex={0}
@@ -63,7 +72,7 @@ export function TonightBoard({
       >
         <div className="relative w-max pb-2">
           <i aria-hidden="true" className="now-line" style={{ ['--past' as string]: pastHours }} />
-          <RibbonRow {...{ board, outlook, site, columnWidth, ribbon }} now={tonight.now} />
+          <RibbonRow {...{ board, outlook, site, columnWidth, hiddenColumns, ribbon }} now={tonight.now} />
           <PanelBoundary>
             <DepartmentRow {...{ board, outlook, tonight, site, rights, columnWidth, hourNames }} />
           </PanelBoundary>

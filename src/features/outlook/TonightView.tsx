@@ -62,7 +62,7 @@ export function TonightView({
     () => loaded.now + Math.max(0, Math.floor((Date.now() - loadedAt) / 1000)),
     [loaded.now, loadedAt],
   );
-  const now = useEveryMinute(serverNow);
+  const now = useClock(loaded.now, loadedAt, serverNow);
   const tonight = { ...loaded, now };
   const entry = useCensusEntry(site, census, serverNow);
   const sentence = sentenceOf(tonight, site);
@@ -101,15 +101,15 @@ export function TonightView({
   );
 }
 
-/** The hour slides and ages grow without a reload. */
-function useEveryMinute(serverNow: () => number): number {
-  const [now, setNow] = useState(serverNow);
+/** The hour slides and ages grow without a reload: the server's clock as loaded, carried on every few seconds. */
+function useClock(loadedNow: number, loadedAt: number, serverNow: () => number): number {
+  const [clock, setClock] = useState({ loadedAt, now: loadedNow });
+  if (clock.loadedAt !== loadedAt) setClock({ loadedAt, now: loadedNow });
   useEffect(() => {
-    setNow(serverNow());
-    const timer = setInterval(() => setNow(serverNow()), 20_000);
+    const timer = setInterval(() => setClock({ loadedAt, now: serverNow() }), 20_000);
     return () => clearInterval(timer);
-  }, [serverNow]);
-  return now;
+  }, [loadedAt, serverNow]);
+  return clock.now;
 }
 
 /** Read aloud when a save came through: that it did, and the sentence as it now stands. */
@@ -148,7 +148,7 @@ function ActionBar({ entry }: { entry: CensusEntry }) {
         busy={entry.saving}
         busyText="Saving…"
       >
-        {edited ? 'Save census' : 'Nothing changed: count again'}
+        {edited ? 'Save census' : 'Nothing changed'}
       </Button>
       <Button look="second" onClick={() => window.print()}>
         Print

@@ -74,40 +74,46 @@ function sentence(message: string | undefined, value: string): string {
   return message ?? 'Check this figure';
 }
 
-/** Checks the fields with the server's own schema and puts each fault beside its field. */
-export function censusResolver(base: () => CensusForm, takenAt: () => number): Resolver<CensusForm> {
-  return (values) => {
-    const errors: FieldErrors<CensusForm> = {};
-    const areaErrors: Record<string, { type: string; message: string }>[] = [];
-    values.areas.forEach((area, index) => {
-      if (!isAreaEdited(values, base(), index)) return;
-      const parsed = censusArea.safeParse({
-        areaId: area.areaId,
-        present: toNumber(area.present),
-        waiting: toNumber(area.waiting),
-        boarding: toNumber(area.boarding),
-      });
-      if (parsed.success) return;
-      const found: Record<string, { type: string; message: string }> = {};
-      for (const issue of parsed.error.issues) {
-        const field = String(issue.path[0]) as CensusField;
-        found[field] ??= { type: 'fault', message: sentence(issue.message, area[field]) };
-      }
-      areaErrors[index] = found;
-    });
-    if (areaErrors.length > 0) errors.areas = areaErrors;
-    const body = censusBodyOf(values, base(), takenAt());
-    for (const field of ['undecidedWaiting', 'ambulancesHolding', 'arrivalsSinceMidnight'] as const) {
-      const parsed = censusBody.shape[field].safeParse(body[field]);
-      if (!parsed.success)
-        errors[field] = { type: 'fault', message: sentence(parsed.error.issues[0]?.message, values[field]) };
-    }
-    if (body.ambulancesHolding !== null && !errors.ambulancesHolding && !errors.undecidedWaiting) {
-      if (body.undecidedWaiting === null)
-        errors.undecidedWaiting = { type: 'fault', message: 'Count the ambulances that hold among the waiting' };
-      else if (body.ambulancesHolding > body.undecidedWaiting)
-        errors.ambulancesHolding = { type: 'fault', message: 'At most as many as are waiting' };
-    }
-    return Object.keys(errors).length > 0 ? { values: {}, errors } : { values, errors: {} };
-  };
+/** What the check needs beside the fields. */
+export interface CensusContext {
+  base: CensusForm;
+  now: () => number;
 }
+
+/** Checks the fields with the server's own schema and puts each fault beside its field. */
+export const censusResolver: Resolver<CensusForm, CensusContext> = (values, context) => {
+  if (!context) throw new Error('the census form has no context');
+  const { base, now } = context;
+  const errors: FieldErrors<CensusForm> = {};
+  const areaErrors: Record<string, { type: string; message: string }>[] = [];
+  values.areas.forEach((area, index) => {
+    if (!isAreaEdited(values, base, index)) return;
+    const parsed = censusArea.safeParse({
+      areaId: area.areaId,
+      present: toNumber(area.present),
+      waiting: toNumber(area.waiting),
+      boarding: toNumber(area.boarding),
+    });
+    if (parsed.success) return;
+    const found: Record<string, { type: string; message: string }> = {};
+    for (const issue of parsed.error.issues) {
+      const field = String(issue.path[0]) as CensusField;
+      found[field] ??= { type: 'fault', message: sentence(issue.message, area[field]) };
+    }
+    areaErrors[index] = found;
+  });
+  if (areaErrors.length > 0) errors.areas = areaErrors;
+  const body = censusBodyOf(values, base, now());
+  for (const field of ['undecidedWaiting', 'ambulancesHolding', 'arrivalsSinceMidnight'] as const) {
+    const parsed = censusBody.shape[field].safeParse(body[field]);
+    if (!parsed.success)
+      errors[field] = { type: 'fault', message: sentence(parsed.error.issues[0]?.message, values[field]) };
+  }
+  if (body.ambulancesHolding !== null && !errors.ambulancesHolding && !errors.undecidedWaiting) {
+    if (body.undecidedWaiting === null)
+      errors.undecidedWaiting = { type: 'fault', message: 'Count the ambulances that hold among the waiting' };
+    else if (body.ambulancesHolding > body.undecidedWaiting)
+      errors.ambulancesHolding = { type: 'fault', message: 'At most as many as are waiting' };
+  }
+  return Object.keys(errors).length > 0 ? { values: {}, errors } : { values, errors: {} };
+};

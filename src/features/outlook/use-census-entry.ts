@@ -5,11 +5,11 @@ import type { Census } from '../../../shared/api/censuses.ts';
 import type { Site } from '../../../shared/api/sites.ts';
 import { keepDraft, readDraft } from './census-draft.ts';
 import { censusBodyOf, censusFields, censusFormOf, censusResolver } from './census-form.ts';
-import type { CensusForm } from './census-form.ts';
+import type { CensusContext, CensusForm } from './census-form.ts';
 import { useEnterCensus } from './queries.ts';
 
 export interface CensusEntry {
-  form: UseFormReturn<CensusForm>;
+  form: UseFormReturn<CensusForm, CensusContext>;
   /** What stands in the newest census. */
   base: CensusForm;
   census: Census | undefined;
@@ -41,18 +41,15 @@ export function useCensusEntryContext(): CensusEntry {
 export function useCensusEntry(site: Site, census: Census | undefined, serverNow: () => number): CensusEntry {
   const areaIds = useMemo(() => site.areas.map((area) => area.id), [site.areas]);
   const base = useMemo(() => censusFormOf(areaIds, census), [areaIds, census]);
-  const baseRef = useRef(base);
-  useEffect(() => {
-    baseRef.current = base;
-  }, [base]);
 
   const entering = useEnterCensus(site.id);
   const [savedAt, setSavedAt] = useState<number | null>(null);
-  const form = useForm<CensusForm>({
+  const form = useForm<CensusForm, CensusContext>({
     defaultValues: base,
     values: base,
     resetOptions: { keepDirtyValues: true, keepErrors: true },
-    resolver: censusResolver(() => baseRef.current, serverNow),
+    resolver: censusResolver,
+    context: { base, now: serverNow },
     mode: 'onSubmit',
     reValidateMode: 'onChange',
   });
@@ -66,12 +63,12 @@ export function useCensusEntry(site: Site, census: Census | undefined, serverNow
     if (!draft) return;
     draft.areas.forEach((area, index) => {
       for (const field of censusFields) {
-        if (area[field] !== baseRef.current.areas[index][field]) {
+        if (area[field] !== base.areas[index][field]) {
           form.setValue(`areas.${index}.${field}`, area[field], { shouldDirty: true });
         }
       }
     });
-  }, [areaIds, census, form, site.id]);
+  }, [areaIds, base, census, form, site.id]);
 
   useEffect(
     () =>
@@ -86,7 +83,7 @@ export function useCensusEntry(site: Site, census: Census | undefined, serverNow
     if (entering.isPending) return;
     void form.handleSubmit((values) => {
       const takenAt = serverNow();
-      entering.mutate(censusBodyOf(values, baseRef.current, takenAt, countAgain), {
+      entering.mutate(censusBodyOf(values, base, takenAt, countAgain), {
         onSuccess: () => {
           const typedSince = form.getValues();
           form.reset(values, { keepDirtyValues: false });

@@ -1,11 +1,11 @@
 import type { MigrationInterface, QueryRunner } from 'typeorm';
 
-export class Initial1796102262155 implements MigrationInterface {
-  name = 'Initial1796102262155';
+export class Initial1796104800519 implements MigrationInterface {
+  name = 'Initial1796104800519';
 
   public async up(queryRunner: QueryRunner): Promise<void> {
     await queryRunner.query(
-      `CREATE TABLE "arrival_model" ("id" text PRIMARY KEY NOT NULL, "siteId" text NOT NULL, "status" text NOT NULL, "createdAt" integer NOT NULL, "fittedByPersonId" text NOT NULL, "fittedBy" text NOT NULL, "fittedAt" integer, "approvedBy" text, "approvedAt" integer, "retiredAt" integer, "reason" text, "error" text, "jobId" text, "engineVersion" text NOT NULL, "trainedFrom" integer, "trainedTo" integer, "visits" integer NOT NULL DEFAULT (0), "lineage" text NOT NULL DEFAULT ('[]'), "parameters" text, "detail" text)`,
+      `CREATE TABLE "arrival_model" ("id" text PRIMARY KEY NOT NULL, "siteId" text NOT NULL, "status" text NOT NULL, "createdAt" integer NOT NULL, "fittedByPersonId" text NOT NULL, "fittedBy" text NOT NULL, "fittedAt" integer, "approvedBy" text, "approvedAt" integer, "retiredAt" integer, "reason" text, "error" text, "jobId" text, "refreshedFromId" text, "refreshedAt" integer, "engineVersion" text NOT NULL, "trainedFrom" integer, "trainedTo" integer, "visits" integer NOT NULL DEFAULT (0), "lineage" text NOT NULL DEFAULT ('[]'), "parameters" text, "detail" text)`,
     );
     await queryRunner.query(`CREATE INDEX "IDX_807d529d04f4c5f525d0065cc8" ON "arrival_model" ("siteId", "status") `);
     await queryRunner.query(
@@ -88,10 +88,10 @@ export class Initial1796102262155 implements MigrationInterface {
     await queryRunner.query(`CREATE INDEX "IDX_1c41fd99e4a5027f71ca2c4ec6" ON "visit_log" ("siteId", "uploadedAt") `);
     await queryRunner.query(`DROP INDEX "IDX_807d529d04f4c5f525d0065cc8"`);
     await queryRunner.query(
-      `CREATE TABLE "temporary_arrival_model" ("id" text PRIMARY KEY NOT NULL, "siteId" text NOT NULL, "status" text NOT NULL, "createdAt" integer NOT NULL, "fittedByPersonId" text NOT NULL, "fittedBy" text NOT NULL, "fittedAt" integer, "approvedBy" text, "approvedAt" integer, "retiredAt" integer, "reason" text, "error" text, "jobId" text, "engineVersion" text NOT NULL, "trainedFrom" integer, "trainedTo" integer, "visits" integer NOT NULL DEFAULT (0), "lineage" text NOT NULL DEFAULT ('[]'), "parameters" text, "detail" text, CONSTRAINT "FK_e8eb9aefd485bba9fc983a8b9f9" FOREIGN KEY ("siteId") REFERENCES "site" ("id") ON DELETE NO ACTION ON UPDATE NO ACTION)`,
+      `CREATE TABLE "temporary_arrival_model" ("id" text PRIMARY KEY NOT NULL, "siteId" text NOT NULL, "status" text NOT NULL, "createdAt" integer NOT NULL, "fittedByPersonId" text NOT NULL, "fittedBy" text NOT NULL, "fittedAt" integer, "approvedBy" text, "approvedAt" integer, "retiredAt" integer, "reason" text, "error" text, "jobId" text, "refreshedFromId" text, "refreshedAt" integer, "engineVersion" text NOT NULL, "trainedFrom" integer, "trainedTo" integer, "visits" integer NOT NULL DEFAULT (0), "lineage" text NOT NULL DEFAULT ('[]'), "parameters" text, "detail" text, CONSTRAINT "FK_e8eb9aefd485bba9fc983a8b9f9" FOREIGN KEY ("siteId") REFERENCES "site" ("id") ON DELETE NO ACTION ON UPDATE NO ACTION)`,
     );
     await queryRunner.query(
-      `INSERT INTO "temporary_arrival_model"("id", "siteId", "status", "createdAt", "fittedByPersonId", "fittedBy", "fittedAt", "approvedBy", "approvedAt", "retiredAt", "reason", "error", "jobId", "engineVersion", "trainedFrom", "trainedTo", "visits", "lineage", "parameters", "detail") SELECT "id", "siteId", "status", "createdAt", "fittedByPersonId", "fittedBy", "fittedAt", "approvedBy", "approvedAt", "retiredAt", "reason", "error", "jobId", "engineVersion", "trainedFrom", "trainedTo", "visits", "lineage", "parameters", "detail" FROM "arrival_model"`,
+      `INSERT INTO "temporary_arrival_model"("id", "siteId", "status", "createdAt", "fittedByPersonId", "fittedBy", "fittedAt", "approvedBy", "approvedAt", "retiredAt", "reason", "error", "jobId", "refreshedFromId", "refreshedAt", "engineVersion", "trainedFrom", "trainedTo", "visits", "lineage", "parameters", "detail") SELECT "id", "siteId", "status", "createdAt", "fittedByPersonId", "fittedBy", "fittedAt", "approvedBy", "approvedAt", "retiredAt", "reason", "error", "jobId", "refreshedFromId", "refreshedAt", "engineVersion", "trainedFrom", "trainedTo", "visits", "lineage", "parameters", "detail" FROM "arrival_model"`,
     );
     await queryRunner.query(`DROP TABLE "arrival_model"`);
     await queryRunner.query(`ALTER TABLE "temporary_arrival_model" RENAME TO "arrival_model"`);
@@ -410,10 +410,10 @@ export class Initial1796102262155 implements MigrationInterface {
     await queryRunner.query(`DROP INDEX "IDX_807d529d04f4c5f525d0065cc8"`);
     await queryRunner.query(`ALTER TABLE "arrival_model" RENAME TO "temporary_arrival_model"`);
     await queryRunner.query(
-      `CREATE TABLE "arrival_model" ("id" text PRIMARY KEY NOT NULL, "siteId" text NOT NULL, "status" text NOT NULL, "createdAt" integer NOT NULL, "fittedByPersonId" text NOT NULL, "fittedBy" text NOT NULL, "fittedAt" integer, "approvedBy" text, "approvedAt" integer, "retiredAt" integer, "reason" text, "error" text, "jobId" text, "engineVersion" text NOT NULL, "trainedFrom" integer, "trainedTo" integer, "visits" integer NOT NULL DEFAULT (0), "lineage" text NOT NULL DEFAULT ('[]'), "parameters" text, "detail" text)`,
+      `CREATE TABLE "arrival_model" ("id" text PRIMARY KEY NOT NULL, "siteId" text NOT NULL, "status" text NOT NULL, "createdAt" integer NOT NULL, "fittedByPersonId" text NOT NULL, "fittedBy" text NOT NULL, "fittedAt" integer, "approvedBy" text, "approvedAt" integer, "retiredAt" integer, "reason" text, "error" text, "jobId" text, "refreshedFromId" text, "refreshedAt" integer, "engineVersion" text NOT NULL, "trainedFrom" integer, "trainedTo" integer, "visits" integer NOT NULL DEFAULT (0), "lineage" text NOT NULL DEFAULT ('[]'), "parameters" text, "detail" text)`,
     );
     await queryRunner.query(
-      `INSERT INTO "arrival_model"("id", "siteId", "status", "createdAt", "fittedByPersonId", "fittedBy", "fittedAt", "approvedBy", "approvedAt", "retiredAt", "reason", "error", "jobId", "engineVersion", "trainedFrom", "trainedTo", "visits", "lineage", "parameters", "detail") SELECT "id", "siteId", "status", "createdAt", "fittedByPersonId", "fittedBy", "fittedAt", "approvedBy", "approvedAt", "retiredAt", "reason", "error", "jobId", "engineVersion", "trainedFrom", "trainedTo", "visits", "lineage", "parameters", "detail" FROM "temporary_arrival_model"`,
+      `INSERT INTO "arrival_model"("id", "siteId", "status", "createdAt", "fittedByPersonId", "fittedBy", "fittedAt", "approvedBy", "approvedAt", "retiredAt", "reason", "error", "jobId", "refreshedFromId", "refreshedAt", "engineVersion", "trainedFrom", "trainedTo", "visits", "lineage", "parameters", "detail") SELECT "id", "siteId", "status", "createdAt", "fittedByPersonId", "fittedBy", "fittedAt", "approvedBy", "approvedAt", "retiredAt", "reason", "error", "jobId", "refreshedFromId", "refreshedAt", "engineVersion", "trainedFrom", "trainedTo", "visits", "lineage", "parameters", "detail" FROM "temporary_arrival_model"`,
     );
     await queryRunner.query(`DROP TABLE "temporary_arrival_model"`);
     await queryRunner.query(`CREATE INDEX "IDX_807d529d04f4c5f525d0065cc8" ON "arrival_model" ("siteId", "status") `);

@@ -1,6 +1,6 @@
-import { RiskMark } from '../../../shared/charts/RiskMark.tsx';
-import { riskWords } from '../../../shared/domain/risk-word.ts';
-import type { RiskStep } from '../../../shared/domain/risk-word.ts';
+import { RiskMark } from '../../shared/charts/RiskMark.tsx';
+import { riskWords } from '../../shared/domain/risk-word.ts';
+import type { RiskStep } from '../../shared/domain/risk-word.ts';
 
 const bounds = ['0–4', '5–24', '25–49', '50–79', '80+'];
 const looks = ['bg-r1 text-r1i', 'bg-r2 text-r2i', 'bg-r3 text-r3i', 'bg-r4 text-r4i', 'bg-r5 text-r5i'];

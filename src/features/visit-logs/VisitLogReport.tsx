@@ -1,0 +1,88 @@
+import type { ReactNode } from 'react';
+import type { VisitLogDetail } from '../../../shared/api/visit-logs.ts';
+import { DataTable } from '../../components/DataTable.tsx';
+import { Notice } from '../../components/Notice.tsx';
+import { formatCount, formatDateTime, formatList, formatNumber } from '../../lib/format.ts';
+import { periodInWords, problemInWords, stateWord } from './log-words.ts';
+
+/** Everything that is kept of a log besides its visits, which are never shown. */
+export function VisitLogReport({ log, timeZone }: { log: VisitLogDetail; timeZone: string }) {
+  const facts: { name: string; value: ReactNode }[] = [
+    { name: 'Period', value: periodInWords(log.period, timeZone) },
+    ...(log.status === 'ready' && stateWord(log) === 'Counts in part'
+      ? [
+          {
+            name: 'Counts',
+            value: `${formatList(log.counts.map((span) => periodInWords(span, timeZone)))}; newer logs cover the rest`,
+          },
+        ]
+      : []),
+    {
+      name: 'Holds visits that',
+      value: log.facts.selectedBy === 'arrived' ? 'arrived in the period' : 'departed in the period',
+    },
+    { name: 'Extract taken', value: formatDateTime(log.facts.takenAt, timeZone) },
+    {
+      name: 'A missing departure means',
+      value: log.facts.missingDeparture === 'still present' ? 'still present when the extract was taken' : 'unknown',
+    },
+    { name: 'File', value: <span className="break-all">{log.fileName}</span> },
+    { name: 'SHA-256 of what was received', value: <span className="tighter break-all">{log.sha256}</span> },
+  ];
+  return (
+    <div className="grid gap-8">
+      {log.status === 'failed' ? (
+        <Notice kind="caution" title={log.reason ?? 'The log was not loaded.'}>
+          <p>Nothing of it was kept; everything loaded before is unchanged.</p>
+        </Notice>
+      ) : null}
+      {log.status === 'withdrawn' && log.withdrawnAt !== null ? (
+        <Notice title={`Withdrawn ${formatDateTime(log.withdrawnAt, timeZone)} by ${log.withdrawnBy ?? ''}.`}>
+          <p>“{log.reason}” Its visits no longer count and are deleted.</p>
+        </Notice>
+      ) : null}
+      <div className="grid gap-8 lg:grid-cols-2">
+        <DataTable
+          caption="About this log"
+          rows={facts}
+          rowKey={({ name }) => name}
+          columns={[
+            { key: 'name', header: 'What', rowHeader: true, cell: ({ name }) => name },
+            { key: 'value', header: 'Is', cell: ({ value }) => value },
+          ]}
+        />
+        <div className="grid content-start gap-8">
+          <DataTable
+            caption="Visits by care area"
+            rows={log.visitsByArea}
+            rowKey={({ areaId }) => areaId}
+            empty="No visit."
+            columns={[
+              { key: 'area', header: 'Care area', rowHeader: true, cell: ({ name }) => name },
+              { key: 'visits', header: 'Visits', figure: true, cell: ({ visits }) => formatNumber(visits) },
+            ]}
+          />
+          <DataTable
+            caption={
+              log.leftOutRows === 0
+                ? 'Rows left out'
+                : `${formatCount(log.leftOutRows, 'row')} left out; a row may have several problems`
+            }
+            rows={log.leftOut}
+            rowKey={({ problem }) => problem}
+            empty="None: every row of the file was loaded."
+            columns={[
+              {
+                key: 'problem',
+                header: 'What was wrong',
+                rowHeader: true,
+                cell: ({ problem }) => problemInWords(problem),
+              },
+              { key: 'rows', header: 'Rows', figure: true, cell: ({ rows }) => formatNumber(rows) },
+            ]}
+          />
+        </div>
+      </div>
+    </div>
+  );
+}

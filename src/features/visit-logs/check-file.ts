@@ -1,0 +1,125 @@
+import { canonicalHeader, canonicalLine } from '../../../shared/domain/canonical-visit.ts';
+import { parseInstant } from '../../../shared/domain/instant.ts';
+import { readLocalTime, type DateOrder } from '../../../shared/domain/local-time.ts';
+import { VisitFileReader, type FileOutcome } from '../../../shared/domain/visit-file.ts';
+import { visitColumns, type VisitColumn, type VisitReading } from '../../../shared/domain/visit-row.ts';
+import { makeZone } from '../../../shared/domain/zoned-time.ts';
+import { decodeFile } from './decode-file.ts';
+import { makeRecordParser } from './parse-records.ts';
+import type { FileSurvey } from './survey-file.ts';
+
+/** How a local time that came twice in an autumn night is read. */
+export type RepeatedHour = 'refuse' | 'earlier' | 'later';
+
+/** Everything the person decided about how the file is read. */
+export interface FileMapping {
+  /** Index of the file's column; null where there is none. */
+  columns: Record<VisitColumn, number | null>;
+  dateOrders: Record<VisitColumn, DateOrder>;
+  /** The answer to the question about dates that no column tells; null while not answered. */
+  statedOrder: DateOrder | null;
+  repeatedHour: RepeatedHour;
+  /** Each value of the care area column to the id of an area; null leaves its rows out. */
+  areas: Record<string, string | null>;
+  /** Each value to its code, 255 for not recorded; null leaves its rows out. */
+  dispositions: Record<string, number | null>;
+  ambulances: Record<string, number | null>;
+}
+
+export interface CheckSettings {
+  survey: FileSurvey;
+  mapping: FileMapping;
+  areaIds: readonly string[];
+  timeZone: string;
+  /** UTC seconds. */
+  now: number;
+}
+
+/** Area codes of the outcome's report index `areaIds`. The payload is the good rows as gzipped CSV, all that will be sent. */
+export interface FileCheck {
+  outcome: FileOutcome;
+  payload: Blob | null;
+}
+
+/**
+ * Reads the file as it was mapped, screens and checks every row, and makes what will be sent: the
+ * mapped columns of good rows in the product's own form, and nothing else.
+ */
+export async function checkFile(
+  file: Blob,
+  settings: CheckSettings,
+  onBytes: (bytes: number) => void,
+): Promise<FileCheck> {
+  const { survey, mapping, areaIds, now } = settings;
+  const packer = new CompressionStream('gzip');
+  const payload = new Response(packer.readable).blob();
+  const writer = packer.writable.getWriter();
+  const encoder = new TextEncoder();
+  let lines = [canonicalHeader];
+  const flush = async () => {
+    if (lines.length === 0) return;
+    const text = `${lines.join('\n')}\n`;
+    lines = [];
+    await writer.write(encoder.encode(text));
+  };
+  const places = Object.fromEntries(visitColumns.map((column) => [column, mapping.columns[column] ?? -1])) as Record<
+    VisitColumn,
+    number
+  >;
+  const reader = new VisitFileReader({
+    parse: makeRecordParser(survey.form),
+    places: () => ({ places }),
+    reading: makeReading(settings),
+    now,
+    onVisit: (visit) => {
+      lines.push(canonicalLine(visit, areaIds[visit.area]));
+    },
+  });
+  try {
+    await decodeFile(
+      file,
+      survey.encoding,
+      async (text) => {
+        const goOn = reader.push(text);
+        await flush();
+        return goOn;
+      },
+      onBytes,
+    );
+  } catch (error) {
+    await writer.abort(error);
+    await payload.catch(() => undefined);
+    throw error;
+  }
+  const outcome = reader.end();
+  await flush();
+  await writer.close();
+  const packed = await payload;
+  // What a refused file would have sent is dropped here.
+  return { outcome, payload: outcome.refused === null && outcome.report.goodRows > 0 ? packed : null };
+}
+
+function makeReading({ mapping, areaIds, timeZone }: CheckSettings): VisitReading {
+  const zone = makeZone(timeZone);
+  const areas = new Map(
+    Object.entries(mapping.areas).map(([value, id]) => [value, id === null ? -1 : areaIds.indexOf(id)] as const),
+  );
+  const dispositions = new Map(Object.entries(mapping.dispositions));
+  const ambulances = new Map(Object.entries(mapping.ambulances));
+  return {
+    time(text, column) {
+      const instant = parseInstant(text);
+      if (!Number.isNaN(instant)) return instant;
+      const local = readLocalTime(text, mapping.dateOrders[column]);
+      if (Number.isNaN(local)) return NaN;
+      const found = zone.fromLocal(local);
+      if (found.length === 1) return found[0];
+      if (found.length === 0) return 'skipped';
+      if (mapping.repeatedHour === 'refuse') return 'repeated';
+      return mapping.repeatedHour === 'earlier' ? found[0] : found[found.length - 1];
+    },
+    area: (text) => areas.get(text) ?? -1,
+    disposition: (text) => dispositions.get(text) ?? -1,
+    ambulance: (text) => ambulances.get(text) ?? -1,
+  };
+}

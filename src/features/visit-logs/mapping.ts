@@ -1,0 +1,128 @@
+import { guessColumns } from '../../../shared/domain/guess-columns.ts';
+import { guessAmbulance, guessArea, guessDisposition } from '../../../shared/domain/guess-value.ts';
+import type { DateOrder } from '../../../shared/domain/local-time.ts';
+import {
+  requiredVisitColumns,
+  visitColumnNames,
+  visitColumns,
+  type VisitColumn,
+} from '../../../shared/domain/visit-row.ts';
+import type { FileMapping } from './check-file.ts';
+import type { ColumnSurvey, FileSurvey } from './survey-file.ts';
+
+export const timeColumns = ['arrival_at', 'bed_space_at', 'admission_decision_at', 'departure_at'] as const;
+export const choiceColumns = ['care_area', 'disposition', 'arrived_by_ambulance'] as const;
+type ChoiceColumn = (typeof choiceColumns)[number];
+
+export interface AreaName {
+  id: string;
+  name: string;
+}
+
+/** Whether a column of the file can stand for one of ours. */
+export function fits(column: ColumnSurvey, ours: VisitColumn): boolean {
+  const wantsTime = (timeColumns as readonly VisitColumn[]).includes(ours);
+  return !column.isBarred && (wantsTime ? column.isTime : column.isChoice);
+}
+
+/** The column of the file that one of ours is mapped to. */
+export function columnOf(survey: FileSurvey, mapping: FileMapping, ours: VisitColumn): ColumnSurvey | null {
+  const index = mapping.columns[ours];
+  return index === null ? null : survey.columns[index];
+}
+
+/** The mapping that is offered first: columns by header and values, values by their words. */
+export function offerMapping(survey: FileSurvey, areas: readonly AreaName[]): FileMapping {
+  const columns = guessColumns(survey.columns);
+  const empty: FileMapping = {
+    columns,
+    dateOrders: ordersOf(survey, columns, null),
+    statedOrder: null,
+    repeatedHour: 'refuse',
+    areas: {},
+    dispositions: {},
+    ambulances: {},
+  };
+  return choiceColumns.reduce((mapping, column) => offerValues(survey, mapping, column, areas), empty);
+}
+
+/** Maps one of our columns to another column of the file, and offers its values anew. */
+export function remap(
+  survey: FileSurvey,
+  mapping: FileMapping,
+  ours: VisitColumn,
+  index: number | null,
+  areas: readonly AreaName[],
+): FileMapping {
+  const columns = { ...mapping.columns };
+  // A column of the file stands for one of ours at most.
+  for (const column of visitColumns) if (index !== null && columns[column] === index) columns[column] = null;
+  columns[ours] = index;
+  const changed = { ...mapping, columns, dateOrders: ordersOf(survey, columns, mapping.statedOrder) };
+  return choiceColumns.reduce(
+    (next, column) => (columns[column] === mapping.columns[column] ? next : offerValues(survey, next, column, areas)),
+    changed,
+  );
+}
+
+function offerValues(
+  survey: FileSurvey,
+  mapping: FileMapping,
+  ours: ChoiceColumn,
+  areas: readonly AreaName[],
+): FileMapping {
+  const values = (columnOf(survey, mapping, ours)?.values ?? []).map(({ value }) => value);
+  const each = <T>(guess: (value: string) => T) => Object.fromEntries(values.map((value) => [value, guess(value)]));
+  if (ours === 'care_area') return { ...mapping, areas: each((value) => guessArea(value, areas)) };
+  if (ours === 'disposition') return { ...mapping, dispositions: each(guessDisposition) };
+  return { ...mapping, ambulances: each(guessAmbulance) };
+}
+
+/** Time columns whose dates could be read in either order, and no other column of the file tells. */
+export function ambiguousColumns(survey: FileSurvey, mapping: FileMapping): VisitColumn[] {
+  const verdicts = timeColumns.map((column) => columnOf(survey, mapping, column)?.dateOrder);
+  if (verdicts.some((verdict) => verdict === 'day first' || verdict === 'month first')) return [];
+  return timeColumns.filter((_, index) => verdicts[index] === 'ambiguous');
+}
+
+/** Answers the question about ambiguous dates. */
+export function stateOrder(survey: FileSurvey, mapping: FileMapping, order: DateOrder): FileMapping {
+  return { ...mapping, statedOrder: order, dateOrders: ordersOf(survey, mapping.columns, order) };
+}
+
+function ordersOf(
+  survey: FileSurvey,
+  columns: FileMapping['columns'],
+  stated: DateOrder | null,
+): FileMapping['dateOrders'] {
+  const verdictOf = (column: VisitColumn) => {
+    const index = columns[column];
+    const verdict = index === null ? null : survey.columns[index].dateOrder;
+    return verdict === 'day first' || verdict === 'month first' ? verdict : null;
+  };
+  // A column that does not tell follows those of the same file that do.
+  const told = timeColumns.map(verdictOf).find((verdict) => verdict !== null);
+  const orders = visitColumns.map((column) => [column, verdictOf(column) ?? told ?? stated ?? 'day first']);
+  return Object.fromEntries(orders) as FileMapping['dateOrders'];
+}
+
+/** What stands in the way of checking the file, as sentences; none when it can be checked. */
+export function mappingFaults(survey: FileSurvey, mapping: FileMapping): string[] {
+  const faults: string[] = [];
+  for (const column of requiredVisitColumns) {
+    if (mapping.columns[column] === null)
+      faults.push(`${visitColumnNames[column]} is needed: choose the column that holds it.`);
+  }
+  for (const column of timeColumns) {
+    const mapped = columnOf(survey, mapping, column);
+    if (mapped?.dateOrder === 'mixed') {
+      faults.push(
+        `“${mapped.header}” holds dates of both orders: some can only be day first, others only month first. Export it again with one order.`,
+      );
+    }
+  }
+  if (mapping.columns.care_area !== null && !Object.values(mapping.areas).some((area) => area !== null)) {
+    faults.push('No value of the care area column is mapped to an area of this site.');
+  }
+  return faults;
+}

@@ -1,0 +1,72 @@
+import { useParams } from 'react-router-dom';
+import { paths } from '../app/paths.ts';
+import { ButtonLink } from '../components/Button.tsx';
+import { ProblemNotice } from '../components/Notice.tsx';
+import { PageHead } from '../components/PageHead.tsx';
+import { SkeletonLines } from '../components/Skeleton.tsx';
+import { FitModel } from '../features/arrival-models/FitModel.tsx';
+import { ModelList } from '../features/arrival-models/ModelList.tsx';
+import { useModels } from '../features/arrival-models/queries.ts';
+import { JobProgress } from '../features/jobs/JobProgress.tsx';
+import { useSession } from '../features/sign-in/session.ts';
+import { formatAge } from '../lib/format.ts';
+import { useServerNow } from '../features/sign-in/use-server-now.ts';
+
+/** /sites/:siteId/models */
+export function ArrivalModelsPage() {
+  const { siteId = '' } = useParams();
+  const site = useSession().sites.find((candidate) => candidate.id === siteId);
+  const now = useServerNow();
+  const models = useModels(siteId);
+  const mayFit = site?.permissions.includes('arrival-model:fit') ?? false;
+  const list = models.data?.models ?? [];
+  const inUse = list.find((model) => model.status === 'in use');
+  const candidate = list.find((model) => model.status === 'candidate');
+  const title = !models.data
+    ? 'Arrival model'
+    : inUse?.fittedAt
+      ? `The model in use was fitted ${formatAge(now - inUse.fittedAt)} ago.`
+      : 'No arrival model is in use.';
+  const lede = inUse
+    ? candidate
+      ? 'A candidate waits for approval by an operations manager who did not fit it.'
+      : 'Its level refreshes itself when a log lands; a change of structure needs a new candidate and its approval.'
+    : candidate
+      ? 'Tonight has no outlook until an operations manager who did not fit the candidate approves it.'
+      : 'Tonight has no outlook until a model is fitted on accepted visit logs and approved.';
+
+  return (
+    <>
+      <PageHead tab="Arrival model" title={title} lede={models.data ? <p className="max-w-[58rem]">{lede}</p> : null} />
+      <div className="page-pad grid gap-6 pt-2">
+        {models.error && !models.data ? (
+          <ProblemNotice error={models.error} onRetry={() => void models.refetch()} retrying={models.isFetching} />
+        ) : null}
+        {models.isPending ? <SkeletonLines lines={4} label="Loading the models" /> : null}
+        {models.data && site ? (
+          <>
+            {mayFit ? (
+              <FitModel
+                siteId={siteId}
+                readyLogs={models.data.readyLogs}
+                fitting={list.some((model) => model.status === 'fitting')}
+                loadLog={
+                  site.permissions.includes('visit-log:upload') ? (
+                    <ButtonLink to={paths.newVisitLog(siteId)}>Load a visit log</ButtonLink>
+                  ) : null
+                }
+              />
+            ) : null}
+            <ModelList
+              models={list}
+              timeZone={site.timeZone}
+              hrefOf={(modelId) => paths.arrivalModel(siteId, modelId)}
+              progressOf={(jobId) => <JobProgress siteId={siteId} jobId={jobId} mayCancel={mayFit} />}
+              empty="No model was ever fitted here."
+            />
+          </>
+        ) : null}
+      </div>
+    </>
+  );
+}

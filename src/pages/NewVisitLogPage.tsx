@@ -1,0 +1,51 @@
+import { Link, useNavigate, useParams } from 'react-router-dom';
+import { paths } from '../app/paths.ts';
+import { Notice, ProblemNotice } from '../components/Notice.tsx';
+import { PageHead } from '../components/PageHead.tsx';
+import { SkeletonLines } from '../components/Skeleton.tsx';
+import { useSession } from '../features/sign-in/session.ts';
+import { useServerNow } from '../features/sign-in/use-server-now.ts';
+import { useSite } from '../features/visit-logs/queries.ts';
+import { UploadWalk } from '../features/visit-logs/UploadWalk.tsx';
+
+/** /sites/:siteId/logs/new */
+export function NewVisitLogPage() {
+  const { siteId = '' } = useParams();
+  const navigate = useNavigate();
+  const now = useServerNow();
+  const held = useSession().sites.find((candidate) => candidate.id === siteId)?.permissions ?? [];
+  const site = useSite(siteId);
+  const allLogs = (
+    <Link to={paths.visitLogs(siteId)} className="link inline-block min-h-6">
+      All logs
+    </Link>
+  );
+  if (site.data && held.includes('visit-log:upload')) {
+    return (
+      <UploadWalk
+        siteId={siteId}
+        areas={site.data.areas}
+        timeZone={site.data.timeZone}
+        now={now}
+        aside={allLogs}
+        onAccepted={(logId) => void navigate(paths.visitLog(siteId, logId))}
+      />
+    );
+  }
+  return (
+    <>
+      <PageHead tab="Load a visit log" title="Load a visit log." aside={allLogs} />
+      <div className="page-pad grid max-w-3xl gap-6">
+        {held.includes('visit-log:upload') ? null : (
+          <Notice kind="caution" title="Loading logs is the data steward’s work.">
+            <p>Your roles at this site do not include it. Ask your administrator if they should.</p>
+          </Notice>
+        )}
+        {site.error ? (
+          <ProblemNotice error={site.error} onRetry={() => void site.refetch()} retrying={site.isFetching} />
+        ) : null}
+        {site.isPending ? <SkeletonLines lines={4} label="Loading the site’s care areas" /> : null}
+      </div>
+    </>
+  );
+}
