@@ -179,12 +179,11 @@ export default {
     plugin((api) => {
       api.addBase({
         ':root': { ...variables(light), colorScheme: 'light' },
-        '@media (prefers-color-scheme: dark)': {
+        // On screens only: paper is white, so the day theme prints whatever the screen shows.
+        '@media screen and (prefers-color-scheme: dark)': {
           ':root:not([data-theme="light"])': { ...variables(dark), colorScheme: 'dark' },
         },
-        ':root[data-theme="dark"]': { ...variables(dark), colorScheme: 'dark' },
-        // Paper is white: the day theme prints, whatever the screen shows.
-        '@media print': { ':root, :root[data-theme="dark"]': { ...variables(light), colorScheme: 'light' } },
+        '@media screen': { ':root[data-theme="dark"]': { ...variables(dark), colorScheme: 'dark' } },
       });
     }),
   ],

@@ -115,10 +115,10 @@ export function createApp(
     app,
     routes,
     deps,
-    async (siteId) => (await issuer.issueAfterSaving(siteId, 'staffed beds changed')).outlookId,
+    async (siteId) => (await issuer.issueOrReport(siteId, 'staffed beds changed')).outlookId,
   );
   addArrivalModelRoutes(app, routes, deps, async (siteId) => {
-    await issuer.issueAfterSaving(siteId, 'model approved');
+    await issuer.issueOrReport(siteId, 'model approved');
   });
   addVisitLogRoutes(app, routes, deps);
   addJobRoutes(app, routes, deps);

@@ -43,7 +43,10 @@ export async function openServer(
   }
   const logger = makeLogger(config.logLevel);
   const clock = systemClock(config.clockOffset);
-  const database = await openDatabase(config.dataDir);
+  const database = await openDatabase(config.dataDir).catch((error: unknown) => {
+    const fault = sqliteFault(error);
+    throw fault === null ? error : new ConfigError(`Cannot start: the database in DATA_DIR cannot be used (${fault}).`);
+  });
   const pool = makeSimulationPool(config.threads);
   const simulation = makeSimulationPool(config.threads);
   const jobs = new JobQueue(database, clock, logger);
@@ -60,6 +63,14 @@ export async function openServer(
       await database.close();
     },
   };
+}
+
+/** What SQLite says of a file that is no database, damaged, locked, read-only or without room; null for any other error. */
+function sqliteFault(error: unknown): string | null {
+  if (!(error instanceof Error)) return null;
+  const cause: unknown = 'driverError' in error ? error.driverError : error;
+  if (!(cause instanceof Error) || !('code' in cause) || typeof cause.code !== 'string') return null;
+  return /^SQLITE_(NOTADB|CORRUPT|CANTOPEN|BUSY|READONLY|FULL|IOERR|PERM|AUTH)/.test(cause.code) ? cause.message : null;
 }
 
 /** Starts the server: migrates, sweeps what a crash left, listens, works jobs and the timetable. */

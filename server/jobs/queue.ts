@@ -189,7 +189,7 @@ export class JobQueue {
       );
       if (claimed.affected !== 1) continue;
       const abort = new AbortController();
-      const job = { ...next, attempts: next.attempts + 1 };
+      const job: Job = Object.assign(next, { attempts: next.attempts + 1 });
       const ended = this.work(job, abort)
         .catch((error: unknown) => {
           // The database took no end of the job (full, say): it stays marked as running until the next start.

@@ -29,7 +29,7 @@ export function startTimetable(
         order: { issuedAt: 'DESC' },
         select: { id: true, issuedAt: true },
       });
-      if (!newest || newest.issuedAt < hourStart) await issuer.issue(site.id, 'timetable');
+      if (!newest || newest.issuedAt < hourStart) await issuer.issueOrReport(site.id, 'timetable');
     }
     if (now - sweptAt > 3600) {
       sweptAt = now;

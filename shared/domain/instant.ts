@@ -70,7 +70,18 @@ export function parseInstant(text: string): number {
   return local - (sign === '+' ? 1 : -1) * (offsetHours * 3600 + offsetMinutes * 60);
 }
 
+const twoDigits = Array.from({ length: 60 }, (_, value) => String(value).padStart(2, '0'));
+let lastDay = NaN;
+let lastDate = '';
+
 /** Writes an instant as this product's files have it, for instance 2031-04-05T06:07:00Z. */
 export function formatInstant(utcSeconds: number): string {
-  return new Date(utcSeconds * 1000).toISOString().replace('.000Z', 'Z');
+  const day = Math.floor(utcSeconds / 86_400);
+  if (day !== lastDay) {
+    lastDate = new Date(day * 86_400_000).toISOString().slice(0, 10);
+    lastDay = day;
+  }
+  const second = utcSeconds - day * 86_400;
+  const minute = Math.floor(second / 60);
+  return `${lastDate}T${twoDigits[Math.floor(minute / 60)]}:${twoDigits[minute % 60]}:${twoDigits[Math.floor(second % 60)]}Z`;
 }

@@ -63,15 +63,15 @@ export function fitAreaOwn(
 }
 
 /** The area's days, expected given the site's count, and the share of a count's information that is left (1 − share). */
-export function shareSeries(
-  hourly: HourlyExpectation,
-  counts: Float64Array,
-  area: number,
-  index: CalendarIndex,
-) {
+export function shareSeries(hourly: HourlyExpectation, counts: Float64Array, area: number, index: CalendarIndex) {
   const keys = ownEffectPriors.map(({ key }) => key);
   const { firstLocalHour } = hourly;
-  const series = gatherBlocks({ firstLocalHour, observed: counts, expected: hourly.areaExpected[area] }, day, index, keys);
+  const series = gatherBlocks(
+    { firstLocalHour, observed: counts, expected: hourly.areaExpected[area] },
+    day,
+    index,
+    keys,
+  );
   const site = gatherBlocks(hourly, day, index, []);
   const informationScale = new Float64Array(series.expected.length);
   const expected = series.expected.map((own, k) => {

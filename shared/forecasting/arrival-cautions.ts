@@ -8,7 +8,8 @@ export function arrivalCautions(counts: HourlyCounts, weeks: number): string[] {
   else if (weeks < 104) cautions.push('Under two years of history: the season is held nearly flat.');
   counts.counts.forEach((arrivals, area) => {
     const total = arrivals.reduce((sum, n) => sum + n, 0);
-    if (total === 0) cautions.push(`Area ${area + 1} has no arrivals: its rate is next to nothing, not known to be nothing.`);
+    if (total === 0)
+      cautions.push(`Area ${area + 1} has no arrivals: its rate is next to nothing, not known to be nothing.`);
     else if (total < 50) cautions.push(`Area ${area + 1} has only ${total} arrivals: its rates are mostly assumption.`);
     const busiest = arrivals.reduce((most, n) => Math.max(most, n), 0);
     if (total >= 50 && busiest > total / 2) {

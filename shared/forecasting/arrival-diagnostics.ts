@@ -69,7 +69,8 @@ export function arrivalDiagnostics(
     dayObserved[Math.floor(i / 24)] += hourly.observed[i];
     dayExpected[Math.floor(i / 24)] += mean;
     gap[i] = mean > 0 ? (hourly.observed[i] - mean) / Math.sqrt(mean) : NaN;
-    if (counts.exposureHours[i] === 1 && mean > 0) groups[hourOfWeek(counts.firstLocalHour + i)].push(hourly.observed[i]);
+    if (counts.exposureHours[i] === 1 && mean > 0)
+      groups[hourOfWeek(counts.firstLocalHour + i)].push(hourly.observed[i]);
   }
   const usable = groups.filter((group) => group.length >= 2 && group.some((n) => n > 0));
   const hourDispersion = usable.length > 0 ? pooledDispersionTest(usable).index : 1;

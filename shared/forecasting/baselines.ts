@@ -62,7 +62,10 @@ export function makeBaselines(
         const width = hoursPerLevel[level];
         const past = sumRuns(means, start, origin, width);
         const phi = fitDispersion(past, sumRuns(counts.counts[0], start, origin, width));
-        return [level, Array.from(sumRuns(means, origin, end, width), (mean) => gammaPoissonForecast(mean, phi))] as const;
+        return [
+          level,
+          Array.from(sumRuns(means, origin, end, width), (mean) => gammaPoissonForecast(mean, phi)),
+        ] as const;
       });
       return Object.fromEntries(byLevel) as Record<CountLevel, CountForecast[]>;
     };

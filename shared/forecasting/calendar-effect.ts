@@ -26,7 +26,9 @@ export function indexCalendar(calendar: readonly CalendarDay[], holidayWeekday: 
   for (const entry of calendar) {
     const range = entry.statedEffect;
     if (range && !(range[0] > 0 && range[1] >= range[0] && range[1] < 100)) {
-      throw new RangeError(`stated effect of ${entry.name} must be a range of positive factors, got ${range.join(' to ')}`);
+      throw new RangeError(
+        `stated effect of ${entry.name} must be a range of positive factors, got ${range.join(' to ')}`,
+      );
     }
     const day = localSecondsOf(entry.date) / 86_400;
     const entries = byDay.get(day) ?? [];

@@ -19,9 +19,9 @@ const memoryDays = 364;
 /** Mild priors, on log, log and logit scales: they decide where little history cannot, and fade with it. */
 const priors = {
   levelVariance: { centre: Math.log(3e-5), sd: 1.5 },
-  factorVariance: { centre: Math.log(2.5e-3), sd: 1.5 },
+  factorVariance: { centre: Math.log(2.5e-3), sd: 2 },
   correlation: { centre: 0, sd: 1 },
-  spellVariance: { centre: Math.log(4e-4), sd: 1.5 },
+  spellVariance: { centre: Math.log(1e-4), sd: 2 },
 };
 
 /**
@@ -40,7 +40,8 @@ export function chooseDynamics(
   given: Partial<ArrivalSettings>,
 ): ChosenDynamics {
   const candidates = given.structure === undefined ? factorStructures : [given.structure];
-  let best: (ChosenDynamics & { score: number }) | undefined;
+  let best: ChosenDynamics | undefined;
+  let bestScore = Infinity;
   let from: readonly number[] = [];
   const scores: ChosenDynamics['scores'] = [];
   for (const structure of candidates) {
@@ -50,12 +51,13 @@ export function chooseDynamics(
     const hours = hourly.expected.reduce((n, expected) => n + (expected > 0 ? 1 : 0), 0);
     const score = -(found.logProbability + series.withinLogProbability) / Math.max(hours, 1);
     scores.push({ structure, logScore: score });
-    if (!best || score < best.score)
-      best = { ...found.dynamics, structure, factorLogSdError: found.logSdError, scores, score };
+    if (score < bestScore) {
+      bestScore = score;
+      best = { ...found.dynamics, structure, factorLogSdError: found.logSdError, scores };
+    }
   }
-  if (!best) throw new RangeError('no structure to choose from');
-  const { score: _, ...chosen } = best;
-  return chosen;
+  if (!best) throw new RangeError('no structure fits: the log score of every candidate is not a number');
+  return best;
 }
 
 /** The series with its effects multiplied into what is expected. */
@@ -108,16 +110,11 @@ function findDynamics(
     -run(spread(x), memoryDays) +
     places.reduce((sum, place, i) => sum + 0.5 * ((x[i] - all[place]) / sds[place]) ** 2, 0);
 
-  const start = places.map((place) => all[place]);
-  const found =
-    places.length > 0
-      ? minimise(
-          objective,
-          start,
-          places.map(() => -1),
-          25 + 20 * places.length,
-        )
-      : { x: [] };
+  // The last structure's speeds are a good place to begin from; those that it lacked stand at their priors there.
+  const warm = from.length > 0;
+  const start = places.map((place) => (warm ? from[place] : all[place]));
+  const steps = places.map(() => (warm ? 0.6 : -1));
+  const found = places.length > 0 ? minimise(objective, start, steps, 15 + 13 * places.length) : { x: [] };
   const x = spread(found.x);
   let logSdError = given.factorLogSdError ?? 0;
   const at = places.indexOf(1);

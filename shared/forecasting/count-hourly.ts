@@ -20,7 +20,8 @@ export function countHourly(
   toUtc: number,
   gaps: readonly ExposureGap[] = [],
 ): HourlyCounts {
-  if (!(Number.isInteger(areas) && areas >= 1)) throw new RangeError(`areas must be a whole number from 1, got ${areas}`);
+  if (!(Number.isInteger(areas) && areas >= 1))
+    throw new RangeError(`areas must be a whole number from 1, got ${areas}`);
   const whole = exposureByLocalHour(zone, fromUtc, toUtc);
   const firstLocalHour = Math.floor(whole.firstLocalHour / 24) * 24;
   const shift = whole.firstLocalHour - firstLocalHour;
@@ -29,8 +30,10 @@ export function countHourly(
   exposureHours.set(whole.hours, shift);
 
   for (const gap of gaps) {
-    if (!(gap.to > gap.from)) throw new RangeError(`exposure gap must end after it starts, got ${gap.from} to ${gap.to}`);
-    if (gap.area !== null && !(gap.area >= 0 && gap.area < areas)) throw new RangeError(`exposure gap names area ${gap.area}`);
+    if (!(gap.to > gap.from))
+      throw new RangeError(`exposure gap must end after it starts, got ${gap.from} to ${gap.to}`);
+    if (gap.area !== null && !(gap.area >= 0 && gap.area < areas))
+      throw new RangeError(`exposure gap names area ${gap.area}`);
   }
   const gapsByArea: { from: number; to: number }[][] = [];
   let areaExposure: Float64Array[] | undefined;

@@ -2,7 +2,7 @@ import { binomialPmf } from '../stochastic/binomial.ts';
 import { gammaPoissonPmf } from '../stochastic/gamma-poisson.ts';
 
 /**
- * A law of counts kept only where it matters: `pmf[i]` is the chance of first + i. Chances below 1e-13 of the highest
+ * A law of counts kept only where it matters: `pmf[i]` is the chance of first + i. Chances below 1e-12 of the highest
  * are left out, so that a hundred thousand laws an answer cost milliseconds.
  */
 export interface CountLaw {
@@ -10,7 +10,7 @@ export interface CountLaw {
   pmf: Float64Array;
 }
 
-const negligible = 1e-13;
+const negligible = 1e-12;
 let below = new Float64Array(512);
 let above = new Float64Array(512);
 
@@ -107,14 +107,22 @@ function trimmed(law: CountLaw): CountLaw {
   return from === 0 && to === pmf.length ? law : { first: law.first + from, pmf: pmf.subarray(from, to) };
 }
 
-/** The mixture of laws, as an array from 0 on: entry n is the chance of n. Weights sum to 1. */
-export function mixtureFromZero(parts: readonly { weight: number; law: CountLaw }[]): Float64Array {
+/**
+ * The mixture of sums of two independent counts each, as an array from 0 on: entry n is the chance of n. Weights sum to 1.
+ * Each sum is added straight into the result, which spares an array a part.
+ */
+export function mixtureOfSums(parts: readonly { weight: number; a: CountLaw; b: CountLaw }[]): Float64Array {
   let length = 0;
-  for (const { law } of parts) length = Math.max(length, law.first + law.pmf.length);
+  for (const { a, b } of parts) length = Math.max(length, a.first + a.pmf.length + b.first + b.pmf.length - 1);
   const all = new Float64Array(length);
-  for (const { weight, law } of parts) {
-    const { first, pmf } = law;
-    for (let i = 0; i < pmf.length; i += 1) all[first + i] += weight * pmf[i];
+  for (const { weight, a, b } of parts) {
+    const [wide, narrow] = a.pmf.length >= b.pmf.length ? [a.pmf, b.pmf] : [b.pmf, a.pmf];
+    const last = wide.length;
+    for (let j = 0; j < narrow.length; j += 1) {
+      const share = weight * narrow[j];
+      const first = a.first + b.first + j;
+      for (let i = 0; i < last; i += 1) all[first + i] += share * wide[i];
+    }
   }
   return all;
 }

@@ -84,13 +84,13 @@ export function evaluateNeed(input: {
         capHours,
         calendar,
       });
-      beds = highPointOfNeed(present.presentAt, fromUtc + capHours * 3600, originUtc, areas);
+      beds = highPointOfNeed((at) => present.presentAt(at), fromUtc + capHours * 3600, originUtc, areas);
     }
     for (let k = 0; k < outlooksPerWeek; k += 1) {
       const midnight = origin + 24 * k;
       const midnightUtc = utcOf(zone, counts, midnight);
       // A step of seven hours from day to day visits every part of the day.
-      const issuedAt = Math.ceil((midnightUtc + ((7 * (k + week)) % 24) * 3600) / 3600) * 3600;
+      const issuedAt = midnightUtc + ((7 * (k + week)) % 24) * 3600;
       if (issuedAt + 73 * 3600 > toUtc || !arrival || !stay) continue;
       const model = { arrival: refreshLevel(arrival, firstHours(counts, midnight)), stay, calendar };
       const outlook = outlookInput(

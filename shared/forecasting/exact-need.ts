@@ -1,6 +1,6 @@
 import type { Pmf } from '../stochastic/convolve.ts';
 import type { CountLaw } from './count-law.ts';
-import { binomialLaw, gammaPoissonLaw, mixtureFromZero, sumOfLaws } from './count-law.ts';
+import { binomialLaw, gammaPoissonLaw, mixtureOfSums, sumOfLaws } from './count-law.ts';
 import type { FactorNode } from './factor-nodes.ts';
 
 /** One stream of an area: arrivals an hour and departure hazard an hour, constant within each segment. */
@@ -92,13 +92,13 @@ export function exactNeed(input: ExactNeedInput): Pmf[] {
   });
   const wanted = input.onlyLast === true ? [count - 1] : Array.from({ length: count }, (_, k) => k);
   return wanted.map((k) =>
-    mixtureFromZero(
+    mixtureOfSums(
       outflowNodes.map((node, o) => {
         let left: CountLaw = { first: 0, pmf: nobody };
         present.forEach((group, g) => {
           if (group.patients > 0) left = sumOfLaws(left, binomialLaw(group.patients, survivals[o][g][k]));
         });
-        return { weight: node.weight, law: sumOfLaws(left, gammaPoissonLaw(means[o][k], arrivalVariance)) };
+        return { weight: node.weight, a: left, b: gammaPoissonLaw(means[o][k], arrivalVariance) };
       }),
     ),
   );

@@ -2,7 +2,6 @@ import { engineVersion } from './engine-version.ts';
 import { chanceAbove, chanceOf, histogramQuantile, percentilesOf, smallestBeds } from './need-histogram.ts';
 import { highestExcess, mergeNeedParts } from './need-part.ts';
 import type { NeedPart } from './need-part.ts';
-import { binSeconds } from './need-plan.ts';
 import type { NeedPlan } from './need-plan.ts';
 import type {
   AreaOutlook,
@@ -204,6 +203,3 @@ export function finishOutlook(
     replications: input.replications,
   };
 }
-
-/** What "any time" looks at, minutes. */
-export const resolutionMinutes = binSeconds / 60;

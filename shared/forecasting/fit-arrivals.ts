@@ -14,7 +14,13 @@ import type { CalendarDay } from './visit-table.ts';
 import { fitWeeklyProfile } from './weekly-profile.ts';
 
 /** How level and factor move until they are chosen. */
-const firstDynamics: LevelDynamics = { levelVariancePerDay: 3e-5, factorVariance: 3e-3, factorCorrelation: 0.3, spellVariance: 4e-4, spellCorrelationPerDay };
+const firstDynamics: LevelDynamics = {
+  levelVariancePerDay: 3e-5,
+  factorVariance: 3e-3,
+  factorCorrelation: 0.3,
+  spellVariance: 4e-4,
+  spellCorrelationPerDay,
+};
 const weeksForSeason = 104;
 
 /**
@@ -40,7 +46,8 @@ export function fitArrivals(input: {
   const firstDay = counts.firstLocalHour / 24;
   const days = counts.exposureHours.length / 24;
 
-  const seasons = settings.seasonSd === undefined ? (weeks >= weeksForSeason ? [0.02, 0.1] : [0.02]) : [settings.seasonSd];
+  const seasons =
+    settings.seasonSd === undefined ? (weeks >= weeksForSeason ? [0.02, 0.1] : [0.02]) : [settings.seasonSd];
   const first = fitLevels(counts, indexCalendar(input.calendar, settings.holidayWeekday ?? 0), seasons[0]);
   onProgress?.(0.15);
 

@@ -3,9 +3,10 @@ import { gammaPoissonLogPmf } from '../stochastic/gamma-poisson.ts';
 /**
  * Maximum-likelihood dispersion φ of gamma–Poisson counts whose means are known (variance m + φ m²), by golden-section
  * search on ln φ between e⁻¹⁰ and e; 0 where Poisson does better. Means of 0 are passed over.
+ * @param tolerance of ln φ
  * Cost: about 15 passes over the counts.
  */
-export function fitDispersion(means: ArrayLike<number>, observed: ArrayLike<number>): number {
+export function fitDispersion(means: ArrayLike<number>, observed: ArrayLike<number>, tolerance = 0.03): number {
   const loss = (phi: number): number => {
     let sum = 0;
     for (let i = 0; i < means.length; i += 1) if (means[i] > 0) sum -= gammaPoissonLogPmf(observed[i], means[i], phi);
@@ -18,7 +19,7 @@ export function fitDispersion(means: ArrayLike<number>, observed: ArrayLike<numb
   let b = low + ratio * (high - low);
   let lossA = loss(Math.exp(a));
   let lossB = loss(Math.exp(b));
-  while (high - low > 0.03) {
+  while (high - low > tolerance) {
     if (lossA < lossB) {
       high = b;
       b = a;

@@ -58,7 +58,8 @@ export function forecastArrivals(input: {
   seed: number;
 }): ArrivalForecast {
   const { model, zone, fromUtc, toUtc, calendar, shifts = [], live, draws, seed } = input;
-  if (!(Number.isInteger(draws) && draws >= 1)) throw new RangeError(`draws must be a whole number from 1, got ${draws}`);
+  if (!(Number.isInteger(draws) && draws >= 1))
+    throw new RangeError(`draws must be a whole number from 1, got ${draws}`);
   if (model.coarse && toUtc - fromUtc > 86_400) {
     throw new RangeError('under eight weeks of history arrivals are forecast for 24 hours at most');
   }

@@ -6,7 +6,11 @@ import type { BlockBelief } from './log-level-belief.ts';
  * expected at W = 1, W ~ Gamma(1/φ + n, rate 1/φ + Λ) (the gamma is conjugate to Poisson).
  * @returns shape, rate and the mean (1 + φ n) / (1 + φ Λ); φ = 0 leaves the factor at 1.
  */
-export function liveGammaFactor(phi: number, count: number, expected: number): { shape: number; rate: number; mean: number } {
+export function liveGammaFactor(
+  phi: number,
+  count: number,
+  expected: number,
+): { shape: number; rate: number; mean: number } {
   if (!(phi >= 0 && count >= 0 && expected >= 0)) {
     throw new RangeError(`live factor needs phi, count and expected of 0 or more, got ${phi}, ${count}, ${expected}`);
   }

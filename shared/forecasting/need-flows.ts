@@ -19,6 +19,8 @@ export interface AreaFlows {
   past: ModelledPast;
   /** From the plan's start; before the area's own start no arrivals. */
   ahead: ModelledPast;
+  /** Arrivals an hour by stream from the plan's start, the time before the area's own start included. */
+  arriving: Float64Array[];
   startSegment: number;
   /** Highest expected number of newcomers still there, and all expected arrivals. */
   peakNewcomers: number;
@@ -57,6 +59,7 @@ export function areaFlows(
     ratePerHour: before.ratePerHour.map((rate, s) => join(rate, after.ratePerHour[s])),
     hazardPerHour: before.hazardPerHour.map((hazard, s) => join(hazard, after.hazardPerHour[s])),
   };
+  const arriving = after.ratePerHour.map((rate) => rate.slice());
   for (const rate of after.ratePerHour) rate.fill(0, 0, startSegment);
   let peakNewcomers = 0;
   let arrivals = 0;
@@ -70,5 +73,5 @@ export function areaFlows(
     });
   });
   for (const mean of total) peakNewcomers = Math.max(peakNewcomers, mean);
-  return { past: whole, ahead: after, startSegment, peakNewcomers, arrivals };
+  return { past: whole, ahead: after, arriving, startSegment, peakNewcomers, arrivals };
 }

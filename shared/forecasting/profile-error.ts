@@ -14,7 +14,7 @@ export interface ProfileError {
 /**
  * The error of the profile at the given hours of week, for drawing: covariance w_h w_g (B V Bᵀ)_hg + own_h² δ_hg, with w
  * the weight of the smooth profile. The smooth part is cut to the few pivots (pivoted Cholesky; Higham 2002, section
- * 10.3) that leave less than a tenth of any hour's variance, which is then counted as the hour's own.
+ * 10.3) that leave less than a fifth of any hour's variance, which is then counted as the hour's own.
  * Cost: hours² × basis once.
  */
 export function profileError(profile: WeeklyProfile, hours: readonly number[], coarse: boolean): ProfileError {
@@ -36,11 +36,13 @@ export function profileError(profile: WeeklyProfile, hours: readonly number[], c
   };
   const left = Float64Array.from(hours, (_, i) => dot(i, i));
   const variance = Float64Array.from(hours, (hour, i) => left[i] + profile.logSd[hour] ** 2);
+  // An hour that is known exactly has nothing left to explain.
+  const shareLeft = (i: number): number => (variance[i] > 0 ? left[i] / variance[i] : 0);
   const columns: Float64Array[] = [];
   while (columns.length < Math.min(n, size)) {
     let pivot = 0;
-    for (let i = 1; i < n; i += 1) if (left[i] / variance[i] > left[pivot] / variance[pivot]) pivot = i;
-    if (left[pivot] < 0.1 * variance[pivot]) break;
+    for (let i = 1; i < n; i += 1) if (shareLeft(i) > shareLeft(pivot)) pivot = i;
+    if (left[pivot] < 0.2 * variance[pivot]) break;
     const root = Math.sqrt(left[pivot]);
     const column = new Float64Array(n);
     for (let i = 0; i < n; i += 1) {

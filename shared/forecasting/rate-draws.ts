@@ -78,7 +78,10 @@ export function makeRateDraw(
     const own = belief.own[a];
     const flat = own.covariance.every((value) => value === 0);
     return {
-      logRate: Float64Array.from(distinct.hours, (hour, i) => Math.log(area.profile.ratePerHour[hour]) - error.variance[i] / 2),
+      logRate: Float64Array.from(
+        distinct.hours,
+        (hour, i) => Math.log(area.profile.ratePerHour[hour]) - error.variance[i] / 2,
+      ),
       error,
       ownMean: own.mean,
       ownFactor: flat ? null : choleskyFactor(own.covariance, pieces),

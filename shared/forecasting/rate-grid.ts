@@ -1,4 +1,3 @@
-import { hourOfWeek } from '../domain/hour-of-week.ts';
 import type { Zone } from '../domain/zoned-time.ts';
 import type { RateGrid } from './arrival-model.ts';
 
@@ -54,9 +53,4 @@ export function distinctHoursOfWeek(hoursOfWeek: Int32Array): { hours: number[];
   const hours = [...new Set(hoursOfWeek)].sort((a, b) => a - b);
   const index = new Map(hours.map((hour, i) => [hour, i]));
   return { hours, place: hoursOfWeek.map((hour) => index.get(hour) ?? 0) };
-}
-
-/** Hour of week of every stretch. */
-export function hoursOfWeekOf(grid: RateGrid): Int32Array {
-  return grid.localHour.map((hour) => hourOfWeek(hour));
 }

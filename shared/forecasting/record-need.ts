@@ -63,21 +63,26 @@ export function makeNeedRecorder(
   const width = highestExcess + 1;
 
   /** Highest need and excess and the last need of every piece; returns bins short. */
-  function scan(need: number, moves: Int32Array, beds: Int32Array): number {
-    let n = need;
+  function scan(before: number, moves: Int32Array, beds: Int32Array): number {
+    // Local names: captured ones are looked up again at every store.
+    const all = pooled;
+    const ends = cuts;
+    const pieceCount = count;
+    let n = before;
     let short = 0;
-    for (let p = 0; p < count; p += 1) {
+    let b = ends[0];
+    for (let p = 0; p < pieceCount; p += 1) {
       let most = 0;
       let excess = 0;
-      const end = cuts[p + 1];
-      for (let b = cuts[p]; b < end; b += 1) {
-        n += moves[b];
-        pooled[b] += n;
-        const over = n - beds[b];
-        if (n > most) most = n;
+      const end = ends[p + 1];
+      for (; b < end; b += 1) {
+        n = (n + moves[b]) | 0;
+        all[b] = (all[b] + n) | 0;
+        const over = (n - beds[b]) | 0;
+        most = n > most ? n : most;
         if (over > 0) {
-          short += over;
-          if (over > excess) excess = over;
+          short = (short + over) | 0;
+          excess = over > excess ? over : excess;
         }
       }
       mostNeed[p] = most;
@@ -89,25 +94,68 @@ export function makeNeedRecorder(
 
   /** The same for the pooled need. */
   function scanPooled(): void {
+    const need = pooled;
+    const beds = pooledBeds;
     for (let p = 0; p < count; p += 1) {
       let excess = 0;
-      for (let b = cuts[p]; b < cuts[p + 1]; b += 1) {
-        const over = pooled[b] - pooledBeds[b];
-        if (over > excess) excess = over;
+      const end = cuts[p + 1];
+      for (let b = cuts[p]; b < end; b += 1) {
+        const over = (need[b] - beds[b]) | 0;
+        excess = over > excess ? over : excess;
       }
       mostExcess[p] = excess;
-      lastNeed[p] = pooled[cuts[p + 1] - 1];
+      lastNeed[p] = need[end - 1];
     }
   }
 
-  function addHours(need: Int32Array, within: Int32Array, place: number, room: number): void {
+  /** Need at the full hour and highest excess within the hour. */
+  function addPooledHours(): void {
+    const { pooledNeed, pooledWithin } = part;
     for (let h = 0; h < hours; h += 1) {
       const n = lastNeed[pieces.hourTo[h] - 1];
-      need[(place * hours + h) * room + (n < room ? n : room - 1)] += 1;
-      let excess = 0;
-      for (let p = pieces.hourFrom[h]; p < pieces.hourTo[h]; p += 1) if (mostExcess[p] > excess) excess = mostExcess[p];
-      within[(place * hours + h) * width + (excess < highestExcess ? excess : highestExcess)] += 1;
+      pooledNeed[h * pooledSize + (n < pooledSize ? n : pooledSize - 1)] += 1;
+      pooledWithin[h * width + excessWithin(h)] += 1;
     }
+  }
+
+  function excessWithin(h: number): number {
+    let excess = 0;
+    for (let p = pieces.hourFrom[h]; p < pieces.hourTo[h]; p += 1) if (mostExcess[p] > excess) excess = mostExcess[p];
+    return excess < highestExcess ? excess : highestExcess;
+  }
+
+  /** Everything that is told by the hour, for one area. */
+  function addHours(a: number, trace: ReplicationTrace): void {
+    const { need, within, admittedLeaving, arrivalsToAdmit } = part;
+    const out = trace.admittedOut[a];
+    const come = trace.admittedIn[a];
+    const beds = areaBeds[a];
+    const { hourTo: lastPiece } = pieces;
+    for (let h = 0; h < hours; h += 1) {
+      const place = a * hours + h;
+      const n = lastNeed[lastPiece[h] - 1];
+      need[place * size + (n < size ? n : size - 1)] += 1;
+      within[place * width + excessWithin(h)] += 1;
+      const leaving = out[h + 1];
+      const coming = come[h + 1];
+      admittedLeaving[place * flowSize + (leaving < flowSize ? leaving : flowSize - 1)] += 1;
+      arrivalsToAdmit[place * flowSize + (coming < flowSize ? coming : flowSize - 1)] += 1;
+      const excess = n - beds[hourTo[h] - 1];
+      if (excess > 0) addBoarders(place, h, excess, trace.boarderBin[a]);
+    }
+  }
+
+  /** Fewest of the counted boarders, in their order, whose going would end a shortfall at the full hour. */
+  function addBoarders(place: number, h: number, excess: number, boarders: Int32Array): void {
+    hourShort[h] = 1;
+    const bin = hourTo[h] - 1;
+    let needed = 0;
+    let gained = 0;
+    while (needed < boarders.length && gained < excess) {
+      if (boarders[needed] > bin) gained += 1;
+      needed += 1;
+    }
+    part.boardersNeeded[place * boarderSize + (gained < excess ? boarderSize - 1 : needed)] += 1;
   }
 
   function addShifts(a: number, row: number): void {
@@ -121,32 +169,6 @@ export function makeNeedRecorder(
       part.shiftPeak[(a * shifts + s) * size + (most < size ? most : size - 1)] += 1;
       part.shiftShort[a * shifts + s] += short;
       part.shortByReplication[(a * shifts + s) * rows + row] = short;
-    }
-  }
-
-  function addBoarders(a: number, beds: Int32Array, boarders: Int32Array): void {
-    for (let h = 0; h < hours; h += 1) {
-      const bin = hourTo[h] - 1;
-      const excess = lastNeed[pieces.hourTo[h] - 1] - beds[bin];
-      if (excess <= 0) continue;
-      hourShort[h] = 1;
-      let needed = 0;
-      let gained = 0;
-      while (needed < boarders.length && gained < excess) {
-        if (boarders[needed] > bin) gained += 1;
-        needed += 1;
-      }
-      part.boardersNeeded[(a * hours + h) * boarderSize + (gained < excess ? boarderSize - 1 : needed)] += 1;
-    }
-  }
-
-  function addFlows(a: number, out: Int32Array, come: Int32Array): void {
-    for (let h = 0; h < hours; h += 1) {
-      const place = (a * hours + h) * flowSize;
-      const leaving = out[h + 1];
-      const coming = come[h + 1];
-      part.admittedLeaving[place + (leaving < flowSize ? leaving : flowSize - 1)] += 1;
-      part.arrivalsToAdmit[place + (coming < flowSize ? coming : flowSize - 1)] += 1;
     }
   }
 
@@ -168,14 +190,12 @@ export function makeNeedRecorder(
       part.peak[a * size + (peak < size ? peak : size - 1)] += 1;
       part.bedHoursShort[a * rows + row] = short * hoursPerBin;
       allShort += short;
-      addHours(part.need, part.within, a, size);
+      addHours(a, trace);
       addShifts(a, row);
-      addBoarders(a, areaBeds[a], trace.boarderBin[a]);
-      addFlows(a, trace.admittedOut[a], trace.admittedIn[a]);
     }
     part.bedHoursShort[areas * rows + row] = allShort * hoursPerBin;
     scanPooled();
-    addHours(part.pooledNeed, part.pooledWithin, 0, pooledSize);
+    addPooledHours();
     for (let h = 0; h < hours; h += 1) part.someShort[h] += hourShort[h];
     for (let s = 0; s < shifts; s += 1) {
       let short = 0;

@@ -35,7 +35,12 @@ export function refreshLevel(model: ArrivalModel, counts: HourlyCounts): Arrival
     model,
     effectPriors(index, model.endLocalHour / 24, Math.ceil(end / 24), model.settings.seasonSd),
   );
-  const series = gatherBlocks(hourly, cut, index, effects.map(({ key }) => key));
+  const series = gatherBlocks(
+    hourly,
+    cut,
+    index,
+    effects.map(({ key }) => key),
+  );
   const dynamics = { ...model, factorVariance: model.settings.factorVariance };
   const site = filterLevel(series, dynamics, state, { sameBlock }).state;
 

@@ -125,7 +125,8 @@ export function reliability(
 }
 
 function checkPaired(chances: readonly number[], outcomes: readonly boolean[]): void {
-  if (chances.length !== outcomes.length) throw new RangeError(`${chances.length} chances but ${outcomes.length} outcomes`);
+  if (chances.length !== outcomes.length)
+    throw new RangeError(`${chances.length} chances but ${outcomes.length} outcomes`);
   chances.forEach((chance, i) => {
     if (!(chance >= 0 && chance <= 1)) throw new RangeError(`chance ${i} must lie in 0..1, got ${chance}`);
   });

@@ -94,7 +94,8 @@ export function forecastBelief(
     }
   }
   if (gamma) {
-    for (const piece of gamma) if (piece.shape === 0 && phi > 0) Object.assign(piece, { shape: 1 / phi, rate: 1 / phi });
+    for (const piece of gamma)
+      if (piece.shape === 0 && phi > 0) Object.assign(piece, { shape: 1 / phi, rate: 1 / phi });
   }
 
   // Only the pieces that the forecast itself touches are drawn.
@@ -148,7 +149,9 @@ function expectedByPiece(
     const hour = profileHour(index, localHour);
     let rate = 0;
     for (const area of model.areas) {
-      rate += area.profile.ratePerHour[hour] * Math.exp(area.own.mean[0] + (area.factorVariance + area.own.covariance[0]) / 2);
+      rate +=
+        area.profile.ratePerHour[hour] *
+        Math.exp(area.own.mean[0] + (area.factorVariance + area.own.covariance[0]) / 2);
     }
     return rate * grid.hours[i];
   });
@@ -158,11 +161,13 @@ function expectedByPiece(
 function forEachCount(live: LiveArrivals, use: (from: number, to: number, count: number) => void): void {
   const length = live.grid.localHour.length;
   if (typeof live.total === 'number') {
-    if (!(live.total >= 0 && live.total < Infinity)) throw new RangeError(`live arrivals must be 0 or more, got ${live.total}`);
+    if (!(live.total >= 0 && live.total < Infinity))
+      throw new RangeError(`live arrivals must be 0 or more, got ${live.total}`);
     use(0, length, live.total);
     return;
   }
-  if (live.total.length !== length) throw new RangeError(`live arrivals: ${live.total.length} counts for ${length} stretches`);
+  if (live.total.length !== length)
+    throw new RangeError(`live arrivals: ${live.total.length} counts for ${length} stretches`);
   live.total.forEach((count, i) => {
     if (!(count >= 0 && count < Infinity)) throw new RangeError(`live arrivals: stretch ${i} is ${count}`);
     use(i, i + 1, count);

@@ -47,7 +47,7 @@ export function meansByFactor(past: ModelledPast, shapes: (StayShape | null)[] |
 
 /** Chances of an undecided patient over all areas and streams, cumulative, by the arrivals expected at that time. */
 export function arrivalMix(flows: readonly AreaFlows[], segment: number): Float64Array {
-  const weights = flows.flatMap((flow) => flow.ahead.ratePerHour.map((rate) => rate[segment]));
+  const weights = flows.flatMap((flow) => flow.arriving.map((rate) => rate[segment]));
   const total = weights.reduce((sum, value) => sum + value, 0);
   // Without any arrivals expected, home patients of each area share them alike.
   const chances = weights.map((value, i) =>

@@ -10,7 +10,7 @@ import { SignInPage } from '../pages/SignInPage.tsx';
 
 function PageSkeleton() {
   return (
-    <div className="page-pad pt-4">
+    <div className="page-pad min-h-dvh pt-4">
       <Skeleton className="h-11 w-3/5" label="Loading the page" />
       <Skeleton className="mt-3 h-6 w-2/5" />
     </div>

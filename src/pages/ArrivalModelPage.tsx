@@ -24,7 +24,8 @@ export function ArrivalModelPage() {
 
   if (!model || !site) {
     return (
-      <>
+      // Keyed apart from the page itself, so that nothing of it moves when it arrives.
+      <div key="loading" className="min-h-dvh">
         <PageHead tab="Arrival model" title="Arrival model" />
         <div className="page-pad max-w-3xl">
           {query.error ? (
@@ -33,7 +34,7 @@ export function ArrivalModelPage() {
             <SkeletonLines lines={6} label="Loading the model" />
           )}
         </div>
-      </>
+      </div>
     );
   }
   return (
@@ -66,7 +67,7 @@ export function ArrivalModelPage() {
           </div>
         }
       />
-      <div className="page-pad grid gap-8 pt-2">
+      <div className="page-pad grid grid-cols-[minmax(0,1fr)] gap-8 pt-2">
         {model.status === 'fitting' && model.jobId ? (
           <JobProgress siteId={siteId} jobId={model.jobId} mayCancel={may('arrival-model:fit')} />
         ) : null}

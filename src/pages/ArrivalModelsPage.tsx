@@ -19,14 +19,28 @@ export function ArrivalModelsPage() {
   const now = useServerNow();
   const models = useModels(siteId);
   const mayFit = site?.permissions.includes('arrival-model:fit') ?? false;
-  const list = models.data?.models ?? [];
+
+  if (!models.data || !site) {
+    return (
+      // Keyed apart from the page itself, so that nothing of it moves when it arrives.
+      <div key="loading" className="min-h-dvh">
+        <PageHead tab="Arrival model" title="Arrival model" />
+        <div className="page-pad max-w-3xl">
+          {models.error ? (
+            <ProblemNotice error={models.error} onRetry={() => void models.refetch()} retrying={models.isFetching} />
+          ) : (
+            <SkeletonLines lines={4} label="Loading the models" />
+          )}
+        </div>
+      </div>
+    );
+  }
+  const list = models.data.models;
   const inUse = list.find((model) => model.status === 'in use');
   const candidate = list.find((model) => model.status === 'candidate');
-  const title = !models.data
-    ? 'Arrival model'
-    : inUse?.fittedAt
-      ? `The model in use was fitted ${formatAge(now - inUse.fittedAt)} ago.`
-      : 'No arrival model is in use.';
+  const title = inUse?.fittedAt
+    ? `The model in use was fitted ${formatAge(now - inUse.fittedAt)} ago.`
+    : 'No arrival model is in use.';
   const lede = inUse
     ? candidate
       ? 'A candidate waits for approval by an operations manager who did not fit it.'
@@ -37,35 +51,27 @@ export function ArrivalModelsPage() {
 
   return (
     <>
-      <PageHead tab="Arrival model" title={title} lede={models.data ? <p className="max-w-[58rem]">{lede}</p> : null} />
-      <div className="page-pad grid gap-6 pt-2">
-        {models.error && !models.data ? (
-          <ProblemNotice error={models.error} onRetry={() => void models.refetch()} retrying={models.isFetching} />
+      <PageHead tab="Arrival model" title={title} lede={<p className="max-w-[58rem]">{lede}</p>} />
+      <div className="page-pad grid grid-cols-[minmax(0,1fr)] gap-6 pt-2">
+        {mayFit ? (
+          <FitModel
+            siteId={siteId}
+            readyLogs={models.data.readyLogs}
+            fitting={list.some((model) => model.status === 'fitting')}
+            loadLog={
+              site.permissions.includes('visit-log:upload') ? (
+                <ButtonLink to={paths.newVisitLog(siteId)}>Load a visit log</ButtonLink>
+              ) : null
+            }
+          />
         ) : null}
-        {models.isPending ? <SkeletonLines lines={4} label="Loading the models" /> : null}
-        {models.data && site ? (
-          <>
-            {mayFit ? (
-              <FitModel
-                siteId={siteId}
-                readyLogs={models.data.readyLogs}
-                fitting={list.some((model) => model.status === 'fitting')}
-                loadLog={
-                  site.permissions.includes('visit-log:upload') ? (
-                    <ButtonLink to={paths.newVisitLog(siteId)}>Load a visit log</ButtonLink>
-                  ) : null
-                }
-              />
-            ) : null}
-            <ModelList
-              models={list}
-              timeZone={site.timeZone}
-              hrefOf={(modelId) => paths.arrivalModel(siteId, modelId)}
-              progressOf={(jobId) => <JobProgress siteId={siteId} jobId={jobId} mayCancel={mayFit} />}
-              empty="No model was ever fitted here."
-            />
-          </>
-        ) : null}
+        <ModelList
+          models={list}
+          timeZone={site.timeZone}
+          hrefOf={(modelId) => paths.arrivalModel(siteId, modelId)}
+          progressOf={(jobId) => <JobProgress siteId={siteId} jobId={jobId} mayCancel={mayFit} />}
+          empty="No model was ever fitted here."
+        />
       </div>
     </>
   );

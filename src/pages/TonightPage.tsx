@@ -66,7 +66,7 @@ export function TonightPage() {
 
 function TonightSkeleton() {
   return (
-    <div className="page-pad pt-4">
+    <div className="page-pad min-h-dvh pt-4">
       <Skeleton className="h-11 w-3/5" label="Loading tonight" />
       <Skeleton className="mt-3 h-6 w-2/5" />
       <div className="mt-8 grid gap-6">

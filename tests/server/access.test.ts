@@ -1,5 +1,5 @@
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
-import supertest from 'supertest';
+import type supertest from 'supertest';
 import type { Contract } from '../../shared/api/contract.ts';
 import type { Session } from '../../shared/api/session.ts';
 import { roles, type Role } from '../../shared/domain/permission.ts';

@@ -75,24 +75,21 @@ describe('a census', () => {
   });
 
   test('is not stored if its audit row cannot be', async () => {
-    const write = server.deps.database.write;
+    const { write } = server.deps.database;
     vi.spyOn(server.deps.logger, 'error').mockImplementation(() => undefined);
-    const spy = vi.spyOn(server.deps.database, 'write').mockImplementation((work) =>
-      write((manager) => {
-        const insert = manager.insert.bind(manager);
-        vi.spyOn(manager, 'insert').mockImplementation((target, rows) =>
-          target === AuditEvent ? Promise.reject(new Error('no audit row')) : insert(target, rows),
-        );
-        return work(manager).finally(() => vi.mocked(manager.insert).mockRestore());
-      }),
+    await write((manager) =>
+      manager.query(
+        `CREATE TRIGGER no_audit BEFORE INSERT ON audit_event BEGIN SELECT RAISE(ABORT, 'no audit row'); END`,
+      ),
     );
     try {
       expect((await enter({ areas: [count(acute, 3)] })).status).toBe(500);
     } finally {
-      spy.mockRestore();
+      await write((manager) => manager.query('DROP TRIGGER no_audit'));
     }
     expect(await stored()).toBe(0);
     expect(await server.deps.database.read.countBy(CensusArea, { areaId: acute })).toBe(0);
+    expect((await enter({ areas: [count(acute, 3)] })).status).toBe(201);
   });
 
   test('stays stored when the outlook after it cannot be computed, and says so', async () => {

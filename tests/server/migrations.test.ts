@@ -48,7 +48,7 @@ test('the migrations can be taken back to an empty database and run again', asyn
     await source.runMigrations();
     const full = await tables();
     expect(full).toContain('outlook');
-    for (const _ of migrations) await source.undoLastMigration();
+    for (let left = migrations.length; left > 0; left -= 1) await source.undoLastMigration();
     expect(await tables()).toEqual([]);
     await source.runMigrations();
     expect(await tables()).toEqual(full);

@@ -50,7 +50,7 @@ describe('an answer other than success is a problem document', () => {
         `/api/sites/${built.site.id}/nothing`,
         '/healthz/x',
       ]) {
-        expectProblem(await charge.send(method, path), 404);
+        expectProblem(await (method === 'get' ? charge.get(path) : charge.send(method, path)), 404);
       }
     },
   );

@@ -2,6 +2,8 @@ import type { ModelParameters } from '../../server/database/read-model.ts';
 import type { Database } from '../../server/database/database.ts';
 import { newId } from '../../server/database/new-id.ts';
 import { ArrivalModelRow } from '../../server/entities/ArrivalModelRow.ts';
+import { OutlookRow } from '../../server/entities/OutlookRow.ts';
+import type { Site } from '../../server/entities/Site.ts';
 import { engineVersion } from '../../shared/forecasting/engine-version.ts';
 import { buildPerson, type BuiltSite } from './build-site.ts';
 import { buildVisitLog, inventVisits } from './build-visit-log.ts';
@@ -62,4 +64,29 @@ export async function giveModel(
       }),
     ),
   );
+}
+
+/** An issued outlook as a row alone: when it was issued, and nothing that could be read of it. */
+export async function giveOutlook(database: Database, site: Site, issuedAt: number): Promise<void> {
+  await database.write(async (manager) => {
+    const model = { siteId: site.id, createdAt: 1, fittedByPersonId: 'x', fittedBy: 'Test', engineVersion };
+    const { id: modelId } = await manager.save(
+      manager.create(ArrivalModelRow, { ...model, id: newId(), status: 'retired' }),
+    );
+    await manager.insert(OutlookRow, {
+      id: newId(),
+      siteId: site.id,
+      issuedAt,
+      trigger: 'timetable',
+      modelId,
+      seed: 1,
+      replications: 1,
+      engineVersion,
+      softwareVersion: '0',
+      computeMilliseconds: 0,
+      input: '{}',
+      result: '{}',
+      digest: '',
+    });
+  });
 }

@@ -43,7 +43,8 @@ export async function startBuiltDemo(env: Record<string, string> = {}): Promise<
   const port = await freePorts();
   const child: ChildProcess = spawn(process.execPath, ['dist/demo/main.js'], {
     cwd: root,
-    env: { ...process.env, NODE_ENV: 'test', LOG_LEVEL: 'warn', PORT: String(port), DATA_DIR: dataDir, ...env },
+    // The test runner has a BASE_URL of its own in its environment; an empty one is as if unset.
+    env: { ...process.env, BASE_URL: '', LOG_LEVEL: 'warn', PORT: String(port), DATA_DIR: dataDir, ...env },
     stdio: ['ignore', 'pipe', 'pipe'],
   });
   let output = '';

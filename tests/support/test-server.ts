@@ -43,6 +43,8 @@ export interface TestServer {
   time: { now: number };
   /** Works the job queue with the real handlers until nothing waits. */
   workJobs(): Promise<void>;
+  /** Starts the job queue again after a test stopped it. */
+  restartJobs(): Promise<void>;
   /** A client that carries a signed-in person's cookie and anti-forgery token. */
   signedInAs(personId: string): Promise<SignedIn>;
   nobody(): ReturnType<typeof supertest>;
@@ -88,6 +90,10 @@ export async function openTestServer({
       if (!working) await jobs.start(makeJobKinds(deps));
       working = true;
       await jobs.idle();
+    },
+    async restartJobs() {
+      await jobs.start(makeJobKinds(deps));
+      working = true;
     },
     async signedInAs(personId) {
       const sid = randomBytes(16).toString('hex');

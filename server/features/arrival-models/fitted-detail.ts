@@ -20,12 +20,13 @@ export function streamsOf(stay: StayModel, areaIds: readonly string[]): FittedDe
       return {
         areaId: areaIds[stream.area],
         disposition: isBoarding ? 'boarding' : dispositions[stream.stream],
-        visits: stream.visits,
+        // Stays whose disposition nobody knows are shared out among the streams, so these need not be whole.
+        visits: Math.round(stream.visits),
         share: isBoarding ? 0 : shares.reduce((sum, block) => sum + block[stream.stream], 0) / shares.length,
         meanHours: 1 / (stream.departuresPerHour ?? mean),
         meanLow: 1 / high,
         meanHigh: low > 0 ? 1 / low : 720,
-        censored: stream.censored,
+        censored: Math.round(stream.censored),
         departureFactor: Array.from(hazards, (hazard) => hazard / mean),
       };
     });

@@ -53,8 +53,8 @@ export class OutlookIssuer {
     return this.run(siteId, trigger);
   }
 
-  /** The same after something was saved: that stays saved, so a failure to compute is no failure of the request. */
-  async issueAfterSaving(siteId: string, trigger: OutlookTrigger): Promise<Issued> {
+  /** The same where a failure to compute is reported but must not become the caller's: what was saved stays saved. */
+  async issueOrReport(siteId: string, trigger: OutlookTrigger): Promise<Issued> {
     try {
       return await this.issue(siteId, trigger);
     } catch (error) {

@@ -25,7 +25,7 @@ export function addOutlookRoutes(app: Express, table: RouteTable, deps: Dependen
 
   addSiteRoute(app, table, deps, enterContract, async (context) => {
     const censusId = await enterCensus(deps, context, context.body);
-    const issued = await issuer.issueAfterSaving(context.site.id, 'census saved');
+    const issued = await issuer.issueOrReport(context.site.id, 'census saved');
     return { censusId, outlookId: issued.outlookId, reason: issued.reason };
   });
 

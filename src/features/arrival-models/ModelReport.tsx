@@ -31,7 +31,7 @@ export function ModelReport({ model }: { model: ModelDetail }) {
   const [search, setSearch] = useSearchParams();
   const area = model.areas.find((candidate) => candidate.areaId === search.get('area')) ?? model.areas[0];
   return (
-    <div className="grid gap-8">
+    <div className="grid grid-cols-[minmax(0,1fr)] gap-8">
       <Part
         title="What it found"
         lead="Effect sizes and what they mean. With many visits every test of fit would fail; the size is what counts."

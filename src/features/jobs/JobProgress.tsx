@@ -16,7 +16,8 @@ export function JobProgress({ siteId, jobId, mayCancel }: { siteId: string; jobI
   const jobs = useJobs(siteId);
   const cancelling = useCancelJob(siteId);
   const job = jobs.data?.find((candidate) => candidate.id === jobId);
-  if (!job) return null;
+  // The place is kept while the jobs load.
+  if (!job) return jobs.isPending ? <div className="h-16" /> : null;
   const open = job.status === 'queued' || job.status === 'running';
   const percent = Math.round(job.progress * 100);
   return (

@@ -116,6 +116,7 @@ export function AreaRow({
             caption={`${row.area.name}, hour by hour`}
             hourNames={hourNames}
             pastColumns={pastHours}
+            hiddenColumns={hiddenColumns}
             columnWidth={columnWidth}
             rows={rowsOf(row, open, hourNames)}
           />

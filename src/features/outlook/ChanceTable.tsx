@@ -39,6 +39,7 @@ export function ChanceTable({
   caption,
   hourNames,
   pastColumns,
+  hiddenColumns,
   columnWidth,
   rows,
 }: {
@@ -46,12 +47,17 @@ export function ChanceTable({
   /** Full names of the hours ahead: "21:00" or "07:00 Wednesday". */
   hourNames: readonly string[];
   pastColumns: number;
+  /** Of those, how many lie before the first view. */
+  hiddenColumns: number;
   columnWidth: number;
   rows: readonly StripRow[];
 }) {
   const width = (pastColumns + hourNames.length) * columnWidth;
   return (
-    <table className="table-fixed border-collapse" style={{ width }}>
+    <table
+      className="table-fixed border-separate border-spacing-0"
+      style={{ width, ['--hidden' as string]: `${String(hiddenColumns * columnWidth)}px` }}
+    >
       <caption className="sr-only">{caption}</caption>
       <colgroup>
         <col style={{ width: pastColumns * columnWidth }} />
@@ -100,7 +106,8 @@ function RowName({ short, children }: { short: string; children: ReactNode }) {
   return (
     <th
       scope="row"
-      className="p-0 pr-2 text-right align-middle text-small font-semibold whitespace-nowrap text-ink2 tighter"
+      // Stays at the edge of the gutter when the hours slide, so that a figure never stands without its name.
+      className="sticky left-[calc(var(--covered)-var(--hidden))] z-[11] bg-water p-0 pr-2 text-right align-middle text-small font-semibold whitespace-nowrap text-ink2 tighter"
     >
       <span className="max-lg:sr-only">{children}</span>
       <span aria-hidden="true" className="lg:hidden">
@@ -175,7 +182,7 @@ function RunWords({ chances, columnWidth }: { chances: readonly number[]; column
           <td key={run.start} colSpan={run.length} className="h-5 overflow-visible p-0 align-bottom">
             <span
               className={classNames(
-                'flex items-end gap-1 text-small leading-none whitespace-nowrap tight',
+                'flex items-end gap-1 pl-0.5 text-small leading-none whitespace-nowrap tight',
                 run.step >= 3 ? 'font-extrabold text-ink' : 'font-semibold text-ink2',
               )}
             >

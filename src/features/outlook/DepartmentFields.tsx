@@ -24,14 +24,14 @@ export function DepartmentFields({ fields }: { fields: readonly { field: Departm
         if (edited) save();
       }}
     >
-      <div className="flex items-end justify-end gap-3">
+      <div className="flex items-end justify-end gap-2">
         {fields.map(({ field, label }) => (
           <label
             key={field}
             className="flex items-center gap-2 text-right text-small leading-tight font-semibold text-ink2 tight"
           >
             <span className="max-w-20">{label}</span>
-            <span className="w-15">
+            <span className={fields.length > 1 ? 'w-12' : 'w-15'}>
               <FigureInput label={label} error={errors[field]?.message} {...form.register(field)} />
             </span>
           </label>

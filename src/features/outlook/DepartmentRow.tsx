@@ -33,6 +33,7 @@ export function DepartmentRow({
   site,
   rights,
   columnWidth,
+  hiddenColumns,
   hourNames,
 }: {
   board: Board;
@@ -41,6 +42,7 @@ export function DepartmentRow({
   site: Site;
   rights: Rights;
   columnWidth: number;
+  hiddenColumns: number;
   hourNames: readonly string[];
 }) {
   const { department } = board;
@@ -131,6 +133,7 @@ export function DepartmentRow({
             caption="Whole department, hour by hour"
             hourNames={hourNames}
             pastColumns={pastHours}
+            hiddenColumns={hiddenColumns}
             columnWidth={columnWidth}
             rows={[
               {

@@ -7,7 +7,7 @@ import type { Board, BoardArea } from './tonight-board.ts';
 /** Every figure of the hours ahead, area by area: the proof behind the drawing. */
 export function OutlookTables({ board, site, hourNames }: { board: Board; site: Site; hourNames: readonly string[] }) {
   return (
-    <div className="grid gap-8">
+    <div className="grid grid-cols-[minmax(0,1fr)] gap-8">
       {board.areas.map((row) => (
         <AreaTable key={row.area.id} row={row} hourNames={hourNames} />
       ))}
@@ -33,7 +33,12 @@ function AreaTable({ row, hourNames }: { row: BoardArea; hourNames: readonly str
       rows={ahead.map((_, index) => index)}
       rowKey={(index) => hourNames[index]}
       columns={[
-        { key: 'hour', header: 'At', rowHeader: true, cell: (index) => hourNames[index] },
+        {
+          key: 'hour',
+          header: 'At',
+          rowHeader: true,
+          cell: (index) => <span className="whitespace-nowrap">{hourNames[index]}</span>,
+        },
         percentile('p5', 'P5'),
         percentile('p25', 'P25'),
         percentile('p50', 'Median'),
@@ -49,7 +54,12 @@ function AreaTable({ row, hourNames }: { row: BoardArea; hourNames: readonly str
           cell: (index) => {
             const { chance, se } = row.chances[index];
             const word = row.counted ? `, ${riskWord(chance)}` : '';
-            return `${formatChance(chance)}${word} (± ${formatNumber(se * 196, 1)})`;
+            return (
+              <span className="whitespace-nowrap">
+                {formatChance(chance)}
+                {word} (± {formatNumber(se * 196, 1)})
+              </span>
+            );
           },
         },
         { key: 'add', header: 'Beds to add', figure: true, cell: (index) => formatNumber(row.bedsToAdd[index]) },

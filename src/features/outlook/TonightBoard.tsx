@@ -74,7 +74,7 @@ export function TonightBoard({
           <i aria-hidden="true" className="now-line" style={{ ['--past' as string]: pastHours }} />
           <RibbonRow {...{ board, outlook, site, columnWidth, hiddenColumns, ribbon }} now={tonight.now} />
           <PanelBoundary>
-            <DepartmentRow {...{ board, outlook, tonight, site, rights, columnWidth, hourNames }} />
+            <DepartmentRow {...{ board, outlook, tonight, site, rights, columnWidth, hiddenColumns, hourNames }} />
           </PanelBoundary>
           {board.areas.map((row, index) => (
             <PanelBoundary key={row.area.id}>

@@ -24,9 +24,8 @@ export function AcceptForm({
   const last = report.lastTimeAt ?? 0;
   const [selectedBy, setSelectedBy] = useState<ExtractFactsInput['selectedBy'] | null>(null);
   const [missing, setMissing] = useState<ExtractFactsInput['missingDeparture'] | null>(null);
-  const [takenAt, setTakenAt] = useState(() =>
-    toLocalInput(fileDate >= last && fileDate <= now ? fileDate : last, timeZone),
-  );
+  const usesFileDate = fileDate >= last && fileDate <= now;
+  const [takenAt, setTakenAt] = useState(() => toLocalInput(usesFileDate ? fileDate : last, timeZone));
   const [goodOnly, setGoodOnly] = useState(false);
   const [tried, setTried] = useState(false);
 
@@ -75,7 +74,9 @@ export function AcceptForm({
           label="When was the extract taken?"
           hint={
             <>
-              In the site’s time. Filled in from the file’s own date: correct it if that is not right.
+              In the site’s time. Filled in{' '}
+              {usesFileDate ? 'from the file’s own date' : 'with the last time in the file'}: correct it if that is not
+              right.
               {taken === null ? null : (
                 <>
                   {' '}

@@ -3,7 +3,7 @@ import { parseInstant } from '../../../shared/domain/instant.ts';
 import { readLocalTime, type DateOrder } from '../../../shared/domain/local-time.ts';
 import { VisitFileReader, type FileOutcome } from '../../../shared/domain/visit-file.ts';
 import { visitColumns, type VisitColumn, type VisitReading } from '../../../shared/domain/visit-row.ts';
-import { makeZone } from '../../../shared/domain/zoned-time.ts';
+import { makeZone, type Zone } from '../../../shared/domain/zoned-time.ts';
 import { decodeFile } from './decode-file.ts';
 import { makeRecordParser } from './parse-records.ts';
 import type { FileSurvey } from './survey-file.ts';
@@ -99,8 +99,33 @@ export async function checkFile(
   return { outcome, payload: outcome.refused === null && outcome.report.goodRows > 0 ? packed : null };
 }
 
+const quarterHour = 900;
+
+/**
+ * Instants of local times, as `zone.fromLocal` tells them, kept by quarter of an hour where there is one
+ * only: a log has millions of times within some ten thousand quarters.
+ */
+function makeLocalReader(zone: Zone): (local: number) => readonly number[] {
+  const offsets = new Map<number, number>();
+  const single = [0];
+  return (local) => {
+    const quarter = Math.floor(local / quarterHour);
+    let offset = offsets.get(quarter);
+    if (offset === undefined) {
+      const first = zone.fromLocal(quarter * quarterHour);
+      const last = zone.fromLocal((quarter + 1) * quarterHour - 1);
+      const isPlain = first.length === 1 && last.length === 1 && last[0] - first[0] === quarterHour - 1;
+      offset = isPlain ? quarter * quarterHour - first[0] : NaN;
+      offsets.set(quarter, offset);
+    }
+    if (Number.isNaN(offset)) return zone.fromLocal(local);
+    single[0] = local - offset;
+    return single;
+  };
+}
+
 function makeReading({ mapping, areaIds, timeZone }: CheckSettings): VisitReading {
-  const zone = makeZone(timeZone);
+  const fromLocal = makeLocalReader(makeZone(timeZone));
   const areas = new Map(
     Object.entries(mapping.areas).map(([value, id]) => [value, id === null ? -1 : areaIds.indexOf(id)] as const),
   );
@@ -112,7 +137,7 @@ function makeReading({ mapping, areaIds, timeZone }: CheckSettings): VisitReadin
       if (!Number.isNaN(instant)) return instant;
       const local = readLocalTime(text, mapping.dateOrders[column]);
       if (Number.isNaN(local)) return NaN;
-      const found = zone.fromLocal(local);
+      const found = fromLocal(local);
       if (found.length === 1) return found[0];
       if (found.length === 0) return 'skipped';
       if (mapping.repeatedHour === 'refuse') return 'repeated';

@@ -1,0 +1,71 @@
+import { render, screen } from '@testing-library/react';
+import userEvent from '@testing-library/user-event';
+import { expect, test, vi } from 'vitest';
+import type { VisitReport } from '../../../../shared/domain/visit-report.ts';
+import { AcceptForm } from '../../../../src/features/visit-logs/AcceptForm.tsx';
+
+/** 2026-11-30T10:15:00Z */
+const last = 1_796_033_700;
+const now = last + 7200;
+const report: VisitReport = {
+  rows: 100,
+  goodRows: 90,
+  problemRows: 10,
+  problems: [{ problem: 'area unknown', column: 'care_area', rows: 10, examples: [3] }],
+  identicalRows: 0,
+  firstArrivalAt: last - 86_400,
+  lastArrivalAt: last,
+  lastTimeAt: last,
+  visitsByArea: [{ area: 0, visits: 90 }],
+  recorded: { departure: 80, bedSpace: 0, admissionDecision: 0, disposition: 90, byAmbulance: 90 },
+};
+
+function show(more: Partial<VisitReport> = {}) {
+  const onAccept = vi.fn();
+  render(
+    <AcceptForm
+      report={{ ...report, ...more }}
+      timeZone="Europe/London"
+      now={now}
+      fileDate={last + 3600}
+      onAccept={onAccept}
+    />,
+  );
+  return { onAccept, user: userEvent.setup(), send: screen.getByRole('button', { name: /^Send and load/ }) };
+}
+
+test('nothing is sent before every question is answered, and each says so', async () => {
+  const { onAccept, user, send } = show();
+  await user.click(send);
+  expect(onAccept).not.toHaveBeenCalled();
+  expect(screen.getAllByRole('alert').map((alert) => alert.textContent)).toEqual([
+    'Choose one.',
+    'Choose one.',
+    'Tick this, or correct the file and choose it again.',
+  ]);
+});
+
+test('the answers are sent as they were given; the file’s own date is the first guess for the extract', async () => {
+  const { onAccept, user, send } = show();
+  await user.click(screen.getByLabelText('Those that arrived in its period'));
+  await user.click(screen.getByLabelText(/still present when/));
+  await user.click(screen.getByLabelText('Load the 90 good rows and leave out 10 problem rows'));
+  await user.click(send);
+  expect(onAccept).toHaveBeenCalledWith({
+    selectedBy: 'arrived',
+    takenAt: last + 3600,
+    missingDeparture: 'still present',
+  });
+});
+
+test('an extract taken before its last time is refused', async () => {
+  const { onAccept, user, send } = show({ problemRows: 0, recorded: { ...report.recorded, departure: 90 } });
+  await user.click(screen.getByLabelText(/Those that departed/));
+  const field = screen.getByLabelText('When was the extract taken?');
+  await user.clear(field);
+  await user.type(field, '2026-11-30T09:00');
+  await user.click(send);
+  expect(onAccept).not.toHaveBeenCalled();
+  expect(screen.getByRole('alert').textContent).toBe('Not before the last time in the file, 30 Nov 2026, 10:15.');
+  expect(screen.queryByText(/missing departure/)).toBeNull();
+});
