@@ -86,7 +86,7 @@ export async function startServer(config: Config): Promise<RunningServer> {
     await close();
     throw error;
   }
-  await deps.jobs.start(makeJobKinds(deps));
+  await deps.jobs.start(makeJobKinds(deps, issuer));
   const timetable = startTimetable(deps, issuer, sessions);
   deps.logger.info({ url: config.baseUrl }, 'listening');
   return {

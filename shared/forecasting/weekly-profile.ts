@@ -7,13 +7,14 @@ import { weeklyBasis } from './weekly-basis.ts';
 /** Prior variances of the families of smooth terms, and the gamma shape of an hour about the smooth rate. */
 export interface ProfileScales {
   daily: number;
+  weekday: number;
   weekly: number;
   mixed: number;
   shrinkage: number;
 }
 
 /** Where the search for scales starts; good enough where a profile is only compared with itself. */
-export const usualScales: ProfileScales = { daily: 0.3, weekly: 0.01, mixed: 0.003, shrinkage: 500 };
+export const usualScales: ProfileScales = { daily: 0.3, weekday: 0.003, weekly: 0.003, mixed: 0.003, shrinkage: 500 };
 
 const variances = [1e-4, 1e-3, 3e-3, 1e-2, 3e-2, 0.1, 0.3, 1];
 const shrinkages = [5, 15, 50, 150, 500, 1500, 5000, 50_000];
@@ -28,7 +29,7 @@ const shrinkages = [5, 15, 50, 150, 500, 1500, 5000, 50_000];
  * @param counts arrivals of each hour of week (may be weighted), 168
  * @param exposure hours behind them, times whatever else is known to have multiplied the rate, 168
  * @param known scales to take as they are instead of looking for them
- * @returns rates per hour; finite and positive even for an empty area. Cost: a few tens of 43×43 solves, 10–20 ms.
+ * @returns rates per hour; finite and positive even for an empty area. Cost: a few tens of 61×61 solves, 10–20 ms.
  */
 export function fitWeeklyProfile(
   counts: Float64Array,
@@ -41,7 +42,7 @@ export function fitWeeklyProfile(
   const tried = new Map<string, number>();
   for (let sweep = 0; sweep < 3 && !known; sweep += 1) {
     let moved = false;
-    for (const name of ['daily', 'weekly', 'mixed', 'shrinkage'] as const) {
+    for (const name of ['daily', 'weekday', 'weekly', 'mixed', 'shrinkage'] as const) {
       if (coarse && name === 'mixed') continue;
       const grid = name === 'shrinkage' ? shrinkages : variances;
       for (const direction of [-1, 1]) {
@@ -105,7 +106,10 @@ function solveProfile(
     totalExposure += exposure[hour];
   }
   const centre = Math.log((totalCount + 0.5) / Math.max(totalExposure, 1));
-  const prior = variance.map((unit, i) => (family[i] === 'level' ? 1 : unit * scales[family[i] as 'daily']));
+  const prior = variance.map((unit, i) => {
+    const name = family[i];
+    return name === 'level' ? unit : unit * scales[name];
+  });
 
   const beta = start ? start.slice() : new Float64Array(size);
   const smooth = new Float64Array(hoursOfWeek);

@@ -18,7 +18,9 @@ export function PageHead({
   return (
     <header className="page-pad flex flex-wrap items-start justify-between gap-x-10 gap-y-2 pt-4 pb-3">
       <div className="min-w-0 flex-[1_1_36rem]">
-        <h1 className="text-headline-phone text-ink sm:text-headline-tablet lg:text-headline print:text-headline-phone">{title}</h1>
+        <h1 className="text-headline-phone text-ink sm:text-headline-tablet lg:text-headline print:text-headline-phone">
+          {title}
+        </h1>
         {lede ? <div className="mt-1.5 text-lede text-ink2">{lede}</div> : null}
       </div>
       {aside ? <div className="text-side text-ink2">{aside}</div> : null}

@@ -94,14 +94,16 @@ out["liveNormal"] = cases
 # Weekly profile: N_h negative binomial about E_h s_h with size kappa, log s = centre + B beta, beta normal; then the
 # gamma posterior mean (kappa + N) / (kappa / s + E).
 hours = np.arange(168)
-terms = [(7 * j, "daily", 1 / j**3) for j in range(1, 7)]
-terms += [(k, "weekly", 1.0) for k in range(1, 4)]
+daily = [(7 * j, "daily", 1 / j**3) for j in range(1, 12)]
+terms = [(k, "weekly", 1.0) for k in range(1, 4)]
 terms += [(7 * j + side, "mixed", 1 / j**2) for j in (1, 2) for side in (-3, -2, -1, 1, 2, 3)]
-scales = {"daily": 0.3, "weekly": 0.01, "mixed": 0.003}
+scales = {"daily": 0.3, "weekday": 0.005, "weekly": 0.01, "mixed": 0.003}
 kappa = 50.0
 angle = 2 * np.pi * (hours + 0.5) / 168
-B = np.column_stack([np.ones(168)] + [f(c * angle) for c, _, _ in terms for f in (np.sin, np.cos)])
-prior = np.array([1.0] + [v * scales[f] for _, f, v in terms for _ in (0, 1)])
+terms = daily + terms
+columns = [np.ones(168), np.sin(84 * angle)] + [(hours // 24 == d).astype(float) for d in range(7)]
+B = np.column_stack(columns + [f(c * angle) for c, _, _ in terms for f in (np.sin, np.cos)])
+prior = np.array([1.0, scales["daily"] / 12**3] + 7 * [scales["weekday"]] + [v * scales[f] for _, f, v in terms for _ in (0, 1)])
 E = rng.uniform(10, 14, 168)
 N = rng.poisson(E * 5 * np.exp(0.6 * np.sin(2 * np.pi * (hours - 8) / 24) + 0.1 * (hours < 24)))
 centre = np.log((N.sum() + 0.5) / E.sum())

@@ -87,12 +87,12 @@ export async function openTestServer({
     sessions,
     time,
     async workJobs() {
-      if (!working) await jobs.start(makeJobKinds(deps));
+      if (!working) await jobs.start(makeJobKinds(deps, issuer));
       working = true;
       await jobs.idle();
     },
     async restartJobs() {
-      await jobs.start(makeJobKinds(deps));
+      await jobs.start(makeJobKinds(deps, issuer));
       working = true;
     },
     async signedInAs(personId) {

@@ -33,7 +33,10 @@ export function addArrivalModelRoutes(
     const kind = screenNote(reason);
     if (kind !== null) {
       throw badInput('The reason was refused.', [
-        { at: 'reason', message: `It seems to hold ${withArticle(kind)}. Say it without anything that identifies a person.` },
+        {
+          at: 'reason',
+          message: `It seems to hold ${withArticle(kind)}. Say it without anything that identifies a person.`,
+        },
       ]);
     }
   }

@@ -1,3 +1,4 @@
+import type { EntityManager } from 'typeorm';
 import type { Dependencies } from '../../dependencies.ts';
 import { CareArea } from '../../entities/CareArea.ts';
 import { VisitLog } from '../../entities/VisitLog.ts';
@@ -8,12 +9,15 @@ import { deleteRowsJob } from './delete-visits.job.ts';
 import type { ImportPayload } from './import-payload.ts';
 import { deleteRows, loadRows } from './load-rows.ts';
 
+/** Told, in the last write's own transaction, that a log of a site counts from now on. */
+export type OnLogReady = (manager: EntityManager, siteId: string) => Promise<void>;
+
 /**
  * Loads an accepted file. It can be run again from the start at any time: rows of an earlier attempt
  * are deleted first, and only the last write lets the log count. So a log has all of its rows or none.
  * If it fails for good or is cancelled, the log is failed and its rows are deleted by another job.
  */
-export function makeImportVisitLog(deps: Dependencies): JobKind {
+export function makeImportVisitLog(deps: Dependencies, onReady: OnLogReady): JobKind {
   const { database, config, clock } = deps;
   return {
     async run({ payload, signal, progress }) {
@@ -48,6 +52,7 @@ export function makeImportVisitLog(deps: Dependencies): JobKind {
           subject: logId,
           detail: { rows: log.rows, sha256: log.sha256 },
         });
+        await onReady(manager, log.siteId);
       });
       await forgetChecked(config.dataDir, checkId);
     },

@@ -13,7 +13,7 @@ import { findChecked, forgetChecked } from './checked-file.ts';
 import { checkVisitLog } from './check-visit-log.ts';
 import { deleteRowsJobKind, makeDeleteVisits } from './delete-visits.job.ts';
 import { importJobKind } from './import-payload.ts';
-import { makeImportVisitLog } from './import-visit-log.job.ts';
+import { makeImportVisitLog, type OnLogReady } from './import-visit-log.job.ts';
 import { presentVisitLog, presentVisitLogDetail } from './present.ts';
 import { checksInUse } from './sweep-visit-logs.ts';
 import { withdrawVisitLog } from './withdraw-visit-log.ts';
@@ -45,8 +45,8 @@ export function addVisitLogRoutes(app: Express, routes: RouteTable, deps: Depend
 }
 
 /** What the job queue does for this feature. */
-export function visitLogJobs(deps: Dependencies): Record<string, JobKind> {
-  return { [importJobKind]: makeImportVisitLog(deps), [deleteRowsJobKind]: makeDeleteVisits(deps) };
+export function visitLogJobs(deps: Dependencies, onReady: OnLogReady): Record<string, JobKind> {
+  return { [importJobKind]: makeImportVisitLog(deps, onReady), [deleteRowsJobKind]: makeDeleteVisits(deps) };
 }
 
 async function readLogs(deps: Dependencies, site: Site) {
