@@ -1,4 +1,5 @@
 import type { Request } from 'express';
+import './session-data.ts';
 import type { Contract } from '../../shared/api/contract.ts';
 import { isGranted } from '../../shared/domain/permission.ts';
 import type { Dependencies } from '../dependencies.ts';

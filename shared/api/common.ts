@@ -15,8 +15,6 @@ export const siteParams = z.object({ siteId: id });
 /** A note that a person types: short, and screened for anything that could identify a patient. */
 export const note = z.string().trim().max(500);
 
-export const nothing = z.null();
-
 /** RFC 9457. `faults` lists every fault of the input at once. */
 export const problem = z.object({
   type: z.string(),

@@ -20,7 +20,6 @@ export const bedChange = z.object({
   madeBy: z.string(),
   madeAt: instant,
 });
-export type BedChange = z.infer<typeof bedChange>;
 
 export const staffedBeds = z.object({
   plan: z

@@ -5,18 +5,20 @@ import { profileHour, type CalendarIndex } from './calendar-effect.ts';
 import { profileExposure } from './profile-exposure.ts';
 import { fitWeeklyProfile, usualScales } from './weekly-profile.ts';
 
-const candidates = [26, 52, 104, null];
-const monthWeeks = 8;
+/** Longest memory first; a shorter one must be better by so many nats in all, which chance seldom gives. */
+const candidates = [null, 104, 52, 26];
+const clearlyBetter = 3;
+const stretchWeeks = 12;
 
 /**
- * How fast the weekly profile forgets, by rolling-origin log score: from origins eight weeks apart over the last two
- * years, the profile fitted on what came before is scored on the hours of the eight weeks after, given each day's total
+ * How fast the weekly profile forgets, by rolling-origin log score: from origins twelve weeks apart over the last two
+ * years, the profile fitted on what came before is scored on the hours of the twelve weeks after, given each day's total
  * (so that the level plays no part). Whole site. With less than 40 weeks everything is kept.
  * Cost: candidates × origins × one profile fit.
  */
 export function chooseHalfLife(counts: HourlyCounts, index: CalendarIndex, dayFactor: Float64Array): number | null {
   const length = counts.exposureHours.length;
-  const stretch = monthWeeks * hoursOfWeek;
+  const stretch = stretchWeeks * hoursOfWeek;
   const firstOrigin = Math.max(24 * hoursOfWeek, length - 104 * hoursOfWeek);
   if (length < firstOrigin + 2 * stretch) return null;
   const total = new Float64Array(length);
@@ -48,5 +50,7 @@ export function chooseHalfLife(counts: HourlyCounts, index: CalendarIndex, dayFa
       }
     });
   }
-  return candidates[score.indexOf(Math.min(...score))];
+  let best = 0;
+  for (let c = 1; c < candidates.length; c += 1) if (score[c] < score[best] - clearlyBetter) best = c;
+  return candidates[best];
 }

@@ -141,7 +141,7 @@ function solveProfile(
     // A step of more than one log unit (an hour without any count at the start) is taken by halves.
     const share = step > 1 ? 1 / step : 1;
     for (let i = 0; i < size; i += 1) beta[i] += share * (next[i] - beta[i]);
-    if (step < 1e-5) break;
+    if (step < 1e-5) { (globalThis as any).IT?.(iteration); break; }
   }
 
   let evidence = -0.5 * choleskyLogDeterminant(precisionFactor, size);

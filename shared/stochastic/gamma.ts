@@ -1,10 +1,10 @@
 import { checkNonNegative, checkPositive, checkProbability } from './check.ts';
 import { lowerRegularised, upperRegularised } from './incomplete-gamma.ts';
-import { deviancePart, digamma, logGamma, logTwoPi, stirlingError, trigamma } from './log-gamma.ts';
+import { deviancePart, logGamma, logTwoPi, stirlingError } from './log-gamma.ts';
 import { drawNormal, normalQuantile } from './normal.ts';
 import type { RandomStream } from './random.ts';
 
-export { digamma, logGamma, trigamma };
+export { logGamma };
 
 /**
  * A gamma draw of the given shape and rate 1 (mean = variance = shape): Marsaglia & Tsang (2000), ACM Trans. Math.

@@ -73,35 +73,3 @@ export function logGamma(x: number): number {
   }
   return (at - 0.5) * Math.log(at) - at + halfLogTwoPi + stirlingSeries(at) - Math.log(product);
 }
-
-/** The derivative of logGamma, ψ(x), x > 0: recurrence up to 10, then the asymptotic series (Abramowitz & Stegun 6.3.18). */
-export function digamma(x: number): number {
-  checkPositive('x', x);
-  let sum = 0;
-  let at = x;
-  while (at < 10) {
-    sum -= 1 / at;
-    at += 1;
-  }
-  const w = 1 / (at * at);
-  const series =
-    w * (1 / 12 - w * (1 / 120 - w * (1 / 252 - w * (1 / 240 - w * (1 / 132 - w * (691 / 32760 - w / 12))))));
-  return sum + Math.log(at) - 0.5 / at - series;
-}
-
-/** The second derivative of logGamma, ψ′(x), x > 0: recurrence up to 10, then the asymptotic series (Abramowitz & Stegun 6.4.12). */
-export function trigamma(x: number): number {
-  checkPositive('x', x);
-  let sum = 0;
-  let at = x;
-  while (at < 10) {
-    sum += 1 / (at * at);
-    at += 1;
-  }
-  const w = 1 / (at * at);
-  const series =
-    w *
-    (1 / 6 -
-      w * (1 / 30 - w * (1 / 42 - w * (1 / 30 - w * (5 / 66 - w * (691 / 2730 - w * (7 / 6 - (w * 3617) / 510)))))));
-  return sum + (1 + 0.5 / at + series) / at;
-}

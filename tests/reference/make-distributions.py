@@ -102,8 +102,6 @@ gamma_functions = [
     {
         'x': x,
         'logGamma': float(mp.loggamma(x)),
-        'digamma': float(mp.digamma(x)),
-        'trigamma': float(mp.polygamma(1, x)),
     }
     for x in points
 ]

@@ -14,6 +14,12 @@ export interface Rights {
   changeBeds: boolean;
 }
 
+function whenInWords({ when }: SomeTime, timeZone: string): string {
+  if (when.kind === 'tonight') return 'some time tonight';
+  if (when.kind === 'before') return `some time before ${formatTime(when.at, timeZone)}`;
+  return `some time in the shift ${when.name}`;
+}
+
 /** Word, mark and figure of the chance of any shortfall before a shift ends; an hour's chance is another thing. */
 export function SomeTimeLine({
   someTime,
@@ -30,10 +36,7 @@ export function SomeTimeLine({
     <p className="text-label text-ink2 tight">
       <RiskMark step={step} className="mr-1 inline-block h-4 w-5 align-[-2px] text-ink" />
       <span className={step >= 3 ? 'font-extrabold text-ink' : 'font-semibold'}>{riskWord(chance)}</span> {subject}
-      {someTime.until === 'tonight'
-        ? 'some time tonight'
-        : `some time before ${formatTime(someTime.until.before, timeZone)}`}
-      , <b className="text-ink">{formatChance(chance).replace(' ', '\u00a0')}</b>
+      {whenInWords(someTime, timeZone)}, <b className="text-ink">{formatChance(chance).replace(' ', '\u00a0')}</b>
     </p>
   );
 }

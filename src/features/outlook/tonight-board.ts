@@ -1,10 +1,10 @@
 import type { Outlook, Tonight } from '../../../shared/api/outlooks.ts';
 import type { CareArea, Site } from '../../../shared/api/sites.ts';
 import { bedsAt } from '../../../shared/domain/bed-schedule.ts';
-import { localDate } from '../../../shared/domain/zoned-time.ts';
 import type { Zone } from '../../../shared/domain/zoned-time.ts';
 import type { NeedColumn, StaffedStep } from '../../../shared/charts/need-columns.ts';
 import type { Chance, NeedByHour } from '../../../shared/forecasting/outlook-types.ts';
+import { isNight, nightIsOverBefore } from '../../../shared/forecasting/tonight-span.ts';
 import { printedShortfall } from '../../../shared/forecasting/printed-shortfall.ts';
 
 type AreaOutlook = Outlook['result']['areas'][number];
@@ -21,8 +21,8 @@ export interface BoardHour {
 
 export interface SomeTime {
   chance: Chance;
-  /** "some time tonight" or "some time before 21:30" */
-  until: 'tonight' | { before: number };
+  /** "some time tonight", "some time before 21:30" of the shift that runs, "some time in Early" of one to come. */
+  when: { kind: 'tonight' } | { kind: 'before'; at: number } | { kind: 'shift'; name: string };
 }
 
 export interface BoardArea {
@@ -74,23 +74,27 @@ function forecastColumn(need: NeedByHour, at: number, index: number): NeedColumn
   };
 }
 
-/** The greater of the chances of any shortfall before this shift's end and during the night to come. */
+/** The greatest of the chances of any shortfall in the shift that runs and those up to the night to come. */
 function someTimeOf(
-  shifts: readonly { from: number; to: number; someTime: Chance }[],
+  shifts: readonly { name: string; from: number; to: number; someTime: Chance }[],
   now: number,
   zone: Zone,
 ): SomeTime | null {
-  const crosses = (shift: { from: number; to: number }) =>
-    localDate(zone.toLocal(shift.from)) !== localDate(zone.toLocal(shift.to - 1));
   const coming = shifts.filter((shift) => shift.to > now);
-  const night = coming.findIndex(crosses);
+  const night = coming.findIndex((shift) => isNight(shift, zone) && shift.to - now >= nightIsOverBefore);
   const candidates = coming.slice(0, night < 0 ? 1 : night + 1);
   const worst = candidates.reduce<(typeof candidates)[number] | null>(
     (found, shift) => (found && found.someTime.chance >= shift.someTime.chance ? found : shift),
     null,
   );
   if (!worst) return null;
-  return { chance: worst.someTime, until: crosses(worst) ? 'tonight' : { before: worst.to } };
+  const when: SomeTime['when'] =
+    worst === coming[night]
+      ? { kind: 'tonight' }
+      : worst.from <= now
+        ? { kind: 'before', at: worst.to }
+        : { kind: 'shift', name: worst.name };
+  return { chance: worst.someTime, when };
 }
 
 /** Staffed beds of the drawing: what was in force at the past hours, then the outlook's own steps. */

@@ -439,8 +439,13 @@ describe('endOfTonight', () => {
     expect(endOfTonight(shifts, at(2, 2), zone)).toBe(at(2, 7, 30));
     expect(endOfTonight(shifts, at(2, 8), zone)).toBe(at(3, 7, 30));
   });
+  it('is the next night once less than three hours are left of this one', () => {
+    expect(endOfTonight(shifts, at(2, 4, 30), zone)).toBe(at(2, 7, 30));
+    expect(endOfTonight(shifts, at(2, 4, 31), zone)).toBe(at(3, 7, 30));
+  });
   it('is the next 08:00 where no shift crosses midnight', () => {
     expect(endOfTonight([], at(1, 19), zone)).toBe(at(2, 8));
     expect(endOfTonight([], at(2, 2), zone)).toBe(at(2, 8));
+    expect(endOfTonight([], at(2, 7), zone)).toBe(at(3, 8));
   });
 });

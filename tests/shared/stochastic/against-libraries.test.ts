@@ -1,5 +1,12 @@
 import { jStat } from 'jstat';
-import { linearRegression, mean, sampleCorrelation, sampleKurtosis, sampleSkewness, sampleVariance } from 'simple-statistics';
+import {
+  linearRegression,
+  mean,
+  sampleCorrelation,
+  sampleKurtosis,
+  sampleSkewness,
+  sampleVariance,
+} from 'simple-statistics';
 import { describe, expect, it } from 'vitest';
 import { binomialCdf } from '../../../shared/stochastic/binomial.ts';
 import { chiSquareQuantile, gammaCdf, gammaQuantile, logGamma } from '../../../shared/stochastic/gamma.ts';

@@ -60,8 +60,8 @@ describe('buildBoard', () => {
           }),
         ]),
       ).areas[0].someTime;
-    expect(withShifts(0.1, 0.3)).toEqual({ chance: chance(0.3), until: 'tonight' });
-    expect(withShifts(0.4, 0.3)).toEqual({ chance: chance(0.4), until: { before: late.to } });
+    expect(withShifts(0.1, 0.3)).toEqual({ chance: chance(0.3), when: { kind: 'tonight' } });
+    expect(withShifts(0.4, 0.3)).toEqual({ chance: chance(0.4), when: { kind: 'before', at: late.to } });
   });
 
   it('sums staffed beds of the department over its areas at each step', () => {
