@@ -18,6 +18,7 @@ import { StaffedBedPlan } from '../entities/StaffedBedPlan.ts';
 import { StaffedBedPlanArea } from '../entities/StaffedBedPlanArea.ts';
 import { Visit } from '../entities/Visit.ts';
 import { VisitLog } from '../entities/VisitLog.ts';
+import { VisitLogMapping } from '../entities/VisitLogMapping.ts';
 
 /** Every entity, listed by hand: no globs, so that the build and the tests load the same. */
 export const entities = [
@@ -41,4 +42,5 @@ export const entities = [
   StaffedBedPlanArea,
   Visit,
   VisitLog,
+  VisitLogMapping,
 ];

@@ -22,4 +22,8 @@ export class ExposureGapRow {
   @Column('integer') fromAt: number;
   @Column('integer') untilAt: number;
   @Column('text') reason: string;
+  @Column('text', { default: 'outage' }) kind: 'outage' | 'diversion';
+  /** Who declared it; null if it came with the installation. */
+  @Column('text', { nullable: true }) declaredBy: string | null;
+  @Column('integer', { nullable: true }) declaredAt: number | null;
 }

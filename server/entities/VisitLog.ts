@@ -1,5 +1,6 @@
 import { Column, Entity, Index, JoinColumn, ManyToOne, PrimaryColumn } from 'typeorm';
 import type { Relation } from 'typeorm';
+import type { ArrivalMeaning, AreaMeaning } from '../../shared/domain/extract-meaning.ts';
 import type { Site } from './Site.ts';
 
 /** One accepted file of visits. Its rows count only while it is ready; rules of precedence stand in database/read-visits. */
@@ -52,6 +53,14 @@ export class VisitLog {
 
   @Column('text')
   missingDeparture: 'still present' | 'unknown';
+
+  /** What the arrival time marks; null if nobody was asked. */
+  @Column('text', { nullable: true })
+  arrivalMeaning: ArrivalMeaning | null;
+
+  /** Which of a visit's areas its care area is; null if nobody was asked. */
+  @Column('text', { nullable: true })
+  areaMeaning: AreaMeaning | null;
 
   /** Rows left out, and by kind of problem (a row may have several): counts only, never a row. */
   @Column('simple-json')

@@ -29,7 +29,7 @@ export function describeApi(contracts: readonly Contract[], version: string): ob
           description: 'Success',
           ...(contract.reply instanceof z.ZodUndefined || contract.status === 204
             ? {}
-            : { content: { 'application/json': { schema: contract.reply } } }),
+            : { content: { [contract.replyType ?? 'application/json']: { schema: contract.reply } } }),
         },
         default: {
           description: 'A problem (RFC 9457)',

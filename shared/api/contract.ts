@@ -28,6 +28,8 @@ export interface Contract<
   /** Content type of a streamed body that is not JSON; such a route reads the request itself. */
   streamedBody?: string;
   reply: Reply;
+  /** Content type of a reply that is not JSON; such a route writes the answer itself. */
+  replyType?: string;
   /** Status of success, 200 if not stated. */
   status?: 200 | 201 | 202 | 204;
 }

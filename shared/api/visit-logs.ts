@@ -1,7 +1,9 @@
 import { z } from 'zod';
+import { arrivalMeanings, areaMeanings } from '../domain/extract-meaning.ts';
 import { rowProblems, visitColumns, type RowProblem } from '../domain/visit-row.ts';
 import { defineContract } from './contract.ts';
 import { id, instant, note, siteParams } from './common.ts';
+import { rememberedMapping } from './visit-log-mapping.ts';
 
 /** Limits of an upload; the browser tells them, the server enforces them. */
 export const visitLogLimits = {
@@ -52,13 +54,17 @@ export const visitLogCheck = z.object({
 });
 export type VisitLogCheck = z.infer<typeof visitLogCheck>;
 
-/** The three facts that decide how the rows are counted. */
+/** The facts that decide how the rows are counted and what they mean. */
 export const extractFacts = z.object({
   /** Whether the extract holds the visits that arrived, or those that departed, in its period. */
   selectedBy: z.enum(['arrived', 'departed']),
   takenAt: instant,
   /** What a row without a departure time means. */
   missingDeparture: z.enum(['still present', 'unknown']),
+  /** What the arrival time marks; null if nobody was asked. */
+  arrivalMeaning: z.enum(arrivalMeanings).nullable().default(null),
+  /** Which of a visit's areas its care area is; null if nobody was asked. */
+  areaMeaning: z.enum(areaMeanings).nullable().default(null),
 });
 export type ExtractFactsInput = z.infer<typeof extractFacts>;
 
@@ -148,6 +154,19 @@ export const discardVisitLogCheck = defineContract({
   reply: z.null(),
 });
 
+export const getProblemRows = defineContract({
+  id: 'getVisitLogProblemRows',
+  method: 'get',
+  path: `${logsPath}/checks/:checkId/problem-rows`,
+  access: 'visit-log:upload',
+  summary:
+    'The problem rows of a checked file as CSV: row number (1 for the first after the header), column, kind; never a value. As long as the check is kept.',
+  params: siteParams.extend({ checkId: id }),
+  query: z.object({ kind: rowProblem.optional() }),
+  replyType: 'text/csv',
+  reply: z.string(),
+});
+
 export const acceptVisitLog = defineContract({
   id: 'acceptVisitLog',
   method: 'post',
@@ -162,6 +181,8 @@ export const acceptVisitLog = defineContract({
     facts: extractFacts,
     /** Rows that the sender itself left out before sending. */
     leftOutBeforeSending: leftOut.default({ rows: 0, kinds: [] }),
+    /** How the file was read before sending; remembered for the site's next upload. */
+    mapping: rememberedMapping.optional(),
   }),
   status: 202,
   reply: z.object({ logId: id, jobId: id }),

@@ -1,4 +1,5 @@
 import { withArticle, type IdentifierKind } from './identifier-kind.ts';
+import type { ProblemRows } from './problem-rows.ts';
 import { VisitReportBuilder, type VisitReport } from './visit-report.ts';
 import { visitColumnNames, VisitRowReader, type ColumnPlaces, type VisitReading, type VisitRow } from './visit-row.ts';
 
@@ -22,8 +23,10 @@ export type ParseRecords = (text: string, isLast: boolean) => ParsedPiece;
 export const longestRecord = 100_000;
 export const mostRows = 3_000_000;
 
-/** The end of reading a file: refused as a whole, or a report. */
-export type FileOutcome = { refused: FileFault[]; identifying: boolean } | { refused: null; report: VisitReport };
+/** The end of reading a file: refused as a whole, or a report with the numbers of its problem rows. */
+export type FileOutcome =
+  | { refused: FileFault[]; identifying: boolean }
+  | { refused: null; report: VisitReport; problemRows: ProblemRows[] };
 
 export interface VisitFileOptions {
   parse: ParseRecords;
@@ -78,7 +81,7 @@ export class VisitFileReader {
     if (!this.refused && report.rows === 0) this.refuse('file', 'The file has a header but no visits under it.');
     return this.refused
       ? { refused: this.refused.faults, identifying: this.refused.identifying }
-      : { refused: null, report };
+      : { refused: null, report, problemRows: this.builder.problemRows() };
   }
 
   private refuse(at: string, message: string): void {

@@ -1,4 +1,5 @@
 import type { IdentifierKind } from './identifier-kind.ts';
+import { RowNumbers, type ProblemRows } from './problem-rows.ts';
 import { ValueTally } from './value-tally.ts';
 import {
   notRecorded,
@@ -47,6 +48,7 @@ const examplesKept = 5;
 export class VisitReportBuilder implements RowListener {
   private readonly now: number;
   private readonly problems = new Map<string, ProblemCount>();
+  private readonly rowsOf = new Map<string, RowNumbers>();
   private readonly tallies = new Map<VisitColumn, ValueTally>();
   private readonly identified = new Map<string, { column: VisitColumn; kind: IdentifierKind; rows: number }>();
   private readonly byArea = new Map<number, number>();
@@ -71,6 +73,9 @@ export class VisitReportBuilder implements RowListener {
 
   problem(kind: RowProblem, column: VisitColumn | null): void {
     const key = `${kind}/${column ?? ''}`;
+    let rows = this.rowsOf.get(key);
+    if (!rows) this.rowsOf.set(key, (rows = new RowNumbers()));
+    rows.add(this.rows);
     const known = this.problems.get(key);
     if (!known) this.problems.set(key, { problem: kind, column, rows: 1, examples: [this.rows] });
     else {
@@ -122,15 +127,28 @@ export class VisitReportBuilder implements RowListener {
     return [...this.identified.values(), ...fromValues];
   }
 
+  /** Every problem row by number, in the order of the report's kinds. */
+  problemRows(): ProblemRows[] {
+    return this.sortedProblems().map(({ problem, column }) => ({
+      problem,
+      column,
+      rows: (this.rowsOf.get(`${problem}/${column ?? ''}`) ?? new RowNumbers()).all(),
+    }));
+  }
+
+  private sortedProblems(): ProblemCount[] {
+    const order = Object.keys(rowProblems);
+    return [...this.problems.values()].sort((a, b) => order.indexOf(a.problem) - order.indexOf(b.problem));
+  }
+
   /** Cost: a sort of one number a row. */
   report(): VisitReport {
-    const order = Object.keys(rowProblems);
     const any = this.goodRows > 0;
     return {
       rows: this.rows,
       goodRows: this.goodRows,
       problemRows: this.rows - this.goodRows,
-      problems: [...this.problems.values()].sort((a, b) => order.indexOf(a.problem) - order.indexOf(b.problem)),
+      problems: this.sortedProblems(),
       identicalRows: countRepeats(this.marks.subarray(0, this.goodRows)),
       firstArrivalAt: any ? this.firstArrivalAt : null,
       lastArrivalAt: any ? this.lastArrivalAt : null,

@@ -3,7 +3,7 @@ import { poissonLogPmf } from '../stochastic/poisson.ts';
 import type { HourlyCounts } from './arrival-model.ts';
 import { profileHour, type CalendarIndex } from './calendar-effect.ts';
 import { profileExposure } from './profile-exposure.ts';
-import { fitWeeklyProfile, usualScales } from './weekly-profile.ts';
+import { profileRates, usualScales } from './weekly-profile.ts';
 
 /** Longest memory first; a shorter one must be better by so many nats in all, which chance seldom gives. */
 const candidates = [null, 104, 52, 26];
@@ -32,7 +32,7 @@ export function chooseHalfLife(counts: HourlyCounts, index: CalendarIndex, dayFa
   for (let origin = Math.floor(firstOrigin / 24) * 24; origin + stretch <= length; origin += stretch) {
     candidates.forEach((halfLife, c) => {
       const sums = profileExposure(site, 0, index, dayFactor, halfLife, 0, origin);
-      const { ratePerHour } = fitWeeklyProfile(sums.counts, sums.exposure, false, usualScales);
+      const ratePerHour = profileRates(sums.counts, sums.exposure, usualScales);
       for (let start = origin; start < origin + stretch; start += 24) {
         if (index.byDay.has((site.firstLocalHour + start) / 24)) continue;
         let expected = 0;

@@ -1,5 +1,4 @@
-import { makeStream } from '../stochastic/random.ts';
-import type { RandomStream, SeededStream } from '../stochastic/random.ts';
+import type { RandomStream } from '../stochastic/random.ts';
 
 const words = 64;
 const layers = 256;
@@ -28,12 +27,56 @@ const height = new Float64Array(layers + 1);
   height[layers] = 1;
 })();
 
+/** The 64-bit hash that a path is absorbed into, low and high word. */
+let low = 0;
+let high = 0;
+
+/** h += 0x9e3779b97f4a7c15. */
+function advance(): void {
+  const sum = (low >>> 0) + 0x7f4a7c15;
+  low = sum | 0;
+  high = (high + 0x9e3779b9 + (sum > 0xffffffff ? 1 : 0)) | 0;
+}
+
+/** Upper 32 bits of the product of two words: schoolbook on halves of 16 bits. */
+function upperProduct(a: number, b: number): number {
+  const a0 = a & 0xffff;
+  const a1 = a >>> 16;
+  const b0 = b & 0xffff;
+  const b1 = b >>> 16;
+  const cross = a1 * b0;
+  const other = a0 * b1;
+  const middle = ((a0 * b0) >>> 16) + (cross & 0xffff) + (other & 0xffff);
+  return (a1 * b1 + (cross >>> 16) + (other >>> 16) + (middle >>> 16)) | 0;
+}
+
+/** SplitMix64's output function on the hash. */
+function mix(): void {
+  let l = low ^ ((low >>> 30) | (high << 2));
+  let h = high ^ (high >>> 30);
+  h = (upperProduct(l, 0x1ce4e5b9) + Math.imul(h, 0x1ce4e5b9) + Math.imul(l, 0xbf58476d)) | 0;
+  l = Math.imul(l, 0x1ce4e5b9);
+  l ^= (l >>> 27) | (h << 5);
+  h ^= h >>> 27;
+  h = (upperProduct(l, 0x133111eb) + Math.imul(h, 0x133111eb) + Math.imul(l, 0x94d049bb)) | 0;
+  l = Math.imul(l, 0x133111eb);
+  low = l ^ ((l >>> 31) | (h << 1));
+  high = h ^ (h >>> 31);
+}
+
+/** Absorbs a whole number of at most 53 bits. */
+function absorb(word: number): void {
+  advance();
+  mix();
+  low ^= word | 0;
+  high ^= Math.floor(word / 4294967296) | 0;
+}
+
 /**
- * The stream of the patients' loop: xoshiro128** (Blackman & Vigna 2021) filled 64 words at a time with its state in
- * registers, seeded by the first four words of the seeded stream of the same seed and path. A third of the time a word.
+ * The stream of the patients' loop: the words of `makeStream` of the same seed and path, made 64 at a time with the state
+ * in registers and seeded without an array or object: a third of the time a word, a quarter a seeding.
  */
 export class QuickStream implements RandomStream {
-  private readonly seeder: SeededStream = makeStream(0);
   private readonly block = new Uint32Array(words);
   private next = words;
   private a = 0;
@@ -41,24 +84,44 @@ export class QuickStream implements RandomStream {
   private c = 0;
   private d = 1;
 
-  /** Sets seed and path: as makeStream. */
+  /** Sets seed and path: as makeStream, for safe whole numbers, which the caller has checked. */
   reseed(seed: number, purpose: number, replication: number, place: number): void {
-    const { seeder } = this;
-    seeder.reseed(seed, purpose, replication, place);
-    this.a = seeder.uint32() | 0;
-    this.b = seeder.uint32() | 0;
-    this.c = seeder.uint32() | 0;
-    // The state of all zeros would stay there; one in 2¹²⁸ is still made impossible.
-    this.d = seeder.uint32() | 1;
+    low = seed | 0;
+    high = Math.floor(seed / 4294967296) | 0;
+    absorb(purpose);
+    absorb(replication);
+    absorb(place);
+    advance();
+    const keptLow = low;
+    const keptHigh = high;
+    mix();
+    this.a = low;
+    this.b = high;
+    low = keptLow;
+    high = keptHigh;
+    advance();
+    mix();
+    this.c = low;
+    this.d = high;
+    // The state of all zeros would stay there.
+    if ((this.a | this.b | this.c | this.d) === 0) this.a = 1;
     this.next = words;
   }
 
   private fill(): void {
+    this.make(this.block, words);
+    this.next = 0;
+  }
+
+  /**
+   * Writes words into a buffer, for loops that know how many they need: what is left of a block is dropped, so that a
+   * stretch of the sequence is used once at most.
+   */
+  make(out: Uint32Array, count: number): void {
     let { a, b, c, d } = this;
-    const { block } = this;
-    for (let i = 0; i < words; i += 1) {
+    for (let i = 0; i < count; i += 1) {
       const scrambled = Math.imul(b, 5);
-      block[i] = Math.imul((scrambled << 7) | (scrambled >>> 25), 9);
+      out[i] = Math.imul((scrambled << 7) | (scrambled >>> 25), 9);
       const shifted = b << 9;
       c ^= a;
       d ^= b;
@@ -71,7 +134,7 @@ export class QuickStream implements RandomStream {
     this.b = b;
     this.c = c;
     this.d = d;
-    this.next = 0;
+    this.next = words;
   }
 
   /** Uniform on 0 .. 2³² − 1. */
@@ -89,7 +152,11 @@ export class QuickStream implements RandomStream {
 
   /** Exponential of mean 1 by the ziggurat (Marsaglia & Tsang 2000, J. Stat. Softw. 5(8)): one word in 98 of 100 draws. */
   exponential(): number {
-    const word = this.uint32();
+    return this.exponentialFrom(this.uint32());
+  }
+
+  /** The same from a word already drawn; the few that fall outside take more words of the stream. */
+  exponentialFrom(word: number): number {
     const layer = word & 255;
     const step = word >>> 8;
     if (step < inside[layer]) return (step + 0.5) * width[layer];

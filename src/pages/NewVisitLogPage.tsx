@@ -5,7 +5,7 @@ import { PageHead } from '../components/PageHead.tsx';
 import { SkeletonLines } from '../components/Skeleton.tsx';
 import { useSession } from '../features/sign-in/session.ts';
 import { useServerNow } from '../features/sign-in/use-server-now.ts';
-import { useSite } from '../features/visit-logs/queries.ts';
+import { useSite, useVisitLogMapping } from '../features/visit-logs/queries.ts';
 import { UploadWalk } from '../features/visit-logs/UploadWalk.tsx';
 
 /** /sites/:siteId/logs/new */
@@ -15,18 +15,21 @@ export function NewVisitLogPage() {
   const now = useServerNow();
   const held = useSession().sites.find((candidate) => candidate.id === siteId)?.permissions ?? [];
   const site = useSite(siteId);
+  const mayUpload = held.includes('visit-log:upload');
+  const last = useVisitLogMapping(siteId, mayUpload);
   const allLogs = (
     <Link to={paths.visitLogs(siteId)} className="link inline-block min-h-6">
       All logs
     </Link>
   );
-  if (site.data && held.includes('visit-log:upload')) {
+  if (site.data && mayUpload && last.data !== undefined) {
     return (
       <UploadWalk
         siteId={siteId}
         areas={site.data.areas}
         timeZone={site.data.timeZone}
         now={now}
+        last={last.data}
         aside={allLogs}
         onAccepted={(logId) => void navigate(paths.visitLog(siteId, logId))}
       />
@@ -36,7 +39,7 @@ export function NewVisitLogPage() {
     <>
       <PageHead tab="Load a visit log" title="Load a visit log." aside={allLogs} />
       <div className="page-pad grid max-w-3xl gap-6">
-        {held.includes('visit-log:upload') ? null : (
+        {mayUpload ? null : (
           <Notice kind="caution" title="Loading logs is the data steward’s work.">
             <p>Your roles at this site do not include it. Ask your administrator if they should.</p>
           </Notice>
@@ -44,7 +47,12 @@ export function NewVisitLogPage() {
         {site.error ? (
           <ProblemNotice error={site.error} onRetry={() => void site.refetch()} retrying={site.isFetching} />
         ) : null}
-        {site.isPending ? <SkeletonLines lines={4} label="Loading the site’s care areas" /> : null}
+        {last.error ? (
+          <ProblemNotice error={last.error} onRetry={() => void last.refetch()} retrying={last.isFetching} />
+        ) : null}
+        {site.isPending || (mayUpload && last.isPending) ? (
+          <SkeletonLines lines={4} label="Loading the site’s care areas" />
+        ) : null}
       </div>
     </>
   );

@@ -1,5 +1,6 @@
 import type { acceptVisitLog as contract } from '../../../shared/api/visit-logs.ts';
 import { newId } from '../../database/new-id.ts';
+import { CareArea } from '../../entities/CareArea.ts';
 import { VisitLog } from '../../entities/VisitLog.ts';
 import { badInput, HttpError } from '../../errors.ts';
 import { recordAudit } from '../../http/audit.ts';
@@ -9,6 +10,7 @@ import { fileRefused, problemFaults } from './check-visit-log.ts';
 import { importJobKind, type ImportPayload } from './import-payload.ts';
 import { refuseRepeat } from './find-repeat.ts';
 import { periodOf } from './period.ts';
+import { keepMapping, screenMapping } from './remember-mapping.ts';
 
 const clockTolerance = 300;
 
@@ -60,6 +62,9 @@ export async function acceptVisitLog({
   const period = periodOf(report, site.timeZone, facts.takenAt);
   if (!period) throw fileRefused(problemFaults(report), false, 'No row of the file can be read as a visit.');
 
+  const areas = await deps.database.read.findBy(CareArea, { siteId: site.id });
+  const mapping = body.mapping ? screenMapping(body.mapping, areas, now) : null;
+
   const problems = new Map<string, number>();
   for (const { problem, rows } of [...report.problems, ...body.leftOutBeforeSending.kinds]) {
     problems.set(problem, (problems.get(problem) ?? 0) + rows);
@@ -102,6 +107,7 @@ export async function acceptVisitLog({
       reason: null,
       jobId: job,
     });
+    if (mapping) await keepMapping(manager, { siteId: site.id, mapping, savedBy: caller.person.name, savedAt: now });
     await recordAudit(manager, { ...request, caller, site, now }, 'visit-log.accepted', logId, {
       rows: report.goodRows,
       leftOut: report.problemRows + body.leftOutBeforeSending.rows,

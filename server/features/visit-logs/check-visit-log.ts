@@ -37,7 +37,7 @@ export async function checkVisitLog(context: SiteContext<typeof contract>): Prom
     };
     const outcome = await deps.pool.run<FileOutcome>(workerUrl(import.meta.url, 'read-visit-log.worker'), input);
     if (outcome.refused !== null) throw fileRefused(outcome.refused, outcome.identifying);
-    const { report } = outcome;
+    const { report, problemRows } = outcome;
     if (report.goodRows === 0) {
       throw fileRefused(problemFaults(report), false, 'No row of the file can be read as a visit.');
     }
@@ -50,7 +50,7 @@ export async function checkVisitLog(context: SiteContext<typeof contract>): Prom
       checkedAt: now,
       report,
     };
-    await keepChecked(dataDir, checked);
+    await keepChecked(dataDir, checked, problemRows);
     return presentCheck(checked, areas, site.timeZone, now);
   } catch (error) {
     await forgetChecked(dataDir, checkId);

@@ -1,5 +1,6 @@
 import { mkdir, readdir, readFile, rm, stat, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
+import { problemRowsCsv, type ProblemRows } from '../../../shared/domain/problem-rows.ts';
 import type { VisitReport } from '../../../shared/domain/visit-report.ts';
 import { visitLogLimits } from '../../../shared/api/visit-logs.ts';
 
@@ -31,8 +32,19 @@ function factsFile(dataDir: string, checkId: string): string {
   return join(temporaryFolder(dataDir), `${prefix}${checkId}.json`);
 }
 
-export async function keepChecked(dataDir: string, checked: CheckedFile): Promise<void> {
+/** Where the numbers of its problem rows stand; there is no such file without problem rows. */
+export function problemRowsFile(dataDir: string, checkId: string): string {
+  return join(temporaryFolder(dataDir), `${prefix}${checkId}.problems.csv`);
+}
+
+export async function keepChecked(
+  dataDir: string,
+  checked: CheckedFile,
+  problemRows: readonly ProblemRows[],
+): Promise<void> {
   await mkdir(temporaryFolder(dataDir), { recursive: true });
+  if (problemRows.length > 0)
+    await writeFile(problemRowsFile(dataDir, checked.checkId), problemRowsCsv(problemRows), { mode: 0o600 });
   await writeFile(factsFile(dataDir, checked.checkId), JSON.stringify(checked), { mode: 0o600 });
 }
 
@@ -52,6 +64,7 @@ export async function findChecked(
 /** Deletes a checked file and what is kept beside it; no error if it is gone. */
 export async function forgetChecked(dataDir: string, checkId: string): Promise<void> {
   await rm(checkedTextFile(dataDir, checkId), { force: true });
+  await rm(problemRowsFile(dataDir, checkId), { force: true });
   await rm(factsFile(dataDir, checkId), { force: true });
 }
 
@@ -68,7 +81,7 @@ export async function sweepChecked(
   const folder = temporaryFolder(dataDir);
   const names: string[] = await readdir(folder).catch(() => []);
   for (const name of names) {
-    const id = /^visit-log-([\w-]+)\.(?:csv|json)$/.exec(name)?.[1];
+    const id = /^visit-log-([\w-]+)\.(?:csv|json|problems\.csv)$/.exec(name)?.[1];
     if (id === undefined || inUse.has(id)) continue;
     const file = join(folder, name);
     const written = await stat(file).catch(() => null);

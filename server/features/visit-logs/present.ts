@@ -35,7 +35,13 @@ export function presentVisitLogDetail(
   return {
     ...presentVisitLog(log, counts),
     sha256: log.sha256,
-    facts: { selectedBy: log.selectedBy, takenAt: log.takenAt, missingDeparture: log.missingDeparture },
+    facts: {
+      selectedBy: log.selectedBy,
+      takenAt: log.takenAt,
+      missingDeparture: log.missingDeparture,
+      arrivalMeaning: log.arrivalMeaning,
+      areaMeaning: log.areaMeaning,
+    },
     leftOut: log.problems.kinds.map(({ kind, rows }) => ({ problem: kind, rows })),
     visitsByArea: presentAreas(
       log.visitsByArea.map(({ areaCode, visits }) => ({ area: areaCode, visits })),

@@ -1,4 +1,5 @@
 import type { Express } from 'express';
+import { getVisitLogMapping } from '../../../shared/api/visit-log-mapping.ts';
 import * as api from '../../../shared/api/visit-logs.ts';
 import { countingSpans } from '../../database/counting-spans.ts';
 import type { Dependencies } from '../../dependencies.ts';
@@ -15,6 +16,8 @@ import { deleteRowsJobKind, makeDeleteVisits } from './delete-visits.job.ts';
 import { importJobKind } from './import-payload.ts';
 import { makeImportVisitLog, type OnLogReady } from './import-visit-log.job.ts';
 import { presentVisitLog, presentVisitLogDetail } from './present.ts';
+import { readMapping } from './remember-mapping.ts';
+import { sendProblemRows } from './send-problem-rows.ts';
 import { checksInUse } from './sweep-visit-logs.ts';
 import { withdrawVisitLog } from './withdraw-visit-log.ts';
 
@@ -36,7 +39,13 @@ export function addVisitLogRoutes(app: Express, routes: RouteTable, deps: Depend
     return null;
   });
 
+  addSiteRoute(app, routes, deps, api.getProblemRows, (context) => sendProblemRows(context));
+
   addSiteRoute(app, routes, deps, api.acceptVisitLog, (context) => acceptVisitLog(context));
+
+  addSiteRoute(app, routes, deps, getVisitLogMapping, async ({ site }) => ({
+    remembered: await readMapping(deps.database.read, site.id),
+  }));
 
   addSiteRoute(app, routes, deps, api.withdrawVisitLog, async (context) => {
     await withdrawVisitLog(context);

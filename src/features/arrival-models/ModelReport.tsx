@@ -16,6 +16,12 @@ function settingName(name: string): string {
   return words.charAt(0).toUpperCase() + words.slice(1);
 }
 
+function settingValue(value: string | number | boolean | null): string {
+  if (value === null) return 'none';
+  if (typeof value === 'boolean') return value ? 'yes' : 'no';
+  return typeof value === 'number' ? String(Number(value.toPrecision(4))) : value;
+}
+
 function Part({ title, lead, children }: { title: string; lead?: string; children: ReactNode }) {
   return (
     <section className="border-t border-hair pt-4">
@@ -101,7 +107,7 @@ export function ModelReport({ model }: { model: ModelDetail }) {
             ([name, value]) => (
               <div key={name} className="contents">
                 <dt className="font-bold text-ink">{settingName(name)}</dt>
-                <dd className="text-ink2">{value === null ? 'none' : String(value)}</dd>
+                <dd className="text-ink2">{settingValue(value)}</dd>
               </div>
             ),
           )}

@@ -17,7 +17,7 @@ export interface Rights {
 function whenInWords({ when }: SomeTime, timeZone: string): string {
   if (when.kind === 'tonight') return 'some time tonight';
   if (when.kind === 'before') return `some time before ${formatTime(when.at, timeZone)}`;
-  return `some time in the shift ${when.name}`;
+  return `some time in the ${when.name}${/shift/i.test(when.name) ? '' : ' shift'}`;
 }
 
 /** Word, mark and figure of the chance of any shortfall before a shift ends; an hour's chance is another thing. */

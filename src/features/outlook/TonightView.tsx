@@ -125,7 +125,7 @@ function SaveReport({
   computing: boolean;
 }) {
   return (
-    <div className="page-pad text-side text-ink2 print:hidden" role="status">
+    <div className="page-pad min-h-6 text-side text-ink2 print:hidden" role="status">
       {entry.savedAt !== null && !entry.saving ? (
         <p>
           <b className="text-ink">Census saved at {formatTime(entry.savedAt, timeZone)}.</b>{' '}

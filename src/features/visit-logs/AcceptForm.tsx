@@ -1,9 +1,14 @@
 import { useState } from 'react';
+import type { RememberedMapping } from '../../../shared/api/visit-log-mapping.ts';
 import type { ExtractFactsInput } from '../../../shared/api/visit-logs.ts';
+import { areaMeanings, arrivalMeanings } from '../../../shared/domain/extract-meaning.ts';
 import type { VisitReport } from '../../../shared/domain/visit-report.ts';
 import { Button } from '../../components/Button.tsx';
 import { TextField } from '../../components/Field.tsx';
+import { Notice } from '../../components/Notice.tsx';
 import { formatCount, formatDateTime } from '../../lib/format.ts';
+import { Choice } from './Choice.tsx';
+import { areaMeaningWords, arrivalMeaningWords } from './log-words.ts';
 import { fromLocalInput, toLocalInput } from './local-input.ts';
 
 /** Fourth step: the three facts that decide how the rows are counted, and the word to load them. */
@@ -12,6 +17,7 @@ export function AcceptForm({
   timeZone,
   now,
   fileDate,
+  remembered,
   onAccept,
 }: {
   report: VisitReport;
@@ -19,11 +25,15 @@ export function AcceptForm({
   now: number;
   /** When the file was last changed, UTC seconds: the first guess for when the extract was taken. */
   fileDate: number;
-  onAccept: (facts: ExtractFactsInput) => void;
+  /** The answers of the site's last file; null before the first. */
+  remembered: RememberedMapping | null;
+  onAccept: (facts: ExtractFactsInput, wasAskedMissing: boolean) => void;
 }) {
   const last = report.lastTimeAt ?? 0;
-  const [selectedBy, setSelectedBy] = useState<ExtractFactsInput['selectedBy'] | null>(null);
-  const [missing, setMissing] = useState<ExtractFactsInput['missingDeparture'] | null>(null);
+  const [selectedBy, setSelectedBy] = useState(remembered?.selectedBy ?? null);
+  const [missing, setMissing] = useState(remembered?.missingDeparture ?? null);
+  const [arrival, setArrival] = useState(remembered?.arrivalMeaning ?? null);
+  const [area, setArea] = useState(remembered?.areaMeaning ?? null);
   const usesFileDate = fileDate >= last && fileDate <= now;
   const [takenAt, setTakenAt] = useState(() => toLocalInput(usesFileDate ? fileDate : last, timeZone));
   const [goodOnly, setGoodOnly] = useState(false);
@@ -42,6 +52,8 @@ export function AcceptForm({
           : undefined;
   const faults = {
     selectedBy: selectedBy === null ? 'Choose one.' : undefined,
+    arrival: arrival === null ? 'Choose one.' : undefined,
+    area: area === null ? 'Choose one.' : undefined,
     missing: asksMissing && missing === null ? 'Choose one.' : undefined,
     goodOnly: report.problemRows > 0 && !goodOnly ? 'Tick this, or correct the file and choose it again.' : undefined,
   };
@@ -49,15 +61,30 @@ export function AcceptForm({
   return (
     <form
       className="grid max-w-[58rem] gap-6"
+      aria-label="About the extract"
       noValidate
       onSubmit={(event) => {
         event.preventDefault();
         setTried(true);
-        if (takenFault ?? faults.selectedBy ?? faults.missing ?? faults.goodOnly) return;
-        if (selectedBy === null || taken === null) return;
-        onAccept({ selectedBy, takenAt: Math.max(taken, last), missingDeparture: missing ?? 'unknown' });
+        if (takenFault ?? faults.missing ?? faults.goodOnly) return;
+        if (selectedBy === null || arrival === null || area === null || taken === null) return;
+        onAccept(
+          {
+            selectedBy,
+            takenAt: Math.max(taken, last),
+            missingDeparture: (asksMissing ? missing : null) ?? 'unknown',
+            arrivalMeaning: arrival,
+            areaMeaning: area,
+          },
+          asksMissing,
+        );
       }}
     >
+      {remembered ? (
+        <Notice title="Answered as for the last file of this site.">
+          <p>Change what is different for this one.</p>
+        </Notice>
+      ) : null}
       <Choice
         legend="Which visits does the extract hold?"
         name="selected-by"
@@ -68,6 +95,24 @@ export function AcceptForm({
           { value: 'departed', label: 'Those that departed in its period: long stays at its end are then missing' },
         ]}
         onChoose={setSelectedBy}
+      />
+      <Choice
+        legend="What does the arrival time mark, for patients who come by ambulance?"
+        hint={changed(remembered?.arrivalMeaning, arrival, arrivalMeaningWords)}
+        name="arrival-meaning"
+        chosen={arrival}
+        error={tried ? faults.arrival : undefined}
+        options={arrivalMeanings.map((value) => ({ value, label: arrivalMeaningWords[value] }))}
+        onChoose={setArrival}
+      />
+      <Choice
+        legend="Which care area does a row name, if the patient moved between areas?"
+        hint={changed(remembered?.areaMeaning, area, areaMeaningWords)}
+        name="area-meaning"
+        chosen={area}
+        error={tried ? faults.area : undefined}
+        options={areaMeanings.map((value) => ({ value, label: areaMeaningWords[value] }))}
+        onChoose={setArea}
       />
       <div className="max-w-80">
         <TextField
@@ -134,43 +179,12 @@ export function AcceptForm({
   );
 }
 
-function Choice<Value extends string>({
-  legend,
-  name,
-  options,
-  chosen,
-  error,
-  onChoose,
-}: {
-  legend: string;
-  name: string;
-  options: readonly { value: Value; label: string }[];
-  chosen: Value | null;
-  error: string | undefined;
-  onChoose: (value: Value) => void;
-}) {
-  return (
-    <fieldset aria-invalid={error ? true : undefined}>
-      <legend className="font-bold text-ink">{legend}</legend>
-      {options.map((option) => (
-        <label key={option.value} className="flex min-h-11 items-center gap-3">
-          <input
-            type="radio"
-            name={name}
-            className="size-5 shrink-0 accent-act"
-            checked={chosen === option.value}
-            onChange={() => {
-              onChoose(option.value);
-            }}
-          />
-          {option.label}
-        </label>
-      ))}
-      {error ? (
-        <p role="alert" className="text-quiet font-bold text-warn">
-          {error}
-        </p>
-      ) : null}
-    </fieldset>
-  );
+/** Says so where an answer differs from the last file's: the counts of the two cannot be compared as they are. */
+function changed<Value extends string>(
+  before: Value | null | undefined,
+  now: Value | null,
+  words: Record<Value, string>,
+): string | undefined {
+  if (!before || before === now) return undefined;
+  return `The last file said: ${words[before]}. Logs that differ in this do not compare; fit on those of one kind.`;
 }

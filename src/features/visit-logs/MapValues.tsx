@@ -5,6 +5,7 @@ import { fieldLook } from '../../components/Field.tsx';
 import { formatNumber } from '../../lib/format.ts';
 import type { FileMapping } from './check-file.ts';
 import { columnOf, type AreaName } from './mapping.ts';
+import type { News } from './remember-mapping.ts';
 import type { FileSurvey } from './survey-file.ts';
 
 const leaveOut = 'leave out';
@@ -14,11 +15,14 @@ export function MapValues({
   survey,
   mapping,
   areas,
+  news,
   onChange,
 }: {
   survey: FileSurvey;
   mapping: FileMapping;
   areas: readonly AreaName[];
+  /** Words that the site's last file did not have. */
+  news: News['values'];
   onChange: (mapping: FileMapping) => void;
 }) {
   const codes = dispositions.map((name) => ({ value: String(dispositionCode[name]), label: name }));
@@ -28,6 +32,7 @@ export function MapValues({
     <div className="grid gap-8 lg:grid-cols-2">
       <ValueTable
         caption="Care areas"
+        fresh={news.care_area}
         values={columnOf(survey, mapping, 'care_area')?.values ?? []}
         chosen={(value) => mapping.areas[value] ?? leaveOut}
         options={areas.map(({ id, name }) => ({ value: id, label: name }))}
@@ -37,6 +42,7 @@ export function MapValues({
       />
       <ValueTable
         caption="Dispositions"
+        fresh={news.disposition}
         values={columnOf(survey, mapping, 'disposition')?.values ?? []}
         chosen={(value) => String(mapping.dispositions[value] ?? leaveOut)}
         options={[...codes, none]}
@@ -46,6 +52,7 @@ export function MapValues({
       />
       <ValueTable
         caption="By ambulance"
+        fresh={news.arrived_by_ambulance}
         values={columnOf(survey, mapping, 'arrived_by_ambulance')?.values ?? []}
         chosen={(value) => String(mapping.ambulances[value] ?? leaveOut)}
         options={[{ value: '1', label: 'yes' }, { value: '0', label: 'no' }, none]}
@@ -60,12 +67,14 @@ export function MapValues({
 function ValueTable({
   caption,
   values,
+  fresh,
   chosen,
   options,
   onChoose,
 }: {
   caption: string;
   values: readonly { value: string; rows: number }[];
+  fresh: ReadonlySet<string>;
   chosen: (value: string) => string;
   options: readonly { value: string; label: string }[];
   onChoose: (value: string, choice: string) => void;
@@ -74,10 +83,15 @@ function ValueTable({
   return (
     <DataTable
       caption={caption}
-      rows={values}
+      rows={[...values].sort((a, b) => Number(fresh.has(b.value)) - Number(fresh.has(a.value)))}
       rowKey={({ value }) => value}
       columns={[
-        { key: 'value', header: 'In the file', rowHeader: true, cell: ({ value }) => value },
+        {
+          key: 'value',
+          header: 'In the file',
+          rowHeader: true,
+          cell: ({ value }) => (fresh.has(value) ? `${value}, new` : value),
+        },
         { key: 'rows', header: 'Rows', figure: true, cell: ({ rows }) => formatNumber(rows) },
         {
           key: 'means',

@@ -1,17 +1,16 @@
 import { useEffect, useRef } from 'react';
 import type { ReactNode } from 'react';
 import { Button } from '../../components/Button.tsx';
-import { Notice, ProblemNotice } from '../../components/Notice.tsx';
+import { ProblemNotice } from '../../components/Notice.tsx';
 import { PageHead } from '../../components/PageHead.tsx';
 import { formatCount, formatNumber } from '../../lib/format.ts';
 import { AcceptForm } from './AcceptForm.tsx';
 import { CheckReport } from './CheckReport.tsx';
 import { ChooseFile } from './ChooseFile.tsx';
-import { DateOrderQuestion } from './DateOrderQuestion.tsx';
-import { MapColumns } from './MapColumns.tsx';
-import { MapValues } from './MapValues.tsx';
-import { ambiguousColumns, mappingFaults, remap, stateOrder, type AreaName } from './mapping.ts';
+import { MapStep } from './MapStep.tsx';
+import type { AreaName } from './mapping.ts';
 import { Progress } from './Progress.tsx';
+import type { LastMapping } from './remember-mapping.ts';
 import { useUploadWalk, type Walk } from './use-upload-walk.ts';
 
 /** The walk from a file to a loaded log: choose, map, check, accept. */
@@ -20,6 +19,7 @@ export function UploadWalk({
   areas,
   timeZone,
   now,
+  last,
   aside,
   onAccepted,
 }: {
@@ -27,10 +27,19 @@ export function UploadWalk({
   areas: readonly AreaName[];
   timeZone: string;
   now: number;
+  /** How the site's last file was read, by whom and when; null before the first. */
+  last: LastMapping | null;
   aside: ReactNode;
   onAccepted: (logId: string) => void;
 }) {
-  const { walk, error, ...act } = useUploadWalk({ siteId, areas, timeZone, now, onAccepted });
+  const { walk, error, ...act } = useUploadWalk({
+    siteId,
+    areas,
+    timeZone,
+    now,
+    remembered: last?.mapping ?? null,
+    onAccepted,
+  });
   const bodyRef = useRef<HTMLDivElement>(null);
   const lastStep = useRef(walk.step);
   useEffect(() => {
@@ -74,7 +83,7 @@ export function UploadWalk({
             doneText="Sent; the server is checking every row again"
           />
         ) : null}
-        {walk.step === 'map' ? <MapStep walk={walk} areas={areas} act={act} /> : null}
+        {walk.step === 'map' ? <MapStep walk={walk} areas={areas} last={last} timeZone={timeZone} act={act} /> : null}
         {walk.step === 'report' ? (
           <>
             <CheckReport
@@ -93,8 +102,9 @@ export function UploadWalk({
                 timeZone={timeZone}
                 now={now}
                 fileDate={Math.floor(walk.file.lastModified / 1000)}
-                onAccept={(facts) => {
-                  act.send(walk, facts);
+                remembered={last?.mapping ?? null}
+                onAccept={(facts, wasAskedMissing) => {
+                  act.send(walk, facts, wasAskedMissing);
                 }}
               />
             ) : null}
@@ -103,76 +113,6 @@ export function UploadWalk({
             </Button>
           </>
         ) : null}
-      </div>
-    </>
-  );
-}
-
-function MapStep({
-  walk,
-  areas,
-  act,
-}: {
-  walk: Extract<Walk, { step: 'map' }>;
-  areas: readonly AreaName[];
-  act: Pick<ReturnType<typeof useUploadWalk>, 'setMapping' | 'check' | 'back'>;
-}) {
-  const { survey, mapping, refused } = walk;
-  const faults = mappingFaults(survey, mapping);
-  const asksOrder = ambiguousColumns(survey, mapping).length > 0;
-  const unanswered = asksOrder && mapping.statedOrder === null;
-  return (
-    <>
-      {refused.length > 0 ? (
-        <Notice kind="caution" live title="The file cannot be taken as it is. Nothing was sent.">
-          <ul className="mt-1 list-disc pl-5">
-            {refused.map((fault) => (
-              <li key={`${fault.at} ${fault.message}`}>
-                <b className="text-ink">{fault.at}: </b>
-                {fault.message}
-              </li>
-            ))}
-          </ul>
-        </Notice>
-      ) : null}
-      <MapColumns
-        survey={survey}
-        mapping={mapping}
-        onMap={(ours, index) => {
-          act.setMapping(remap(survey, mapping, ours, index, areas));
-        }}
-      />
-      {asksOrder ? (
-        <DateOrderQuestion
-          order={mapping.statedOrder}
-          onState={(order) => {
-            act.setMapping(stateOrder(survey, mapping, order));
-          }}
-        />
-      ) : null}
-      <MapValues survey={survey} mapping={mapping} areas={areas} onChange={act.setMapping} />
-      {faults.length > 0 ? (
-        <Notice kind="caution" title="Before the rows can be checked">
-          <ul className="mt-1 list-disc pl-5">
-            {faults.map((fault) => (
-              <li key={fault}>{fault}</li>
-            ))}
-          </ul>
-        </Notice>
-      ) : null}
-      <div className="flex flex-wrap items-center gap-6">
-        <Button
-          disabled={faults.length > 0 || unanswered}
-          onClick={() => {
-            act.check(walk, mapping);
-          }}
-        >
-          Check {formatCount(survey.rows, 'row')}
-        </Button>
-        <Button look="quiet" onClick={act.back}>
-          Choose another file
-        </Button>
-        {unanswered ? <span className="text-ink2">First say which comes first, day or month.</span> : null}
       </div>
     </>
   );

@@ -3,7 +3,7 @@ import type { VisitLogDetail } from '../../../shared/api/visit-logs.ts';
 import { DataTable } from '../../components/DataTable.tsx';
 import { Notice } from '../../components/Notice.tsx';
 import { formatCount, formatDateTime, formatList, formatNumber } from '../../lib/format.ts';
-import { periodInWords, problemInWords, stateWord } from './log-words.ts';
+import { areaMeaningWords, arrivalMeaningWords, periodInWords, problemInWords, stateWord } from './log-words.ts';
 
 /** Everything that is kept of a log besides its visits, which are never shown. */
 export function VisitLogReport({ log, timeZone }: { log: VisitLogDetail; timeZone: string }) {
@@ -25,6 +25,15 @@ export function VisitLogReport({ log, timeZone }: { log: VisitLogDetail; timeZon
     {
       name: 'A missing departure means',
       value: log.facts.missingDeparture === 'still present' ? 'still present when the extract was taken' : 'unknown',
+    },
+    {
+      name: 'Arrival time marks',
+      value:
+        log.facts.arrivalMeaning === null ? 'not asked' : lowerFirst(arrivalMeaningWords[log.facts.arrivalMeaning]),
+    },
+    {
+      name: 'Care area is',
+      value: log.facts.areaMeaning === null ? 'not asked' : lowerFirst(areaMeaningWords[log.facts.areaMeaning]),
     },
     { name: 'File', value: <span className="break-all">{log.fileName}</span> },
     { name: 'SHA-256 of what was received', value: <span className="tighter break-all">{log.sha256}</span> },
@@ -86,3 +95,5 @@ export function VisitLogReport({ log, timeZone }: { log: VisitLogDetail; timeZon
     </div>
   );
 }
+
+const lowerFirst = (text: string) => text.charAt(0).toLowerCase() + text.slice(1);

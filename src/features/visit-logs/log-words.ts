@@ -1,3 +1,4 @@
+import type { AreaMeaning, ArrivalMeaning } from '../../../shared/domain/extract-meaning.ts';
 import { rowProblems } from '../../../shared/domain/visit-row.ts';
 import type { VisitLogSummary } from '../../../shared/api/visit-logs.ts';
 import { formatDate, formatNumber } from '../../lib/format.ts';
@@ -51,3 +52,17 @@ export function gapsBetween(logs: readonly VisitLogSummary[]): { from: number; t
 export function leftOutInWords(rows: number): string {
   return rows === 0 ? '–' : formatNumber(rows);
 }
+
+export const arrivalMeaningWords: Record<ArrivalMeaning, string> = {
+  'ambulance at the door': 'The ambulance at the door',
+  offload: 'The patient handed over by the ambulance crew (offload)',
+  registration: 'The patient registered at the desk',
+  'not known': 'It is not known',
+};
+
+export const areaMeaningWords: Record<AreaMeaning, string> = {
+  first: 'The first area',
+  longest: 'The area of the longest stay',
+  last: 'The last area',
+  'not known': 'It is not known',
+};

@@ -1,3 +1,4 @@
+import type { RememberedMapping } from '../../../shared/api/visit-log-mapping.ts';
 import { guessColumns } from '../../../shared/domain/guess-columns.ts';
 import { guessAmbulance, guessArea, guessDisposition } from '../../../shared/domain/guess-value.ts';
 import type { DateOrder } from '../../../shared/domain/local-time.ts';
@@ -12,7 +13,7 @@ import type { ColumnSurvey, FileSurvey } from './survey-file.ts';
 
 export const timeColumns = ['arrival_at', 'bed_space_at', 'admission_decision_at', 'departure_at'] as const;
 export const choiceColumns = ['care_area', 'disposition', 'arrived_by_ambulance'] as const;
-type ChoiceColumn = (typeof choiceColumns)[number];
+export type ChoiceColumn = (typeof choiceColumns)[number];
 
 export interface AreaName {
   id: string;
@@ -31,19 +32,53 @@ export function columnOf(survey: FileSurvey, mapping: FileMapping, ours: VisitCo
   return index === null ? null : survey.columns[index];
 }
 
-/** The mapping that is offered first: columns by header and values, values by their words. */
-export function offerMapping(survey: FileSurvey, areas: readonly AreaName[]): FileMapping {
-  const columns = guessColumns(survey.columns);
+/**
+ * The mapping that is offered first: as the site's last file was read, where that still fits; otherwise
+ * columns by header and values, values by their words.
+ */
+export function offerMapping(
+  survey: FileSurvey,
+  areas: readonly AreaName[],
+  remembered: RememberedMapping | null = null,
+): FileMapping {
+  const columns = offerColumns(survey, remembered);
+  const statedOrder = remembered?.dateOrder ?? null;
   const empty: FileMapping = {
     columns,
-    dateOrders: ordersOf(survey, columns, null),
-    statedOrder: null,
-    repeatedHour: 'refuse',
+    dateOrders: ordersOf(survey, columns, statedOrder),
+    statedOrder,
+    repeatedHour: remembered?.repeatedHour ?? 'refuse',
     areas: {},
     dispositions: {},
     ambulances: {},
   };
-  return choiceColumns.reduce((mapping, column) => offerValues(survey, mapping, column, areas), empty);
+  return choiceColumns.reduce((mapping, column) => offerValues(survey, mapping, column, areas, remembered), empty);
+}
+
+/**
+ * Columns under the header of last time; one whose header is gone is guessed from those that are left. One
+ * that was left unmapped stays so: it may have been left out on purpose.
+ */
+function offerColumns(survey: FileSurvey, remembered: RememberedMapping | null): FileMapping['columns'] {
+  if (!remembered) return guessColumns(survey.columns);
+  const found = Object.fromEntries(
+    visitColumns.map((ours) => {
+      const header = remembered.columns[ours]?.trim().toLowerCase();
+      const column = survey.columns.find((each) => each.header.toLowerCase() === header && fits(each, ours));
+      return [ours, column?.index ?? null];
+    }),
+  ) as FileMapping['columns'];
+  const guess = guessOthers(survey, found);
+  for (const ours of visitColumns) if (remembered.columns[ours] !== null) found[ours] ??= guess[ours];
+  return found;
+}
+
+/** Guesses columns from those of the file that none of ours is mapped to. */
+export function guessOthers(survey: FileSurvey, columns: FileMapping['columns']): FileMapping['columns'] {
+  const taken = new Set(Object.values(columns));
+  return guessColumns(
+    survey.columns.map((column) => (taken.has(column.index) ? { ...column, isBarred: true } : column)),
+  );
 }
 
 /** Maps one of our columns to another column of the file, and offers its values anew. */
@@ -53,6 +88,7 @@ export function remap(
   ours: VisitColumn,
   index: number | null,
   areas: readonly AreaName[],
+  remembered: RememberedMapping | null = null,
 ): FileMapping {
   const columns = { ...mapping.columns };
   // A column of the file stands for one of ours at most.
@@ -60,7 +96,8 @@ export function remap(
   columns[ours] = index;
   const changed = { ...mapping, columns, dateOrders: ordersOf(survey, columns, mapping.statedOrder) };
   return choiceColumns.reduce(
-    (next, column) => (columns[column] === mapping.columns[column] ? next : offerValues(survey, next, column, areas)),
+    (next, column) =>
+      columns[column] === mapping.columns[column] ? next : offerValues(survey, next, column, areas, remembered),
     changed,
   );
 }
@@ -70,12 +107,27 @@ function offerValues(
   mapping: FileMapping,
   ours: ChoiceColumn,
   areas: readonly AreaName[],
+  remembered: RememberedMapping | null,
 ): FileMapping {
   const values = (columnOf(survey, mapping, ours)?.values ?? []).map(({ value }) => value);
-  const each = <T>(guess: (value: string) => T) => Object.fromEntries(values.map((value) => [value, guess(value)]));
-  if (ours === 'care_area') return { ...mapping, areas: each((value) => guessArea(value, areas)) };
-  if (ours === 'disposition') return { ...mapping, dispositions: each(guessDisposition) };
-  return { ...mapping, ambulances: each(guessAmbulance) };
+  const each = <T>(known: readonly (readonly [string, T])[], guess: (value: string) => T) => {
+    const before = new Map(known);
+    return Object.fromEntries(
+      values.map((value) => [value, before.has(value) ? (before.get(value) as T) : guess(value)]),
+    );
+  };
+  const codes = (known: readonly { value: string; code: number | null }[] = []) =>
+    known.map(({ value, code }) => [value, code] as const);
+  if (ours === 'care_area') {
+    // An area that the site no longer has is guessed anew.
+    const known = (remembered?.areas ?? [])
+      .filter(({ areaId }) => areaId === null || areas.some(({ id }) => id === areaId))
+      .map(({ value, areaId }) => [value, areaId] as const);
+    return { ...mapping, areas: each(known, (value) => guessArea(value, areas)) };
+  }
+  if (ours === 'disposition')
+    return { ...mapping, dispositions: each(codes(remembered?.dispositions), guessDisposition) };
+  return { ...mapping, ambulances: each(codes(remembered?.ambulances), guessAmbulance) };
 }
 
 /** Time columns whose dates could be read in either order, and no other column of the file tells. */

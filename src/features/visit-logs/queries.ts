@@ -1,5 +1,6 @@
 import { useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
 import { getSite } from '../../../shared/api/sites.ts';
+import { getVisitLogMapping, type RememberedMapping } from '../../../shared/api/visit-log-mapping.ts';
 import {
   acceptVisitLog,
   getVisitLog,
@@ -37,11 +38,23 @@ export function useSite(siteId: string) {
   });
 }
 
+/** How the site's last file was read; null before the first. */
+export function useVisitLogMapping(siteId: string, enabled: boolean) {
+  return useQuery({
+    enabled,
+    // What was offered must not change under the steward's hands.
+    refetchOnWindowFocus: false,
+    queryKey: ['visit-log-mapping', siteId],
+    queryFn: async ({ signal }) => (await call(getVisitLogMapping, { params: { siteId }, signal })).remembered,
+  });
+}
+
 function useRefresh(siteId: string) {
   const queryClient = useQueryClient();
   return () =>
     Promise.all([
       queryClient.invalidateQueries({ queryKey: logsKey(siteId) }),
+      queryClient.invalidateQueries({ queryKey: ['visit-log-mapping', siteId] }),
       queryClient.invalidateQueries({ queryKey: ['jobs', siteId] }),
       queryClient.invalidateQueries({ queryKey: ['arrival-models', siteId] }),
     ]);
@@ -55,6 +68,7 @@ export function useAcceptVisitLog(siteId: string) {
       goodRowsOnly: boolean;
       facts: ExtractFactsInput;
       leftOutBeforeSending: { rows: number; kinds: { problem: string; rows: number }[] };
+      mapping: RememberedMapping;
     }) => call(acceptVisitLog, { params: { siteId }, body, kept: 'The checked file is kept for an hour.' }),
     onSuccess: refresh,
   });

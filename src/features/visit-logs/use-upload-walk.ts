@@ -1,10 +1,13 @@
 import { useEffect, useRef, useState } from 'react';
+import type { RememberedMapping } from '../../../shared/api/visit-log-mapping.ts';
 import type { ExtractFactsInput } from '../../../shared/api/visit-logs.ts';
 import { screenFileName } from '../../../shared/domain/screen-file-name.ts';
+import type { ProblemRows } from '../../../shared/domain/problem-rows.ts';
 import type { VisitReport } from '../../../shared/domain/visit-report.ts';
 import type { FileMapping } from './check-file.ts';
 import { checkOnThread, surveyOnThread } from './file-reader-thread.ts';
 import { offerMapping, type AreaName } from './mapping.ts';
+import { rememberedFrom } from './remember-mapping.ts';
 import { useAcceptVisitLog } from './queries.ts';
 import { sendFile } from './send-file.ts';
 import type { FileSurvey } from './survey-file.ts';
@@ -16,6 +19,7 @@ interface Read {
 }
 interface Checked extends Read {
   report: VisitReport;
+  problemRows: ProblemRows[];
   payload: Blob | null;
 }
 
@@ -34,12 +38,15 @@ export function useUploadWalk({
   areas,
   timeZone,
   now,
+  remembered,
   onAccepted,
 }: {
   siteId: string;
   areas: readonly AreaName[];
   timeZone: string;
   now: number;
+  /** How the site's last file was read; null before the first. */
+  remembered: RememberedMapping | null;
   onAccepted: (logId: string) => void;
 }) {
   const [walk, setWalk] = useState<Walk>({ step: 'choose' });
@@ -98,7 +105,7 @@ export function useUploadWalk({
     const known = areas.flatMap(({ id, name }) => [id, name]);
     void run({ step: 'choose' }, { step: 'surveying', file, bytes: 0, total: file.size }, async (signal, onBytes) => {
       const survey = await surveyOnThread(file, known, now, signal, onBytes);
-      return { step: 'map', file, survey, mapping: offerMapping(survey, areas), refused: [] };
+      return { step: 'map', file, survey, mapping: offerMapping(survey, areas, remembered), refused: [] };
     });
   };
 
@@ -108,12 +115,12 @@ export function useUploadWalk({
     void run(from, { ...from, step: 'checking', bytes: 0, total: file.size }, async (signal, onBytes) => {
       const { outcome, payload } = await checkOnThread(file, settings, signal, onBytes);
       return outcome.refused === null
-        ? { step: 'report', file, survey, mapping, report: outcome.report, payload }
+        ? { step: 'report', file, survey, mapping, report: outcome.report, problemRows: outcome.problemRows, payload }
         : { ...from, refused: outcome.refused };
     });
   };
 
-  const send = (checked: Checked, facts: ExtractFactsInput) => {
+  const send = (checked: Checked, facts: ExtractFactsInput, wasAskedMissing: boolean) => {
     const { payload, report } = checked;
     if (payload === null) return;
     const from: Walk = { ...checked, step: 'report' };
@@ -130,6 +137,7 @@ export function useUploadWalk({
           rows: report.problemRows,
           kinds: [...leftOut].map(([problem, rows]) => ({ problem, rows })),
         },
+        mapping: rememberedFrom(checked.survey, checked.mapping, facts, wasAskedMissing),
       });
       onAccepted(logId);
       return null;

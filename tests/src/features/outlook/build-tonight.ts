@@ -93,7 +93,7 @@ export function buildAreaOutlook(areaId: string, chances: readonly number[], cha
     bedHoursShort: { mean: 2, p90: 5 },
     peak: { p50: 20, p90: 24, p95: 26 },
     ...change,
-  } as Area;
+  };
 }
 
 export function buildTonight(change: Partial<Tonight> = {}, areas?: Area[]): Tonight {
