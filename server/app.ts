@@ -21,6 +21,7 @@ import { makeErrorHandler } from './http/error-handler.ts';
 import type { RouteTable } from './http/route.ts';
 import { securityHeaders } from './http/security-headers.ts';
 import type { SessionStore } from './http/session-store.ts';
+import { limitTokens } from './http/token-rate-limit.ts';
 import { serveClient } from './http/static-client.ts';
 
 export interface App {
@@ -90,6 +91,7 @@ export function createApp(
       },
     }),
   );
+  app.use('/api', limitTokens());
   app.use(
     ['/api', '/auth'],
     session({

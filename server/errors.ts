@@ -69,6 +69,22 @@ export function notSignedIn(): HttpError {
   });
 }
 
+/** 401: the machine token is not one of ours, or was revoked. */
+export function tokenRefused(): HttpError {
+  return new HttpError(401, 'Token refused', 'This machine token is not known here, or was revoked.', {
+    kept: 'Nothing was stored.',
+    next: 'Ask the administrator for a new token.',
+  });
+}
+
+/** 403: a token of this site, for something else. */
+export function tokenForOther(): HttpError {
+  return new HttpError(403, 'Not allowed', 'This machine token is for another purpose.', {
+    kept: 'Nothing was stored.',
+    next: 'Use a token that was made for this.',
+  });
+}
+
 /** 403: signed in, at this site, but not with a role that may. */
 export function notAllowed(): HttpError {
   return new HttpError(403, 'Not allowed', 'Your roles here do not allow this.', {

@@ -1,3 +1,5 @@
+import { AlertSent } from '../entities/AlertSent.ts';
+import { Acknowledgement } from '../entities/Acknowledgement.ts';
 import { ArrivalModelRow } from '../entities/ArrivalModelRow.ts';
 import { AuditEvent } from '../entities/AuditEvent.ts';
 import { BedChange } from '../entities/BedChange.ts';
@@ -8,6 +10,7 @@ import { CensusArea } from '../entities/CensusArea.ts';
 import { ExposureGapRow } from '../entities/ExposureGapRow.ts';
 import { HealthGroup } from '../entities/HealthGroup.ts';
 import { Job } from '../entities/Job.ts';
+import { MachineToken } from '../entities/MachineToken.ts';
 import { Membership } from '../entities/Membership.ts';
 import { OutlookRow } from '../entities/OutlookRow.ts';
 import { Person } from '../entities/Person.ts';
@@ -22,6 +25,8 @@ import { VisitLogMapping } from '../entities/VisitLogMapping.ts';
 
 /** Every entity, listed by hand: no globs, so that the build and the tests load the same. */
 export const entities = [
+  Acknowledgement,
+  AlertSent,
   ArrivalModelRow,
   AuditEvent,
   BedChange,
@@ -32,6 +37,7 @@ export const entities = [
   ExposureGapRow,
   HealthGroup,
   Job,
+  MachineToken,
   Membership,
   OutlookRow,
   Person,

@@ -21,4 +21,6 @@ export class Site {
   @Column('integer', { default: 72 }) stayCapHours: number;
   /** Past counts below this are suppressed in exports and briefs. */
   @Column('integer', { default: 5 }) smallNumberMinimum: number;
+  /** Where alert mail goes; null: none is sent. */
+  @Column('text', { nullable: true }) onCallAddress: string | null;
 }

@@ -1,9 +1,11 @@
 import type { EntityManager } from 'typeorm';
 import { AuditEvent } from '../entities/AuditEvent.ts';
+import { actorOf } from './actor.ts';
 import type { RouteContext } from './route.ts';
 
 /** The part of a route's context that an audit row needs. */
-export type AuditSource = Pick<RouteContext, 'caller' | 'site' | 'now' | 'requestId' | 'address'>;
+export type AuditSource = Pick<RouteContext, 'caller' | 'site' | 'now' | 'requestId' | 'address'> &
+  Partial<Pick<RouteContext, 'token'>>;
 
 /**
  * Adds an audit row in the same transaction as the change that it tells of.
@@ -21,11 +23,11 @@ export async function recordAudit(
   await manager.insert(AuditEvent, {
     at: source.now,
     personId: source.caller?.person.id ?? null,
-    actor: source.caller?.person.name ?? 'nobody signed in',
+    actor: actorOf(source)?.name ?? 'nobody signed in',
     siteId: source.site?.id ?? null,
     event,
     subject,
-    detail: JSON.stringify(detail),
+    detail: JSON.stringify(source.token ? { ...detail, tokenId: source.token.id } : detail),
     address: source.address,
     requestId: source.requestId,
   });

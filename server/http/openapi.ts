@@ -9,6 +9,7 @@ extendZodWithOpenApi(z);
 export function describeApi(contracts: readonly Contract[], version: string): object {
   const registry = new OpenAPIRegistry();
   registry.registerComponent('securitySchemes', 'session', { type: 'apiKey', in: 'cookie', name: 'shoalmark' });
+  registry.registerComponent('securitySchemes', 'machineToken', { type: 'http', scheme: 'bearer' });
   for (const contract of contracts) {
     const { params, query } = contract;
     registry.registerPath({
@@ -16,8 +17,11 @@ export function describeApi(contracts: readonly Contract[], version: string): ob
       method: contract.method,
       path: contract.path.replace(/:(\w+)/g, '{$1}'),
       summary: contract.summary,
-      description: contract.access === 'public' ? 'Open to nobody signed in.' : `Needs: ${contract.access}.`,
-      ...(contract.access === 'public' ? {} : { security: [{ session: [] }] }),
+      description:
+        contract.access === 'public'
+          ? 'Open to nobody signed in.'
+          : `Needs: ${contract.access}${contract.token ? `, or a machine token of the site for ${contract.token}` : ''}.`,
+      ...(contract.access === 'public' ? {} : { security: [{ session: [] }, ...(contract.token ? [{ machineToken: [] }] : [])] }),
       request: {
         ...(params instanceof z.ZodObject ? { params } : {}),
         ...(query instanceof z.ZodObject ? { query } : {}),

@@ -3,7 +3,9 @@ import type { z } from 'zod';
 import type { BodyOf, Contract, ParamsOf, QueryOf, ReplyOf } from '../../shared/api/contract.ts';
 import { badInput, HttpError, type Fault } from '../errors.ts';
 import type { Dependencies } from '../dependencies.ts';
+import type { MachineToken } from '../entities/MachineToken.ts';
 import type { Site } from '../entities/Site.ts';
+import { actorOf, type Actor } from './actor.ts';
 import { authorize } from './authorize.ts';
 import type { Caller } from './caller.ts';
 
@@ -13,8 +15,10 @@ export interface RouteContext<C = unknown> {
   params: ParamsOf<C>;
   query: QueryOf<C>;
   body: BodyOf<C>;
-  /** Who asks; null only on public routes. */
+  /** Who asks; null only on public routes, and where a machine token asks. */
   caller: Caller | null;
+  /** The machine token that asks instead of a person. */
+  token: MachineToken | null;
   /** The site of `:siteId`; the caller holds the route's permission there. */
   site: Site | null;
   /** UTC seconds at the start of the request. */
@@ -27,6 +31,9 @@ export interface RouteContext<C = unknown> {
 
 /** A context on a route of a site for a signed-in person: the common case. */
 export type SiteContext<C> = RouteContext<C> & { caller: Caller; site: Site };
+
+/** A context on a route of a site that a person or a machine token may call. */
+export type ActorContext<C> = RouteContext<C> & { actor: Actor; site: Site };
 
 /** Either sends the reply itself (returns undefined) or returns what the contract's reply schema holds. */
 type Handler<C> = (context: RouteContext<C>) => Promise<ReplyOf<C> | undefined>;
@@ -50,7 +57,7 @@ export function addRoute<C extends Contract>(
   table.contracts.push(contract);
   app[contract.method](contract.path, async (req, res) => {
     const now = deps.clock();
-    const { caller, site } = await authorize(deps, req, contract, now);
+    const { caller, site, token } = await authorize(deps, req, contract, now);
     const params = check(contract.params, req.params, 'address');
     const query = check(contract.query, req.query, 'query');
     if (contract.body && !req.is('application/json')) {
@@ -66,6 +73,7 @@ export function addRoute<C extends Contract>(
       query: query as QueryOf<C>,
       body: body as BodyOf<C>,
       caller,
+      token,
       site,
       now,
       requestId: requestIdOf(req),
@@ -94,6 +102,23 @@ export function addSiteRoute<C extends Contract>(
     const { caller, site } = context;
     if (!caller || !site) throw new Error('a route of a site was reached without a caller');
     return handler({ ...context, caller, site });
+  });
+}
+
+/** Adds routes of a site that its own systems may call too, with a machine token: the handler is told who acts. */
+export function addActorRoute<C extends Contract>(
+  app: Express,
+  table: RouteTable,
+  deps: Dependencies,
+  contract: C,
+  handler: (context: ActorContext<C>) => Promise<ReplyOf<C> | undefined>,
+): void {
+  if (!contract.path.startsWith('/api/sites/:siteId')) throw new RangeError(`${contract.path} is not a path of a site`);
+  addRoute(app, table, deps, contract, (context) => {
+    const { site } = context;
+    const actor = actorOf(context);
+    if (!actor || !site) throw new Error('a route of a site was reached by nobody');
+    return handler({ ...context, actor, site });
   });
 }
 

@@ -66,6 +66,7 @@ export const enterCensus = defineContract({
   method: 'post',
   path: '/api/sites/:siteId/censuses',
   access: 'census:enter',
+  token: 'census',
   summary: 'Enter a census; the outlook is computed anew and its id returned.',
   params: siteParams,
   body: censusBody,

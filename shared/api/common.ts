@@ -10,6 +10,9 @@ export const id = z
 /** An instant, UTC seconds. */
 export const instant = z.int().min(0).max(4_102_444_800);
 
+/** The same in an address, where everything is text. */
+export const queryInstant = z.coerce.number<number>().int().min(0).max(4_102_444_800);
+
 export const siteParams = z.object({ siteId: id });
 
 /** A note that a person types: short, and screened for anything that could identify a patient. */

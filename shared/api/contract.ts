@@ -1,5 +1,6 @@
 import type { z } from 'zod';
 import type { Permission } from '../domain/permission.ts';
+import type { TokenPurpose } from '../domain/token-purpose.ts';
 
 /**
  * Who may call a route: anybody, anybody signed in, or holders of a permission. For a path that
@@ -21,6 +22,8 @@ export interface Contract<
   /** Express path, for instance /api/sites/:siteId/censuses. */
   path: string;
   access: Access;
+  /** A machine token of the site for this purpose may call it too, without a session. */
+  token?: TokenPurpose;
   summary: string;
   params?: Params;
   query?: Query;

@@ -1,6 +1,7 @@
 import { z } from 'zod';
+import { acknowledgement } from './acknowledgements.ts';
 import { defineContract } from './contract.ts';
-import { id, instant, siteParams } from './common.ts';
+import { id, instant, queryInstant, siteParams } from './common.ts';
 
 const figures = z.array(z.number());
 const percentiles = z.object({
@@ -149,6 +150,10 @@ export const tonight = z.object({
   cautions: z.array(caution),
   /** One line on why the outlook moved since the last, null where there is none. */
   moved: z.string().nullable(),
+  /** Acknowledgements of hours past a limit that end no more than half a day ago, oldest first. */
+  acknowledgements: z.array(acknowledgement),
+  /** The outlook that stood when last night began; null if there was none. */
+  lastNight: z.object({ outlookId: id, issuedAt: instant }).nullable(),
 });
 export type Tonight = z.infer<typeof tonight>;
 
@@ -160,6 +165,48 @@ export const getTonight = defineContract({
   summary: 'The newest outlook of the site, the hours just past and the cautions that hold now.',
   params: siteParams,
   reply: tonight,
+});
+
+/** One issued outlook in a list. */
+const outlookName = z.object({ id, issuedAt: instant, trigger: outlookTrigger });
+
+export const listOutlooks = defineContract({
+  id: 'listOutlooks',
+  method: 'get',
+  path: '/api/sites/:siteId/outlooks',
+  access: 'outlook:read',
+  summary: 'The outlooks issued in [from, to), oldest first; at most eight days at once.',
+  params: siteParams,
+  query: z
+    .object({ from: queryInstant, to: queryInstant })
+    .refine(({ from, to }) => to > from && to - from <= 8 * 86_400, {
+      message: 'To must lie after from, by eight days at most',
+      path: ['to'],
+    }),
+  reply: z.object({ outlooks: z.array(outlookName) }),
+});
+
+/** An earlier outlook with what was known before it and what then happened. */
+export const outlookThen = z.object({
+  outlook,
+  /** Full hours from half a day before it to its last hour, or to now; a figure only where a census or a log speaks. */
+  past: z.array(pastHour),
+  /** Acknowledgements made while it stood, oldest first. */
+  acknowledgements: z.array(acknowledgement),
+  /** The outlooks issued before and after it. */
+  earlier: outlookName.nullable(),
+  later: outlookName.nullable(),
+});
+export type OutlookThen = z.infer<typeof outlookThen>;
+
+export const getOutlookThen = defineContract({
+  id: 'getOutlookThen',
+  method: 'get',
+  path: '/api/sites/:siteId/outlooks/:outlookId/then',
+  access: 'outlook:read',
+  summary: 'An earlier outlook as it was issued, with what then happened.',
+  params: siteParams.extend({ outlookId: id }),
+  reply: outlookThen,
 });
 
 export const getOutlook = defineContract({

@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import { arrivalMeanings, areaMeanings } from '../domain/extract-meaning.ts';
+import { heapedColumns } from '../domain/file-study.ts';
 import { rowProblems, visitColumns, type RowProblem } from '../domain/visit-row.ts';
 import { defineContract } from './contract.ts';
 import { id, instant, note, siteParams } from './common.ts';
@@ -26,6 +27,26 @@ export const problemCount = z.object({
   examples: z.array(count),
 });
 
+const span = { from: instant, to: instant };
+
+/** What the times of a file say about it; an area of null is the whole site. */
+export const visitLogStudy = z.object({
+  /** Hours with implausibly no arrivals, and how many were expected. */
+  gaps: z.array(z.object({ areaId: id.nullable(), ...span, expected: z.number() })),
+  /** Sudden changes of level: arrivals a week, the four weeks before and after. */
+  levelShifts: z.array(z.object({ areaId: id.nullable(), at: instant, before: z.number(), after: z.number() })),
+  /** Minutes of the day on which implausibly many times stand. */
+  heaps: z.array(
+    z.object({
+      column: z.enum(heapedColumns),
+      kind: z.enum(['full hour', 'end of day', 'shift end']),
+      minute: z.int().nullable(),
+      times: count,
+      expected: z.number(),
+    }),
+  ),
+});
+
 /** What the check of an uploaded file found; it holds no visit. */
 export const visitLogCheck = z.object({
   checkId: id,
@@ -42,6 +63,15 @@ export const visitLogCheck = z.object({
   identicalRows: count,
   /** The period that the log will state, whole local days, UTC seconds; null without good rows. */
   period: z.object({ from: instant, to: instant }).nullable(),
+  study: visitLogStudy.nullable(),
+  /** What accepting would change: rows and hours newly covered, and hours of which logs it would replace. */
+  accepting: z
+    .object({
+      newRows: count,
+      newHours: z.number(),
+      replaces: z.array(z.object({ id, hours: z.number() })),
+    })
+    .nullable(),
   lastTimeAt: instant.nullable(),
   visitsByArea: z.array(z.object({ areaId: id, name: z.string(), visits: count })),
   recorded: z.object({
@@ -134,6 +164,7 @@ export const checkVisitLog = defineContract({
   method: 'post',
   path: `${logsPath}/checks`,
   access: 'visit-log:upload',
+  token: 'visit-log',
   summary:
     'Send a visit log for checking: the body is CSV (text/csv), or the same gzipped (application/gzip), at most 1 GB unpacked. A file with anything that could identify a patient is refused and not kept.',
   params: siteParams,
@@ -172,6 +203,7 @@ export const acceptVisitLog = defineContract({
   method: 'post',
   path: logsPath,
   access: 'visit-log:upload',
+  token: 'visit-log',
   summary: 'Accept a checked file: its rows are loaded in the background, all or none.',
   params: siteParams,
   body: z.object({

@@ -1,3 +1,4 @@
+import { FileStudyBuilder, type FileStudy, type StudyOptions } from './file-study.ts';
 import { withArticle, type IdentifierKind } from './identifier-kind.ts';
 import type { ProblemRows } from './problem-rows.ts';
 import { VisitReportBuilder, type VisitReport } from './visit-report.ts';
@@ -26,7 +27,7 @@ export const mostRows = 3_000_000;
 /** The end of reading a file: refused as a whole, or a report with the numbers of its problem rows. */
 export type FileOutcome =
   | { refused: FileFault[]; identifying: boolean }
-  | { refused: null; report: VisitReport; problemRows: ProblemRows[] };
+  | { refused: null; report: VisitReport; problemRows: ProblemRows[]; study: FileStudy | null };
 
 export interface VisitFileOptions {
   parse: ParseRecords;
@@ -35,6 +36,8 @@ export interface VisitFileOptions {
   reading: VisitReading;
   /** UTC seconds. */
   now: number;
+  /** Asks for a study of the good rows' times; none if left out. */
+  study?: StudyOptions;
   /** Gets every good row with its number, 1 for the first row after the header. */
   onVisit?: (visit: VisitRow, rowNumber: number) => void;
 }
@@ -46,6 +49,7 @@ export interface VisitFileOptions {
 export class VisitFileReader {
   private readonly options: VisitFileOptions;
   private readonly builder: VisitReportBuilder;
+  private readonly study: FileStudyBuilder | null;
   private rest = '';
   private width = 0;
   private rowsRead = 0;
@@ -55,6 +59,7 @@ export class VisitFileReader {
   constructor(options: VisitFileOptions) {
     this.options = options;
     this.builder = new VisitReportBuilder(options.now);
+    this.study = options.study ? new FileStudyBuilder(options.study) : null;
   }
 
   /** @returns false once the file is refused: the rest need not be read */
@@ -81,7 +86,7 @@ export class VisitFileReader {
     if (!this.refused && report.rows === 0) this.refuse('file', 'The file has a header but no visits under it.');
     return this.refused
       ? { refused: this.refused.faults, identifying: this.refused.identifying }
-      : { refused: null, report, problemRows: this.builder.problemRows() };
+      : { refused: null, report, problemRows: this.builder.problemRows(), study: this.study?.study() ?? null };
   }
 
   private refuse(at: string, message: string): void {
@@ -146,6 +151,7 @@ export class VisitFileReader {
     const visit = this.rows.read(record);
     if (visit) {
       this.builder.good(visit);
+      this.study?.add(visit);
       this.options.onVisit?.(visit, this.rowsRead);
     }
   }

@@ -1,8 +1,17 @@
+import { drawPoisson } from '../stochastic/poisson.ts';
 import { purposes } from './need-plan.ts';
-import { binsPerHour, departureOf, leaveArea } from './replication-state.ts';
+import type { NeedChange } from './need-plan.ts';
+import {
+  binsPerHour,
+  departureOf,
+  enterArea,
+  guideShares,
+  leaveArea,
+  patientsAtOnce,
+  stayOf,
+} from './replication-state.ts';
 import type { ReplicationState } from './replication-state.ts';
-import { admittedStream, streamsPerArea } from './stay-model.ts';
-import { stayAt } from './stay-shape.ts';
+import { streamsPerArea } from './stay-model.ts';
 
 /** How arrivals of one area are drawn. */
 interface ArrivalDraw {
@@ -43,95 +52,134 @@ export function drawArrivals(state: ReplicationState, replication: number, chang
   });
 }
 
-/** The patients' loop: piecewise inversion of unit-exponential gaps, a stream by the shares, a stay by the time change. */
+/**
+ * The patients' loop. Given their number, Poisson of the cumulative rate's end, arrival times are independent draws by
+ * inversion of the cumulative rate; each comes with a stream by the shares and a stay by the time change. Three words a
+ * patient, drawn before the loop.
+ */
 function arrive(state: ReplicationState, { a, rate, fromHours, toHours, keep }: ArrivalDraw): void {
-  const { trace, stream, thinning, spent, change } = state;
+  const { trace, stream, change, guide, arrived, words } = state;
   // Local names: this loop is where the time goes, and captured ones cost a look-up each.
-  const { hazard, shareSteps } = state.stays;
-  const { segmentAt, shareBlock, segments, hourOfBin, shareBlocks } = state.plan;
-  const { shapes, startSegment, startHours } = state.plan.areas[a];
-  const moves = trace.moves[a];
-  const admittedIn = trace.admittedIn[a];
-  const admittedOut = trace.admittedOut[a];
+  const { spent, shareSteps } = state.stays;
+  const { shareBlock, segments, hourOfBin, shareBlocks, bins } = state.plan;
+  const { stays, from: lawFrom, last: lawLast, perHazard, end: lawEnd, tail } = state.newcomers;
+  const { segmentBin, segmentBins } = state;
+  const { moves, arriving, leaving } = trace;
+  const total = cumulateRates(state, rate, state.plan.areas[a].startSegment);
+  if (!(total > 0)) return;
   const scale = change.stay;
-  const closed = change.closed?.filter((one) => one.area === a) ?? [];
-  const row = segments + 1;
+  const changed = keep < 1 || fromHours > 0 || toHours < Infinity || change.closed !== undefined;
+  const row = segments + 2;
+  const hoursRow = state.plan.hourTo.length + 1;
   const firstStream = a * streamsPerArea;
+  const firstMove = a * (bins + 1);
   const shareFrom = a * shareBlocks * 3;
-  const thinned = keep < 1;
-  const windowed = fromHours > 0 || toHours < Infinity;
-  let k = startSegment;
-  let t = startHours;
+  const perWord = total * 2 ** -32;
+  const patients = drawPoisson(stream, total);
   let count = 0;
-  for (;;) {
-    let gap = stream.exponential();
-    let room = rate[k] * (segmentAt[k + 1] - t);
-    while (gap >= room) {
-      gap -= room;
-      k += 1;
-      if (k === segments) {
-        trace.patients += count;
-        return;
+  for (let drawn = 0; drawn < patients; drawn += patientsAtOnce) {
+    const end = 3 * Math.min(patientsAtOnce, patients - drawn);
+    stream.make(words, end);
+    for (let i = 0; i < end; i += 3) {
+      const when = words[i];
+      const before = (when + 0.5) * perWord;
+      let k = guide[when >>> 26];
+      while (arrived[k + 1] <= before) k += 1;
+      const share = (before - arrived[k]) / (arrived[k + 1] - arrived[k]);
+      const u = words[i + 1] * 2 ** -32;
+      const steps = shareFrom + shareBlock[k] * 3;
+      // Sums of comparisons: which stream it is cannot be foreseen, and a wrong guess of a branch costs more.
+      const inArea = +(u >= shareSteps[steps]) + +(u >= shareSteps[steps + 1]) + +(u >= shareSteps[steps + 2]);
+      const draw = stream.exponentialFrom(words[i + 2]);
+      if (changed && diverted(state, a, inArea, { k, share, draw, fromHours, toHours, keep })) continue;
+      count += 1;
+      const s = firstStream + inArea;
+      // As in `stayOf`, `enterArea`, `departureOf` and `leaveArea`, written out.
+      const place = draw * perHazard[s];
+      const law = lawFrom[s];
+      const last = lawLast[s];
+      let x: number;
+      if (place >= last) x = stays[law + last] + (draw - lawEnd[s]) * tail[s];
+      else {
+        const index = place | 0;
+        const lower = stays[law + index];
+        x = lower + (place - index) * (stays[law + index + 1] - lower);
       }
-      t = segmentAt[k];
-      room = rate[k] * (segmentAt[k + 1] - t);
-    }
-    t += gap / rate[k];
-    const u = stream.uniform();
-    const share = shareFrom + shareBlock[k] * 3;
-    const inArea = u < shareSteps[share] ? 0 : u < shareSteps[share + 1] ? 1 : u < shareSteps[share + 2] ? 2 : 3;
-    const draw = stream.exponential();
-    if (thinned && thinning.uniform() >= keep) continue;
-    if (windowed && (t < fromHours || t >= toHours)) continue;
-    if (closed.length > 0) {
-      const to = divertedTo(closed, t);
-      if (to !== a) {
-        if (to !== null) arriveElsewhere(state, to, inArea, k, t, draw);
-        continue;
+      if (scale !== undefined) x *= scale[s];
+      const bin = (segmentBin[k] + share * segmentBins[k]) | 0;
+      moves[firstMove + bin] += 1;
+      arriving[s * hoursRow + hourOfBin[bin]] += 1;
+      let at = s * row + k;
+      let spentBefore = spent[at];
+      let spentAfter = spent[at + 1];
+      const target = spentBefore + share * (spentAfter - spentBefore) + x;
+      while (spentAfter <= target) {
+        at += 1;
+        spentBefore = spentAfter;
+        spentAfter = spent[at + 1];
       }
-    }
-    count += 1;
-    const shape = shapes[inArea];
-    let x = shape === null ? draw : stayAt(shape, draw);
-    const s = firstStream + inArea;
-    if (scale !== undefined) x *= scale[s];
-    const bin = Math.floor(t * binsPerHour);
-    moves[bin] += 1;
-    if (inArea === admittedStream) admittedIn[hourOfBin[bin]] += 1;
-    // As in `departureOf` and `leaveArea`, written out.
-    const base = s * row;
-    const target = spent[base + k] + hazard[s * segments + k] * (t - segmentAt[k]) + x;
-    if (target < spent[base + segments]) {
-      let at = k;
-      while (spent[base + at + 1] <= target) at += 1;
-      const out = Math.floor((segmentAt[at] + (target - spent[base + at]) / hazard[s * segments + at]) * binsPerHour);
-      moves[out] -= 1;
-      if (inArea === admittedStream) admittedOut[hourOfBin[out]] += 1;
+      const left = at - s * row;
+      const out = (segmentBin[left] + ((target - spentBefore) / (spentAfter - spentBefore)) * segmentBins[left]) | 0;
+      moves[firstMove + out] -= 1;
+      leaving[s * hoursRow + hourOfBin[out]] += 1;
     }
   }
+  trace.patients += count;
+}
+
+/** Adds up an area's expected arrivals by segment and notes where each of equal shares of them begins. @returns their sum. */
+function cumulateRates(state: ReplicationState, rate: Float64Array, startSegment: number): number {
+  const { arrived, guide } = state;
+  const { segments, segmentAt } = state.plan;
+  let total = 0;
+  for (let k = startSegment; k < segments; k += 1) {
+    arrived[k] = total;
+    total += rate[k] * (segmentAt[k + 1] - segmentAt[k]);
+  }
+  arrived[segments] = total;
+  if (!(total > 0)) return 0;
+  const share = total / guideShares;
+  for (let j = 0, k = startSegment; j < guideShares; j += 1) {
+    while (arrived[k + 1] <= j * share) k += 1;
+    guide[j] = k;
+  }
+  return total;
+}
+
+interface Arrival {
+  k: number;
+  /** Share of the segment gone by. */
+  share: number;
+  draw: number;
+  fromHours: number;
+  toHours: number;
+  keep: number;
+}
+
+/** True for an arrival that a change keeps out of its area; one who goes to another area is placed there. */
+function diverted(state: ReplicationState, a: number, inArea: number, arrival: Arrival): boolean {
+  const { k, share, draw, fromHours, toHours, keep } = arrival;
+  const { segmentAt } = state.plan;
+  const t = segmentAt[k] + share * (segmentAt[k + 1] - segmentAt[k]);
+  if (keep < 1 && state.thinning.uniform() >= keep) return true;
+  if (t < fromHours || t >= toHours) return true;
+  const to = areaOpenAt(state.change.closed, a, t);
+  if (to === a) return false;
+  if (to !== null) {
+    // Same disposition and draw, the other area's stays.
+    const s = to * streamsPerArea + inArea;
+    const x = stayOf(state.newcomers, s, draw) * (state.change.stay?.[s] ?? 1);
+    enterArea(state, to, s, Math.floor(t * binsPerHour));
+    leaveArea(state, to, s, departureOf(state, s, k, share, x));
+    state.trace.patients += 1;
+  }
+  return true;
 }
 
 /** Where an arrival goes: the area itself while it is open (its own index), another area, or nowhere. */
-function divertedTo(
-  closed: readonly { area: number; fromHours: number; toHours: number; to: number | null }[],
-  t: number,
-): number | null {
-  for (const { area, fromHours, toHours, to } of closed) {
-    if (t >= fromHours && t < toHours) return to;
-    if (t < fromHours) return area;
+function areaOpenAt(closed: NeedChange['closed'], a: number, t: number): number | null {
+  for (const { area, fromHours, toHours, to } of closed ?? []) {
+    if (area === a && t >= fromHours && t < toHours) return to;
   }
-  return closed[0].area;
-}
-
-/** A patient of a closed area in another one: same disposition and draw, the other area's stays. */
-function arriveElsewhere(state: ReplicationState, a: number, inArea: number, k: number, t: number, draw: number): void {
-  const { plan, trace } = state;
-  const s = a * streamsPerArea + inArea;
-  const shape = plan.areas[a].shapes[inArea];
-  const x = (shape === null ? draw : stayAt(shape, draw)) * (state.change.stay?.[s] ?? 1);
-  const bin = Math.floor(t * binsPerHour);
-  trace.moves[a][bin] += 1;
-  trace.patients += 1;
-  if (inArea === admittedStream) trace.admittedIn[a][plan.hourOfBin[bin]] += 1;
-  leaveArea(state, a, inArea, departureOf(state, s, k, t, x));
+  return a;
 }

@@ -1,6 +1,6 @@
-import type { SeededStream } from '../stochastic/random.ts';
+import type { RandomStream } from '../stochastic/random.ts';
 import type { StayShape } from './stay-model.ts';
-import type { DrawStays } from './stay-draw.ts';
+import type { DrawSpent } from './stay-draw.ts';
 
 /** Width of a time bin, seconds: "any time within the hour" looks at the end of every bin, twelve times an hour. */
 export const binSeconds = 300;
@@ -67,8 +67,8 @@ export interface NeedPlan {
   shiftTo: Int32Array;
   /** One past the last bin of the coming night. */
   nightTo: number;
-  drawRates: (stream: SeededStream, out: Float64Array[]) => void;
-  drawStays: DrawStays;
+  drawRates: (stream: RandomStream, out: Float64Array[]) => void;
+  drawStays: DrawSpent;
 }
 
 /** Substreams, so that a change of one leaves every other draw as it was (common random numbers). */

@@ -12,7 +12,7 @@ import type { BedStep, OutlookInput } from './outlook-types.ts';
 import { expectedRates, makeRateDraw } from './rate-draws.ts';
 import { makeRateGrid } from './rate-grid.ts';
 import { blockOf, holidayNumbers } from './stay-clock.ts';
-import { expectedStays, makeStayDraw, staySegments } from './stay-draw.ts';
+import { expectedStays, makeSpentDraw, staySegments } from './stay-draw.ts';
 import { streamsPerArea } from './stay-model.ts';
 import type { StayModel, StayShape } from './stay-model.ts';
 import { arrivalMix, meansByFactor, startFactors, startGroups } from './start-groups.ts';
@@ -194,7 +194,7 @@ export function prepareNeed(model: OutlookModel, input: OutlookInput): PreparedN
     shiftTo: Int32Array.from(input.shifts, (shift) => Math.max(0, binAt(shift.to) - (shift.to <= endAt ? 1 : 0))),
     nightTo: binAt(night),
     drawRates: makeRateDraw(arrival, grid, calendar, live ?? undefined),
-    drawStays: makeStayDraw(stay, staying),
+    drawStays: makeSpentDraw(stay, staying, grid.hours),
   };
   return { plan, lengthOfStay, live, flows, expected: plain };
 }

@@ -1,154 +1,132 @@
 import { highestExcess } from './need-part.ts';
 import type { NeedPart } from './need-part.ts';
+import { cutPieces } from './need-pieces.ts';
 import { binSeconds } from './need-plan.ts';
 import type { NeedChange, NeedPlan } from './need-plan.ts';
+import { admittedStream, boardingStream, streamsPerArea } from './stay-model.ts';
 
-/** One replication: what came and went, per area. */
+/** One replication: what came and went. */
 export interface ReplicationTrace {
   patients: number;
-  /** Arrivals minus departures by bin; entry `bins` gathers what is past the end. */
-  moves: Int32Array[];
-  /** Admitted patients who leave, and arrivals who will be admitted, by `hourOfBin` of the plan (0: before the first hour). */
-  admittedOut: Int32Array[];
-  admittedIn: Int32Array[];
-  /** Bin in which each counted boarder leaves; beyond the last bin if later. */
+  /** Arrivals minus departures: [area · (bins + 1) + bin]; entry `bins` gathers what is past the end and is never read. */
+  moves: Int32Array;
+  /** Patients who leave, and arrivals, by `hourOfBin` of the plan (0: outside the hours): [stream · (hours + 1) + hour], streams area-major. */
+  leaving: Int32Array;
+  arriving: Int32Array;
+  /** Bin in which each counted boarder leaves, per area; beyond the last bin if later. */
   boarderBin: Int32Array[];
 }
 
 const hoursPerBin = binSeconds / 3600;
 
-/** Stretches of bins between any two ends of hours and shifts: hours and shifts are made of whole pieces. */
-function cutPieces(plan: NeedPlan) {
-  const { hourFrom, hourTo, shiftFrom, shiftTo } = plan;
-  const first = hourFrom[0];
-  const last = hourTo[hourTo.length - 1];
-  const ends = [first, last, plan.nightTo, ...hourFrom, ...hourTo, ...shiftFrom, ...shiftTo];
-  const cuts = [...new Set(ends.map((bin) => Math.min(last, Math.max(first, bin))))].sort((a, b) => a - b);
-  const place = (bin: number): number => cuts.findIndex((cut) => cut >= Math.min(last, bin));
-  const places = (bins: Int32Array): Int32Array => bins.map(place);
-  return {
-    cuts: Int32Array.from(cuts),
-    count: cuts.length - 1,
-    hourFrom: places(hourFrom),
-    hourTo: places(hourTo),
-    shiftFrom: places(shiftFrom),
-    shiftTo: places(shiftTo),
-    nightTo: place(plan.nightTo),
-  };
-}
-
 /**
  * Makes the function that adds one replication to a part; `row` is its place within the part. Buffers are its own.
- * Cost of a call: one pass over the bins of every area.
+ * Cost of a call: one pass over the bins of every area, about 2 ns a bin.
  */
 export function makeNeedRecorder(
   plan: NeedPlan,
   part: NeedPart,
   change?: NeedChange,
 ): (trace: ReplicationTrace, row: number) => void {
-  const { bins, hourTo } = plan;
   const { areas, hours, shifts, size, pooledSize, boarderSize, flowSize } = part;
   const rows = part.toReplication - part.fromReplication;
-  const areaBeds = plan.areas.map((area, a) => change?.beds?.[a] ?? area.beds);
-  const pieces = cutPieces(plan);
-  const { cuts, count } = pieces;
-  const pooled = new Int32Array(bins);
-  const pooledBeds = new Int32Array(bins);
-  for (const beds of areaBeds) for (let b = 0; b < bins; b += 1) pooledBeds[b] += beds[b];
+  const binBeds = plan.areas.map((area, a) => change?.beds?.[a] ?? area.beds);
+  const pieces = cutPieces(plan, binBeds);
+  const { cuts, count, hourFrom, hourTo, shiftFrom, shiftTo, nightTo } = pieces;
+  const pooled = new Int32Array(plan.bins);
+  const beds = binBeds.map((own) => Int32Array.from({ length: count }, (_, p) => own[cuts[p]]));
+  const hourBeds = binBeds.map((own) => Int32Array.from(plan.hourTo, (bin) => own[bin - 1]));
+  const pooledBeds = Int32Array.from({ length: count }, (_, p) => beds.reduce((sum, own) => sum + own[p], 0));
   const mostNeed = new Int32Array(count);
-  const mostExcess = new Int32Array(count);
-  const lastNeed = new Int32Array(count);
   const someShort = new Uint8Array(count);
   const hourShort = new Uint8Array(hours);
   const width = highestExcess + 1;
 
-  /** Highest need and excess and the last need of every piece; returns bins short. */
-  function scan(before: number, moves: Int32Array, beds: Int32Array): number {
+  /** One area: need by hour, flows and the night's peak; highest need of every piece for the shifts. @returns bins short. */
+  function addArea(a: number, trace: ReplicationTrace): number {
     // Local names: captured ones are looked up again at every store.
-    const all = pooled;
-    const ends = cuts;
-    const pieceCount = count;
-    let n = before;
+    const { moves, leaving, arriving } = trace;
+    const { need, within, admittedLeaving, arrivalsToAdmit } = part;
+    const [all, ends, most, ownBeds, pieceTo, atHour] = [pooled, cuts, mostNeed, beds[a], hourTo, hourBeds[a]];
+    const first = a * (plan.bins + 1);
+    const hourRow = hours + 1;
+    const admitted = (a * streamsPerArea + admittedStream) * hourRow;
+    const boarding = (a * streamsPerArea + boardingStream) * hourRow;
+    const [hourCount, needSize, flowRoom] = [hours, size, flowSize];
+    let n = 0;
+    let b = 0;
+    for (; b < ends[0]; b += 1) n = (n + moves[first + b]) | 0;
     let short = 0;
-    let b = ends[0];
-    for (let p = 0; p < pieceCount; p += 1) {
-      let most = 0;
+    let peak = 0;
+    let p = 0;
+    for (let h = 0; h < hourCount; h += 1) {
       let excess = 0;
-      const end = ends[p + 1];
-      for (; b < end; b += 1) {
-        n = (n + moves[b]) | 0;
-        all[b] = (all[b] + n) | 0;
-        const over = (n - beds[b]) | 0;
-        most = n > most ? n : most;
+      const last = pieceTo[h];
+      for (; p < last; p += 1) {
+        const end = ends[p + 1];
+        const from = b;
+        const before = n;
+        let highest = 0;
+        for (; b < end; b += 1) {
+          n = (n + moves[first + b]) | 0;
+          all[b] = (all[b] + n) | 0;
+          highest = n > highest ? n : highest;
+        }
+        most[p] = highest;
+        if (p < nightTo && highest > peak) peak = highest;
+        const over = (highest - ownBeds[p]) | 0;
         if (over > 0) {
-          short = (short + over) | 0;
-          excess = over > excess ? over : excess;
+          if (over > excess) excess = over;
+          someShort[p] = 1;
+          short += binsShort(moves, first + from, first + end, before, ownBeds[p]);
         }
       }
-      mostNeed[p] = most;
-      mostExcess[p] = excess;
-      lastNeed[p] = n;
+      const place = a * hourCount + h;
+      need[place * needSize + (n < needSize ? n : needSize - 1)] += 1;
+      within[place * width + (excess < highestExcess ? excess : highestExcess)] += 1;
+      const out = leaving[admitted + h + 1] + leaving[boarding + h + 1];
+      const come = arriving[admitted + h + 1];
+      admittedLeaving[place * flowRoom + (out < flowRoom ? out : flowRoom - 1)] += 1;
+      arrivalsToAdmit[place * flowRoom + (come < flowRoom ? come : flowRoom - 1)] += 1;
+      if (n > atHour[h]) addBoarders(place, h, n - atHour[h], trace.boarderBin[a]);
+    }
+    part.peak[a * size + (peak < size ? peak : size - 1)] += 1;
+    return short;
+  }
+
+  /** Sum over bins of what need exceeds beds by: only where it does at all. */
+  function binsShort(moves: Int32Array, from: number, to: number, before: number, bedsThere: number): number {
+    let n = before;
+    let short = 0;
+    for (let b = from; b < to; b += 1) {
+      n += moves[b];
+      if (n > bedsThere) short += n - bedsThere;
     }
     return short;
   }
 
-  /** The same for the pooled need. */
-  function scanPooled(): void {
-    const need = pooled;
-    const beds = pooledBeds;
-    for (let p = 0; p < count; p += 1) {
-      let excess = 0;
-      const end = cuts[p + 1];
-      for (let b = cuts[p]; b < end; b += 1) {
-        const over = (need[b] - beds[b]) | 0;
-        excess = over > excess ? over : excess;
-      }
-      mostExcess[p] = excess;
-      lastNeed[p] = need[end - 1];
-    }
-  }
-
-  /** Need at the full hour and highest excess within the hour. */
+  /** The department as a whole: need at the full hour and highest excess within the hour. */
   function addPooledHours(): void {
     const { pooledNeed, pooledWithin } = part;
+    const [need, ends, pieceTo, bedsThere] = [pooled, cuts, hourTo, pooledBeds];
+    let p = hourFrom[0];
     for (let h = 0; h < hours; h += 1) {
-      const n = lastNeed[pieces.hourTo[h] - 1];
+      let excess = 0;
+      for (; p < pieceTo[h]; p += 1) {
+        let highest = 0;
+        for (let b = ends[p]; b < ends[p + 1]; b += 1) highest = need[b] > highest ? need[b] : highest;
+        if (highest - bedsThere[p] > excess) excess = highest - bedsThere[p];
+      }
+      const n = need[ends[p] - 1];
       pooledNeed[h * pooledSize + (n < pooledSize ? n : pooledSize - 1)] += 1;
-      pooledWithin[h * width + excessWithin(h)] += 1;
-    }
-  }
-
-  function excessWithin(h: number): number {
-    let excess = 0;
-    for (let p = pieces.hourFrom[h]; p < pieces.hourTo[h]; p += 1) if (mostExcess[p] > excess) excess = mostExcess[p];
-    return excess < highestExcess ? excess : highestExcess;
-  }
-
-  /** Everything that is told by the hour, for one area. */
-  function addHours(a: number, trace: ReplicationTrace): void {
-    const { need, within, admittedLeaving, arrivalsToAdmit } = part;
-    const out = trace.admittedOut[a];
-    const come = trace.admittedIn[a];
-    const beds = areaBeds[a];
-    const { hourTo: lastPiece } = pieces;
-    for (let h = 0; h < hours; h += 1) {
-      const place = a * hours + h;
-      const n = lastNeed[lastPiece[h] - 1];
-      need[place * size + (n < size ? n : size - 1)] += 1;
-      within[place * width + excessWithin(h)] += 1;
-      const leaving = out[h + 1];
-      const coming = come[h + 1];
-      admittedLeaving[place * flowSize + (leaving < flowSize ? leaving : flowSize - 1)] += 1;
-      arrivalsToAdmit[place * flowSize + (coming < flowSize ? coming : flowSize - 1)] += 1;
-      const excess = n - beds[hourTo[h] - 1];
-      if (excess > 0) addBoarders(place, h, excess, trace.boarderBin[a]);
+      pooledWithin[h * width + (excess < highestExcess ? excess : highestExcess)] += 1;
     }
   }
 
   /** Fewest of the counted boarders, in their order, whose going would end a shortfall at the full hour. */
   function addBoarders(place: number, h: number, excess: number, boarders: Int32Array): void {
     hourShort[h] = 1;
-    const bin = hourTo[h] - 1;
+    const bin = plan.hourTo[h] - 1;
     let needed = 0;
     let gained = 0;
     while (needed < boarders.length && gained < excess) {
@@ -159,14 +137,15 @@ export function makeNeedRecorder(
   }
 
   function addShifts(a: number, row: number): void {
+    const [most, ownBeds] = [mostNeed, beds[a]];
     for (let s = 0; s < shifts; s += 1) {
-      let most = 0;
+      let highest = 0;
       let short = 0;
-      for (let p = pieces.shiftFrom[s]; p < pieces.shiftTo[s]; p += 1) {
-        if (mostNeed[p] > most) most = mostNeed[p];
-        if (mostExcess[p] > 0) short = 1;
+      for (let p = shiftFrom[s]; p < shiftTo[s]; p += 1) {
+        if (most[p] > highest) highest = most[p];
+        if (most[p] > ownBeds[p]) short = 1;
       }
-      part.shiftPeak[(a * shifts + s) * size + (most < size ? most : size - 1)] += 1;
+      part.shiftPeak[(a * shifts + s) * size + (highest < size ? highest : size - 1)] += 1;
       part.shiftShort[a * shifts + s] += short;
       part.shortByReplication[(a * shifts + s) * rows + row] = short;
     }
@@ -178,28 +157,17 @@ export function makeNeedRecorder(
     hourShort.fill(0);
     let allShort = 0;
     for (let a = 0; a < areas; a += 1) {
-      const moves = trace.moves[a];
-      let before = 0;
-      for (let b = 0; b < cuts[0]; b += 1) before += moves[b];
-      const short = scan(before, moves, areaBeds[a]);
-      let peak = 0;
-      for (let p = 0; p < count; p += 1) {
-        if (p < pieces.nightTo && mostNeed[p] > peak) peak = mostNeed[p];
-        if (mostExcess[p] > 0) someShort[p] = 1;
-      }
-      part.peak[a * size + (peak < size ? peak : size - 1)] += 1;
+      const short = addArea(a, trace);
       part.bedHoursShort[a * rows + row] = short * hoursPerBin;
       allShort += short;
-      addHours(a, trace);
       addShifts(a, row);
     }
     part.bedHoursShort[areas * rows + row] = allShort * hoursPerBin;
-    scanPooled();
     addPooledHours();
     for (let h = 0; h < hours; h += 1) part.someShort[h] += hourShort[h];
     for (let s = 0; s < shifts; s += 1) {
       let short = 0;
-      for (let p = pieces.shiftFrom[s]; p < pieces.shiftTo[s]; p += 1) short |= someShort[p];
+      for (let p = shiftFrom[s]; p < shiftTo[s]; p += 1) short |= someShort[p];
       part.shiftShort[areas * shifts + s] += short;
       part.shortByReplication[(areas * shifts + s) * rows + row] = short;
     }

@@ -2,11 +2,25 @@ import { binSeconds } from './need-plan.ts';
 import type { NeedChange, NeedPlan } from './need-plan.ts';
 import { QuickStream } from './quick-stream.ts';
 import type { ReplicationTrace } from './record-need.ts';
-import type { StayDraw } from './stay-draw.ts';
-import { admittedStream, boardingStream, streamsPerArea } from './stay-model.ts';
+import { makeSpentBuffers } from './stay-draw.ts';
+import type { SpentDraw } from './stay-draw.ts';
+import { streamsPerArea } from './stay-model.ts';
+import type { StayShape } from './stay-model.ts';
 
 /** Bins an hour. */
 export const binsPerHour = 3600 / binSeconds;
+
+/** Laws of stays of all streams in one table, so that a draw is a few look-ups: see `stayAt`. */
+export interface StayTables {
+  /** Stays at multiples of a step of cumulative hazard, all streams one after the other. */
+  stays: Float64Array;
+  /** By stream: its first entry, entries after the first, steps to a unit of hazard, hazard at the last entry, and stay a unit of hazard past it. */
+  from: Int32Array;
+  last: Int32Array;
+  perHazard: Float64Array;
+  end: Float64Array;
+  tail: Float64Array;
+}
 
 /** Buffers of one replication, used again for the next. */
 export interface ReplicationState {
@@ -14,77 +28,111 @@ export interface ReplicationState {
   change: NeedChange;
   /** Drawn rates, [area][segment]. */
   rates: Float64Array[];
-  stays: StayDraw;
-  /** ∫ hazard from the start to each segment, [stream · (segments + 1) + segment]. */
-  spent: Float64Array;
+  stays: SpentDraw;
+  /** Laws of newcomers' stays, and of what remains for those present. */
+  newcomers: StayTables;
+  present: StayTables;
+  /** Start of every segment and the end of the last, and lengths (0 after the last), in bins. */
+  segmentBin: Float64Array;
+  segmentBins: Float64Array;
   trace: ReplicationTrace;
   /** The stream of what is being drawn, and that of the uniforms for thinning. */
   stream: QuickStream;
   thinning: QuickStream;
+  /** Expected arrivals of an area up to each segment, and the segment that a share of them begins in. */
+  arrived: Float64Array;
+  guide: Uint16Array;
+  words: Uint32Array;
+}
+
+/** Shares of an area's expected arrivals whose segment is looked up. */
+export const guideShares = 64;
+/** Patients whose words are drawn at once. */
+export const patientsAtOnce = 256;
+
+function stayTables(shapes: readonly (StayShape | null)[]): StayTables {
+  const from = new Int32Array(shapes.length);
+  const stays: number[] = [];
+  shapes.forEach((shape, s) => {
+    from[s] = stays.length;
+    stays.push(...(shape?.stays ?? [0]));
+  });
+  return {
+    stays: Float64Array.from(stays),
+    from,
+    // The exponential law is all tail.
+    last: Int32Array.from(shapes, (shape) => (shape === null ? 0 : shape.stays.length - 1)),
+    perHazard: Float64Array.from(shapes, (shape) => (shape === null ? 1 : 1 / shape.step)),
+    end: Float64Array.from(shapes, (shape) => (shape === null ? 0 : (shape.stays.length - 1) * shape.step)),
+    tail: Float64Array.from(shapes, (shape) => (shape === null ? 1 : shape.tail)),
+  };
 }
 
 /** Empty buffers for a plan. */
 export function makeReplicationState(plan: NeedPlan, change: NeedChange): ReplicationState {
-  const { segments, areas, bins } = plan;
-  const streams = areas.length * streamsPerArea;
-  const hours = plan.hourTo.length + 1;
+  const { segments, areas, bins, segmentAt } = plan;
+  const flows = areas.length * streamsPerArea * (plan.hourTo.length + 1);
   return {
     plan,
     change,
     rates: areas.map(() => new Float64Array(segments)),
-    stays: {
-      hazard: new Float64Array(streams * segments),
-      shareSteps: new Float64Array(areas.length * plan.shareBlocks * 3),
-      firstFactor: [1, 1],
-    },
-    spent: new Float64Array(streams * (segments + 1)),
+    stays: makeSpentBuffers(areas.length, segments, plan.shareBlocks),
+    newcomers: stayTables(areas.flatMap((area) => area.shapes)),
+    present: stayTables(areas.flatMap((area) => area.remaining)),
+    segmentBin: segmentAt.map((at, k) => (k === segments ? bins : at * binsPerHour)),
+    segmentBins: segmentAt.map((at, k) => (k === segments ? 0 : (segmentAt[k + 1] - at) * binsPerHour)),
     trace: {
       patients: 0,
-      moves: areas.map(() => new Int32Array(bins + 1)),
-      admittedOut: areas.map(() => new Int32Array(hours)),
-      admittedIn: areas.map(() => new Int32Array(hours)),
+      moves: new Int32Array(areas.length * (bins + 1)),
+      leaving: new Int32Array(flows),
+      arriving: new Int32Array(flows),
       boarderBin: areas.map((area) => new Int32Array(area.boarders)),
     },
     stream: new QuickStream(),
     thinning: new QuickStream(),
+    arrived: new Float64Array(segments + 1),
+    guide: new Uint16Array(guideShares),
+    words: new Uint32Array(3 * patientsAtOnce),
   };
 }
 
-/** Adds up the drawn hazards, so that the end of a stay is found by comparison. */
-export function cumulateHazards(state: ReplicationState): void {
-  const { plan, stays, spent } = state;
-  const { segments, segmentAt } = plan;
-  const { hazard } = stays;
-  const streams = plan.areas.length * streamsPerArea;
-  for (let s = 0; s < streams; s += 1) {
-    const base = s * (segments + 1);
-    const from = s * segments;
-    let sum = 0;
-    for (let k = 0; k < segments; k += 1) {
-      sum += hazard[from + k] * (segmentAt[k + 1] - segmentAt[k]);
-      spent[base + k + 1] = sum;
-    }
-  }
+/** The stay, in means of stream s, at a cumulative hazard. */
+export function stayOf(tables: StayTables, s: number, hazard: number): number {
+  const place = hazard * tables.perHazard[s];
+  const last = tables.last[s];
+  const from = tables.from[s];
+  if (place >= last) return tables.stays[from + last] + (hazard - tables.end[s]) * tables.tail[s];
+  const index = place | 0;
+  const before = tables.stays[from + index];
+  return before + (place - index) * (tables.stays[from + index + 1] - before);
 }
 
-/** When a stay of cumulative hazard x, begun in segment k at time t, ends: hours since the start, Infinity past the end. */
-export function departureOf(state: ReplicationState, s: number, k: number, t: number, x: number): number {
-  const { spent, stays } = state;
-  const { segments, segmentAt } = state.plan;
-  const base = s * (segments + 1);
-  const from = s * segments;
-  const target = spent[base + k] + stays.hazard[from + k] * (t - segmentAt[k]) + x;
-  if (!(target < spent[base + segments])) return Infinity;
+/**
+ * When a stay of cumulative hazard x ends that begins a share of the way into segment k: bins since the start, at least
+ * `bins` for one that outlasts the horizon.
+ */
+export function departureOf(state: ReplicationState, s: number, k: number, share: number, x: number): number {
+  const { spent } = state.stays;
+  const base = s * (state.plan.segments + 2);
+  const before = spent[base + k];
+  const target = before + share * (spent[base + k + 1] - before) + x;
   let at = k;
   while (spent[base + at + 1] <= target) at += 1;
-  return segmentAt[at] + (target - spent[base + at]) / stays.hazard[from + at];
+  const from = spent[base + at];
+  return state.segmentBin[at] + ((target - from) / (spent[base + at + 1] - from)) * state.segmentBins[at];
 }
 
-/** Takes a patient of stream `inArea` out of area a at a time; nothing when that lies past the end. */
-export function leaveArea(state: ReplicationState, a: number, inArea: number, at: number): void {
+/** A patient of stream s of area a comes in a bin. */
+export function enterArea(state: ReplicationState, a: number, s: number, bin: number): void {
   const { plan, trace } = state;
-  if (at >= plan.segmentAt[plan.segments]) return;
-  const bin = Math.min(plan.bins, Math.floor(at * binsPerHour));
-  trace.moves[a][bin] -= 1;
-  if (inArea === admittedStream || inArea === boardingStream) trace.admittedOut[a][plan.hourOfBin[bin]] += 1;
+  trace.moves[a * (plan.bins + 1) + bin] += 1;
+  trace.arriving[s * (plan.hourTo.length + 1) + plan.hourOfBin[bin]] += 1;
+}
+
+/** A patient of stream s of area a leaves at a time in bins; past the end it falls into the last entry, which nobody reads. */
+export function leaveArea(state: ReplicationState, a: number, s: number, at: number): void {
+  const { plan, trace } = state;
+  const bin = Math.min(plan.bins, Math.floor(at));
+  trace.moves[a * (plan.bins + 1) + bin] -= 1;
+  trace.leaving[s * (plan.hourTo.length + 1) + plan.hourOfBin[bin]] += 1;
 }

@@ -1,4 +1,3 @@
-import { makeStream } from '../stochastic/random.ts';
 import { checkNeedChange } from './check-need-change.ts';
 import { drawArrivals } from './draw-arrivals.ts';
 import { makeNeedPart } from './need-part.ts';
@@ -6,8 +5,9 @@ import type { NeedPart } from './need-part.ts';
 import { purposes } from './need-plan.ts';
 import type { NeedChange, NeedPlan } from './need-plan.ts';
 import { makeNeedRecorder } from './record-need.ts';
+import { QuickStream } from './quick-stream.ts';
 import type { ReplicationTrace } from './record-need.ts';
-import { cumulateHazards, makeReplicationState } from './replication-state.ts';
+import { makeReplicationState } from './replication-state.ts';
 import { startArea, startUndecided } from './start-replication.ts';
 
 /**
@@ -40,22 +40,19 @@ export function makeReplication(plan: NeedPlan, change: NeedChange): (replicatio
   const { areas, seed } = plan;
   const state = makeReplicationState(plan, change);
   const { trace, rates, stays } = state;
-  const joint = makeStream(seed);
-  const path = makeStream(seed);
+  const joint = new QuickStream();
+  const path = new QuickStream();
   const changedRate = new Float64Array(plan.segments);
   return (replication) => {
     trace.patients = 0;
-    for (let a = 0; a < areas.length; a += 1) {
-      trace.moves[a].fill(0);
-      trace.admittedOut[a].fill(0);
-      trace.admittedIn[a].fill(0);
-    }
-    joint.reseed(seed, purposes.rates, replication);
+    trace.moves.fill(0);
+    trace.leaving.fill(0);
+    trace.arriving.fill(0);
+    joint.reseed(seed, purposes.rates, replication, 0);
     plan.drawRates(joint, rates);
-    joint.reseed(seed, purposes.parameters, replication);
-    path.reseed(seed, purposes.outflow, replication);
+    joint.reseed(seed, purposes.parameters, replication, 0);
+    path.reseed(seed, purposes.outflow, replication, 0);
     plan.drawStays(joint, path, stays);
-    cumulateHazards(state);
     for (let a = 0; a < areas.length; a += 1) startArea(state, a, replication);
     startUndecided(state, replication);
     drawArrivals(state, replication, changedRate);

@@ -5,7 +5,7 @@ import { PageHead } from '../components/PageHead.tsx';
 import { SkeletonLines } from '../components/Skeleton.tsx';
 import { useSession } from '../features/sign-in/session.ts';
 import { useServerNow } from '../features/sign-in/use-server-now.ts';
-import { useSite, useVisitLogMapping } from '../features/visit-logs/queries.ts';
+import { useSite, useVisitLogMapping, useVisitLogs } from '../features/visit-logs/queries.ts';
 import { UploadWalk } from '../features/visit-logs/UploadWalk.tsx';
 
 /** /sites/:siteId/logs/new */
@@ -22,7 +22,8 @@ export function NewVisitLogPage() {
       All logs
     </Link>
   );
-  if (site.data && mayUpload && last.data !== undefined) {
+  const logs = useVisitLogs(siteId, mayUpload);
+  if (site.data && mayUpload && last.data !== undefined && logs.data) {
     return (
       <UploadWalk
         siteId={siteId}
@@ -30,6 +31,8 @@ export function NewVisitLogPage() {
         timeZone={site.data.timeZone}
         now={now}
         last={last.data}
+        shiftEnds={site.data.shifts.map(({ endMinute }) => endMinute)}
+        logs={logs.data}
         aside={allLogs}
         onAccepted={(logId) => void navigate(paths.visitLog(siteId, logId))}
       />
@@ -50,7 +53,10 @@ export function NewVisitLogPage() {
         {last.error ? (
           <ProblemNotice error={last.error} onRetry={() => void last.refetch()} retrying={last.isFetching} />
         ) : null}
-        {site.isPending || (mayUpload && last.isPending) ? (
+        {logs.error ? (
+          <ProblemNotice error={logs.error} onRetry={() => void logs.refetch()} retrying={logs.isFetching} />
+        ) : null}
+        {site.isPending || (mayUpload && (last.isPending || logs.isPending)) ? (
           <SkeletonLines lines={4} label="Loading the site’s care areas" />
         ) : null}
       </div>

@@ -35,10 +35,14 @@ const table: Record<string, 'public' | 'signed-in' | Role[]> = {
   getTonight: readers,
   getCensus: readers,
   getOutlook: readers,
+  listOutlooks: readers,
+  getOutlookThen: readers,
+  getNightLog: readers,
   repeatOutlook: readers,
   getStaffedBeds: readers,
   // Enter census, acknowledge a risk, print handover.
   enterCensus: bedside,
+  acknowledgeRisk: bedside,
   // Staffed beds and blocked bed spaces now.
   changeStaffedBedsNow: bedside,
   // Staffed-bed plan.

@@ -1,5 +1,6 @@
 import { Initial1796104800519 } from './1796104800519-Initial.ts';
 import { VisitLogMemory1796107539421 } from './1796107539421-VisitLogMemory.ts';
+import { TokensAndAlerts1796108003403 } from './1796108003403-TokensAndAlerts.ts';
 
 /** In order of their dates. */
-export const migrations = [Initial1796104800519, VisitLogMemory1796107539421];
+export const migrations = [Initial1796104800519, VisitLogMemory1796107539421, TokensAndAlerts1796108003403];

@@ -6,7 +6,7 @@ import { Census } from '../../entities/Census.ts';
 import { CensusArea } from '../../entities/CensusArea.ts';
 import { badInput, type Fault } from '../../errors.ts';
 import { recordAudit } from '../../http/audit.ts';
-import type { SiteContext } from '../../http/route.ts';
+import type { ActorContext } from '../../http/route.ts';
 
 const oldestHours = 8;
 /** A workstation's clock may run a little ahead of the server's. */
@@ -15,10 +15,10 @@ const aheadSeconds = 120;
 /** Stores a census entry: whole or not at all, every fault listed. Entries are added, never changed. */
 export async function enterCensus(
   deps: Dependencies,
-  context: Pick<SiteContext<unknown>, 'site' | 'caller' | 'now' | 'requestId' | 'address'>,
+  context: Pick<ActorContext<unknown>, 'site' | 'actor' | 'caller' | 'token' | 'now' | 'requestId' | 'address'>,
   body: CensusBody,
 ): Promise<string> {
-  const { site, caller, now } = context;
+  const { site, actor, now } = context;
   const areas = await readAreas(deps.database.read, site.id);
   const faults: Fault[] = [];
   if (body.takenAt > now + aheadSeconds) {
@@ -51,7 +51,7 @@ export async function enterCensus(
       siteId: site.id,
       takenAt,
       savedAt: now,
-      enteredBy: caller.person.name,
+      enteredBy: actor.name,
       undecidedWaiting: body.undecidedWaiting,
       ambulancesHolding: body.ambulancesHolding,
       arrivalsSinceMidnight: body.arrivalsSinceMidnight,

@@ -1,9 +1,10 @@
 import type { Tonight } from '../../../shared/api/outlooks.ts';
-import { makeZone } from '../../../shared/domain/zoned-time.ts';
+import { nightOf } from '../../../shared/domain/night.ts';
+import { makeZone, type Zone } from '../../../shared/domain/zoned-time.ts';
 import { readCalendar } from '../../database/read-calendar.ts';
 import { censusDroppedAfterSeconds, readNewestCensus } from '../../database/read-census.ts';
 import { readModelInUse } from '../../database/read-model.ts';
-import { readAreas } from '../../database/read-site.ts';
+import { readAreas, readShifts } from '../../database/read-site.ts';
 import { readPlan } from '../../database/read-staffed-beds.ts';
 import type { Dependencies } from '../../dependencies.ts';
 import type { Site } from '../../entities/Site.ts';
@@ -12,6 +13,8 @@ import { cautionsNow } from './cautions.ts';
 import type { OutlookIssuer } from './issuer.ts';
 import { coveredByLogs, readPastHours } from './past-hours.ts';
 import { presentOutlook, readNewestOutlooks } from './present.ts';
+import { presentAcknowledgement, readAcknowledgementsOf } from './read-acknowledgements.ts';
+import { readOutlookStanding } from './read-outlook-names.ts';
 import { whyMoved } from './why-moved.ts';
 
 const pastHoursShown = 12;
@@ -31,7 +34,12 @@ export async function presentTonight(
   const past = await readPastHours(read, site, areas, zone, now, pastHoursShown);
   const computing = issuer.computing(site.id);
   const missing = await whyMissing(deps, site, now);
-  if (missing) return { now, outlook: null, computing, missing, past, cautions: [], moved: null };
+  const lastNight = await readLastNight(deps, site, zone, now);
+  const acknowledged = await readAcknowledgementsOf(read, site.id, now - pastHoursShown * 3600);
+  const acknowledgements = acknowledged.map(presentAcknowledgement);
+  if (missing) {
+    return { now, outlook: null, computing, missing, past, cautions: [], moved: null, acknowledgements, lastNight };
+  }
 
   const [newest, before] = await readNewestOutlooks(read, site.id, 2);
   const outlook = await presentOutlook(read, newest);
@@ -55,7 +63,25 @@ export async function presentTonight(
       covered: coveredByLogs(logs, site, now),
     }),
     moved: older ? whyMoved(outlook, await presentOutlook(read, older), names, site.timeZone) : null,
+    acknowledgements,
+    lastNight,
   };
+}
+
+/** What stood when the night before this one began. */
+async function readLastNight(
+  deps: Dependencies,
+  site: Site,
+  zone: Zone,
+  now: number,
+): Promise<Tonight['lastNight']> {
+  const { read } = deps.database;
+  const shifts = await readShifts(read, site.id);
+  const night = nightOf(zone, shifts, nightOf(zone, shifts, now).since - 1);
+  const standing = await readOutlookStanding(read, site.id, night.from);
+  // An outlook that had run out by then does not speak of the night.
+  if (!standing || standing.issuedAt < night.from - leastHoursAhead * 3600) return null;
+  return { outlookId: standing.id, issuedAt: standing.issuedAt };
 }
 
 async function whyMissing(deps: Dependencies, site: Site, now: number): Promise<Tonight['missing']> {

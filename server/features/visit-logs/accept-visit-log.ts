@@ -4,12 +4,12 @@ import { CareArea } from '../../entities/CareArea.ts';
 import { VisitLog } from '../../entities/VisitLog.ts';
 import { badInput, HttpError } from '../../errors.ts';
 import { recordAudit } from '../../http/audit.ts';
-import type { SiteContext } from '../../http/route.ts';
+import type { ActorContext } from '../../http/route.ts';
 import { findChecked } from './checked-file.ts';
 import { fileRefused, problemFaults } from './check-visit-log.ts';
 import { importJobKind, type ImportPayload } from './import-payload.ts';
 import { refuseRepeat } from './find-repeat.ts';
-import { periodOf } from './period.ts';
+import { periodOf } from '../../../shared/domain/log-period.ts';
 import { keepMapping, screenMapping } from './remember-mapping.ts';
 
 const clockTolerance = 300;
@@ -18,11 +18,11 @@ const clockTolerance = 300;
 export async function acceptVisitLog({
   deps,
   site,
-  caller,
+  actor,
   now,
   body,
   ...request
-}: SiteContext<typeof contract>): Promise<{ logId: string; jobId: string }> {
+}: ActorContext<typeof contract>): Promise<{ logId: string; jobId: string }> {
   const checked = await findChecked(deps.config.dataDir, site.id, body.checkId, now);
   if (!checked) {
     throw new HttpError(
@@ -81,7 +81,7 @@ export async function acceptVisitLog({
       title: `Load ${checked.fileName}`,
       siteId: site.id,
       payload,
-      createdBy: caller.person.name,
+      createdBy: actor.name,
     });
     await manager.insert(VisitLog, {
       id: logId,
@@ -99,7 +99,7 @@ export async function acceptVisitLog({
         kinds: [...problems].map(([kind, rows]) => ({ kind, rows })),
       },
       visitsByArea: report.visitsByArea.map(({ area, visits }) => ({ areaCode: area, visits })),
-      uploadedBy: caller.person.name,
+      uploadedBy: actor.name,
       uploadedAt: now,
       readyAt: null,
       withdrawnBy: null,
@@ -107,8 +107,8 @@ export async function acceptVisitLog({
       reason: null,
       jobId: job,
     });
-    if (mapping) await keepMapping(manager, { siteId: site.id, mapping, savedBy: caller.person.name, savedAt: now });
-    await recordAudit(manager, { ...request, caller, site, now }, 'visit-log.accepted', logId, {
+    if (mapping) await keepMapping(manager, { siteId: site.id, mapping, savedBy: actor.name, savedAt: now });
+    await recordAudit(manager, { ...request, site, now }, 'visit-log.accepted', logId, {
       rows: report.goodRows,
       leftOut: report.problemRows + body.leftOutBeforeSending.rows,
       sha256: checked.sha256,

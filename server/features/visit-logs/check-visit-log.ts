@@ -4,9 +4,11 @@ import type { VisitReport } from '../../../shared/domain/visit-report.ts';
 import { rowProblems, visitColumnNames } from '../../../shared/domain/visit-row.ts';
 import { visitLogLimits, type checkVisitLog as contract, type VisitLogCheck } from '../../../shared/api/visit-logs.ts';
 import { newId } from '../../database/new-id.ts';
+import { readCounting } from '../../database/read-counting.ts';
+import { readShifts } from '../../database/read-site.ts';
 import { CareArea } from '../../entities/CareArea.ts';
 import { HttpError, type Fault } from '../../errors.ts';
-import type { SiteContext } from '../../http/route.ts';
+import type { ActorContext } from '../../http/route.ts';
 import { workerUrl } from '../../simulation/pool.ts';
 import { checkedTextFile, forgetChecked, keepChecked, sweepChecked, type CheckedFile } from './checked-file.ts';
 import { refuseRepeat } from './find-repeat.ts';
@@ -19,8 +21,8 @@ import { checksInUse } from './sweep-visit-logs.ts';
  * Receives a visit log and checks it on a thread. A file that is refused is deleted at once; one that
  * passes waits an hour for its acceptance.
  */
-export async function checkVisitLog(context: SiteContext<typeof contract>): Promise<VisitLogCheck> {
-  const { deps, site, caller, now, req } = context;
+export async function checkVisitLog(context: ActorContext<typeof contract>): Promise<VisitLogCheck> {
+  const { deps, site, actor, now, req } = context;
   const { dataDir } = deps.config;
   await sweepChecked(dataDir, await checksInUse(deps), { starting: false });
   const checkId = newId();
@@ -29,29 +31,35 @@ export async function checkVisitLog(context: SiteContext<typeof contract>): Prom
   try {
     await refuseRepeat(deps.database.read, site, received.sha256);
     const areas = await deps.database.read.find(CareArea, { where: { siteId: site.id }, order: { position: 'ASC' } });
+    const logs = await readCounting(deps.database.read, site.id);
     const input: ReadVisitLogInput = {
       file,
       now,
       areas: areas.map(({ id, name, code }) => ({ id, name, code })),
       port: null,
+      study: {
+        timeZone: site.timeZone,
+        shiftEnds: (await readShifts(deps.database.read, site.id)).map(({ endMinute }) => endMinute),
+        covered: logs.flatMap(({ counts }) => counts),
+      },
     };
     const outcome = await deps.pool.run<FileOutcome>(workerUrl(import.meta.url, 'read-visit-log.worker'), input);
     if (outcome.refused !== null) throw fileRefused(outcome.refused, outcome.identifying);
-    const { report, problemRows } = outcome;
+    const { report, problemRows, study } = outcome;
     if (report.goodRows === 0) {
       throw fileRefused(problemFaults(report), false, 'No row of the file can be read as a visit.');
     }
     const checked: CheckedFile = {
       checkId,
       siteId: site.id,
-      personId: caller.person.id,
+      personId: actor.id,
       fileName: screenFileName(context.query.fileName, now),
       ...received,
       checkedAt: now,
       report,
     };
     await keepChecked(dataDir, checked, problemRows);
-    return presentCheck(checked, areas, site.timeZone, now);
+    return presentCheck(checked, study, logs, areas, site.timeZone, now);
   } catch (error) {
     await forgetChecked(dataDir, checkId);
     throw error;

@@ -48,6 +48,7 @@ export async function loadRows(
       now: task.now,
       areas: task.areas.map(({ id, name, code }) => ({ id, name, code })),
       port: far,
+      study: null,
     };
     const outcome = await deps.pool.run<FileOutcome>(workerUrl(import.meta.url, 'read-visit-log.worker'), input, {
       signal: AbortSignal.any([signal, stop.signal]),

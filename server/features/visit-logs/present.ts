@@ -1,10 +1,12 @@
 import type { VisitLogCheck, VisitLogDetail, VisitLogSummary } from '../../../shared/api/visit-logs.ts';
 import { visitLogLimits } from '../../../shared/api/visit-logs.ts';
+import { acceptingChange } from '../../../shared/domain/accepting-change.ts';
+import type { FileStudy } from '../../../shared/domain/file-study.ts';
 import type { Span } from '../../database/counting-spans.ts';
 import type { CareArea } from '../../entities/CareArea.ts';
 import type { VisitLog } from '../../entities/VisitLog.ts';
 import type { CheckedFile } from './checked-file.ts';
-import { periodOf } from './period.ts';
+import { periodOf } from '../../../shared/domain/log-period.ts';
 
 /** A log as the list shows it. @param counts the spans of its period that count; see database/counting-spans */
 export function presentVisitLog(log: VisitLog, counts: readonly Span[]): VisitLogSummary {
@@ -50,14 +52,17 @@ export function presentVisitLogDetail(
   };
 }
 
-/** What the check found. @param now UTC seconds */
+/** What the check found. @param logs those that count now. @param now UTC seconds */
 export function presentCheck(
   checked: CheckedFile,
+  study: FileStudy | null,
+  logs: readonly { id: string; counts: readonly Span[] }[],
   areas: readonly CareArea[],
   timeZone: string,
   now: number,
 ): VisitLogCheck {
   const { report } = checked;
+  const period = periodOf(report, timeZone, now);
   return {
     checkId: checked.checkId,
     keptUntil: checked.checkedAt + visitLogLimits.checkKeptFor,
@@ -69,10 +74,21 @@ export function presentCheck(
     problemRows: report.problemRows,
     problems: report.problems,
     identicalRows: report.identicalRows,
-    period: periodOf(report, timeZone, now),
+    period,
+    study: study ? presentStudy(study, areas) : null,
+    accepting: period && study ? { newRows: study.newRows, ...acceptingChange(period, logs) } : null,
     lastTimeAt: report.lastTimeAt,
     visitsByArea: presentAreas(report.visitsByArea, areas),
     recorded: report.recorded,
+  };
+}
+
+function presentStudy({ gaps, levelShifts, heaps }: FileStudy, areas: readonly CareArea[]) {
+  const idOf = (code: number | null) => areas.find((area) => area.code === code)?.id ?? null;
+  return {
+    gaps: gaps.map(({ area, from, to, expected }) => ({ areaId: idOf(area), from, to, expected })),
+    levelShifts: levelShifts.map(({ area, at, before, after }) => ({ areaId: idOf(area), at, before, after })),
+    heaps,
   };
 }
 

@@ -1,9 +1,11 @@
 import { closeSync, openSync, readSync } from 'node:fs';
 import type { MessagePort } from 'node:worker_threads';
 import { canonicalPlaces, canonicalReading } from '../../../shared/domain/canonical-visit.ts';
+import type { TimeSpan } from '../../../shared/domain/file-study.ts';
 import { notText, notUtf8 } from '../../../shared/domain/sniff-file.ts';
 import { VisitFileReader, type FileOutcome } from '../../../shared/domain/visit-file.ts';
 import { notRecorded } from '../../../shared/domain/visit-row.ts';
+import { makeZone } from '../../../shared/domain/zoned-time.ts';
 import { makeRecordParser } from './parse-records.ts';
 
 /** What the thread is given. */
@@ -14,6 +16,8 @@ export interface ReadVisitLogInput {
   areas: { id: string; name: string; code: number }[];
   /** Gets good rows as JSON arrays, some thousands at a time, and answers each with anything; null to check only. */
   port: MessagePort | null;
+  /** What a study of the times needs; null for none. */
+  study: { timeZone: string; shiftEnds: number[]; covered: TimeSpan[] } | null;
 }
 
 /** One piece of good rows: [rowNumber, areaCode, arrival, bed space, admission decision, departure, disposition, byAmbulance]. */
@@ -27,7 +31,7 @@ const rowsAMessage = 2000;
 const mostUnanswered = 3;
 
 /** Reads a file that stands on the disk, checks every row, and hands on the good ones. */
-export default async function readVisitLog({ file, now, areas, port }: ReadVisitLogInput): Promise<FileOutcome> {
+export default async function readVisitLog({ file, now, areas, port, study }: ReadVisitLogInput): Promise<FileOutcome> {
   const codes = new Map<string, number>();
   for (const area of areas) codes.set(area.name, area.code);
   for (const area of areas) codes.set(area.id, area.code);
@@ -37,6 +41,7 @@ export default async function readVisitLog({ file, now, areas, port }: ReadVisit
     places: (header) => canonicalPlaces(header, now),
     reading: canonicalReading(codes),
     now,
+    ...(study ? { study: { ...study, zone: makeZone(study.timeZone) } } : {}),
     ...(out
       ? {
           onVisit: (visit, rowNumber) => {

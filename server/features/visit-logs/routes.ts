@@ -7,7 +7,7 @@ import { CareArea } from '../../entities/CareArea.ts';
 import type { Site } from '../../entities/Site.ts';
 import { VisitLog } from '../../entities/VisitLog.ts';
 import { notFound } from '../../errors.ts';
-import { addSiteRoute, type RouteTable } from '../../http/route.ts';
+import { addActorRoute, addSiteRoute, type RouteTable } from '../../http/route.ts';
 import type { JobKind } from '../../jobs/queue.ts';
 import { acceptVisitLog } from './accept-visit-log.ts';
 import { findChecked, forgetChecked } from './checked-file.ts';
@@ -30,7 +30,7 @@ export function addVisitLogRoutes(app: Express, routes: RouteTable, deps: Depend
 
   addSiteRoute(app, routes, deps, api.getVisitLog, ({ site, params }) => readDetail(deps, site, params.logId));
 
-  addSiteRoute(app, routes, deps, api.checkVisitLog, (context) => checkVisitLog(context));
+  addActorRoute(app, routes, deps, api.checkVisitLog, (context) => checkVisitLog(context));
 
   addSiteRoute(app, routes, deps, api.discardVisitLogCheck, async ({ site, params, now }) => {
     const checked = await findChecked(deps.config.dataDir, site.id, params.checkId, now);
@@ -41,7 +41,7 @@ export function addVisitLogRoutes(app: Express, routes: RouteTable, deps: Depend
 
   addSiteRoute(app, routes, deps, api.getProblemRows, (context) => sendProblemRows(context));
 
-  addSiteRoute(app, routes, deps, api.acceptVisitLog, (context) => acceptVisitLog(context));
+  addActorRoute(app, routes, deps, api.acceptVisitLog, (context) => acceptVisitLog(context));
 
   addSiteRoute(app, routes, deps, getVisitLogMapping, async ({ site }) => ({
     remembered: await readMapping(deps.database.read, site.id),

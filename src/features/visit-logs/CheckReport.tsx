@@ -1,5 +1,7 @@
+import type { ReactNode } from 'react';
 import type { VisitReport } from '../../../shared/domain/visit-report.ts';
-import { rowProblems, visitColumnNames, visitColumns } from '../../../shared/domain/visit-row.ts';
+import { rowProblems, visitColumnNames, visitColumns, type RowProblem } from '../../../shared/domain/visit-row.ts';
+import { Button } from '../../components/Button.tsx';
 import { DataTable } from '../../components/DataTable.tsx';
 import { Notice } from '../../components/Notice.tsx';
 import { formatCount, formatDateTime, formatNumber } from '../../lib/format.ts';
@@ -19,7 +21,9 @@ export function CheckReport({
   areas,
   timeZone,
   payloadBytes,
+  study,
   onRepeatedHour,
+  onSaveRows,
 }: {
   report: VisitReport;
   mapping: FileMapping;
@@ -27,7 +31,11 @@ export function CheckReport({
   areas: readonly AreaName[];
   timeZone: string;
   payloadBytes: number;
+  /** What the times say; stands before the figures of the file. */
+  study: ReactNode;
   onRepeatedHour: (choice: RepeatedHour) => void;
+  /** Saves the numbers of the problem rows, of one kind or all (null). */
+  onSaveRows: (kind: RowProblem | null) => void;
 }) {
   const asksRepeated =
     mapping.repeatedHour !== 'refuse' || report.problems.some(({ problem }) => problem === 'time repeated');
@@ -58,31 +66,60 @@ export function CheckReport({
         </fieldset>
       ) : null}
       {report.problems.length > 0 ? (
-        <DataTable
-          caption="Problem rows, by kind"
-          rows={report.problems}
-          rowKey={({ problem, column }) => `${problem} ${column ?? ''}`}
-          columns={[
-            { key: 'problem', header: 'What is wrong', rowHeader: true, cell: ({ problem }) => rowProblems[problem] },
-            {
-              key: 'column',
-              header: 'Column',
-              cell: ({ column }) => (column === null ? 'Row' : visitColumnNames[column]),
-            },
-            { key: 'rows', header: 'Rows', figure: true, cell: ({ rows }) => formatNumber(rows) },
-            {
-              key: 'examples',
-              header: 'For example row',
-              cell: ({ examples }) => examples.map((row) => formatNumber(row)).join('; '),
-            },
-          ]}
-        />
+        <section className="grid justify-items-start gap-3" aria-label="Problem rows">
+          <DataTable
+            caption="Problem rows, by kind"
+            rows={report.problems}
+            rowKey={({ problem, column }) => `${problem} ${column ?? ''}`}
+            columns={[
+              { key: 'problem', header: 'What is wrong', rowHeader: true, cell: ({ problem }) => rowProblems[problem] },
+              {
+                key: 'column',
+                header: 'Column',
+                cell: ({ column }) => (column === null ? 'Row' : visitColumnNames[column]),
+              },
+              { key: 'rows', header: 'Rows', figure: true, cell: ({ rows }) => formatNumber(rows) },
+              {
+                key: 'examples',
+                header: 'For example row',
+                cell: ({ examples }) => examples.map((row) => formatNumber(row)).join('; '),
+              },
+              {
+                key: 'save',
+                header: 'All rows of the kind',
+                cell: ({ problem }) => (
+                  <Button
+                    look="quiet"
+                    aria-label={`Save the row numbers of “${rowProblems[problem]}” as CSV`}
+                    onClick={() => {
+                      onSaveRows(problem);
+                    }}
+                  >
+                    CSV
+                  </Button>
+                ),
+              },
+            ]}
+          />
+          <Button
+            look="second"
+            onClick={() => {
+              onSaveRows(null);
+            }}
+          >
+            Save all problem rows as CSV
+          </Button>
+          <p className="text-quiet text-ink2">
+            Row number, column and kind; no value. Row 1 is the first after the header.
+          </p>
+        </section>
       ) : null}
       {report.identicalRows > 0 ? (
         <Notice title={`${formatCount(report.identicalRows, 'row equals', 'rows equal')} another in every column.`}>
           <p>True twins exist, so they are kept. If the export doubles rows, correct it first.</p>
         </Notice>
       ) : null}
+      {study}
       {report.goodRows > 0 ? (
         <div className="grid gap-8 lg:grid-cols-2">
           <DataTable

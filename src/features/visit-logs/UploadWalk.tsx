@@ -1,5 +1,8 @@
 import { useEffect, useRef } from 'react';
 import type { ReactNode } from 'react';
+import type { VisitLogSummary } from '../../../shared/api/visit-logs.ts';
+import { periodOf } from '../../../shared/domain/log-period.ts';
+import { problemRowsCsv } from '../../../shared/domain/problem-rows.ts';
 import { Button } from '../../components/Button.tsx';
 import { ProblemNotice } from '../../components/Notice.tsx';
 import { PageHead } from '../../components/PageHead.tsx';
@@ -11,6 +14,8 @@ import { MapStep } from './MapStep.tsx';
 import type { AreaName } from './mapping.ts';
 import { Progress } from './Progress.tsx';
 import type { LastMapping } from './remember-mapping.ts';
+import { saveFile } from './save-file.ts';
+import { StudyReport } from './StudyReport.tsx';
 import { useUploadWalk, type Walk } from './use-upload-walk.ts';
 
 /** The walk from a file to a loaded log: choose, map, check, accept. */
@@ -20,6 +25,8 @@ export function UploadWalk({
   timeZone,
   now,
   last,
+  shiftEnds,
+  logs,
   aside,
   onAccepted,
 }: {
@@ -29,6 +36,9 @@ export function UploadWalk({
   now: number;
   /** How the site's last file was read, by whom and when; null before the first. */
   last: LastMapping | null;
+  /** Ends of the site's shifts, minutes of the local day. */
+  shiftEnds: readonly number[];
+  logs: readonly VisitLogSummary[];
   aside: ReactNode;
   onAccepted: (logId: string) => void;
 }) {
@@ -38,6 +48,8 @@ export function UploadWalk({
     timeZone,
     now,
     remembered: last?.mapping ?? null,
+    shiftEnds,
+    covered: logs.flatMap(({ counts }) => counts),
     onAccepted,
   });
   const bodyRef = useRef<HTMLDivElement>(null);
@@ -50,6 +62,7 @@ export function UploadWalk({
     window.scrollTo?.({ top: 0 });
   }, [walk.step]);
 
+  const period = walk.step === 'report' ? periodOf(walk.report, timeZone, now) : null;
   return (
     <>
       <PageHead
@@ -92,6 +105,21 @@ export function UploadWalk({
               areas={areas}
               timeZone={timeZone}
               payloadBytes={walk.payload?.size ?? 0}
+              study={
+                walk.study && period ? (
+                  <StudyReport
+                    study={walk.study}
+                    period={period}
+                    goodRows={walk.report.goodRows}
+                    logs={logs}
+                    areas={areas}
+                    timeZone={timeZone}
+                  />
+                ) : null
+              }
+              onSaveRows={(kind) => {
+                saveFile('problem-rows.csv', 'text/csv', problemRowsCsv(walk.problemRows, kind));
+              }}
               onRepeatedHour={(repeatedHour) => {
                 act.check(walk, { ...walk.mapping, repeatedHour });
               }}

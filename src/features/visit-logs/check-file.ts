@@ -1,4 +1,5 @@
 import { canonicalHeader, canonicalLine } from '../../../shared/domain/canonical-visit.ts';
+import type { TimeSpan } from '../../../shared/domain/file-study.ts';
 import { parseInstant } from '../../../shared/domain/instant.ts';
 import { readLocalTime, type DateOrder } from '../../../shared/domain/local-time.ts';
 import { VisitFileReader, type FileOutcome } from '../../../shared/domain/visit-file.ts';
@@ -31,6 +32,10 @@ export interface CheckSettings {
   mapping: FileMapping;
   areaIds: readonly string[];
   timeZone: string;
+  /** Ends of the site's shifts, minutes of the local day. */
+  shiftEnds: readonly number[];
+  /** What loaded logs cover already. */
+  covered: readonly TimeSpan[];
   /** UTC seconds. */
   now: number;
 }
@@ -50,7 +55,7 @@ export async function checkFile(
   settings: CheckSettings,
   onBytes: (bytes: number) => void,
 ): Promise<FileCheck> {
-  const { survey, mapping, areaIds, now } = settings;
+  const { survey, mapping, areaIds, timeZone, shiftEnds, covered, now } = settings;
   const packer = new CompressionStream('gzip');
   const payload = new Response(packer.readable).blob();
   const writer = packer.writable.getWriter();
@@ -71,6 +76,7 @@ export async function checkFile(
     places: () => ({ places }),
     reading: makeReading(settings),
     now,
+    study: { zone: makeZone(timeZone), shiftEnds, covered },
     onVisit: (visit) => {
       lines.push(canonicalLine(visit, areaIds[visit.area]));
     },

@@ -13,8 +13,9 @@ import { call } from '../../lib/api-client.ts';
 const logsKey = (siteId: string) => ['visit-logs', siteId] as const;
 
 /** Logs of the site; asked every two seconds while one is loading. */
-export function useVisitLogs(siteId: string) {
+export function useVisitLogs(siteId: string, enabled = true) {
   return useQuery({
+    enabled,
     queryKey: logsKey(siteId),
     queryFn: async ({ signal }) => (await call(listVisitLogs, { params: { siteId }, signal })).logs,
     refetchInterval: (query) => (query.state.data?.some((log) => log.status === 'loading') ? 2000 : false),

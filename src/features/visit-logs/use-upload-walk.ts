@@ -2,6 +2,7 @@ import { useEffect, useRef, useState } from 'react';
 import type { RememberedMapping } from '../../../shared/api/visit-log-mapping.ts';
 import type { ExtractFactsInput } from '../../../shared/api/visit-logs.ts';
 import { screenFileName } from '../../../shared/domain/screen-file-name.ts';
+import type { FileStudy, TimeSpan } from '../../../shared/domain/file-study.ts';
 import type { ProblemRows } from '../../../shared/domain/problem-rows.ts';
 import type { VisitReport } from '../../../shared/domain/visit-report.ts';
 import type { FileMapping } from './check-file.ts';
@@ -20,6 +21,7 @@ interface Read {
 interface Checked extends Read {
   report: VisitReport;
   problemRows: ProblemRows[];
+  study: FileStudy | null;
   payload: Blob | null;
 }
 
@@ -39,6 +41,8 @@ export function useUploadWalk({
   timeZone,
   now,
   remembered,
+  shiftEnds,
+  covered,
   onAccepted,
 }: {
   siteId: string;
@@ -47,6 +51,10 @@ export function useUploadWalk({
   now: number;
   /** How the site's last file was read; null before the first. */
   remembered: RememberedMapping | null;
+  /** Ends of the site's shifts, minutes of the local day. */
+  shiftEnds: readonly number[];
+  /** What loaded logs cover already. */
+  covered: readonly TimeSpan[];
   onAccepted: (logId: string) => void;
 }) {
   const [walk, setWalk] = useState<Walk>({ step: 'choose' });
@@ -111,11 +119,20 @@ export function useUploadWalk({
 
   const check = ({ file, survey }: Read, mapping: FileMapping) => {
     const from: Walk = { step: 'map', file, survey, mapping, refused: [] };
-    const settings = { survey, mapping, areaIds: areas.map(({ id }) => id), timeZone, now };
+    const settings = { survey, mapping, areaIds: areas.map(({ id }) => id), timeZone, shiftEnds, covered, now };
     void run(from, { ...from, step: 'checking', bytes: 0, total: file.size }, async (signal, onBytes) => {
       const { outcome, payload } = await checkOnThread(file, settings, signal, onBytes);
       return outcome.refused === null
-        ? { step: 'report', file, survey, mapping, report: outcome.report, problemRows: outcome.problemRows, payload }
+        ? {
+            step: 'report',
+            file,
+            survey,
+            mapping,
+            report: outcome.report,
+            problemRows: outcome.problemRows,
+            study: outcome.study,
+            payload,
+          }
         : { ...from, refused: outcome.refused };
     });
   };

@@ -55,7 +55,15 @@ function offered(found: FileSurvey, more: Partial<FileMapping> = {}): FileMappin
 
 async function check(content: string | Uint8Array<ArrayBuffer>, more: Partial<FileMapping> = {}) {
   const found = await survey(content);
-  const settings = { survey: found, mapping: offered(found, more), areaIds: areas.map(({ id }) => id), timeZone, now };
+  const settings = {
+    survey: found,
+    mapping: offered(found, more),
+    areaIds: areas.map(({ id }) => id),
+    timeZone,
+    shiftEnds: [],
+    covered: [],
+    now,
+  };
   const { outcome, payload } = await checkFile(blob(content), settings, () => undefined);
   const sent = payload === null ? null : gunzipSync(Buffer.from(await payload.arrayBuffer())).toString();
   return { survey: found, outcome, sent };

@@ -1,5 +1,5 @@
 import { expect, test } from 'vitest';
-import { periodOf } from '../../server/features/visit-logs/period.ts';
+import { periodOf } from '../../../shared/domain/log-period.ts';
 
 const at = (text: string) => Date.parse(text) / 1000;
 

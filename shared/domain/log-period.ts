@@ -1,6 +1,6 @@
-import type { VisitReport } from '../../../shared/domain/visit-report.ts';
-import { makeZone, type Zone } from '../../../shared/domain/zoned-time.ts';
-import type { Span } from '../../database/counting-spans.ts';
+import type { VisitReport } from './visit-report.ts';
+import { makeZone, type Zone } from './zoned-time.ts';
+import type { TimeSpan } from './file-study.ts';
 
 /**
  * The period that a log states: whole local days from that of the first arrival to that of the last,
@@ -12,7 +12,7 @@ export function periodOf(
   report: Pick<VisitReport, 'firstArrivalAt' | 'lastArrivalAt'>,
   timeZone: string,
   takenAt: number,
-): Span | null {
+): TimeSpan | null {
   const { firstArrivalAt, lastArrivalAt } = report;
   if (firstArrivalAt === null || lastArrivalAt === null) return null;
   const zone = makeZone(timeZone);

@@ -1,0 +1,63 @@
+import type { Page } from 'playwright-core';
+
+const site = '/sites/farrowmere-general';
+
+/** One page of the product, looked at as the person it is for. */
+export interface AuditedPage {
+  name: string;
+  /** Account of the demo; null: nobody is signed in. */
+  username: string | null;
+  path: string;
+  /** What has to stand on the page before it counts as loaded. */
+  ready: string;
+  /** Follows the page's first link to an address like this, where an id is not known beforehand. */
+  follow?: RegExp;
+  /** Brings the page into the state that is looked at. */
+  prepare?: (page: Page) => Promise<void>;
+}
+
+/** Every page, with the states that have a look of their own. */
+export const auditedPages: readonly AuditedPage[] = [
+  { name: 'sign-in', username: null, path: '/sign-in', ready: 'a[href^="/auth/sign-in"]' },
+  { name: 'sign-in-refused', username: null, path: '/sign-in?problem=refused', ready: 'a[href^="/auth/sign-in"]' },
+  { name: 'no-role', username: 'nobody', path: '/', ready: 'h1' },
+  { name: 'administrator', username: 'admin', path: '/', ready: 'h1' },
+  { name: 'tonight-charge', username: 'charge', path: `${site}/tonight`, ready: '.night-board' },
+  {
+    name: 'tonight-census-typed',
+    username: 'charge',
+    path: `${site}/tonight`,
+    ready: '.night-board',
+    prepare: async (page) => {
+      await page.getByLabel('Acute, present').first().fill('41');
+    },
+  },
+  { name: 'tonight-executive', username: 'executive', path: `${site}/tonight`, ready: '.night-board' },
+  { name: 'logs', username: 'steward', path: `${site}/logs`, ready: 'table' },
+  { name: 'log', username: 'steward', path: `${site}/logs`, follow: /\/logs\/(?!new)[^/]+$/, ready: 'h2' },
+  { name: 'load-a-log', username: 'steward', path: `${site}/logs/new`, ready: 'input[type=file]' },
+  { name: 'models', username: 'operations', path: `${site}/models`, ready: 'table' },
+  { name: 'model', username: 'operations', path: `${site}/models`, follow: /\/models\/[^/]+$/, ready: 'h2' },
+  {
+    name: 'model-opened',
+    username: 'operations',
+    path: `${site}/models`,
+    follow: /\/models\/[^/]+$/,
+    ready: 'h2',
+    prepare: async (page) => {
+      for (const summary of await page.locator('summary').all()) await summary.click();
+    },
+  },
+  { name: 'how', username: 'charge', path: '/how', ready: '#sources' },
+  {
+    name: 'shortcuts',
+    username: 'charge',
+    path: '/how',
+    ready: '#sources',
+    prepare: async (page) => {
+      await page.keyboard.press('?');
+      await page.locator('dialog[open]').waitFor();
+    },
+  },
+  { name: 'not-found', username: 'charge', path: '/nowhere', ready: 'h1' },
+];
