@@ -7,6 +7,7 @@ import session from 'express-session';
 import { pinoHttp } from 'pino-http';
 import type { Dependencies } from './dependencies.ts';
 import { HttpError, notFound } from './errors.ts';
+import { addAlertRoutes } from './features/alerts/routes.ts';
 import { addArrivalModelRoutes } from './features/arrival-models/routes.ts';
 import { addJobRoutes } from './features/jobs/routes.ts';
 import type { OutlookIssuer } from './features/outlook/issuer.ts';
@@ -15,13 +16,14 @@ import { addServerStatusRoutes } from './features/server-status/routes.ts';
 import { addSignInRoutes } from './features/sign-in/routes.ts';
 import { addSiteRoutes } from './features/sites/routes.ts';
 import { addStaffedBedRoutes } from './features/staffed-beds/routes.ts';
+import { addTokenRoutes } from './features/tokens/routes.ts';
 import { addVisitLogRoutes } from './features/visit-logs/routes.ts';
 import { requireAntiForgeryToken } from './http/anti-forgery.ts';
 import { makeErrorHandler } from './http/error-handler.ts';
+import { recogniseTokens } from './http/machine-token.ts';
 import type { RouteTable } from './http/route.ts';
 import { securityHeaders } from './http/security-headers.ts';
 import type { SessionStore } from './http/session-store.ts';
-import { limitTokens } from './http/token-rate-limit.ts';
 import { serveClient } from './http/static-client.ts';
 
 export interface App {
@@ -91,7 +93,7 @@ export function createApp(
       },
     }),
   );
-  app.use('/api', limitTokens());
+  app.use('/api', recogniseTokens(deps));
   app.use(
     ['/api', '/auth'],
     session({
@@ -124,6 +126,8 @@ export function createApp(
   });
   addVisitLogRoutes(app, routes, deps);
   addJobRoutes(app, routes, deps);
+  addTokenRoutes(app, routes, deps);
+  addAlertRoutes(app, routes, deps);
 
   app.use(['/api', '/auth', '/healthz', '/readyz'], () => {
     throw notFound('This address');

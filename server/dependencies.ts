@@ -3,6 +3,7 @@ import type { Config } from './config.ts';
 import type { Database } from './database/database.ts';
 import type { JobQueue } from './jobs/queue.ts';
 import type { Logger } from './log.ts';
+import type { Mailer } from './mail/mailer.ts';
 import type { SimulationPool } from './simulation/pool.ts';
 
 /** What the application is made of; tests hand in their own. */
@@ -16,4 +17,5 @@ export interface Dependencies {
   /** Threads kept for outlooks, so that a fit never makes a nurse wait. */
   simulation: SimulationPool;
   jobs: JobQueue;
+  mailer: Mailer;
 }

@@ -87,9 +87,9 @@ export function tokenForOther(): HttpError {
 
 /** 403: signed in, at this site, but not with a role that may. */
 export function notAllowed(): HttpError {
-  return new HttpError(403, 'Not allowed', 'Your roles here do not allow this.', {
-    kept: 'Nothing was stored.',
-    next: 'Ask the administrator for the role that does.',
+  return new HttpError(403, 'Not allowed', 'Your roles at this site do not include this.', {
+    kept: 'Nothing was changed.',
+    next: 'Ask the administrator if they should.',
   });
 }
 

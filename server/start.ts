@@ -7,6 +7,7 @@ import type { Config } from './config.ts';
 import { openDatabase } from './database/database.ts';
 import type { Dependencies } from './dependencies.ts';
 import { ConfigError } from './errors.ts';
+import { afterOutlook } from './features/alerts/after-outlook.ts';
 import { OutlookIssuer } from './features/outlook/issuer.ts';
 import { SessionStore } from './http/session-store.ts';
 import { JobQueue } from './jobs/queue.ts';
@@ -14,6 +15,7 @@ import { makeJobKinds } from './jobs/registry.ts';
 import { startTimetable } from './jobs/timetable.ts';
 import { sweepVisitLogs } from './features/visit-logs/sweep-visit-logs.ts';
 import { makeLogger } from './log.ts';
+import { makeMailer } from './mail/mailer.ts';
 import { makeSimulationPool } from './simulation/pool.ts';
 
 export interface RunningServer {
@@ -34,6 +36,7 @@ function clientDir(): string {
 export async function openServer(
   config: Config,
 ): Promise<{ deps: Dependencies; issuer: OutlookIssuer; close: () => Promise<void> }> {
+  const mailer = makeMailer(config);
   try {
     mkdirSync(config.dataDir, { recursive: true, mode: 0o700 });
   } catch (error) {
@@ -48,10 +51,11 @@ export async function openServer(
     throw fault === null ? error : new ConfigError(`Cannot start: the database in DATA_DIR cannot be used (${fault}).`);
   });
   const pool = makeSimulationPool(config.threads);
-  const simulation = makeSimulationPool(config.threads);
+  const simulation = makeSimulationPool(config.threads, { keepThreads: true });
   const jobs = new JobQueue(database, clock, logger);
-  const deps: Dependencies = { config, database, clock, logger, pool, simulation, jobs };
+  const deps: Dependencies = { config, database, clock, logger, pool, simulation, jobs, mailer };
   const issuer = new OutlookIssuer(deps);
+  issuer.onIssued = (outlookId) => afterOutlook(deps, outlookId);
   return {
     deps,
     issuer,

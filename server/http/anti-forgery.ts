@@ -26,9 +26,9 @@ export function requireAntiForgeryToken(secret: string): RequestHandler {
       return;
     }
     next(
-      new HttpError(403, 'Not allowed', 'The request did not carry this session’s anti-forgery token.', {
+      new HttpError(403, 'The session changed', 'Somebody signed in again on this device since the page was opened.', {
         kept: 'Nothing was stored.',
-        next: 'Reload the page and try again; a program reads the token from /api/session and sends it as x-csrf-token.',
+        next: 'Reload the page and try again. (A program sends the anti-forgery token of /api/session as x-csrf-token.)',
       }),
     );
   };

@@ -4,11 +4,14 @@ import type { Contract } from '../../shared/api/contract.ts';
 import { isGranted } from '../../shared/domain/permission.ts';
 import type { TokenPurpose } from '../../shared/domain/token-purpose.ts';
 import type { Dependencies } from '../dependencies.ts';
-import type { MachineToken } from '../entities/MachineToken.ts';
+import { MachineToken } from '../entities/MachineToken.ts';
 import { Site } from '../entities/Site.ts';
 import { notAllowed, notFound, notSignedIn, tokenForOther, tokenRefused } from '../errors.ts';
 import { readCaller, type Caller } from './caller.ts';
-import { bearerSecret, readToken } from './read-token.ts';
+import { tokenOf } from './machine-token.ts';
+
+/** `lastUsedAt` is moved on at most this often, so that every call does not write. */
+const touchEverySeconds = 60;
 
 export interface Authorized {
   caller: Caller | null;
@@ -31,8 +34,8 @@ export async function authorize(
   contract: Contract,
   now: number,
 ): Promise<Authorized> {
-  const secret = contract.token ? bearerSecret(req) : null;
-  if (contract.token && secret !== null) return authorizeToken(deps, req, contract.token, secret, now);
+  const token = tokenOf(req);
+  if (contract.token && token !== undefined) return authorizeToken(deps, req, contract.token, token, now);
 
   // Health checks lie outside the paths that have sessions.
   const personId = (req.session as Request['session'] | undefined)?.personId;
@@ -58,10 +61,9 @@ async function authorizeToken(
   deps: Dependencies,
   req: Request,
   purpose: TokenPurpose,
-  secret: string,
+  token: MachineToken | null,
   now: number,
 ): Promise<Authorized> {
-  const token = await readToken(deps, secret, now);
   if (!token) {
     // RFC 9110, 15.5.2: a 401 names the scheme that would be accepted.
     req.res?.setHeader('www-authenticate', 'Bearer error="invalid_token"');
@@ -71,5 +73,8 @@ async function authorizeToken(
     token.siteId === req.params.siteId ? await deps.database.read.findOneBy(Site, { id: token.siteId }) : null;
   if (!site) throw notFound('This site');
   if (token.purpose !== purpose) throw tokenForOther();
+  if (token.lastUsedAt === null || token.lastUsedAt <= now - touchEverySeconds) {
+    await deps.database.write((manager) => manager.update(MachineToken, { id: token.id }, { lastUsedAt: now }));
+  }
   return { caller: null, site, token };
 }

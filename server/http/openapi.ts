@@ -21,7 +21,9 @@ export function describeApi(contracts: readonly Contract[], version: string): ob
         contract.access === 'public'
           ? 'Open to nobody signed in.'
           : `Needs: ${contract.access}${contract.token ? `, or a machine token of the site for ${contract.token}` : ''}.`,
-      ...(contract.access === 'public' ? {} : { security: [{ session: [] }, ...(contract.token ? [{ machineToken: [] }] : [])] }),
+      ...(contract.access === 'public'
+        ? {}
+        : { security: [{ session: [] }, ...(contract.token ? [{ machineToken: [] }] : [])] }),
       request: {
         ...(params instanceof z.ZodObject ? { params } : {}),
         ...(query instanceof z.ZodObject ? { query } : {}),

@@ -1,6 +1,7 @@
 import { existsSync, readFileSync } from 'node:fs';
 import { join } from 'node:path';
 import express, { type Express } from 'express';
+import { notFound } from '../errors.ts';
 import { nonceOf } from './security-headers.ts';
 
 /** Serves the built client: hashed assets for a year, and the page with this reply's nonce for every other address. */
@@ -8,7 +9,11 @@ export function serveClient(app: Express, clientDir: string): void {
   const indexFile = join(clientDir, 'index.html');
   if (!existsSync(indexFile)) return;
   const page = readFileSync(indexFile, 'utf8');
-  app.use('/assets', express.static(join(clientDir, 'assets'), { immutable: true, maxAge: '1y', fallthrough: false }));
+  app.use('/assets', express.static(join(clientDir, 'assets'), { immutable: true, maxAge: '1y' }));
+  // A page of an older version asks for assets that are gone: not there, rather than our fault.
+  app.use('/assets', (_req, _res, next) => {
+    next(notFound('This file'));
+  });
   app.use(express.static(clientDir, { index: false, maxAge: '1h' }));
   app.get('/{*path}', (_req, res) => {
     res

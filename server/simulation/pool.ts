@@ -28,13 +28,16 @@ export function workerUrl(here: string, name: string): URL {
   return new URL(`./${name}${here.endsWith('.ts') ? '.ts' : '.js'}`, here);
 }
 
-/** Starts a pool of threads. They are made when first needed and kept for a minute of idleness. */
-export function makeSimulationPool(threads: number): SimulationPool {
+/**
+ * Starts a pool of threads. They are made when first needed and kept for a minute of idleness, or for good: a thread that
+ * has computed before answers several times faster than a new one, whose code is not compiled yet.
+ */
+export function makeSimulationPool(threads: number, { keepThreads = false } = {}): SimulationPool {
   const fromSource = import.meta.url.endsWith('.ts');
   const piscina = new Piscina({
     minThreads: 0,
     maxThreads: threads,
-    idleTimeout: 60_000,
+    idleTimeout: keepThreads ? Infinity : 60_000,
     execArgv: fromSource ? ['--import', 'tsx'] : [],
   });
   return {

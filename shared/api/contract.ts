@@ -44,8 +44,8 @@ export function defineContract<P extends z.ZodType, Q extends z.ZodType, B exten
   return contract;
 }
 
-export type ParamsOf<C> = C extends Contract<infer P, z.ZodType, z.ZodType, z.ZodType> ? z.output<P> : never;
-export type QueryOf<C> = C extends Contract<z.ZodType, infer Q, z.ZodType, z.ZodType> ? z.output<Q> : never;
-export type BodyOf<C> = C extends Contract<z.ZodType, z.ZodType, infer B, z.ZodType> ? z.output<B> : never;
-export type BodyInputOf<C> = C extends Contract<z.ZodType, z.ZodType, infer B, z.ZodType> ? z.input<B> : never;
+export type ParamsOf<C> = C extends Contract<infer P> ? z.output<P> : never;
+export type QueryOf<C> = C extends Contract<z.ZodType, infer Q> ? z.output<Q> : never;
+export type BodyOf<C> = C extends Contract<z.ZodType, z.ZodType, infer B> ? z.output<B> : never;
+export type BodyInputOf<C> = C extends Contract<z.ZodType, z.ZodType, infer B> ? z.input<B> : never;
 export type ReplyOf<C> = C extends Contract<z.ZodType, z.ZodType, z.ZodType, infer R> ? z.output<R> : never;

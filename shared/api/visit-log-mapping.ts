@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import { visitColumns } from '../domain/visit-row.ts';
+import type { VisitColumn } from '../domain/visit-row.ts';
 import { arrivalMeanings, areaMeanings } from '../domain/extract-meaning.ts';
 import { defineContract } from './contract.ts';
 import { id, instant, siteParams } from './common.ts';
@@ -23,7 +23,7 @@ export const rememberedMapping = z.object({
     care_area: header,
     disposition: header,
     arrived_by_ambulance: header,
-  } satisfies Record<(typeof visitColumns)[number], typeof header>),
+  } satisfies Record<VisitColumn, typeof header>),
   /** How its dates were read; null if no date could be read in two ways. */
   dateOrder: z.enum(['day first', 'month first']).nullable(),
   repeatedHour: z.enum(['refuse', 'earlier', 'later']),

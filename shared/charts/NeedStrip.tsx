@@ -1,6 +1,7 @@
 import { Group } from '@visx/group';
 import { scaleLinear } from '@visx/scale';
 import { Bar } from '@visx/shape';
+import { ActualStep } from './ActualStep.tsx';
 import { halo, labelStyle } from './label-look.ts';
 import { bandsOf, needDomain } from './need-columns.ts';
 import type { NeedColumn, NeedStripProps } from './need-columns.ts';
@@ -60,7 +61,9 @@ export function NeedStrip(props: NeedStripProps) {
           <OpenColumn key={column.at} x={index * columnWidth} barWidth={barWidth} height={height} />
         ) : null,
       )}
+      <NotCounted columns={columns} columnWidth={columnWidth} height={height} />
       <StaffedLine {...props} y={y} width={width} />
+      <ActualStep columns={columns} columnWidth={columnWidth} named={tall} y={top} />
       <NowLabel {...props} top={top} />
       {props.namePercentiles && counted ? <PercentileNames {...props} y={y} /> : null}
     </svg>
@@ -100,6 +103,33 @@ function OpenColumn({ x, barWidth, height }: { x: number; barWidth: number; heig
       strokeDasharray="3 3"
     />
   );
+}
+
+/** Says it in words at the end of each run of hours of which nothing is known that has room for them. */
+function NotCounted({ columns, columnWidth, height }: Pick<NeedStripProps, 'columns' | 'columnWidth' | 'height'>) {
+  const unknown = (index: number) => {
+    const column = columns.at(index);
+    return column?.kind === 'past' && column.present === null;
+  };
+  return columns.map((column, index) => {
+    if (!unknown(index) || (index + 1 < columns.length && unknown(index + 1))) return null;
+    if (index < 1 || !unknown(index - 1)) return null;
+    return (
+      <text
+        key={column.at}
+        x={(index + 1) * columnWidth - 5}
+        y={height - 9}
+        textAnchor="end"
+        fontSize={13}
+        fontWeight={600}
+        fill="var(--ink2)"
+        style={labelStyle}
+        {...halo}
+      >
+        not counted
+      </text>
+    );
+  });
 }
 
 function ForecastColumn({
@@ -163,7 +193,7 @@ function ForecastColumn({
   );
 }
 
-function NowLabel({ columns, columnWidth, presentNow, top }: NeedStripProps & { top: Top }) {
+function NowLabel({ columns, columnWidth, presentNow, then = false, top }: NeedStripProps & { top: Top }) {
   if (presentNow === undefined || presentNow === null) return null;
   const firstForecast = columns.findIndex((column) => column.kind === 'forecast');
   if (firstForecast < 1) return null;
@@ -178,7 +208,7 @@ function NowLabel({ columns, columnWidth, presentNow, top }: NeedStripProps & { 
       style={labelStyle}
       {...halo}
     >
-      {`${String(presentNow)} now`}
+      {`${String(presentNow)} ${then ? 'then' : 'now'}`}
     </text>
   );
 }

@@ -5,7 +5,17 @@ export type NeedColumn = { at: number; staffed: number } & (
       /** Patients present; null where neither a census nor a log speaks. */
       present: number | null;
     }
-  | { kind: 'forecast'; p5: number; p25: number; p50: number; p75: number; p90: number; p95: number }
+  | {
+      kind: 'forecast';
+      p5: number;
+      p25: number;
+      p50: number;
+      p75: number;
+      p90: number;
+      p95: number;
+      /** What was there when the hour came, for an earlier outlook; null where neither a census nor a log speaks. */
+      actual?: number | null;
+    }
 );
 
 export interface StaffedStep {
@@ -29,6 +39,8 @@ export interface NeedStripProps {
   counted: boolean;
   /** Present now, printed at the last counted column. */
   presentNow?: number | null;
+  /** The board is that of an earlier time: what was present is said to be so then. */
+  then?: boolean;
   /** Names P90 and P95 in the drawing. */
   namePercentiles?: boolean;
 }
@@ -83,10 +95,14 @@ export function needDomain(
   mayCut: boolean,
 ): { low: number; high: number; cut: boolean } {
   const tops = columns.map((column) =>
-    Math.max(column.staffed, column.kind === 'past' ? (column.present ?? 0) : column.p95),
+    Math.max(column.staffed, column.kind === 'past' ? (column.present ?? 0) : Math.max(column.p95, column.actual ?? 0)),
   );
   const feet = columns.flatMap((column) =>
-    column.kind === 'past' ? (column.present === null ? [] : [column.present]) : [column.p5],
+    column.kind === 'past'
+      ? column.present === null
+        ? []
+        : [column.present]
+      : [Math.min(column.p5, column.actual ?? Infinity)],
   );
   const high = Math.max(1, ...tops);
   const lowest = Math.min(high, ...feet);

@@ -15,8 +15,8 @@ const weeksForHourOfWeek = 4;
  * Runs of hours in which no arrivals are implausible. With Poisson arrivals at the file's own mean for
  * the hour of the week, a run that expects m arrivals is empty with chance exp(-m); it is reported if
  * that chance times the number of hours is below 0.01 (Bonferroni), so m > ln(hours / 0.01): 13.7 in a
- * year. Runs found are left out of the means and the search is made once more. In files below four
- * weeks the mean of the hour of the day stands in.
+ * year. The mean leaves out the run that is judged; runs found are left out of all means, and the search
+ * is made once more. In files below four weeks the mean of the hour of the day stands in.
  * Source: the Poisson law's mass at 0; the bound is Bonferroni's inequality.
  * @param counts arrivals by local hour
  * @param exposure hours that each label lasted; 0 leaves an hour out of everything
@@ -37,15 +37,28 @@ export function findEmptyRuns(counts: Float64Array, exposure: Float64Array, firs
       arrivals[placeOf(index)] += counts[index];
       hours[placeOf(index)] += exposure[index];
     }
-    const mean = arrivals.map((sum, place) => (hours[place] > 0 ? sum / hours[place] : 0));
-    runs = emptyRuns(counts, exposure, (index) => mean[placeOf(index)]).filter(({ expected }) => expected > enough);
+    runs = emptyRuns(counts, exposure)
+      .map((run) => ({ ...run, expected: expectedIn(run) }))
+      .filter(({ expected }) => expected > enough);
+
+    function expectedIn({ first: from, last }: { first: number; last: number }): number {
+      const own = new Float64Array(hoursOfWeek);
+      for (let index = from; index <= last; index += 1) if (isOut[index] === 0) own[placeOf(index)] += exposure[index];
+      let expected = 0;
+      for (let index = from; index <= last; index += 1) {
+        const place = placeOf(index);
+        const others = hours[place] - own[place];
+        if (others > 0) expected += (arrivals[place] / others) * exposure[index];
+      }
+      return expected;
+    }
   }
   return runs;
 }
 
-function emptyRuns(counts: Float64Array, exposure: Float64Array, meanAt: (index: number) => number): EmptyRun[] {
-  const runs: EmptyRun[] = [];
-  let run: EmptyRun | null = null;
+function emptyRuns(counts: Float64Array, exposure: Float64Array): { first: number; last: number }[] {
+  const runs: { first: number; last: number }[] = [];
+  let run: { first: number; last: number } | null = null;
   for (let index = 0; index < counts.length; index += 1) {
     if (exposure[index] === 0) continue;
     if (counts[index] > 0) {
@@ -53,9 +66,8 @@ function emptyRuns(counts: Float64Array, exposure: Float64Array, meanAt: (index:
       run = null;
       continue;
     }
-    run ??= { first: index, last: index, expected: 0 };
+    run ??= { first: index, last: index };
     run.last = index;
-    run.expected += meanAt(index) * exposure[index];
   }
   if (run) runs.push(run);
   return runs;

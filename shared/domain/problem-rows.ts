@@ -32,11 +32,9 @@ export const problemRowsHeader = 'row,column,kind';
 
 /**
  * Problem rows as CSV (RFC 4180): row number, column, kind of problem; never a value. Ascending by row.
- * @param chosen only this kind; null for all
  * @returns pieces of text, some thousands of lines each. Cost: a sort of all rows named.
  */
-export function problemRowsCsv(lists: readonly ProblemRows[], chosen: RowProblem | null = null): string[] {
-  const kinds = lists.filter(({ problem }) => chosen === null || problem === chosen);
+export function problemRowsCsv(kinds: readonly ProblemRows[]): string[] {
   const total = kinds.reduce((sum, { rows }) => sum + rows.length, 0);
   // Row and place of its kind in one number, so that one numeric sort puts them in order.
   const keys = new Float64Array(total);

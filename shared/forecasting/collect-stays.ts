@@ -8,7 +8,7 @@ import type { ExposureGap, ExtractFacts, VisitTable } from './visit-table.ts';
 const thirtyDays = 30 * 86_400;
 const unknownDisposition = 255;
 
-/** One stay to learn from: an interval in a stream, ended by a departure or by censoring. */
+/** Stays to learn from: intervals in a stream, ended by a departure or by censoring. A boarding stay stands just after its whole stay. */
 export interface CollectedStays {
   length: number;
   /** Index of the stream: area · streamsPerArea + stream. */

@@ -11,7 +11,7 @@ import {
   stayOf,
 } from './replication-state.ts';
 import type { ReplicationState } from './replication-state.ts';
-import { streamsPerArea } from './stay-model.ts';
+import { admittedStream, streamsPerArea } from './stay-model.ts';
 
 /** How arrivals of one area are drawn. */
 interface ArrivalDraw {
@@ -64,7 +64,7 @@ function arrive(state: ReplicationState, { a, rate, fromHours, toHours, keep }: 
   const { shareBlock, segments, hourOfBin, shareBlocks, bins } = state.plan;
   const { stays, from: lawFrom, last: lawLast, perHazard, end: lawEnd, tail } = state.newcomers;
   const { segmentBin, segmentBins } = state;
-  const { moves, arriving, leaving } = trace;
+  const { moves, admittedIn, admittedOut } = trace;
   const total = cumulateRates(state, rate, state.plan.areas[a].startSegment);
   if (!(total > 0)) return;
   const scale = change.stay;
@@ -73,6 +73,7 @@ function arrive(state: ReplicationState, { a, rate, fromHours, toHours, keep }: 
   const hoursRow = state.plan.hourTo.length + 1;
   const firstStream = a * streamsPerArea;
   const firstMove = a * (bins + 1);
+  const pooledMove = state.plan.areas.length * (bins + 1);
   const shareFrom = a * shareBlocks * 3;
   const perWord = total * 2 ** -32;
   const patients = drawPoisson(stream, total);
@@ -108,7 +109,8 @@ function arrive(state: ReplicationState, { a, rate, fromHours, toHours, keep }: 
       if (scale !== undefined) x *= scale[s];
       const bin = (segmentBin[k] + share * segmentBins[k]) | 0;
       moves[firstMove + bin] += 1;
-      arriving[s * hoursRow + hourOfBin[bin]] += 1;
+      moves[pooledMove + bin] += 1;
+      if (inArea === admittedStream) admittedIn[a * hoursRow + hourOfBin[bin]] += 1;
       let at = s * row + k;
       let spentBefore = spent[at];
       let spentAfter = spent[at + 1];
@@ -121,7 +123,8 @@ function arrive(state: ReplicationState, { a, rate, fromHours, toHours, keep }: 
       const left = at - s * row;
       const out = (segmentBin[left] + ((target - spentBefore) / (spentAfter - spentBefore)) * segmentBins[left]) | 0;
       moves[firstMove + out] -= 1;
-      leaving[s * hoursRow + hourOfBin[out]] += 1;
+      moves[pooledMove + out] -= 1;
+      if (inArea === admittedStream) admittedOut[a * hoursRow + hourOfBin[out]] += 1;
     }
   }
   trace.patients += count;
@@ -169,8 +172,8 @@ function diverted(state: ReplicationState, a: number, inArea: number, arrival: A
     // Same disposition and draw, the other area's stays.
     const s = to * streamsPerArea + inArea;
     const x = stayOf(state.newcomers, s, draw) * (state.change.stay?.[s] ?? 1);
-    enterArea(state, to, s, Math.floor(t * binsPerHour));
-    leaveArea(state, to, s, departureOf(state, s, k, share, x));
+    enterArea(state, to, inArea, Math.floor(t * binsPerHour));
+    leaveArea(state, to, inArea, departureOf(state, s, k, share, x));
     state.trace.patients += 1;
   }
   return true;

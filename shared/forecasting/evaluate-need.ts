@@ -28,12 +28,12 @@ export interface NeedEvaluation {
   outlooks: number;
 }
 
-const outlooksPerWeek = 7;
+const daysPerWeek = 7;
 const weeksPerChoice = 13;
 const weeksPerStayFit = 4;
 
 /**
- * Rolling-origin evaluation of need: seven outlooks a week at changing hours, each from the census that the log shows at
+ * Rolling-origin evaluation of need: an outlook a day (or several, spread evenly) at changing hours, each from the census that the log shows at
  * that moment and models that know only what came before (arrival model chosen every 13 weeks, its level refreshed daily;
  * stays fitted every 4 weeks), scored at 1 to 72 h ahead against the log's own count.
  * Origins in the first `capHours` of the log or with too little left of it are not scored.
@@ -48,13 +48,14 @@ export function evaluateNeed(input: {
   facts: ExtractFacts;
   calendar: readonly CalendarDay[];
   weeks: number;
+  outlooksPerDay?: number;
   replications?: number;
   seed?: number;
   capHours?: number;
   onProgress?: (share: number) => void;
 }): NeedEvaluation {
   const { visits, areas, zone, fromUtc, toUtc, facts, calendar, weeks, onProgress } = input;
-  const { replications = 500, seed = 1, capHours = 72 } = input;
+  const { replications = 500, seed = 1, capHours = 72, outlooksPerDay = 1 } = input;
   const counts = countHourly(visits, areas, zone, fromUtc, toUtc);
   const length = Math.floor(counts.exposureHours.length / 24) * 24;
   const firstOrigin = length - weeks * 168;
@@ -67,6 +68,7 @@ export function evaluateNeed(input: {
   const outcomes: boolean[] = [];
   let outlooks = 0;
   let arrival: ArrivalModel | undefined;
+  let today: ArrivalModel | undefined;
   let stay: StayModel | undefined;
   let beds: number[] = [];
   for (let week = 0; week < weeks; week += 1) {
@@ -86,13 +88,16 @@ export function evaluateNeed(input: {
       });
       beds = highPointOfNeed((at) => present.presentAt(at), fromUtc + capHours * 3600, originUtc, areas);
     }
-    for (let k = 0; k < outlooksPerWeek; k += 1) {
-      const midnight = origin + 24 * k;
+    for (let k = 0; k < daysPerWeek * outlooksPerDay; k += 1) {
+      const day = Math.floor(k / outlooksPerDay);
+      const midnight = origin + 24 * day;
       const midnightUtc = utcOf(zone, counts, midnight);
       // A step of seven hours from day to day visits every part of the day.
-      const issuedAt = midnightUtc + ((7 * (k + week)) % 24) * 3600;
+      const hour = (7 * (day + week) + Math.floor((24 * (k % outlooksPerDay)) / outlooksPerDay)) % 24;
+      const issuedAt = midnightUtc + hour * 3600;
       if (issuedAt + 73 * 3600 > toUtc || !arrival || !stay) continue;
-      const model = { arrival: refreshLevel(arrival, firstHours(counts, midnight)), stay, calendar };
+      if (k % outlooksPerDay === 0) today = refreshLevel(arrival, firstHours(counts, midnight));
+      const model = { arrival: today ?? arrival, stay, calendar };
       const outlook = outlookInput(
         issuedAt,
         midnightUtc,
@@ -108,8 +113,7 @@ export function evaluateNeed(input: {
       needLeads.forEach((lead, l) => {
         const truth = present.presentAt(issuedAt + lead * 3600);
         const before = present.presentAt(issuedAt + lead * 3600 - 168 * 3600);
-        const hour = lead - 1;
-        const pooled = part.pooledNeed.subarray(hour * part.pooledSize, (hour + 1) * part.pooledSize);
+        const pooled = part.pooledNeed.subarray(l * part.pooledSize, (l + 1) * part.pooledSize);
         const all = truth.reduce((sum, n) => sum + n, 0);
         scores[l].push(
           scoreCount(
@@ -120,7 +124,7 @@ export function evaluateNeed(input: {
           ),
         );
         for (let a = 0; a < areas; a += 1) {
-          const at = (a * part.hours + hour) * part.size;
+          const at = (a * part.hours + l) * part.size;
           const forecast = histogramForecast(part.need.subarray(at, at + part.size));
           areaScores[l].push(scoreCount(forecast, truth[a], week, before[a]));
           chances.push(Math.min(1, Math.max(0, 1 - forecast.cdf(beds[a]))));
@@ -196,7 +200,7 @@ function outlookInput(
   return {
     issuedAt,
     timeZone: zone.name,
-    hours: Array.from({ length: 72 }, (_, h) => issuedAt + (h + 1) * 3600),
+    hours: needLeads.map((lead) => issuedAt + lead * 3600),
     areas: census.map((own, a) => ({
       areaId: String(a),
       census: own,

@@ -1,6 +1,15 @@
 import type { Pmf } from '../stochastic/convolve.ts';
-import type { CountLaw } from './count-law.ts';
-import { binomialLaw, gammaPoissonLaw, mixtureOfSums, sumOfLaws } from './count-law.ts';
+import {
+  addSum,
+  binomialLaw,
+  lengthOfSum,
+  makeLawRoom,
+  putBinomial,
+  putGammaPoisson,
+  putLaw,
+  sumOfLaws,
+} from './count-law.ts';
+import type { CountLaw, LawRoom } from './count-law.ts';
 import type { FactorNode } from './factor-nodes.ts';
 
 /** One stream of an area: arrivals an hour and departure hazard an hour, constant within each segment. */
@@ -32,7 +41,6 @@ export interface ExactNeedInput {
   onlyLast?: boolean;
 }
 
-const nobody = Float64Array.of(1);
 const one: readonly FactorNode[] = [{ value: 1, weight: 1 }];
 
 function check(input: ExactNeedInput): void {
@@ -91,15 +99,43 @@ export function exactNeed(input: ExactNeedInput): Pmf[] {
     });
   });
   const wanted = input.onlyLast === true ? [count - 1] : Array.from({ length: count }, (_, k) => k);
-  return wanted.map((k) =>
-    mixtureOfSums(
-      outflowNodes.map((node, o) => {
-        let left: CountLaw = { first: 0, pmf: nobody };
-        present.forEach((group, g) => {
-          if (group.patients > 0) left = sumOfLaws(left, binomialLaw(group.patients, survivals[o][g][k]));
-        });
-        return { weight: node.weight, a: left, b: gammaPoissonLaw(means[o][k], arrivalVariance) };
-      }),
-    ),
+  const counted = present.map((group, g) => ({ patients: group.patients, g })).filter(({ patients }) => patients > 0);
+  const left = lawRooms(outflowNodes.length);
+  const newcomers = lawRooms(outflowNodes.length);
+  return wanted.map((k) => {
+    let length = 0;
+    outflowNodes.forEach((_, o) => {
+      putSurvivors(left[o], counted, (g) => survivals[o][g][k]);
+      putGammaPoisson(newcomers[o], means[o][k], arrivalVariance);
+      length = Math.max(length, lengthOfSum(left[o], newcomers[o]));
+    });
+    const chances = new Float64Array(length);
+    outflowNodes.forEach((node, o) => {
+      addSum(chances, node.weight, left[o], newcomers[o]);
+    });
+    return chances;
+  });
+}
+
+function lawRooms(count: number): LawRoom[] {
+  return Array.from({ length: count }, makeLawRoom);
+}
+
+/** Puts the law of how many of those counted are left into a room. */
+function putSurvivors(
+  room: LawRoom,
+  counted: readonly { patients: number; g: number }[],
+  survival: (g: number) => number,
+): void {
+  if (counted.length < 2) {
+    const only = counted.at(0);
+    putBinomial(room, only?.patients ?? 0, only ? survival(only.g) : 0);
+    return;
+  }
+  putLaw(
+    room,
+    counted
+      .map(({ patients, g }): CountLaw => binomialLaw(patients, survival(g)))
+      .reduce((all, own) => sumOfLaws(all, own)),
   );
 }

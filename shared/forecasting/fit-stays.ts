@@ -1,13 +1,15 @@
 import type { Zone } from '../domain/zoned-time.ts';
 import { collectStays, tallyStays } from './collect-stays.ts';
 import type { CollectedStays, StayTallies } from './collect-stays.ts';
+import { fitDecisionLaws } from './decision-law.ts';
 import { fitBedSpace } from './fit-bed-space.ts';
 import { reportHeaping } from './heaping.ts';
 import { fitStreams } from './fit-streams.ts';
 import { fitOutflowByDay } from './outflow-by-day.ts';
 import { cutBlocks, holidayNumbers } from './stay-clock.ts';
-import { blockHazards, boardingStream, streamsPerArea } from './stay-model.ts';
+import { boardingStream, streamsPerArea } from './stay-model.ts';
 import type { StayModel } from './stay-model.ts';
+import { compensateStays, operationalClock } from './stay-compensator.ts';
 import { fitStayShapes } from './stay-shape.ts';
 import { shrinkShares } from './stay-shrinkage.ts';
 import type { CalendarDay, ExposureGap, ExtractFacts, VisitTable } from './visit-table.ts';
@@ -78,18 +80,14 @@ export function fitStays(request: StayFitRequest): StayModel {
     (factor) => fitStreams(tallies, factor, cells.block, blockHours),
     rounds,
     tallies,
+    (streams, factorByCell) => {
+      const clock = operationalClock(cells, streams, factorByCell);
+      const shapes = fitStayShapes(stays, cells, blockHours, clock);
+      return compensateStays(stays, cells, blockHours, { clock, shapes, factorByCell });
+    },
   );
   const { streams, factorByCell } = outflow;
-  const clock = streams.map((stream) => {
-    const hazards = blockHazards(stream);
-    const factors = factorByCell(stream.stream);
-    const times = new Float64Array(cells.block.length + 1);
-    for (let c = 0; c < cells.block.length; c += 1) {
-      times[c + 1] =
-        times[c] + (hazards[cells.block[c]] * factors[c] * (cells.startAt[c + 1] - cells.startAt[c])) / 3600;
-    }
-    return times;
-  });
+  const clock = operationalClock(cells, streams, factorByCell);
   const shapes = fitStayShapes(stays, cells, blockHours, clock);
   streams.forEach((stream, index) => {
     stream.shape = shapes[index];
@@ -112,6 +110,7 @@ export function fitStays(request: StayFitRequest): StayModel {
     shareBeforeDecision: Array.from(stays.decision.whole, (whole, area) =>
       whole > 0 ? stays.decision.before[area] / whole : null,
     ),
+    decisions: fitDecisionLaws(stays, areas, cells, blockHours, clock),
     shares: stays.arrivalsByBlock.map((counts, area) => ({ area, alpha: shrinkShares(counts, prior) })),
     outflow: { others: outflow.others, admitted: outflow.admitted },
     bedSpace: fitBedSpace(visits, areas, capHours, used),

@@ -2,21 +2,32 @@ import { gammaPoissonQuantile } from '../stochastic/gamma-poisson.ts';
 import { finishOutlook } from './finish-outlook.ts';
 import type { OutlookInput, OutlookResult } from './outlook-types.ts';
 import { prepareNeed } from './prepare-need.ts';
-import type { OutlookModel } from './prepare-need.ts';
+import type { OutlookModel, PreparedNeed } from './prepare-need.ts';
 import type { NeedPart } from './need-part.ts';
 import { expectedRates } from './rate-draws.ts';
 import { makeRateGrid } from './rate-grid.ts';
 import { simulateNeedPart } from './simulate-need.ts';
 import { makeZone } from '../domain/zoned-time.ts';
 
+/** What the parts of an outlook and its end stand on; made once a thread. */
+export interface PreparedOutlook extends PreparedNeed {
+  input: OutlookInput;
+  arrivalsSoFar: OutlookResult['arrivalsSoFar'];
+}
+
+/** Makes ready for the replications of an outlook. @throws RangeError naming a bad input. Cost: a few ms. */
+export function prepareOutlook(model: OutlookModel, input: OutlookInput): PreparedOutlook {
+  return { ...prepareNeed(model, input), input, arrivalsSoFar: arrivalsSoFar(model, input) };
+}
+
 /** One thread's share of an outlook: replications [from, to). The parts of any split add up to the same result. */
-export function simulateOutlookPart(model: OutlookModel, input: OutlookInput, from: number, to: number): NeedPart {
-  return simulateNeedPart(prepareNeed(model, input).plan, from, to);
+export function simulateOutlookPart(prepared: PreparedOutlook, from: number, to: number): NeedPart {
+  return simulateNeedPart(prepared.plan, from, to);
 }
 
 /** The outlook from its parts: see `finishOutlook`. */
-export function outlookFromParts(model: OutlookModel, input: OutlookInput, parts: readonly NeedPart[]): OutlookResult {
-  return finishOutlook(input, prepareNeed(model, input), parts, arrivalsSoFar(model, input));
+export function outlookFromParts(prepared: PreparedOutlook, parts: readonly NeedPart[]): OutlookResult {
+  return finishOutlook(prepared.input, prepared, parts, prepared.arrivalsSoFar);
 }
 
 /**
@@ -25,9 +36,8 @@ export function outlookFromParts(model: OutlookModel, input: OutlookInput, parts
  * @throws RangeError naming a bad input. Cost: about 50 µs a replication of 5 areas × 36 hours.
  */
 export function issueOutlook(model: OutlookModel, input: OutlookInput): OutlookResult {
-  const prepared = prepareNeed(model, input);
-  const part = simulateNeedPart(prepared.plan, 0, input.replications);
-  return finishOutlook(input, prepared, [part], arrivalsSoFar(model, input));
+  const prepared = prepareOutlook(model, input);
+  return outlookFromParts(prepared, [simulateOutlookPart(prepared, 0, input.replications)]);
 }
 
 /** How the arrivals counted so far compare with what the model expected before it knew them. */

@@ -1,4 +1,3 @@
-import { newcomersUnderShape } from './census-start.ts';
 import type { ModelledPast } from './census-start.ts';
 import type { StayDraw, StaySegments } from './stay-draw.ts';
 import { boardingStream, streamsPerArea } from './stay-model.ts';
@@ -65,12 +64,15 @@ export function areaFlows(
   let arrivals = 0;
   const total = new Float64Array(after.hours.length);
   after.ratePerHour.forEach((rate, s) => {
-    newcomersUnderShape(after.hours, rate, after.hazardPerHour[s], null).forEach((mean, k) => {
+    let mean = 0;
+    for (let k = 0; k < rate.length; k += 1) {
+      const hazard = after.hazardPerHour[s][k];
+      const spent = hazard * after.hours[k];
+      // m′ = λ − μ·m within a segment.
+      mean = mean * Math.exp(-spent) + rate[k] * (hazard > 1e-9 ? -Math.expm1(-spent) / hazard : after.hours[k]);
       total[k] += mean;
-    });
-    rate.forEach((value, k) => {
-      arrivals += value * after.hours[k];
-    });
+      arrivals += rate[k] * after.hours[k];
+    }
   });
   for (const mean of total) peakNewcomers = Math.max(peakNewcomers, mean);
   return { past: whole, ahead: after, arriving, startSegment, peakNewcomers, arrivals };

@@ -5,8 +5,7 @@ export interface NeedPieces {
   /** First bin of every piece and one past the last. */
   cuts: Int32Array;
   count: number;
-  /** First piece and one past the last, of every hour and shift; one past the last of the coming night. */
-  hourFrom: Int32Array;
+  /** One past the last piece of every hour, which begins where the hour before ends; first piece and one past the last of every shift; one past the last of the coming night. */
   hourTo: Int32Array;
   shiftFrom: Int32Array;
   shiftTo: Int32Array;
@@ -26,7 +25,6 @@ export function cutPieces(plan: NeedPlan, beds: readonly Int32Array[]): NeedPiec
   return {
     cuts: Int32Array.from(cuts),
     count: cuts.length - 1,
-    hourFrom: places(hourFrom),
     hourTo: places(hourTo),
     shiftFrom: places(shiftFrom),
     shiftTo: places(shiftTo),

@@ -2,7 +2,7 @@ import type { StayTallies } from './collect-stays.ts';
 import { estimateOutflow, smoothOutflow } from './outflow-factor.ts';
 import type { DailyOutflow } from './outflow-factor.ts';
 import type { BlockCells } from './stay-clock.ts';
-import { admittedStream, blockHazards, boardingStream, streamsPerArea } from './stay-model.ts';
+import { admittedStream, boardingStream, streamsPerArea } from './stay-model.ts';
 import type { OutflowFactor, StayStream } from './stay-model.ts';
 
 /** Streams with their outflow factors. */
@@ -27,19 +27,18 @@ function daily(
   days: Int32Array,
   span: { from: number; to: number },
   tallies: StayTallies,
-  streams: readonly StayStream[],
+  compensator: readonly Float64Array[],
   group: Group,
 ): DailyOutflow {
   const firstDay = days[0];
   const size = days[days.length - 1] - firstDay + 1;
   const departures = new Float64Array(size);
   const expected = new Float64Array(size);
-  for (let index = 0; index < streams.length; index += 1) {
+  for (let index = 0; index < compensator.length; index += 1) {
     if (index % streamsPerArea === boardingStream || groupOf(index % streamsPerArea) !== group) continue;
-    const hazards = blockHazards(streams[index]);
     for (let c = 0; c < days.length; c += 1) {
       departures[days[c] - firstDay] += tallies.departures[index][c];
-      expected[days[c] - firstDay] += hazards[cells.block[c]] * tallies.hoursAtRisk[index][c];
+      expected[days[c] - firstDay] += compensator[index][c];
     }
   }
   const inside: number[] = [];
@@ -65,6 +64,7 @@ function spread(days: Int32Array, outflow: DailyOutflow, factor: OutflowFactor):
  * Fits streams and outflow factors in turn: hazards given the factors, then the factors' variance and correlation from
  * departures against expected, then each day's factor by smoothing. The day is cut at midnight or at 04:00, whichever
  * leaves the factor more of the variance to explain.
+ * @param compensate departures expected in every cell at factor 1, [stream][cell], for streams and the factors they were fitted with.
  */
 export function fitOutflowByDay(
   cells: BlockCells,
@@ -72,24 +72,30 @@ export function fitOutflowByDay(
   fitStreams: (factorByCell: (stream: number) => Float64Array) => StayStream[],
   rounds: number,
   tallies: StayTallies,
+  compensate: (
+    streams: readonly StayStream[],
+    factorByCell: (stream: number) => Float64Array,
+  ) => readonly Float64Array[],
 ): OutflowFit {
   const ones = new Float64Array(cells.block.length).fill(1);
   let streams = fitStreams(() => ones);
+  let compensator = compensate(streams, () => ones);
   const first = [cells.dayAtMidnight, cells.dayAtFour].map((days) =>
     (['others', 'admitted'] as const).reduce(
-      (sum, group) => sum + estimateOutflow(daily(cells, days, span, tallies, streams, group)).variance,
+      (sum, group) => sum + estimateOutflow(daily(cells, days, span, tallies, compensator, group)).variance,
       0,
     ),
   );
   const dayStartsAt = first[1] > first[0] ? 4 : 0;
   const days = dayStartsAt === 4 ? cells.dayAtFour : cells.dayAtMidnight;
   for (let round = 0; ; round += 1) {
-    const others = daily(cells, days, span, tallies, streams, 'others');
-    const admitted = daily(cells, days, span, tallies, streams, 'admitted');
+    const others = daily(cells, days, span, tallies, compensator, 'others');
+    const admitted = daily(cells, days, span, tallies, compensator, 'admitted');
     const factors = { others: estimateOutflow(others), admitted: estimateOutflow(admitted) };
     const byCell = { others: spread(days, others, factors.others), admitted: spread(days, admitted, factors.admitted) };
     const factorByCell = (stream: number): Float64Array => byCell[groupOf(stream)];
     streams = fitStreams(factorByCell);
     if (round + 1 >= rounds) return { streams, ...factors, dayStartsAt, factorByCell };
+    compensator = compensate(streams, factorByCell);
   }
 }

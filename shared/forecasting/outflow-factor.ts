@@ -1,3 +1,4 @@
+import { normalCdf } from '../stochastic/normal.ts';
 import type { OutflowFactor } from './stay-model.ts';
 
 /** Departures and expected departures by local day, in order; days without either are left out by `gap` between numbers. */
@@ -10,8 +11,11 @@ export interface DailyOutflow {
 /**
  * Estimates how the departure hazard varies from day to day. Given the factor f, departures of a day minus f times
  * their compensator (hazard times realised time at risk) is a martingale increment (Aalen 1978), so that with
- * x = departures − expected: Var f = Σ(x² − departures) / Σ expected², and the lag-one autocovariance is
- * Σ x·x′ / Σ expected·expected′ over neighbouring days. The correlation is that of the logarithm of a lognormal factor.
+ * x = departures − expected: Var f = Σ(x² − departures) / Σ expected² with its standard error s, and the lag-one
+ * autocovariance is Σ x·x′ / Σ expected·expected′ over neighbouring days. A variance is never below 0: what is returned is
+ * the mean and standard deviation of the normal law of estimate and error cut off at 0, so that a log too small to tell
+ * does not claim that outflow never varies. The correlation is that of the logarithm of a lognormal factor, held to
+ * 0.5 ± 0.3 (common practice, no source: bad days follow one another, not for long) as far as its own error is wide.
  * @returns variance and correlation with standard errors, and the error that the factor leaves in the overall level.
  * Cost: linear in days.
  */
@@ -33,29 +37,59 @@ export function estimateOutflow(daily: DailyOutflow): OutflowFactor {
   }
   const none = { variance: 0, varianceSe: 0, correlation: 0, correlationSe: 0, levelSe: 0, days };
   if (days < 14 || weight === 0) return none;
-  const variance = Math.max(0, square / weight);
+  const estimate = square / weight;
+  const plausible = Math.max(0, estimate);
   let spread = 0;
   for (let d = 0; d < days; d += 1) {
     const x = departures[d] - expected[d];
-    const residual = x * x - departures[d] - variance * expected[d] * expected[d];
+    const residual = x * x - departures[d] - plausible * expected[d] * expected[d];
     spread += residual * residual;
   }
   const meanExpected = expected.reduce((sum, value) => sum + value, 0) / days;
-  if (variance === 0) return { ...none, varianceSe: Math.sqrt(spread) / weight };
+  const error = Math.sqrt(spread) / weight;
+  if (!(error > 0)) return none;
   const covariance = crossWeight > 0 ? cross / crossWeight : 0;
-  const logVariance = Math.log1p(variance);
-  const correlation = Math.min(0.97, Math.max(0, Math.log1p(Math.max(0, covariance)) / logVariance));
-  const inflate = (1 + correlation * correlation) / (1 - correlation * correlation);
-  // The daily ratio carries Poisson noise 1/expected beside the factor's own variance.
-  const reliability = variance / (variance + 1 / meanExpected);
+  const first = cutAtZero(estimate, error);
+  const correlation = heldCorrelation(covariance, first.mean, meanExpected, days);
+  // Days that follow one another tell less of the variance.
+  const inflate = (1 + correlation.mean ** 2) / (1 - correlation.mean ** 2);
+  const variance = cutAtZero(estimate, error * Math.sqrt(inflate));
   return {
-    variance,
-    varianceSe: (Math.sqrt(spread) / weight) * Math.sqrt(inflate),
-    correlation,
-    correlationSe: Math.min(0.5, Math.sqrt((1 - correlation * correlation) / days) / reliability),
-    levelSe: Math.sqrt((variance * (1 + correlation)) / (1 - correlation) / days),
+    variance: variance.mean,
+    varianceSe: variance.sd,
+    correlation: correlation.mean,
+    correlationSe: correlation.sd,
+    levelSe: Math.sqrt((variance.mean * (1 + correlation.mean)) / (1 - correlation.mean) / days),
     days,
   };
+}
+
+/** Mean and standard deviation of a normal law cut off at 0. */
+function cutAtZero(mean: number, sd: number): { mean: number; sd: number } {
+  const z = mean / sd;
+  // Far below 0 the law is exponential with rate −z / sd.
+  if (z < -30) return { mean: sd / -z, sd: sd / -z };
+  const density = Math.exp((-z * z) / 2) / Math.sqrt(2 * Math.PI);
+  const ratio = density / normalCdf(z);
+  return { mean: sd * (z + ratio), sd: sd * Math.sqrt(Math.max(1e-12, 1 - ratio * (ratio + z))) };
+}
+
+const usualCorrelation = { mean: 0.5, sd: 0.3 };
+
+function heldCorrelation(
+  covariance: number,
+  variance: number,
+  meanExpected: number,
+  days: number,
+): { mean: number; sd: number } {
+  const found = Math.min(0.97, Math.max(-0.5, Math.log1p(Math.max(-0.5, covariance)) / Math.log1p(variance)));
+  // The daily ratio carries Poisson noise 1/expected beside the factor's own variance.
+  const reliability = variance / (variance + 1 / meanExpected);
+  const error = Math.sqrt((1 - found * found) / days) / reliability;
+  const known = 1 / (error * error);
+  const before = 1 / usualCorrelation.sd ** 2;
+  const mean = (known * found + before * usualCorrelation.mean) / (known + before);
+  return { mean: Math.min(0.97, Math.max(0, mean)), sd: Math.sqrt(1 / (known + before)) };
 }
 
 /**

@@ -3,6 +3,7 @@ import type { Zone } from '../domain/zoned-time.ts';
 import type { ArrivalModel, LiveArrivals, RateGrid } from './arrival-model.ts';
 import { expectedPresent } from './census-start.ts';
 import type { ExpectedPresent } from './census-start.ts';
+import { presentByDecision } from './decision-law.ts';
 import { checkOutlookInput } from './check-outlook-input.ts';
 import { binSeconds } from './need-plan.ts';
 import type { AreaPlan, NeedPlan } from './need-plan.ts';
@@ -138,7 +139,10 @@ export function prepareNeed(model: OutlookModel, input: OutlookInput): PreparedN
       flow.past.ratePerHour.map(() => null),
     ),
   );
-  const shaped = flows.map((flow, a) => expectedPresent(flow.past, shapesOf(a)));
+  const shaped = flows.map((flow, a) => {
+    const law = input.areas[a].census === null ? null : stay.decisions[a];
+    return law === null ? expectedPresent(flow.past, shapesOf(a)) : presentByDecision(flow.past, shapesOf(a), law);
+  });
   const night = Math.min(endAt, endOfTonight(input.shifts, issuedAt, zone));
   const lengthOfStay = chooseStayLaw(stay, input, flows, plain, shaped, shapesOf, (night - startAt) / 3600);
   const empirical = lengthOfStay === 'empirical';

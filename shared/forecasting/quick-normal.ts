@@ -62,3 +62,24 @@ function tail(stream: RandomStream): number {
     if (-2 * Math.log(stream.uniform()) > beyond * beyond) return edge + beyond;
   }
 }
+
+/**
+ * A gamma draw of rate 1 by Marsaglia & Tsang (2000, ACM Trans. Math. Softw. 26, 363) with their
+ * squeeze, which spares the logarithms in 98 of 100 draws. Exact for any shape above 0.
+ */
+export function drawQuickGamma(stream: RandomStream, shape: number): number {
+  // The draw of shape + 1 times U^(1/shape).
+  if (shape < 1) return drawQuickGamma(stream, shape + 1) * Math.pow(stream.uniform(), 1 / shape);
+  const d = shape - 1 / 3;
+  const c = 1 / Math.sqrt(9 * d);
+  for (;;) {
+    const x = drawQuickNormal(stream);
+    const root = 1 + c * x;
+    if (root <= 0) continue;
+    const v = root * root * root;
+    const u = stream.uniform();
+    const square = x * x;
+    if (u < 1 - 0.0331 * square * square) return d * v;
+    if (Math.log(u) < 0.5 * square + d * (1 - v + Math.log(v))) return d * v;
+  }
+}

@@ -1,6 +1,6 @@
 import type { RandomStream } from '../stochastic/random.ts';
 
-const words = 64;
+const words = 32;
 const layers = 256;
 /** Right end of the ziggurat's lowest layer and the area of every layer (Marsaglia & Tsang 2000). */
 const edge = 7.69711747013104972;
@@ -73,7 +73,7 @@ function absorb(word: number): void {
 }
 
 /**
- * The stream of the patients' loop: the words of `makeStream` of the same seed and path, made 64 at a time with the state
+ * The stream of the patients' loop: the words of `makeStream` of the same seed and path, made 32 at a time with the state
  * in registers and seeded without an array or object: a third of the time a word, a quarter a seeding.
  */
 export class QuickStream implements RandomStream {

@@ -3,16 +3,15 @@ import type { NeedPart } from './need-part.ts';
 import { cutPieces } from './need-pieces.ts';
 import { binSeconds } from './need-plan.ts';
 import type { NeedChange, NeedPlan } from './need-plan.ts';
-import { admittedStream, boardingStream, streamsPerArea } from './stay-model.ts';
 
 /** One replication: what came and went. */
 export interface ReplicationTrace {
   patients: number;
-  /** Arrivals minus departures: [area · (bins + 1) + bin]; entry `bins` gathers what is past the end and is never read. */
+  /** Arrivals minus departures: [area · (bins + 1) + bin], the department in the last row; entry `bins` gathers what is past the end and is never read. */
   moves: Int32Array;
-  /** Patients who leave, and arrivals, by `hourOfBin` of the plan (0: outside the hours): [stream · (hours + 1) + hour], streams area-major. */
-  leaving: Int32Array;
-  arriving: Int32Array;
+  /** Admitted patients who leave, and arrivals who will be admitted, by `hourOfBin` of the plan (0: outside the hours): [area · (hours + 1) + hour]. */
+  admittedOut: Int32Array;
+  admittedIn: Int32Array;
   /** Bin in which each counted boarder leaves, per area; beyond the last bin if later. */
   boarderBin: Int32Array[];
 }
@@ -32,8 +31,7 @@ export function makeNeedRecorder(
   const rows = part.toReplication - part.fromReplication;
   const binBeds = plan.areas.map((area, a) => change?.beds?.[a] ?? area.beds);
   const pieces = cutPieces(plan, binBeds);
-  const { cuts, count, hourFrom, hourTo, shiftFrom, shiftTo, nightTo } = pieces;
-  const pooled = new Int32Array(plan.bins);
+  const { cuts, count, hourTo, shiftFrom, shiftTo, nightTo } = pieces;
   const beds = binBeds.map((own) => Int32Array.from({ length: count }, (_, p) => own[cuts[p]]));
   const hourBeds = binBeds.map((own) => Int32Array.from(plan.hourTo, (bin) => own[bin - 1]));
   const pooledBeds = Int32Array.from({ length: count }, (_, p) => beds.reduce((sum, own) => sum + own[p], 0));
@@ -45,14 +43,18 @@ export function makeNeedRecorder(
   /** One area: need by hour, flows and the night's peak; highest need of every piece for the shifts. @returns bins short. */
   function addArea(a: number, trace: ReplicationTrace): number {
     // Local names: captured ones are looked up again at every store.
-    const { moves, leaving, arriving } = trace;
+    const { moves, admittedOut, admittedIn } = trace;
     const { need, within, admittedLeaving, arrivalsToAdmit } = part;
-    const [all, ends, most, ownBeds, pieceTo, atHour] = [pooled, cuts, mostNeed, beds[a], hourTo, hourBeds[a]];
+    const ends = cuts;
+    const most = mostNeed;
+    const ownBeds = beds[a];
+    const pieceTo = hourTo;
+    const atHour = hourBeds[a];
     const first = a * (plan.bins + 1);
-    const hourRow = hours + 1;
-    const admitted = (a * streamsPerArea + admittedStream) * hourRow;
-    const boarding = (a * streamsPerArea + boardingStream) * hourRow;
-    const [hourCount, needSize, flowRoom] = [hours, size, flowSize];
+    const firstHour = a * (hours + 1) + 1;
+    const hourCount = hours;
+    const needSize = size;
+    const flowRoom = flowSize;
     let n = 0;
     let b = 0;
     for (; b < ends[0]; b += 1) n = (n + moves[first + b]) | 0;
@@ -67,10 +69,17 @@ export function makeNeedRecorder(
         const from = b;
         const before = n;
         let highest = 0;
-        for (; b < end; b += 1) {
+        // Two bins a turn: the loop itself would cost as much as what it does.
+        for (; b + 1 < end; b += 2) {
+          const between = (n + moves[first + b]) | 0;
+          n = (between + moves[first + b + 1]) | 0;
+          if (between > highest) highest = between;
+          if (n > highest) highest = n;
+        }
+        if (b < end) {
           n = (n + moves[first + b]) | 0;
-          all[b] = (all[b] + n) | 0;
-          highest = n > highest ? n : highest;
+          if (n > highest) highest = n;
+          b += 1;
         }
         most[p] = highest;
         if (p < nightTo && highest > peak) peak = highest;
@@ -84,8 +93,8 @@ export function makeNeedRecorder(
       const place = a * hourCount + h;
       need[place * needSize + (n < needSize ? n : needSize - 1)] += 1;
       within[place * width + (excess < highestExcess ? excess : highestExcess)] += 1;
-      const out = leaving[admitted + h + 1] + leaving[boarding + h + 1];
-      const come = arriving[admitted + h + 1];
+      const out = admittedOut[firstHour + h];
+      const come = admittedIn[firstHour + h];
       admittedLeaving[place * flowRoom + (out < flowRoom ? out : flowRoom - 1)] += 1;
       arrivalsToAdmit[place * flowRoom + (come < flowRoom ? come : flowRoom - 1)] += 1;
       if (n > atHour[h]) addBoarders(place, h, n - atHour[h], trace.boarderBin[a]);
@@ -106,18 +115,26 @@ export function makeNeedRecorder(
   }
 
   /** The department as a whole: need at the full hour and highest excess within the hour. */
-  function addPooledHours(): void {
+  function addPooledHours({ moves }: ReplicationTrace): void {
     const { pooledNeed, pooledWithin } = part;
-    const [need, ends, pieceTo, bedsThere] = [pooled, cuts, hourTo, pooledBeds];
-    let p = hourFrom[0];
+    const ends = cuts;
+    const pieceTo = hourTo;
+    const bedsThere = pooledBeds;
+    const first = areas * (plan.bins + 1);
+    let n = 0;
+    let b = 0;
+    for (; b < ends[0]; b += 1) n = (n + moves[first + b]) | 0;
+    let p = 0;
     for (let h = 0; h < hours; h += 1) {
       let excess = 0;
       for (; p < pieceTo[h]; p += 1) {
         let highest = 0;
-        for (let b = ends[p]; b < ends[p + 1]; b += 1) highest = need[b] > highest ? need[b] : highest;
+        for (const end = ends[p + 1]; b < end; b += 1) {
+          n = (n + moves[first + b]) | 0;
+          if (n > highest) highest = n;
+        }
         if (highest - bedsThere[p] > excess) excess = highest - bedsThere[p];
       }
-      const n = need[ends[p] - 1];
       pooledNeed[h * pooledSize + (n < pooledSize ? n : pooledSize - 1)] += 1;
       pooledWithin[h * width + (excess < highestExcess ? excess : highestExcess)] += 1;
     }
@@ -137,7 +154,8 @@ export function makeNeedRecorder(
   }
 
   function addShifts(a: number, row: number): void {
-    const [most, ownBeds] = [mostNeed, beds[a]];
+    const most = mostNeed;
+    const ownBeds = beds[a];
     for (let s = 0; s < shifts; s += 1) {
       let highest = 0;
       let short = 0;
@@ -152,7 +170,6 @@ export function makeNeedRecorder(
   }
 
   return (trace, row) => {
-    pooled.fill(0);
     someShort.fill(0);
     hourShort.fill(0);
     let allShort = 0;
@@ -163,7 +180,7 @@ export function makeNeedRecorder(
       addShifts(a, row);
     }
     part.bedHoursShort[areas * rows + row] = allShort * hoursPerBin;
-    addPooledHours();
+    addPooledHours(trace);
     for (let h = 0; h < hours; h += 1) part.someShort[h] += hourShort[h];
     for (let s = 0; s < shifts; s += 1) {
       let short = 0;

@@ -4,7 +4,7 @@ import { QuickStream } from './quick-stream.ts';
 import type { ReplicationTrace } from './record-need.ts';
 import { makeSpentBuffers } from './stay-draw.ts';
 import type { SpentDraw } from './stay-draw.ts';
-import { streamsPerArea } from './stay-model.ts';
+import { admittedStream, boardingStream } from './stay-model.ts';
 import type { StayShape } from './stay-model.ts';
 
 /** Bins an hour. */
@@ -71,7 +71,7 @@ function stayTables(shapes: readonly (StayShape | null)[]): StayTables {
 /** Empty buffers for a plan. */
 export function makeReplicationState(plan: NeedPlan, change: NeedChange): ReplicationState {
   const { segments, areas, bins, segmentAt } = plan;
-  const flows = areas.length * streamsPerArea * (plan.hourTo.length + 1);
+  const flows = areas.length * (plan.hourTo.length + 1);
   return {
     plan,
     change,
@@ -83,9 +83,9 @@ export function makeReplicationState(plan: NeedPlan, change: NeedChange): Replic
     segmentBins: segmentAt.map((at, k) => (k === segments ? 0 : (segmentAt[k + 1] - at) * binsPerHour)),
     trace: {
       patients: 0,
-      moves: new Int32Array(areas.length * (bins + 1)),
-      leaving: new Int32Array(flows),
-      arriving: new Int32Array(flows),
+      moves: new Int32Array((areas.length + 1) * (bins + 1)),
+      admittedOut: new Int32Array(flows),
+      admittedIn: new Int32Array(flows),
       boarderBin: areas.map((area) => new Int32Array(area.boarders)),
     },
     stream: new QuickStream(),
@@ -122,17 +122,27 @@ export function departureOf(state: ReplicationState, s: number, k: number, share
   return state.segmentBin[at] + ((target - from) / (spent[base + at + 1] - from)) * state.segmentBins[at];
 }
 
-/** A patient of stream s of area a comes in a bin. */
-export function enterArea(state: ReplicationState, a: number, s: number, bin: number): void {
-  const { plan, trace } = state;
-  trace.moves[a * (plan.bins + 1) + bin] += 1;
-  trace.arriving[s * (plan.hourTo.length + 1) + plan.hourOfBin[bin]] += 1;
+/** Patients who come (or leave) in a bin, in the area's row and in the department's. */
+export function move(state: ReplicationState, a: number, bin: number, patients: number): void {
+  const { moves } = state.trace;
+  const row = state.plan.bins + 1;
+  moves[a * row + bin] += patients;
+  moves[state.plan.areas.length * row + bin] += patients;
 }
 
-/** A patient of stream s of area a leaves at a time in bins; past the end it falls into the last entry, which nobody reads. */
-export function leaveArea(state: ReplicationState, a: number, s: number, at: number): void {
+/** A patient of stream `inArea` of area a comes in a bin. */
+export function enterArea(state: ReplicationState, a: number, inArea: number, bin: number): void {
+  const { plan, trace } = state;
+  move(state, a, bin, 1);
+  if (inArea === admittedStream) trace.admittedIn[a * (plan.hourTo.length + 1) + plan.hourOfBin[bin]] += 1;
+}
+
+/** A patient of stream `inArea` of area a leaves at a time in bins; past the end it falls into the last entry, which nobody reads. */
+export function leaveArea(state: ReplicationState, a: number, inArea: number, at: number): void {
   const { plan, trace } = state;
   const bin = Math.min(plan.bins, Math.floor(at));
-  trace.moves[a * (plan.bins + 1) + bin] -= 1;
-  trace.leaving[s * (plan.hourTo.length + 1) + plan.hourOfBin[bin]] += 1;
+  move(state, a, bin, -1);
+  if (inArea === admittedStream || inArea === boardingStream) {
+    trace.admittedOut[a * (plan.hourTo.length + 1) + plan.hourOfBin[bin]] += 1;
+  }
 }

@@ -46,8 +46,8 @@ export function makeReplication(plan: NeedPlan, change: NeedChange): (replicatio
   return (replication) => {
     trace.patients = 0;
     trace.moves.fill(0);
-    trace.leaving.fill(0);
-    trace.arriving.fill(0);
+    trace.admittedOut.fill(0);
+    trace.admittedIn.fill(0);
     joint.reseed(seed, purposes.rates, replication, 0);
     plan.drawRates(joint, rates);
     joint.reseed(seed, purposes.parameters, replication, 0);

@@ -29,7 +29,7 @@ export function startGroups(
     },
     {
       patients: census.present - census.boarding,
-      steps: cumulative(sharesNotBoarding(stay, area, present.means)),
+      steps: cumulative(sharesNotBoarding(stay, area, present.means, present.undecidedAdmitted)),
       boarding: false,
     },
   ];

@@ -1,6 +1,6 @@
 import { drawPoisson } from '../stochastic/poisson.ts';
 import { purposes } from './need-plan.ts';
-import { binsPerHour, departureOf, leaveArea, stayOf } from './replication-state.ts';
+import { binsPerHour, departureOf, leaveArea, move, stayOf } from './replication-state.ts';
 import type { ReplicationState } from './replication-state.ts';
 import { admittedStream, boardingStream, streamsPerArea } from './stay-model.ts';
 
@@ -11,7 +11,7 @@ export function startArea(state: ReplicationState, a: number, replication: numbe
   stream.reseed(plan.seed, purposes.present, replication, a);
   const bins = plan.bins;
   const startBin = area.startHours * binsPerHour;
-  const entry = a * (bins + 1) + Math.min(bins, Math.floor(startBin));
+  const entry = Math.min(bins, Math.floor(startBin));
   for (const { steps, patients, boarding } of area.groups) {
     for (let i = 0; i < patients; i += 1) {
       const u = stream.uniform();
@@ -22,9 +22,9 @@ export function startArea(state: ReplicationState, a: number, replication: numbe
         if (state.change.boardersOut !== undefined) at = movedOut(state, a, i, at);
         trace.boarderBin[a][i] = at >= bins ? bins + 1 : Math.floor(at);
       }
-      leaveArea(state, a, a * streamsPerArea + inArea, at);
+      leaveArea(state, a, inArea, at);
     }
-    trace.moves[entry] += patients;
+    move(state, a, entry, patients);
     trace.patients += patients;
   }
   if (area.startMeans === null) return;
@@ -34,9 +34,9 @@ export function startArea(state: ReplicationState, a: number, replication: numbe
     const factor = stays.firstFactor[inArea === admittedStream ? 1 : 0];
     const count = drawPoisson(stream, ratio * interpolate(area.startFactors, area.startMeans[inArea], factor));
     for (let i = 0; i < count; i += 1) {
-      leaveArea(state, a, a * streamsPerArea + inArea, remainingUntil(state, a, inArea));
+      leaveArea(state, a, inArea, remainingUntil(state, a, inArea));
     }
-    trace.moves[entry] += count;
+    move(state, a, entry, count);
     trace.patients += count;
   }
 }
@@ -73,8 +73,8 @@ export function startUndecided(state: ReplicationState, replication: number): vo
     while (s < undecided.steps.length - 1 && u >= undecided.steps[s]) s += 1;
     const x = stayOf(state.newcomers, s, stream.exponential()) * (state.change.stay?.[s] ?? 1);
     const a = Math.floor(s / streamsPerArea);
-    trace.moves[a * (plan.bins + 1) + bin] += 1;
-    leaveArea(state, a, s, departureOf(state, s, undecided.startSegment, 0, x));
+    move(state, a, bin, 1);
+    leaveArea(state, a, s % streamsPerArea, departureOf(state, s, undecided.startSegment, 0, x));
   }
   trace.patients += undecided.patients;
 }

@@ -50,7 +50,8 @@ function percentiles(
       newcomers[k] += mean;
     });
   });
-  const others = census === null ? present.means : sharesNotBoarding(stay, area, present.means);
+  const others =
+    census === null ? present.means : sharesNotBoarding(stay, area, present.means, present.undecidedAdmitted);
   const boarder = streamOfBoarders(stay, area);
   const spent = new Float64Array(hazardPerHour.length);
   const found: number[] = [];

@@ -96,7 +96,9 @@ export function makeSpentDraw(stay: StayModel, segments: StaySegments, hours: Ar
     errors.layShares(out);
     for (let g = 0; g < 2; g += 1) for (let k = 0; k < count; k += 1) weights[g][k] = factors[g][day[k]] * hours[k];
     // Local names: captured ones are looked up again at every store.
-    const [spent, hazard, place] = [out.spent, blockHazard, blockPlace];
+    const spent = out.spent;
+    const hazard = blockHazard;
+    const place = blockPlace;
     for (let n = 0; n < streams.length; n += 1) {
       const weight = weights[group[n]];
       const from = streams[n] * (count + 2) + 1;

@@ -1,7 +1,6 @@
-import { drawGamma } from '../stochastic/gamma.ts';
 import { normalQuantile } from '../stochastic/normal.ts';
 import type { RandomStream } from '../stochastic/random.ts';
-import { drawQuickNormal } from './quick-normal.ts';
+import { drawQuickGamma, drawQuickNormal } from './quick-normal.ts';
 import type { StayDraw, StaySegments } from './stay-draw.ts';
 import { admittedStream, boardingStream } from './stay-model.ts';
 import type { OutflowFactor, StayModel } from './stay-model.ts';
@@ -35,7 +34,10 @@ function makeShapeDraws(shapes: readonly number[]): { out: Float64Array; draw: (
   const out = new Float64Array(room);
   function draw(stream: RandomStream): void {
     // Local names: captured ones are looked up again at every store.
-    const [to, mean, sd, normals] = [out, centre, spread, roughNormals];
+    const to = out;
+    const mean = centre;
+    const sd = spread;
+    const normals = roughNormals;
     for (let i = 0; i < room; i += 3) {
       const word = stream.uint32();
       const first = mean[i] + normals[word & 1023] * sd[i];
@@ -45,7 +47,7 @@ function makeShapeDraws(shapes: readonly number[]): { out: Float64Array; draw: (
       to[i + 1] = second * second * second;
       to[i + 2] = third * third * third;
     }
-    for (let i = 0; i < small.length; i += 1) to[small[i]] = drawGamma(stream, smallShape[i]);
+    for (let i = 0; i < small.length; i += 1) to[small[i]] = drawQuickGamma(stream, smallShape[i]);
   }
   return { out, draw };
 }
@@ -112,7 +114,10 @@ export function makeStayErrors(stay: StayModel, segments: StaySegments): StayErr
       drawOutflow(parameters, outflow, others, factors[0]);
       drawOutflow(parameters, outflow, admitted, factors[1]);
       gammas.draw(parameters);
-      const [drawnGammas, to, heldAt, exposedAt] = [gammas.out, blockHazard, held, exposed];
+      const drawnGammas = gammas.out;
+      const to = blockHazard;
+      const heldAt = held;
+      const exposedAt = exposed;
       for (let n = 0, i = 0; n < means; n += 1) {
         const mu = drawnGammas[n] / rate[n];
         for (let b = 0; b < blocks; b += 1, i += 1) {

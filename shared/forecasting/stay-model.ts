@@ -54,6 +54,12 @@ export interface StayShape {
   tail: number;
 }
 
+/** Laws of an admitted patient's time before the decision and of boarding, both in operational time of the whole stay, in its means. */
+export interface DecisionLaw {
+  before: StayShape;
+  boarding: StayShape;
+}
+
 /** A factor on the departure hazard that varies by day: lognormal with mean 1, AR(1) in its logarithm. */
 export interface OutflowFactor {
   /** Variance of the factor. */
@@ -117,6 +123,8 @@ export interface StayModel {
   streams: StayStream[];
   /** Of the time that admitted patients stay, the share before the admission decision; null where decisions are not loaded. */
   shareBeforeDecision: (number | null)[];
+  /** How the decision cuts the admitted stay, by area; null where too few decisions are loaded. */
+  decisions: (DecisionLaw | null)[];
   shares: DispositionShares[];
   outflow: { others: OutflowFactor; admitted: OutflowFactor };
   bedSpace: (BedSpaceStays | null)[];

@@ -18,18 +18,17 @@ const fewestAtRisk = 25;
  * @returns one shape a stream, null where fewer than 200 departures. Cost: linear in stays.
  */
 export function fitStayShapes(
-  stays: CollectedStays,
+  stays: Pick<CollectedStays, 'length' | 'stream' | 'startAt' | 'endAt' | 'departed'>,
   cells: BlockCells,
   blockHours: number,
   clock: readonly Float64Array[],
 ): (StayShape | null)[] {
   const deaths = clock.map(() => new Float64Array(bins));
   const losses = clock.map(() => new Float64Array(bins));
-  const { startAt } = cells;
   for (let i = 0; i < stays.length; i += 1) {
     const times = clock[stays.stream[i]];
-    const stay = clockAt(times, startAt, cells, stays.endAt[i], blockHours);
-    const age = stay - clockAt(times, startAt, cells, stays.startAt[i], blockHours);
+    const stay = clockAt(times, cells, stays.endAt[i], blockHours);
+    const age = stay - clockAt(times, cells, stays.startAt[i], blockHours);
     const bin = Math.min(bins - 1, Math.max(0, Math.floor(age / binWidth)));
     if (stays.departed[i] === 1) deaths[stays.stream[i]][bin] += 1;
     else losses[stays.stream[i]][bin] += 1;
@@ -37,13 +36,9 @@ export function fitStayShapes(
   return clock.map((_, index) => shapeOf(deaths[index], losses[index]));
 }
 
-function clockAt(
-  times: Float64Array,
-  startAt: Float64Array,
-  cells: BlockCells,
-  at: number,
-  blockHours: number,
-): number {
+/** Operational time at an instant, linear within a cell. @param times at the start of every cell and the end of the last */
+export function clockAt(times: Float64Array, cells: BlockCells, at: number, blockHours: number): number {
+  const { startAt } = cells;
   const cell = cellAt(cells, at, blockHours);
   const share = (at - startAt[cell]) / (startAt[cell + 1] - startAt[cell]);
   return times[cell] + share * (times[cell + 1] - times[cell]);

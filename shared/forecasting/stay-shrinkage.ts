@@ -27,35 +27,78 @@ export function chooseBlockShrinkage(departures: ArrayLike<number>, expected: Ar
   return best;
 }
 
+/** A share by block: mean and the strength, in visits, of the beta law with its mean and variance. */
+interface HeldShare {
+  mean: number;
+  strength: number;
+}
+
 /**
- * Dirichlet parameters of the disposition shares by block of the day: each block's counts added to the area's overall
- * shares times a strength chosen by the Dirichlet–multinomial marginal likelihood. The overall shares themselves are
- * held to `prior` by a weight of 4 visits, so that an area without visits has shares too.
- * @param counts [block · 4 + disposition]. @param prior shares of the whole site, 4.
+ * Shares p_b of a yes-or-no split, each block held to the overall share: p_b ~ Beta(k·overall, k·(1 − overall)), averaged
+ * over the strength k by its beta–binomial likelihood under a uniform prior on the standard deviation between blocks,
+ * ∝ k^−1/2 (Gelman 2006). A likelihood that is nearly flat in k, as six blocks give, would hold far too hard at its peak.
+ */
+function holdShare(yes: readonly number[], visits: readonly number[], overall: number): HeldShare[] {
+  const logWeights = strengths.map((k) => {
+    let score = -Math.log(k) / 2;
+    const [a, b] = [k * overall, k * (1 - overall)];
+    visits.forEach((n, block) => {
+      const hits = yes[block];
+      score += logGamma(a + hits) - logGamma(a) + logGamma(b + n - hits) - logGamma(b) + logGamma(k) - logGamma(k + n);
+    });
+    return score;
+  });
+  const highest = Math.max(...logWeights);
+  const weights = logWeights.map((score) => Math.exp(score - highest));
+  const total = weights.reduce((sum, weight) => sum + weight, 0);
+  return visits.map((n, block) => {
+    let mean = 0;
+    let square = 0;
+    strengths.forEach((k, i) => {
+      const own = (k * overall + yes[block]) / (k + n);
+      const weight = weights[i] / total;
+      mean += weight * own;
+      square += weight * (own * own + (own * (1 - own)) / (k + n + 1));
+    });
+    return { mean, strength: (mean * (1 - mean)) / (square - mean * mean) - 1 };
+  });
+}
+
+/**
+ * Dirichlet parameters of the disposition shares by block of the day, from three splits one within the other, each held
+ * to the area's own share as strongly as its own blocks say: left before treatment or not, of those who stay admitted or
+ * not, of the rest transferred or home. The certainty is that of the admitted share, on which need hangs most. The
+ * area's overall shares are held to `prior` by a weight of 4 visits, so that an area without visits has shares too.
+ * @param counts [block · 4 + disposition]. @param prior shares of the whole site, 4, each above 0.
  */
 export function shrinkShares(counts: Float64Array, prior: readonly number[]): number[][] {
-  const blocks = counts.length / 4;
-  const overall = prior.map((share) => 4 * share);
-  for (let i = 0; i < counts.length; i += 1) overall[i % 4] += counts[i];
-  const total = overall.reduce((sum, value) => sum + value, 0);
-  const shares = overall.map((value) => value / total);
-  let best = strengths[0];
-  let bestScore = -Infinity;
-  for (const strength of strengths) {
-    let score = 0;
-    for (let b = 0; b < blocks; b += 1) {
-      let n = 0;
-      for (let d = 0; d < 4; d += 1) {
-        const alpha = strength * shares[d];
-        n += counts[b * 4 + d];
-        score += logGamma(alpha + counts[b * 4 + d]) - logGamma(alpha);
-      }
-      score += logGamma(strength) - logGamma(strength + n);
-    }
-    if (score > bestScore) {
-      bestScore = score;
-      best = strength;
-    }
-  }
-  return Array.from({ length: blocks }, (_, b) => shares.map((share, d) => best * share + counts[b * 4 + d]));
+  const blocks = Array.from({ length: counts.length / 4 }, (_, b) => Array.from(counts.subarray(4 * b, 4 * b + 4)));
+  const [home, admitted, transferred, left] = prior.map((share, d) =>
+    blocks.reduce((sum, block) => sum + block[d], 4 * share),
+  );
+  const going = blocks.map((block) => block[0] + block[2]);
+  const staying = blocks.map((block, b) => going[b] + block[1]);
+  const leftShare = holdShare(
+    blocks.map((block) => block[3]),
+    staying.map((n, b) => n + blocks[b][3]),
+    left / (home + admitted + transferred + left),
+  );
+  const admittedShare = holdShare(
+    blocks.map((block) => block[1]),
+    staying,
+    admitted / (home + admitted + transferred),
+  );
+  const transferredShare = holdShare(
+    blocks.map((block) => block[2]),
+    going,
+    transferred / (home + transferred),
+  );
+  return blocks.map((_, b) => {
+    const leaving = leftShare[b].mean;
+    const admitting = admittedShare[b].mean;
+    const moving = transferredShare[b].mean;
+    const rest = (1 - leaving) * (1 - admitting);
+    const strength = admittedShare[b].strength / (1 - leaving);
+    return [rest * (1 - moving), (1 - leaving) * admitting, rest * moving, leaving].map((share) => share * strength);
+  });
 }

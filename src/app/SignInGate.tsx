@@ -1,5 +1,5 @@
 import { useQueryClient } from '@tanstack/react-query';
-import { useEffect, useState } from 'react';
+import { useEffect, useLayoutEffect, useRef, useState } from 'react';
 import { Navigate, Outlet, useLocation } from 'react-router-dom';
 import { ProblemNotice } from '../components/Notice.tsx';
 import { Skeleton } from '../components/Skeleton.tsx';
@@ -7,6 +7,7 @@ import { SessionProvider, sessionKey, useSessionQuery } from '../features/sign-i
 import type { SignedInSession } from '../features/sign-in/session.ts';
 import type { Session } from '../../shared/api/session.ts';
 import { onSignedOut } from '../lib/api-client.ts';
+import { claimTab } from '../lib/tab-owner.ts';
 import { SignedOutPage } from '../pages/SignedOutPage.tsx';
 import { paths } from './paths.ts';
 
@@ -32,7 +33,17 @@ export function SignInGate() {
 
   const session = query.data?.person ? (query.data as SignedInSession) : null;
   if (session && session !== lastSession) setLastSession(session);
-  const here = location.pathname + location.search;
+  const personId = session?.person.id ?? lastSession?.person.id;
+  const seenBy = useRef(personId);
+  // Somebody else signed in on this device: nothing that was read for the person before, or typed by them, stays.
+  useLayoutEffect(() => {
+    if (personId !== undefined) claimTab(personId);
+    if (seenBy.current !== undefined && seenBy.current !== personId) {
+      void queryClient.resetQueries({ predicate: ({ queryKey }) => queryKey[0] !== sessionKey[0] });
+    }
+    seenBy.current = personId;
+  }, [personId, queryClient]);
+  const here = location.pathname + location.search + location.hash;
 
   if (!query.data) {
     return (
@@ -53,7 +64,7 @@ export function SignInGate() {
     <>
       {signedOut ? <SignedOutPage returnTo={here} /> : null}
       <SessionProvider value={session ?? lastSession}>
-        <div hidden={signedOut}>
+        <div key={personId} hidden={signedOut}>
           <Outlet />
         </div>
       </SessionProvider>

@@ -18,7 +18,7 @@ export function SiteSwitcher({ site, sites }: { site: SessionSite | undefined; s
             aria-label="Site"
             value={site.id}
             onChange={(event) => void navigate(paths.tonight(event.target.value))}
-            className="-ml-1 max-w-48 cursor-pointer rounded-field bg-transparent text-label font-semibold text-ink2 hover:text-ink"
+            className="-ml-1 max-w-32 cursor-pointer sm:max-w-48 rounded-field bg-transparent text-label font-semibold text-ink2 hover:text-ink"
           >
             {sites.map((candidate) => (
               <option key={candidate.id} value={candidate.id} className="bg-paper text-ink">

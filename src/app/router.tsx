@@ -41,6 +41,14 @@ export function makeRouter() {
                   lazy: async () => ({ Component: (await import('../pages/TonightPage.tsx')).TonightPage }),
                 },
                 {
+                  path: 'tonight/:outlookId',
+                  lazy: async () => ({ Component: (await import('../pages/TonightThenPage.tsx')).TonightThenPage }),
+                },
+                {
+                  path: 'handover',
+                  lazy: async () => ({ Component: (await import('../pages/HandoverPage.tsx')).HandoverPage }),
+                },
+                {
                   path: 'logs',
                   lazy: async () => ({ Component: (await import('../pages/VisitLogsPage.tsx')).VisitLogsPage }),
                 },
@@ -60,8 +68,16 @@ export function makeRouter() {
                   path: 'models/:modelId',
                   lazy: async () => ({ Component: (await import('../pages/ArrivalModelPage.tsx')).ArrivalModelPage }),
                 },
+                {
+                  path: 'tokens',
+                  lazy: async () => ({ Component: (await import('../pages/TokensPage.tsx')).TokensPage }),
+                },
                 { path: '*', element: <NotFoundPage /> },
               ],
+            },
+            {
+              path: '/tokens',
+              lazy: async () => ({ Component: (await import('../pages/TokensPage.tsx')).TokensPage }),
             },
             {
               path: '/how',

@@ -53,7 +53,11 @@ export function DataTable<Row>({
           {rows.map((row) => (
             <tr key={rowKey(row)} className="border-b border-hair">
               {columns.map((column) => {
-                const look = classNames('px-2 py-2.5 align-top first:pl-0', column.figure && 'text-right');
+                const look = classNames(
+                  'px-2 py-2.5 align-top first:pl-0',
+                  // On a phone the table scrolls rather than squeeze words into letters.
+                  column.figure ? 'text-right' : 'min-w-28',
+                );
                 return column.rowHeader ? (
                   <th key={column.key} scope="row" className={classNames(look, 'font-bold text-ink')}>
                     {column.cell(row)}

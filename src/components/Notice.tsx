@@ -55,6 +55,8 @@ export function ProblemNotice({
   className?: string;
 }) {
   const problem = asApiError(error);
+  // Asked again, what is not allowed or not there is refused again.
+  const mayHelp = problem.status !== 403 && problem.status !== 404;
   return (
     <Notice kind="caution" title={problem.title} live {...(className ? { className } : {})}>
       <p>
@@ -71,7 +73,7 @@ export function ProblemNotice({
         </ul>
       ) : null}
       {problem.requestId ? <p className="text-quiet text-ink3">Reference {problem.requestId}</p> : null}
-      {onRetry ? (
+      {onRetry && mayHelp ? (
         <Button look="second" className="mt-2" onClick={onRetry} busy={retrying} busyText="Trying…">
           Try again
         </Button>

@@ -66,8 +66,8 @@ export function addressOf(path: string, params: unknown, query?: unknown): strin
   return tail ? `${filled}?${tail}` : filled;
 }
 
-/** Reads a refused reply: the server's problem document, or our own words where it sent none. */
-export async function readProblem(response: Response): Promise<ApiError> {
+/** Reads a refused reply: the server's problem document, or our own words where it sent none; `kept` where it says nothing of that. */
+export async function readProblem(response: Response, kept?: string): Promise<ApiError> {
   if (response.status === 401) for (const listener of signedOutListeners) listener();
   const text = await response.text().catch(() => '');
   let parsed: ReturnType<typeof problem.safeParse> | undefined;
@@ -76,12 +76,13 @@ export async function readProblem(response: Response): Promise<ApiError> {
   } catch {
     parsed = undefined;
   }
-  if (parsed?.success) return new ApiError(parsed.data);
+  if (parsed?.success) return new ApiError(kept && !parsed.data.kept ? { ...parsed.data, kept } : parsed.data);
   return new ApiError({
     type: 'about:blank',
     status: response.status,
     title: response.status >= 500 ? 'The server could not answer' : 'The server refused',
     detail: `It answered ${String(response.status)} without saying why.`,
+    ...(kept ? { kept } : {}),
     next: 'Try again in a minute. If it happens again, tell your administrator.',
   });
 }
@@ -98,7 +99,12 @@ function unreachable(options: LooseOptions, writing: boolean): ApiError {
     type: 'about:blank',
     status: 0,
     title: offline ? 'This device is offline' : 'The server cannot be reached',
-    detail: writing ? 'Nothing was saved.' : 'Nothing new was loaded.',
+    // A line that broke on the way back leaves it open whether the change arrived; sending it again does no harm.
+    detail: writing
+      ? offline
+        ? 'Nothing was saved.'
+        : 'No answer came: take it as not saved.'
+      : 'Nothing new was loaded.',
     kept: options.kept ?? (writing ? 'What you typed is still here.' : 'What you see is what was loaded last.'),
     next: 'Check the connection, then try again.',
   });
@@ -131,7 +137,7 @@ export async function call<C extends AnyContract>(contract: C, ...[given]: Optio
   let text: string;
   try {
     response = await fetch(addressOf(contract.path, options.params, options.query), request);
-    if (!response.ok) throw await readProblem(response);
+    if (!response.ok) throw await readProblem(response, options.kept);
     text = await response.text();
   } catch (error) {
     if (error instanceof ApiError || options.signal?.aborted) throw error;

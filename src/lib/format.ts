@@ -54,6 +54,11 @@ export function formatDay(at: number, timeZone: string, length: 'long' | 'short'
   return `${weekday.slice(0, 3)} ${String(day)} ${monthName.slice(0, 3)}`;
 }
 
+/** "Tuesday", of an ISO weekday, 1 Monday .. 7 Sunday. */
+export function weekdayName(weekday: number): string {
+  return weekdays[weekday - 1];
+}
+
 /** "Tue" */
 export function formatWeekday(at: number, timeZone: string): string {
   return partsAt(at, timeZone).weekday.slice(0, 3);

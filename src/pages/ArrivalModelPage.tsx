@@ -76,8 +76,8 @@ export function ArrivalModelPage() {
             <p>The model in use is unchanged. Mend the cause, then fit another candidate.</p>
           </Notice>
         ) : null}
-        {may('arrival-model:approve') ? <JudgeModel siteId={siteId} model={model} /> : null}
         {model.status === 'fitting' || model.status === 'failed' ? null : <ModelReport model={model} />}
+        {may('arrival-model:approve') ? <JudgeModel siteId={siteId} model={model} /> : null}
         <p className="text-quiet text-ink2">
           What these figures are and how they are made:{' '}
           <Link to={paths.howNumbersAreMade('arrivals')} className="link font-semibold">

@@ -1,3 +1,4 @@
+import { useState } from 'react';
 import { Link, useNavigate, useParams } from 'react-router-dom';
 import { paths } from '../app/paths.ts';
 import { Notice, ProblemNotice } from '../components/Notice.tsx';
@@ -6,6 +7,7 @@ import { SkeletonLines } from '../components/Skeleton.tsx';
 import { useSession } from '../features/sign-in/session.ts';
 import { useServerNow } from '../features/sign-in/use-server-now.ts';
 import { useSite, useVisitLogMapping, useVisitLogs } from '../features/visit-logs/queries.ts';
+import { useUnsavedWork } from '../lib/unsaved-work.ts';
 import { UploadWalk } from '../features/visit-logs/UploadWalk.tsx';
 
 /** /sites/:siteId/logs/new */
@@ -17,6 +19,8 @@ export function NewVisitLogPage() {
   const site = useSite(siteId);
   const mayUpload = held.includes('visit-log:upload');
   const last = useVisitLogMapping(siteId, mayUpload);
+  const [begun, setBegun] = useState(false);
+  useUnsavedWork(begun, 'a file that is not loaded yet');
   const allLogs = (
     <Link to={paths.visitLogs(siteId)} className="link inline-block min-h-6">
       All logs
@@ -25,17 +29,20 @@ export function NewVisitLogPage() {
   const logs = useVisitLogs(siteId, mayUpload);
   if (site.data && mayUpload && last.data !== undefined && logs.data) {
     return (
-      <UploadWalk
-        siteId={siteId}
-        areas={site.data.areas}
-        timeZone={site.data.timeZone}
-        now={now}
-        last={last.data}
-        shiftEnds={site.data.shifts.map(({ endMinute }) => endMinute)}
-        logs={logs.data}
-        aside={allLogs}
-        onAccepted={(logId) => void navigate(paths.visitLog(siteId, logId))}
-      />
+      // The walk begins with a file, chosen or dropped; from then on leaving asks first.
+      <div onChangeCapture={() => setBegun(true)} onDropCapture={() => setBegun(true)}>
+        <UploadWalk
+          siteId={siteId}
+          areas={site.data.areas}
+          timeZone={site.data.timeZone}
+          now={now}
+          last={last.data}
+          shiftEnds={site.data.shifts.map(({ endMinute }) => endMinute)}
+          logs={logs.data}
+          aside={allLogs}
+          onAccepted={(logId) => void navigate(paths.visitLog(siteId, logId), { state: { saved: true } })}
+        />
+      </div>
     );
   }
   return (

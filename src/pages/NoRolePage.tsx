@@ -1,3 +1,5 @@
+import { Link } from 'react-router-dom';
+import { paths } from '../app/paths.ts';
 import { Mark } from '../components/Mark.tsx';
 import { useDocumentTitle } from '../components/PageHead.tsx';
 import { ThemeSwitch } from '../components/ThemeSwitch.tsx';
@@ -23,7 +25,11 @@ export function NoRolePage() {
           <p>
             You are signed in as <b className="text-ink">{person.name}</b>, administrator of this installation.
             Outlooks, censuses, logs and arrival models belong to the people of each site. If you also work at a site,
-            its role has to be given to you by name.
+            its role has to be given to you by name. What is yours here:{' '}
+            <Link to={paths.tokens()} className="link font-semibold">
+              machine tokens
+            </Link>
+            .
           </p>
         ) : (
           <p>

@@ -12,7 +12,7 @@ export function NotFoundPage() {
         lede="The address may be mistyped, or it belongs to a site at which you have no role."
       />
       <div className="page-pad">
-        <ButtonLink to={paths.home()}>Go to Tonight</ButtonLink>
+        <ButtonLink to={paths.home()}>Go to the first page</ButtonLink>
       </div>
     </div>
   );

@@ -11,11 +11,27 @@ export function safeReturnTo(given: string | null): string {
   return given && /^\/(?![/\\])/.test(given) ? given : '/';
 }
 
+const problems: Partial<Record<string, { title: string; text: string }>> = {
+  unreachable: {
+    title: 'The hospital account cannot be reached',
+    text: 'The service that confirms who you are does not answer. Try again in a few minutes; if it stays, tell your administrator.',
+  },
+  expired: {
+    title: 'That sign-in is over',
+    text: 'It took longer than a quarter of an hour, or was finished before. Nothing is lost: start it again.',
+  },
+  refused: {
+    title: 'Signing in did not work',
+    text: 'The hospital account did not confirm who you are. Try again; if it stays, tell your administrator.',
+  },
+};
+
 /** Sign-in by the hospital account. A link, since a form that is sent on elsewhere is refused by the content policy. */
 export function SignInPage() {
   useDocumentTitle('Sign in');
   const [search] = useSearchParams();
   const returnTo = safeReturnTo(search.get('returnTo'));
+  const problem = problems[search.get('problem') ?? ''];
   const session = useSessionQuery();
   if (session.data?.person) return <Navigate to={returnTo} replace />;
   return (
@@ -24,9 +40,9 @@ export function SignInPage() {
       <div className="page-pad max-w-[26.5rem] pb-10">
         <h1 className="text-headline-phone">Sign in</h1>
         <p className="mt-1 text-lede text-ink2">Emergency department arrival forecasts and bed planning.</p>
-        {search.get('problem') ? (
-          <Notice kind="caution" className="mt-5" title="Signing in did not work">
-            <p>The hospital account did not confirm who you are. Try again; if it stays, tell your administrator.</p>
+        {problem ? (
+          <Notice kind="caution" className="mt-5" title={problem.title}>
+            <p>{problem.text}</p>
           </Notice>
         ) : null}
         <a

@@ -3,7 +3,9 @@ import { paths } from '../app/paths.ts';
 import { ButtonLink } from '../components/Button.tsx';
 import { ProblemNotice } from '../components/Notice.tsx';
 import { useDocumentTitle } from '../components/PageHead.tsx';
+import { PanelBoundary } from '../components/PanelBoundary.tsx';
 import { Skeleton } from '../components/Skeleton.tsx';
+import { NightLogPanel } from '../features/outlook/NightLogPanel.tsx';
 import { useCensus, useSite, useTonight } from '../features/outlook/queries.ts';
 import { TonightView } from '../features/outlook/TonightView.tsx';
 import { useSession } from '../features/sign-in/session.ts';
@@ -45,9 +47,15 @@ export function TonightPage() {
       rights={{
         enterCensus: permissions.includes('census:enter'),
         changeBeds: permissions.includes('staffed-beds:change-now'),
+        acknowledge: permissions.includes('risk:acknowledge'),
       }}
       refreshError={tonight.error}
       howHref={paths.howNumbersAreMade()}
+      nightLog={
+        <PanelBoundary>
+          <NightLogPanel site={site.data} />
+        </PanelBoundary>
+      }
       emptyActions={
         <>
           {permissions.includes('arrival-model:read') ? (

@@ -21,7 +21,8 @@ export function VisitLogPage() {
   const may = (permission: 'visit-log:upload' | 'arrival-model:fit') => site?.permissions.includes(permission) ?? false;
   if (!log || !site) {
     return (
-      <>
+      // Keyed apart from the page itself, so that nothing of it moves when it arrives.
+      <div key="loading" className="min-h-dvh">
         <PageHead tab="Visit log" title="Visit log" />
         <div className="page-pad max-w-3xl">
           {query.error ? (
@@ -30,7 +31,7 @@ export function VisitLogPage() {
             <SkeletonLines lines={6} label="Loading the log" />
           )}
         </div>
-      </>
+      </div>
     );
   }
   const state = stateWord(log);

@@ -53,8 +53,11 @@ async function addressOf(browser: Browser, url: string, audited: AuditedPage, st
   const { page } = await openPage(browser, state ? { storageState: state } : {});
   await page.goto(url + audited.path);
   await page.locator('main table a').first().waitFor();
-  const links = await page.locator('main table a').evaluateAll((all) => all.map((link) => link.getAttribute('href')));
-  const href = links.find((link) => link !== null && follow.test(link));
+  let href: string | null = null;
+  for (const link of await page.locator('main table a').all()) {
+    const candidate = await link.getAttribute('href');
+    if (href === null && candidate !== null && follow.test(candidate)) href = candidate;
+  }
   await page.context().close();
   if (!href) throw new Error(`${audited.path} has no link like ${String(follow)}`);
   followed.set(audited.name, url + href);
@@ -64,6 +67,7 @@ async function addressOf(browser: Browser, url: string, audited: AuditedPage, st
 async function look(browser: Browser, url: string, audited: AuditedPage): Promise<void> {
   const state = await sessionOf(browser, url, audited.username);
   const address = await addressOf(browser, url, audited, state);
+  const before = findings.length;
   const row: string[] = [];
   let scripts = 0;
   let worstShift = 0;
@@ -124,6 +128,7 @@ async function look(browser: Browser, url: string, audited: AuditedPage): Promis
     String(broken).padStart(9),
   );
   print(row.join('  '));
+  for (const finding of findings.slice(before)) print(`    ${finding}`);
 }
 
 mkdirSync(pictures, { recursive: true });
@@ -133,10 +138,16 @@ try {
   print(
     ['page'.padEnd(22), 'as'.padEnd(12), 'scripts'.padStart(9), 'shift'.padStart(9), 'findings'.padStart(9)].join('  '),
   );
-  for (const audited of chosen) await look(browser, running.url, audited);
+  for (const audited of chosen) {
+    await look(browser, running.url, audited).catch((error: unknown) => {
+      const why = error instanceof Error ? error.message : String(error);
+      findings.push(`${audited.name}: could not be looked at: ${why}`);
+      print(`    ${findings.at(-1) ?? ''}`);
+    });
+  }
 } finally {
   await browser.close();
   await running.stop();
 }
-print(findings.length === 0 ? 'Nothing found.' : `\n${String(findings.length)} findings:\n${findings.join('\n')}`);
+print(findings.length === 0 ? 'Nothing found.' : `${String(findings.length)} findings.`);
 process.exitCode = findings.length === 0 ? 0 : 1;

@@ -2,6 +2,7 @@ import { writeFileSync } from 'node:fs';
 import { cpus } from 'node:os';
 import { engineBenches } from './engine.ts';
 import type { Figure } from './measure.ts';
+import { servedBenches, stopServed } from './served.ts';
 
 /** `npm run bench [-- --json OUT] [-- --only NAME]`: every figure with its spread, comparison and goal. */
 function option(name: string): string | undefined {
@@ -17,7 +18,7 @@ const only = option('only');
 const figures: Figure[] = [];
 const print = (text: string) => process.stdout.write(`${text}\n`);
 print(`${String(cpus().length)} cores, ${cpus()[0]?.model ?? ''}, Node ${process.version}`);
-for (const bench of [...engineBenches]) {
+for (const bench of [...engineBenches, ...servedBenches]) {
   if (only !== undefined && !bench.name.includes(only)) continue;
   for (const figure of await bench.run()) {
     figures.push(figure);
@@ -34,5 +35,6 @@ for (const bench of [...engineBenches]) {
     );
   }
 }
+await stopServed();
 const out = option('json');
 if (out !== undefined) writeFileSync(out, `${JSON.stringify(figures, null, 2)}\n`);

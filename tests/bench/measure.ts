@@ -37,6 +37,24 @@ export async function measure(
   return { ...figure, value, compare, ratio, runs, spread: [values[0], values[runs - 1]] };
 }
 
+/** A figure from values measured already: the given quantile of them (nearest rank). */
+export function summarise(
+  figure: Pick<Figure, 'name' | 'unit' | 'better'> & { goal?: number },
+  values: readonly number[],
+  quantile: number,
+): Figure {
+  const sorted = [...values].sort((a, b) => a - b);
+  const value = sorted[Math.max(0, Math.ceil(quantile * sorted.length) - 1)];
+  return {
+    ...figure,
+    value,
+    compare: null,
+    ratio: null,
+    runs: sorted.length,
+    spread: [sorted[0], sorted[sorted.length - 1]],
+  };
+}
+
 /** Milliseconds that some work takes. */
 export async function milliseconds(work: () => unknown): Promise<number> {
   const startedAt = performance.now();

@@ -42,6 +42,8 @@ describe('the main job, in a real browser on the built demo', () => {
     await steward.page.getByRole('button', { name: /^Check / }).click();
     await steward.page.getByLabel('The second of the two hours').check();
     await steward.page.getByLabel('Those that arrived in its period').check();
+    await steward.page.getByLabel('The patient registered at the desk').check();
+    await steward.page.getByLabel('The first area').check();
     await steward.page.getByLabel('When was the extract taken?').fill('2026-03-30T00:00');
     await steward.page.getByLabel('The patient was still present when the extract was taken').check();
     await steward.page.getByRole('button', { name: /^Send and load / }).click();

@@ -21,7 +21,7 @@ import { openTestServer, type SignedIn, type TestServer } from '../support/test-
 const readers: Role[] = ['charge', 'operations', 'steward', 'executive'];
 const bedside: Role[] = ['charge', 'operations'];
 const modellers: Role[] = ['operations', 'steward'];
-const table: Record<string, 'public' | 'signed-in' | Role[]> = {
+const table: Record<string, 'public' | 'signed-in' | 'installation' | Role[]> = {
   // Open to nobody signed in: health checks, the API description, sign-in and its callback, the session question.
   healthz: 'public',
   readyz: 'public',
@@ -52,8 +52,14 @@ const table: Record<string, 'public' | 'signed-in' | Role[]> = {
   getVisitLog: ['steward'],
   checkVisitLog: ['steward'],
   discardVisitLogCheck: ['steward'],
+  getVisitLogProblemRows: ['steward'],
+  getVisitLogMapping: ['steward'],
   acceptVisitLog: ['steward'],
   withdrawVisitLog: ['steward'],
+  // Outages and diversions belong to the logs.
+  listExposureGaps: ['steward'],
+  declareExposureGap: ['steward'],
+  removeExposureGap: ['steward'],
   // Fit a candidate model, read diagnostics.
   listArrivalModels: modellers,
   getArrivalModel: modellers,
@@ -64,6 +70,17 @@ const table: Record<string, 'public' | 'signed-in' | Role[]> = {
   // Background work of a site: those who start it.
   listJobs: modellers,
   cancelJob: modellers,
+  // Tokens for nightly upload.
+  listSiteTokens: ['steward'],
+  makeSiteToken: ['steward'],
+  revokeSiteToken: ['steward'],
+  // On-call address.
+  getOnCallAddress: ['operations'],
+  setOnCallAddress: ['operations'],
+  // Sites, areas, people, tokens, mail, jobs, status, backups: the installation's.
+  listTokens: 'installation',
+  makeToken: 'installation',
+  revokeToken: 'installation',
 };
 
 let server: TestServer;
@@ -127,7 +144,10 @@ describe('every route', () => {
       if (allowed === 'public') expect([401, 403], label).not.toContain(reply.status);
       else if (person === null) expect(reply.status, label).toBe(401);
       else if (allowed === 'signed-in') expect([401, 403, 404], label).not.toContain(reply.status);
-      else if (!readers.includes(person as Role)) expect(isOtherSite(reply), label).toBe(true);
+      else if (allowed === 'installation') {
+        if (person === 'administrator') expect([401, 403], label).not.toContain(reply.status);
+        else expect(reply.status, label).toBe(403);
+      } else if (!readers.includes(person as Role)) expect(isOtherSite(reply), label).toBe(true);
       else if (!allowed.includes(person as Role)) expect(reply.status, label).toBe(403);
       else expect([401, 403].includes(reply.status) || isOtherSite(reply), label).toBe(false);
     }

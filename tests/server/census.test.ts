@@ -56,7 +56,11 @@ describe('a census', () => {
       arrivalsSinceMidnight: 61,
     });
     expect(reply.status).toBe(201);
-    expect(reply.body).toEqual({ censusId: expect.any(String) as string, outlookId: null, reason: 'no model' });
+    expect(reply.body).toEqual({
+      censusId: expect.any(String) as string,
+      outlookId: null,
+      reason: expect.stringContaining('no arrival model is in use') as string,
+    });
     const read = await newest();
     expect(read.areas.sort((a, b) => b.present - a.present)).toEqual([
       { ...count(acute, 17, 5, 3), takenAt: now, enteredBy: 'Noor Charge' },
@@ -98,7 +102,10 @@ describe('a census', () => {
     try {
       const reply = await enter({ areas: [count(acute, 3)] });
       expect(reply.status).toBe(201);
-      expect(reply.body).toMatchObject({ outlookId: null, reason: 'the outlook could not be computed' });
+      expect(reply.body).toMatchObject({
+        outlookId: null,
+        reason: expect.stringContaining('the last one stands') as string,
+      });
       expect(log).toHaveBeenCalledOnce();
     } finally {
       issue.mockRestore();

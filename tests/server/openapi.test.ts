@@ -21,7 +21,7 @@ interface Description {
   openapi: string;
   info: { title: string; version: string };
   paths: Record<string, Record<string, Operation>>;
-  components: { securitySchemes: Record<string, { type: string; in: string; name: string }> };
+  components: { securitySchemes: Record<string, { type: string; in?: string; name?: string; scheme?: string }> };
 }
 
 async function describeApi(): Promise<Description> {
@@ -91,10 +91,13 @@ describe('the description of the API', () => {
   test('says which routes need a signed-in person, and how', async () => {
     const { paths, components } = await describeApi();
     expect(components.securitySchemes.session).toEqual({ type: 'apiKey', in: 'cookie', name: 'shoalmark' });
+    expect(components.securitySchemes.machineToken).toEqual({ type: 'http', scheme: 'bearer' });
     const operations = Object.values(paths).flatMap((methods) => Object.values(methods));
     for (const contract of server.app.routes.contracts) {
       const operation = operations.find(({ operationId }) => operationId === contract.id);
-      expect(operation?.security ?? [], contract.id).toEqual(contract.access === 'public' ? [] : [{ session: [] }]);
+      const person = contract.access === 'public' ? [] : [{ session: [] }];
+      const machine = contract.token ? [{ machineToken: [] }] : [];
+      expect(operation?.security ?? [], contract.id).toEqual([...person, ...machine]);
     }
   });
 

@@ -223,9 +223,11 @@ describe('without what an outlook needs', () => {
     (await charge.send('post', `${path}/censuses`, { takenAt: now, ...nothing, areas: [count(acute, 5)] }))
       .body as object;
 
+  const sentence = (words: string) => expect.stringContaining(words) as string;
+
   test('no model: the census is kept, and Tonight says what to do', async () => {
     await operations.send('put', `${path}/staffed-beds`, flatPlan(built.areas, [14, 3]));
-    expect(await save()).toMatchObject({ outlookId: null, reason: 'no model' });
+    expect(await save()).toMatchObject({ outlookId: null, reason: sentence('no arrival model') });
     expect(await tonight()).toMatchObject({
       outlook: null,
       missing: { reason: 'no model', next: expect.stringContaining('data steward') as string },
@@ -233,12 +235,12 @@ describe('without what an outlook needs', () => {
       moved: null,
     });
     await giveModel(server.deps.database, fitted, built, { status: 'candidate' });
-    expect(await save()).toMatchObject({ outlookId: null, reason: 'no model' });
+    expect(await save()).toMatchObject({ outlookId: null, reason: sentence('no arrival model') });
   });
 
   test('no plan', async () => {
     await giveModel(server.deps.database, fitted, built);
-    expect(await save()).toMatchObject({ outlookId: null, reason: 'no staffed-bed plan' });
+    expect(await save()).toMatchObject({ outlookId: null, reason: sentence('no staffed-bed plan') });
     expect((await tonight()).missing).toMatchObject({
       reason: 'no staffed-bed plan',
       next: expect.stringContaining('operations manager') as string,

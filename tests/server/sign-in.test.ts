@@ -186,6 +186,14 @@ describe('an answer of the provider that is not for this sign-in', () => {
     expect((await session()).person?.name).toBe('Ines Hartwell');
   });
 
+  test('keeps where the person was going in the address of the sign-in page', async () => {
+    const page = await enter(await start('?returnTo=/sites/a/models%3Farea%3Db'), 'charge', untilCallback);
+    const address = new URL(page.location ?? '');
+    await changeSignIn({ nonce: 'another-nonce' });
+    const { location } = await browser.open(address, { follow: untilOurPage });
+    expect(location).toBe(`${refused}&returnTo=${encodeURIComponent('/sites/a/models?area=b')}`);
+  });
+
   test('with another nonce is refused', async () => {
     const address = await callbackOf('charge');
     await changeSignIn({ nonce: 'another-nonce' });

@@ -71,7 +71,7 @@ export function buildNeedPlan(areas: KnownArea[], seed: number, shifts: [from: n
     drawStays: (_, __, out) => {
       areas.forEach((area, a) => {
         area.hazards.forEach((hazard, s) => {
-          out.hazard.set(hazard, (a * streamsPerArea + s) * hours);
+          out.spent.set(cumulative(hazard), (a * streamsPerArea + s) * (hours + 2) + 1);
         });
         out.shareSteps.set(cumulative(area.shares).subarray(0, 3), a * 3);
       });

@@ -12,6 +12,7 @@ const root = fileURLToPath(new URL('../..', import.meta.url));
 export interface RunningDemo {
   url: string;
   dataDir: string;
+  pid: number;
   output(): string;
   stop(): Promise<void>;
 }
@@ -63,6 +64,7 @@ export async function startBuiltDemo(env: Record<string, string> = {}): Promise<
   return {
     url: `http://127.0.0.1:${String(port)}`,
     dataDir,
+    pid: child.pid ?? 0,
     output: () => output,
     async stop() {
       child.removeAllListeners('exit');

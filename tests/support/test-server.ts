@@ -14,6 +14,7 @@ import { SessionStore } from '../../server/http/session-store.ts';
 import { JobQueue } from '../../server/jobs/queue.ts';
 import { makeJobKinds } from '../../server/jobs/registry.ts';
 import { makeLogger } from '../../server/log.ts';
+import { makeMailer } from '../../server/mail/mailer.ts';
 import { makeSimulationPool } from '../../server/simulation/pool.ts';
 
 export const testConfig: Config = {
@@ -73,7 +74,16 @@ export async function openTestServer({
   const pool = makeSimulationPool(1);
   const simulation = makeSimulationPool(full.threads);
   const jobs = new JobQueue(database, clock, logger);
-  const deps: Dependencies = { config: full, database, clock, logger, pool, simulation, jobs };
+  const deps: Dependencies = {
+    config: full,
+    database,
+    clock,
+    logger,
+    pool,
+    simulation,
+    jobs,
+    mailer: makeMailer(full),
+  };
   const issuer = new OutlookIssuer(deps, replications);
   const realClock = () => Math.floor(Date.now() / 1000);
   const sessions = new SessionStore(database, realClock);

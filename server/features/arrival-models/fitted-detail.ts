@@ -46,7 +46,12 @@ export function blockNames(stay: StayModel): string[] {
 
 /** What the log's stays and times look like, as effect sizes in words. */
 export function stayFindings(stay: StayModel, visits: number): FittedDetail['findings'] {
-  const percent = (share: number) => `${(100 * share).toFixed(share < 0.1 ? 1 : 0)} %`;
+  const percent = (share: number) =>
+    share > 0 && share < 0.0005 ? '<0.1 %' : `${(100 * share).toFixed(share > 0 && share < 0.1 ? 1 : 0)} %`;
+  const outflowSd = {
+    others: Math.sqrt(stay.outflow.others.variance),
+    admitted: Math.sqrt(stay.outflow.admitted.variance),
+  };
   const { heaping, leftOut } = stay;
   const findings: FittedDetail['findings'] = [
     {
@@ -69,8 +74,13 @@ export function stayFindings(stay: StayModel, visits: number): FittedDetail['fin
     },
     {
       name: 'How departures vary by day',
-      size: `± ${percent(Math.sqrt(stay.outflow.others.variance))}, for admitted patients ± ${percent(Math.sqrt(stay.outflow.admitted.variance))}`,
-      meaning: `A slow day is followed by another: correlation from day to day ${stay.outflow.admitted.correlation.toFixed(2)} for admitted patients. This moves need more than arrivals do.`,
+      size: `± ${percent(outflowSd.others)}, for admitted patients ± ${percent(outflowSd.admitted)}`,
+      meaning:
+        Math.max(outflowSd.others, outflowSd.admitted) < 0.02
+          ? 'Patients leave at much the same pace on all days.'
+          : stay.outflow.admitted.correlation >= 0.1
+            ? `A slow day tends to be followed by another: correlation from day to day ${stay.outflow.admitted.correlation.toFixed(2)} for admitted patients. This moves need more than arrivals do.`
+            : 'Days differ in how fast patients leave, and one day says next to nothing about the next. This moves need more than arrivals do.',
       concern: false,
     },
   ];

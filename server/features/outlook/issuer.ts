@@ -32,6 +32,9 @@ export class OutlookIssuer {
   private readonly deps: Dependencies;
   private readonly replications: number;
   private readonly queues = new Map<string, SiteQueue>();
+  /** What follows from an outlook (an alert mail); it never holds up or fails the outlook itself. */
+  onIssued: ((outlookId: string) => Promise<unknown>) | null = null;
+  private readonly following = new Set<Promise<unknown>>();
 
   constructor(deps: Dependencies, replications = 10_000) {
     this.deps = deps;
@@ -68,6 +71,7 @@ export class OutlookIssuer {
     while (this.queues.size > 0) {
       await Promise.allSettled([...this.queues.values()].map((queue) => queue.next ?? queue.running));
     }
+    await Promise.all(this.following);
   }
 
   private run(siteId: string, trigger: OutlookTrigger): Promise<Issued> {
@@ -111,7 +115,18 @@ export class OutlookIssuer {
         digest: digestOf(result),
       }),
     );
+    this.follow(siteId, outlookId);
     return { outlookId, reason: null };
+  }
+
+  private follow(siteId: string, outlookId: string): void {
+    if (!this.onIssued) return;
+    const following = this.onIssued(outlookId)
+      .catch((error: unknown) => {
+        this.deps.logger.error({ err: error, siteId }, 'what follows from an outlook failed');
+      })
+      .finally(() => this.following.delete(following));
+    this.following.add(following);
   }
 }
 

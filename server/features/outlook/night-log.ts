@@ -18,12 +18,16 @@ export async function presentNightLog(read: EntityManager, site: Site, at: numbe
   const night = nightOf(makeZone(site.timeZone), await readShifts(read, site.id), at);
   const { since, to } = night;
   const outlooks = await readOutlookNames(read, site.id, since, to + outlookReach);
-  const outlookAfter = (saved: number) =>
-    outlooks.find(({ issuedAt }) => issuedAt >= saved && issuedAt - saved <= outlookReach)?.id ?? null;
+  const outlookAfter = ({ at: saved, kind }: NightLogEntry) => {
+    const near = outlooks.filter(({ issuedAt }) => issuedAt >= saved && issuedAt - saved <= outlookReach);
+    // Wishes that come together are answered by one outlook, which carries the first one's trigger.
+    const own = near.find(({ trigger }) => trigger === (kind === 'census' ? 'census saved' : 'staffed beds changed'));
+    return (own ?? near.at(0))?.id ?? null;
+  };
   const entries: NightLogEntry[] = [
     ...(await censusEntries(read, site.id, since, to)),
     ...(await bedEntries(read, site.id, since, to)),
-  ].map((entry) => ({ ...entry, outlookId: outlookAfter(entry.at) }));
+  ].map((entry) => ({ ...entry, outlookId: outlookAfter(entry) }));
   for (const made of await readAcknowledgementsMade(read, site.id, since, to)) {
     const { id, at: madeAt, by, outlookId, areaId, fromAt, untilAt, note } = made;
     entries.push({ kind: 'acknowledgement', id, at: madeAt, by, outlookId, areaId, fromAt, untilAt, note });

@@ -1,16 +1,45 @@
-import { outlookFromParts, simulateOutlookPart } from '../../../shared/forecasting/issue-outlook.ts';
+import { deserialize } from 'node:v8';
+import { outlookFromParts, prepareOutlook, simulateOutlookPart } from '../../../shared/forecasting/issue-outlook.ts';
+import type { PreparedOutlook } from '../../../shared/forecasting/issue-outlook.ts';
 import type { NeedPart } from '../../../shared/forecasting/need-part.ts';
 import type { OutlookInput, OutlookResult } from '../../../shared/forecasting/outlook-types.ts';
 import type { ModelParameters } from '../../database/read-model.ts';
 
-/** One thread's share of the replications, or the outlook from all shares. */
-export type OutlookTask =
-  | { kind: 'part'; parameters: ModelParameters; input: OutlookInput; from: number; to: number }
-  | { kind: 'finish'; parameters: ModelParameters; input: OutlookInput; parts: NeedPart[] };
+/** A model's parameters, serialised once for all threads: handing them over costs nothing, reading them is left to a thread that has not yet. */
+export interface SharedModel {
+  key: number;
+  bytes: SharedArrayBuffer;
+}
+
+/** One thread's share of the replications, or the outlook from all shares. Tasks of one outlook have the same `outlook`. */
+export type OutlookTask = { outlook: number; model: SharedModel; input: OutlookInput } & (
+  { kind: 'part'; from: number; to: number } | { kind: 'finish'; parts: NeedPart[] }
+);
+
+const keptModels = 8;
+const keptOutlooks = 4;
+const models = new Map<number, ModelParameters>();
+const outlooks = new Map<number, PreparedOutlook>();
+
+/** A kept value, or a new one in place of the oldest. */
+function kept<Value>(values: Map<number, Value>, most: number, key: number, make: () => Value): Value {
+  const known = values.get(key);
+  if (known !== undefined) return known;
+  const made = make();
+  if (values.size >= most) values.delete(values.keys().next().value ?? key);
+  values.set(key, made);
+  return made;
+}
 
 export default function work(task: OutlookTask): NeedPart | OutlookResult {
-  const { parameters, input } = task;
+  const { model, input, outlook } = task;
+  const prepared = kept(outlooks, keptOutlooks, outlook, () =>
+    prepareOutlook(
+      kept(models, keptModels, model.key, () => deserialize(Buffer.from(model.bytes)) as ModelParameters),
+      input,
+    ),
+  );
   return task.kind === 'part'
-    ? simulateOutlookPart(parameters, input, task.from, task.to)
-    : outlookFromParts(parameters, input, task.parts);
+    ? simulateOutlookPart(prepared, task.from, task.to)
+    : outlookFromParts(prepared, task.parts);
 }

@@ -33,7 +33,11 @@ export async function readOutlookNames(
 }
 
 /** The outlook that stood at an instant: the newest issued at or before it. Null if there was none. */
-export async function readOutlookStanding(read: EntityManager, siteId: string, at: number): Promise<OutlookName | null> {
+export async function readOutlookStanding(
+  read: EntityManager,
+  siteId: string,
+  at: number,
+): Promise<OutlookName | null> {
   const row = await namesOf(read, siteId)
     .andWhere('outlook.issuedAt <= :at', { at })
     .orderBy('outlook.issuedAt', 'DESC')

@@ -2,13 +2,7 @@ import type { Express } from 'express';
 import { acknowledgeRisk as acknowledgeContract } from '../../../shared/api/acknowledgements.ts';
 import { enterCensus as enterContract, getCensus } from '../../../shared/api/censuses.ts';
 import { getNightLog } from '../../../shared/api/night-log.ts';
-import {
-  getOutlook,
-  getOutlookThen,
-  getTonight,
-  listOutlooks,
-  repeatOutlook,
-} from '../../../shared/api/outlooks.ts';
+import { getOutlook, getOutlookThen, getTonight, listOutlooks, repeatOutlook } from '../../../shared/api/outlooks.ts';
 import type { OutlookInput } from '../../../shared/forecasting/outlook-types.ts';
 import { censusDroppedAfterSeconds, readNewestCensus } from '../../database/read-census.ts';
 import { readModelParameters } from '../../database/read-model.ts';

@@ -69,12 +69,7 @@ export async function presentTonight(
 }
 
 /** What stood when the night before this one began. */
-async function readLastNight(
-  deps: Dependencies,
-  site: Site,
-  zone: Zone,
-  now: number,
-): Promise<Tonight['lastNight']> {
+async function readLastNight(deps: Dependencies, site: Site, zone: Zone, now: number): Promise<Tonight['lastNight']> {
   const { read } = deps.database;
   const shifts = await readShifts(read, site.id);
   const night = nightOf(zone, shifts, nightOf(zone, shifts, now).since - 1);

@@ -24,7 +24,7 @@ export function addSignInRoutes(app: Express, table: RouteTable, deps: Dependenc
       configuration = await provider();
     } catch (error) {
       logger.error({ err: error }, 'the identity provider cannot be reached');
-      res.redirect('/sign-in?problem=unreachable');
+      res.redirect(problemPage('unreachable', localPath(query.returnTo)));
       return undefined;
     }
     const codeVerifier = oidc.randomPKCECodeVerifier();
@@ -51,7 +51,7 @@ export function addSignInRoutes(app: Express, table: RouteTable, deps: Dependenc
     const { req, res, now } = context;
     const underWay = req.session.signIn;
     if (!underWay || underWay.startedAt < now - signInMinutes * 60) {
-      res.redirect('/sign-in?problem=expired');
+      res.redirect(problemPage('expired', underWay?.returnTo));
       return undefined;
     }
     // An answer counts once, whatever comes of it; one that is not for this sign-in leaves it open.
@@ -72,7 +72,7 @@ export function addSignInRoutes(app: Express, table: RouteTable, deps: Dependenc
       });
     } catch (error) {
       logger.warn({ err: error }, 'a sign-in was refused');
-      res.redirect('/sign-in?problem=refused');
+      res.redirect(problemPage('refused', underWay.returnTo));
       return undefined;
     }
     const claims = tokens.claims();
@@ -142,6 +142,12 @@ export function addSignInRoutes(app: Express, table: RouteTable, deps: Dependenc
 function localPath(path: string | undefined): string {
   if (path === undefined || !/^\/(?!\/)[^\\\p{Cc}]*$/u.test(path)) return '/';
   return path;
+}
+
+/** The sign-in page with what went wrong; where the person was going stays in the address. */
+function problemPage(problem: 'unreachable' | 'refused' | 'expired', returnTo = '/'): string {
+  const search = new URLSearchParams({ problem, ...(returnTo === '/' ? {} : { returnTo }) });
+  return `/sign-in?${search.toString()}`;
 }
 
 function saveSession(req: Request): Promise<void> {

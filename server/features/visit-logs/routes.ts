@@ -1,4 +1,5 @@
 import type { Express } from 'express';
+import { declareExposureGap, listExposureGaps, removeExposureGap } from '../../../shared/api/exposure-gaps.ts';
 import { getVisitLogMapping } from '../../../shared/api/visit-log-mapping.ts';
 import * as api from '../../../shared/api/visit-logs.ts';
 import { countingSpans } from '../../database/counting-spans.ts';
@@ -13,6 +14,7 @@ import { acceptVisitLog } from './accept-visit-log.ts';
 import { findChecked, forgetChecked } from './checked-file.ts';
 import { checkVisitLog } from './check-visit-log.ts';
 import { deleteRowsJobKind, makeDeleteVisits } from './delete-visits.job.ts';
+import { declareGap, listGaps, removeGap } from './exposure-gaps.ts';
 import { importJobKind } from './import-payload.ts';
 import { makeImportVisitLog, type OnLogReady } from './import-visit-log.job.ts';
 import { presentVisitLog, presentVisitLogDetail } from './present.ts';
@@ -21,7 +23,7 @@ import { sendProblemRows } from './send-problem-rows.ts';
 import { checksInUse } from './sweep-visit-logs.ts';
 import { withdrawVisitLog } from './withdraw-visit-log.ts';
 
-/** Routes of visit logs: list, one, check, accept, discard, withdraw. */
+/** Routes of visit logs (list, one, check, accept, discard, withdraw) and of the hours that no log can speak for. */
 export function addVisitLogRoutes(app: Express, routes: RouteTable, deps: Dependencies): void {
   addSiteRoute(app, routes, deps, api.listVisitLogs, async ({ site }) => {
     const { logs, spans } = await readLogs(deps, site);
@@ -46,6 +48,12 @@ export function addVisitLogRoutes(app: Express, routes: RouteTable, deps: Depend
   addSiteRoute(app, routes, deps, getVisitLogMapping, async ({ site }) => ({
     remembered: await readMapping(deps.database.read, site.id),
   }));
+
+  addSiteRoute(app, routes, deps, listExposureGaps, async ({ site }) => ({ gaps: await listGaps(deps, site.id) }));
+
+  addSiteRoute(app, routes, deps, declareExposureGap, (context) => declareGap(context));
+
+  addSiteRoute(app, routes, deps, removeExposureGap, (context) => removeGap(context));
 
   addSiteRoute(app, routes, deps, api.withdrawVisitLog, async (context) => {
     await withdrawVisitLog(context);

@@ -41,45 +41,47 @@ export function JudgeModel({ siteId, model }: { siteId: string; model: ModelSumm
   };
 
   return (
-    <section aria-labelledby={`${formId}-title`} className="grid max-w-xl gap-3">
-      <h2 id={`${formId}-title`} className="text-h2">
-        {model.status === 'candidate' ? 'Approve or retire' : 'Retire'}
-      </h2>
-      {model.status === 'candidate' && model.fittedByCaller ? (
-        <Notice title="You fitted this model, so somebody else has to approve it.">
-          <p>
-            Two people look at each model before beds are planned by it. Ask another operations manager of the site.
-          </p>
-        </Notice>
-      ) : null}
-      {model.status === 'in use' ? (
-        <p className="text-ink2">Without a model in use Tonight has no outlook, until another one is approved.</p>
-      ) : null}
-      <TextArea
-        label="Reason"
-        hint="Kept with the model and in the audit trail. No patient details."
-        error={form.formState.errors.reason?.message}
-        {...form.register('reason')}
-      />
-      {judging.error ? <ProblemNotice error={judging.error} /> : null}
-      <div className="flex gap-4">
-        {mayApprove ? (
-          <Button
-            onClick={() => press('approve')}
-            busy={judging.isPending && verdict === 'approve'}
-            busyText="Approving…"
-          >
-            Approve and put into use
-          </Button>
+    <section aria-labelledby={`${formId}-title`} className="border-t border-hair pt-4">
+      <div className="grid max-w-xl gap-3">
+        <h2 id={`${formId}-title`} className="text-section">
+          {model.status === 'candidate' ? 'Approve or retire this candidate' : 'Retire this model'}
+        </h2>
+        {model.status === 'candidate' && model.fittedByCaller ? (
+          <Notice title="You fitted this model, so somebody else has to approve it.">
+            <p>
+              Two people look at each model before beds are planned by it. Ask another operations manager of the site.
+            </p>
+          </Notice>
         ) : null}
-        <Button
-          look="second"
-          onClick={() => press('retire')}
-          busy={judging.isPending && verdict === 'retire'}
-          busyText="Retiring…"
-        >
-          Retire
-        </Button>
+        {model.status === 'in use' ? (
+          <p className="text-ink2">Without a model in use Tonight has no outlook, until another one is approved.</p>
+        ) : null}
+        <TextArea
+          label="Reason"
+          hint="Kept with the model and in the audit trail. No patient details."
+          error={form.formState.errors.reason?.message}
+          {...form.register('reason')}
+        />
+        {judging.error ? <ProblemNotice error={judging.error} /> : null}
+        <div className="flex gap-4">
+          {mayApprove ? (
+            <Button
+              onClick={() => press('approve')}
+              busy={judging.isPending && verdict === 'approve'}
+              busyText="Approving…"
+            >
+              Approve and put into use
+            </Button>
+          ) : null}
+          <Button
+            look="second"
+            onClick={() => press('retire')}
+            busy={judging.isPending && verdict === 'retire'}
+            busyText="Retiring…"
+          >
+            Retire
+          </Button>
+        </div>
       </div>
     </section>
   );

@@ -10,9 +10,8 @@ import { variationInWords } from './model-words.ts';
 import { RateHeatMap } from './RateHeatMap.tsx';
 import { StreamTable } from './StreamTable.tsx';
 
-/** A setting's name in words: halfLifeWeeks is "Half life weeks". */
-function settingName(name: string): string {
-  const words = name.replace(/([a-z0-9])([A-Z])/g, '$1 $2').toLowerCase();
+/** A setting's name, which is in words already, as a line begins. */
+function settingName(words: string): string {
   return words.charAt(0).toUpperCase() + words.slice(1);
 }
 

@@ -12,6 +12,7 @@ import { useCensusEntryContext } from './use-census-entry.ts';
 export interface Rights {
   enterCensus: boolean;
   changeBeds: boolean;
+  acknowledge: boolean;
 }
 
 function whenInWords({ when }: SomeTime, timeZone: string): string {

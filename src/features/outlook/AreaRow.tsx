@@ -71,6 +71,9 @@ export function AreaRow({
   open,
   onToggle,
   siteId,
+  outlookId,
+  note,
+  onNote,
   timeZone,
   now,
   rights,
@@ -83,6 +86,10 @@ export function AreaRow({
   open: boolean;
   onToggle: () => void;
   siteId: string;
+  outlookId: string;
+  /** What is being typed about this area's risk. */
+  note: string;
+  onNote: (note: string) => void;
   timeZone: string;
   now: number;
   rights: Rights;
@@ -121,7 +128,10 @@ export function AreaRow({
             rows={rowsOf(row, open, hourNames)}
           />
           {open && row.firstPast !== null ? (
-            <LimitPanel {...{ row, columnWidth, hiddenColumns, hourNames, timeZone }} />
+            <LimitPanel
+              {...{ row, siteId, outlookId, note, onNote, columnWidth, hiddenColumns, hourNames, timeZone }}
+              mayAcknowledge={rights.acknowledge}
+            />
           ) : null}
         </div>
       }

@@ -35,6 +35,7 @@ export function DepartmentRow({
   columnWidth,
   hiddenColumns,
   hourNames,
+  then,
 }: {
   board: Board;
   outlook: Outlook;
@@ -44,6 +45,8 @@ export function DepartmentRow({
   columnWidth: number;
   hiddenColumns: number;
   hourNames: readonly string[];
+  /** The board is that of an earlier time. */
+  then: boolean;
 }) {
   const { department } = board;
   const { census, nothingChanged, saving } = useCensusEntryContext();
@@ -127,6 +130,7 @@ export function DepartmentRow({
             tall
             counted={counts.length > 0}
             presentNow={counts.length > 0 ? total('present') : null}
+            then={then}
             namePercentiles
           />
           <ChanceTable

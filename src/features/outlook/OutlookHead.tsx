@@ -1,6 +1,8 @@
 import type { ReactNode } from 'react';
+import { Link } from 'react-router-dom';
 import type { Outlook, Tonight } from '../../../shared/api/outlooks.ts';
 import type { Site } from '../../../shared/api/sites.ts';
+import { paths } from '../../app/paths.ts';
 import { RiskMark } from '../../../shared/charts/RiskMark.tsx';
 import { staleCensusSeconds } from '../../../shared/forecasting/outlook-sentence.ts';
 import type { OutlookSentence } from '../../../shared/forecasting/outlook-sentence.ts';
@@ -24,6 +26,8 @@ export function OutlookHead({
   site,
   sentence,
   staleNote,
+  mayPrintHandover,
+  onMeeting,
 }: {
   tonight: Tonight;
   outlook: Outlook;
@@ -31,6 +35,8 @@ export function OutlookHead({
   sentence: OutlookSentence;
   /** Said when the page could not be refreshed: the last good outlook stays readable with its age. */
   staleNote: ReactNode;
+  mayPrintHandover: boolean;
+  onMeeting: () => void;
 }) {
   // What the sentence or the ages say already is not said twice.
   const others = tonight.cautions.filter((caution) => !saidElsewhere.has(caution.kind));
@@ -61,12 +67,24 @@ export function OutlookHead({
           {staleNote}
         </>
       }
-      aside={<Ages tonight={tonight} outlook={outlook} site={site} />}
+      aside={<Ages {...{ tonight, outlook, site, mayPrintHandover, onMeeting }} />}
     />
   );
 }
 
-function Ages({ tonight, outlook, site }: { tonight: Tonight; outlook: Outlook; site: Site }) {
+function Ages({
+  tonight,
+  outlook,
+  site,
+  mayPrintHandover,
+  onMeeting,
+}: {
+  tonight: Tonight;
+  outlook: Outlook;
+  site: Site;
+  mayPrintHandover: boolean;
+  onMeeting: () => void;
+}) {
   const { now } = tonight;
   const taken = outlook.census.flatMap((entry) => (entry.takenAt === null ? [] : [entry.takenAt]));
   const oldest = taken.length > 0 ? Math.min(...taken) : null;
@@ -92,9 +110,23 @@ function Ages({ tonight, outlook, site }: { tonight: Tonight; outlook: Outlook; 
           {formatDate(outlook.model.fittedAt, site.timeZone)}
         </div>
       )}
-      <Button look="quiet" className="text-side" onClick={() => window.print()}>
-        Print this page
-      </Button>
+      <div className="flex flex-wrap gap-x-6">
+        {mayPrintHandover ? (
+          <Link
+            to={paths.handover(site.id)}
+            className="link inline-flex min-h-6 items-center font-bold text-ink print:hidden"
+          >
+            Print the handover sheet
+          </Link>
+        ) : (
+          <Button look="quiet" className="text-side" onClick={() => window.print()}>
+            Print this page
+          </Button>
+        )}
+        <Button look="quiet" className="text-side" onClick={onMeeting}>
+          Bed meeting
+        </Button>
+      </div>
       {oldest === null ? null : (
         <div className="hidden font-bold text-ink print:block">
           {site.name}. Do not use after {formatTime(oldest + staleCensusSeconds, site.timeZone)},{' '}

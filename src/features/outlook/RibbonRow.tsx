@@ -3,7 +3,9 @@ import type { Site } from '../../../shared/api/sites.ts';
 import { skyTone } from '../../../shared/charts/daylight.ts';
 import { Ribbon, ribbonHeight } from '../../../shared/charts/Ribbon.tsx';
 import type { RibbonEvent } from '../../../shared/charts/Ribbon.tsx';
+import { meetingsBetween, usualMeetingMinutes } from '../../../shared/domain/bed-meeting.ts';
 import { shiftsBetween } from '../../../shared/domain/shift-times.ts';
+import { Link } from 'react-router-dom';
 import { Button } from '../../components/Button.tsx';
 import { formatDay, formatHour, formatTime, formatWeekday, zoneOf } from '../../lib/format.ts';
 import { BoardRow } from './BoardRow.tsx';
@@ -28,6 +30,12 @@ function bedEvents(board: Board, outlook: Outlook, now: number): RibbonEvent[] {
   }));
 }
 
+/** Bed meetings within the hours ahead. */
+function meetingEvents(board: Board, timeZone: string, now: number): RibbonEvent[] {
+  const last = board.hours[board.hours.length - 1].at;
+  return meetingsBetween(zoneOf(timeZone), usualMeetingMinutes, now, last).map((at) => ({ at, text: 'Bed meeting' }));
+}
+
 /** The ribbon with its flag of now, and in the gutter how to step it. */
 export function RibbonRow({
   board,
@@ -37,6 +45,8 @@ export function RibbonRow({
   columnWidth,
   hiddenColumns,
   ribbon,
+  lastNightHref,
+  then = false,
 }: {
   board: Board;
   outlook: Outlook;
@@ -45,6 +55,10 @@ export function RibbonRow({
   columnWidth: number;
   hiddenColumns: number;
   ribbon: Pick<ReturnType<typeof useRibbon>, 'place' | 'earlier' | 'later' | 'backToNow'>;
+  /** Where last night's outlook stands; null if there is none. */
+  lastNightHref: string | null;
+  /** The board is that of an earlier time. */
+  then?: boolean;
 }) {
   const zone = zoneOf(site.timeZone);
   const { hours } = board;
@@ -57,6 +71,14 @@ export function RibbonRow({
       ruled={false}
       gutter={
         <div className="flex h-full flex-wrap items-end gap-x-5 gap-y-1 text-side print:hidden">
+          {lastNightHref ? (
+            <Link
+              to={lastNightHref}
+              className="inline-flex min-h-6 items-center text-body leading-tight font-bold text-ink underline decoration-edge underline-offset-4 hover:decoration-2"
+            >
+              Last night
+            </Link>
+          ) : null}
           <Button look="quiet" onClick={ribbon.earlier} disabled={ribbon.place.atStart}>
             Earlier
           </Button>
@@ -65,7 +87,7 @@ export function RibbonRow({
           </Button>
           {ribbon.place.moved ? (
             <Button look="quiet" onClick={ribbon.backToNow}>
-              Back to now
+              {then ? 'Back to then' : 'Back to now'}
             </Button>
           ) : null}
         </div>
@@ -73,8 +95,8 @@ export function RibbonRow({
       strip={
         <div className="relative pt-1.5">
           <p className="sr-only">
-            Hours from {formatTime(first, site.timeZone)} to {formatTime(last - 3600, site.timeZone)}. Now{' '}
-            {formatTime(now, site.timeZone)}.{' '}
+            Hours from {formatTime(first, site.timeZone)} to {formatTime(last - 3600, site.timeZone)}.{' '}
+            {then ? 'As it stood at' : 'Now'} {formatTime(now, site.timeZone)}.{' '}
             {shifts
               .map(
                 (shift) =>
@@ -88,7 +110,7 @@ export function RibbonRow({
             className="absolute top-0 z-10 rounded-t-button rounded-br-button bg-act px-2.5 py-1 text-side leading-tight font-extrabold whitespace-nowrap text-act-ink"
             style={{ left: pastHours * columnWidth - 1.5 }}
           >
-            Now {formatWeekday(now, site.timeZone)} {formatTime(now, site.timeZone)}
+            {then ? 'Then' : 'Now'} {formatWeekday(now, site.timeZone)} {formatTime(now, site.timeZone)}
           </div>
           <Ribbon
             id="ribbon"
@@ -104,7 +126,9 @@ export function RibbonRow({
                   : null,
             }))}
             shifts={shifts}
-            events={bedEvents(board, outlook, now).filter((event) => !starts.has(event.at))}
+            events={[...bedEvents(board, outlook, now), ...meetingEvents(board, site.timeZone, now)]
+              .filter((event) => !starts.has(event.at))
+              .sort((a, b) => a.at - b.at)}
             timeOf={(at) => formatTime(at, site.timeZone)}
           />
           <HandoverGuides board={board} shifts={shifts} columnWidth={columnWidth} now={now} />

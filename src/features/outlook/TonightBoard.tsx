@@ -2,6 +2,7 @@ import { useState } from 'react';
 import { Link } from 'react-router-dom';
 import type { Outlook, Tonight } from '../../../shared/api/outlooks.ts';
 import type { Site } from '../../../shared/api/sites.ts';
+import { paths } from '../../app/paths.ts';
 import { localDate } from '../../../shared/domain/zoned-time.ts';
 import { Dialog } from '../../components/Dialog.tsx';
 import { PanelBoundary } from '../../components/PanelBoundary.tsx';
@@ -9,12 +10,14 @@ import { formatTime, formatWeekday, zoneOf } from '../../lib/format.ts';
 import { useMediaQuery } from '../../lib/use-media-query.ts';
 import type { Rights } from './AreaGutter.tsx';
 import { AreaRow } from './AreaRow.tsx';
+import { BedMeeting } from './BedMeeting.tsx';
 import { DepartmentRow } from './DepartmentRow.tsx';
 import { OutlookTables } from './OutlookTables.tsx';
 import { RibbonRow } from './RibbonRow.tsx';
 import { RiskKey } from '../../components/RiskKey.tsx';
 import { buildBoard, pastHours } from './tonight-board.ts';
 import { UndecidedRow } from './UndecidedRow.tsx';
+import type { BoardRows } from './use-board-rows.ts';
 import { useRibbon } from './use-ribbon.ts';
 
 /** The night board: ribbon, department, areas in the site's own order, area not decided, key. */
@@ -23,16 +26,21 @@ export function TonightBoard({
   outlook,
   site,
   rights,
-  worstAreaId,
+  rows,
   howHref,
+  meeting,
+  then = false,
 }: {
   tonight: Tonight;
   outlook: Outlook;
   site: Site;
   rights: Rights;
-  /** Opens by itself. */
-  worstAreaId: string | null;
+  rows: BoardRows;
   howHref: string;
+  /** Whether the bed meeting's table stands over the page; absent where there is none. */
+  meeting?: { open: boolean; onClose: () => void };
+  /** The board is that of an earlier time. */
+  then?: boolean;
 }) {
   const desktop = useMediaQuery('(min-width: 1100px)');
   const columnWidth = desktop ? 38 : 40;
@@ -41,7 +49,6 @@ export function TonightBoard({
   const firstAhead = board.hours[pastHours]?.at;
   const hiddenColumns = pastHours - (desktop ? 3 : 2);
   const { ref, ...ribbon } = useRibbon(columnWidth, hiddenColumns, firstAhead);
-  const [opened, setOpened] = useState<ReadonlyMap<string, boolean>>(new Map());
   const [tableOpen, setTableOpen] = useState(false);
 
   const today = localDate(zone.toLocal(tonight.now));
@@ -49,9 +56,9 @@ export function TonightBoard({
     const time = formatTime(hour.at, site.timeZone);
     return localDate(zone.toLocal(hour.at)) === today ? time : `${time} ${formatWeekday(hour.at, site.timeZone)}`;
   });
-  const isOpen = (areaId: string) => opened.get(areaId) ?? areaId === worstAreaId;
   const shared = {
     siteId: site.id,
+    outlookId: outlook.id,
     timeZone: site.timeZone,
     now: tonight.now,
     rights,
@@ -72,9 +79,15 @@ export function TonightBoard({
       >
         <div className="relative w-max pb-2">
           <i aria-hidden="true" className="now-line" style={{ ['--past' as string]: pastHours }} />
-          <RibbonRow {...{ board, outlook, site, columnWidth, hiddenColumns, ribbon }} now={tonight.now} />
+          <RibbonRow
+            {...{ board, outlook, site, columnWidth, hiddenColumns, ribbon, then }}
+            now={tonight.now}
+            lastNightHref={tonight.lastNight ? paths.tonightThen(site.id, tonight.lastNight.outlookId) : null}
+          />
           <PanelBoundary>
-            <DepartmentRow {...{ board, outlook, tonight, site, rights, columnWidth, hiddenColumns, hourNames }} />
+            <DepartmentRow
+              {...{ board, outlook, tonight, site, rights, columnWidth, hiddenColumns, hourNames, then }}
+            />
           </PanelBoundary>
           {board.areas.map((row, index) => (
             <PanelBoundary key={row.area.id}>
@@ -82,12 +95,14 @@ export function TonightBoard({
                 {...shared}
                 row={row}
                 index={index}
-                open={isOpen(row.area.id)}
-                onToggle={() => setOpened(new Map(opened).set(row.area.id, !isOpen(row.area.id)))}
+                open={rows.isOpen(row.area.id)}
+                onToggle={() => rows.toggle(row.area.id)}
+                note={rows.noteOf(row.area.id)}
+                onNote={(note) => rows.setNote(row.area.id, note)}
               />
             </PanelBoundary>
           ))}
-          <UndecidedRow rights={rights} timeZone={site.timeZone} />
+          {then ? null : <UndecidedRow rights={rights} timeZone={site.timeZone} />}
         </div>
       </div>
       <div className="page-pad flex flex-wrap items-center gap-x-6 gap-y-2 border-t border-hair pt-3">
@@ -106,6 +121,7 @@ export function TonightBoard({
       <Dialog title={`The hours ahead, ${site.name}`} open={tableOpen} onClose={() => setTableOpen(false)}>
         <OutlookTables {...{ board, site, hourNames }} />
       </Dialog>
+      {meeting ? <BedMeeting {...{ board, outlook, site, ...meeting }} now={tonight.now} /> : null}
     </>
   );
 }

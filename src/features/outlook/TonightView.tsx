@@ -1,11 +1,14 @@
 import { useCallback, useEffect, useState } from 'react';
+import { flushSync } from 'react-dom';
 import type { ReactNode } from 'react';
-import type { Tonight } from '../../../shared/api/outlooks.ts';
+import type { Outlook, Tonight } from '../../../shared/api/outlooks.ts';
 import type { Site } from '../../../shared/api/sites.ts';
 import type { Census } from '../../../shared/api/censuses.ts';
 import { outlookSentence } from '../../../shared/forecasting/outlook-sentence.ts';
 import type { OutlookSentence } from '../../../shared/forecasting/outlook-sentence.ts';
-import { Button } from '../../components/Button.tsx';
+import { hoursPastLimit } from '../../../shared/forecasting/hours-past-limit.ts';
+import { paths } from '../../app/paths.ts';
+import { Button, ButtonLink } from '../../components/Button.tsx';
 import { Notice } from '../../components/Notice.tsx';
 import { asApiError } from '../../lib/api-error.ts';
 import { formatTime, zoneOf } from '../../lib/format.ts';
@@ -13,6 +16,9 @@ import type { Rights } from './AreaGutter.tsx';
 import { NoOutlook } from './NoOutlook.tsx';
 import { OutlookHead } from './OutlookHead.tsx';
 import { TonightBoard } from './TonightBoard.tsx';
+import { noteFieldId } from './AcknowledgeForm.tsx';
+import { askedHours } from './asked-hours.ts';
+import { useBoardRows } from './use-board-rows.ts';
 import { CensusEntryProvider, useCensusEntry } from './use-census-entry.ts';
 import type { CensusEntry } from './use-census-entry.ts';
 
@@ -45,6 +51,7 @@ export function TonightView({
   refreshError,
   emptyActions,
   howHref,
+  nightLog,
 }: {
   tonight: Tonight;
   /** When it was loaded, this device's clock, milliseconds. */
@@ -56,6 +63,8 @@ export function TonightView({
   refreshError: unknown;
   emptyActions: ReactNode;
   howHref: string;
+  /** What was done so far, under the board. */
+  nightLog: ReactNode;
 }) {
   // The server's clock, carried on by this device's: a wrong clock here must not date a census into the future.
   const serverNow = useCallback(
@@ -67,6 +76,10 @@ export function TonightView({
   const entry = useCensusEntry(site, census, serverNow);
   const sentence = sentenceOf(tonight, site);
   const { outlook } = tonight;
+  const worstAreaId = sentence?.worstAreaId ?? null;
+  const rows = useBoardRows(worstAreaId);
+  const [meetingOpen, setMeetingOpen] = useState(false);
+  const asks = rights.acknowledge && outlook ? asksAbout(tonight, outlook, site, worstAreaId) : null;
 
   return (
     <CensusEntryProvider value={entry}>
@@ -74,6 +87,8 @@ export function TonightView({
         <>
           <OutlookHead
             {...{ tonight, outlook, site, sentence }}
+            mayPrintHandover={rights.acknowledge}
+            onMeeting={() => setMeetingOpen(true)}
             staleNote={
               refreshError ? (
                 <Notice kind="caution" className="mt-2" title={`${asApiError(refreshError).title}.`} live>
@@ -91,14 +106,45 @@ export function TonightView({
             timeZone={site.timeZone}
             computing={tonight.computing}
           />
-          <TonightBoard {...{ tonight, outlook, site, rights, howHref }} worstAreaId={sentence.worstAreaId} />
+          <TonightBoard
+            {...{ tonight, outlook, site, rights, howHref, rows }}
+            meeting={{ open: meetingOpen, onClose: () => setMeetingOpen(false) }}
+          />
         </>
       ) : (
         <NoOutlook {...{ tonight, site, rights }} actions={emptyActions} />
       )}
-      {rights.enterCensus && outlook ? <ActionBar entry={entry} /> : null}
+      {nightLog}
+      {rights.enterCensus && outlook ? (
+        <ActionBar
+          entry={entry}
+          siteId={site.id}
+          onAcknowledge={
+            asks === null
+              ? null
+              : () => {
+                  // The row may be closed: its note field is there once it is open.
+                  flushSync(() => rows.open(asks));
+                  document.getElementById(noteFieldId(asks))?.querySelector('input')?.focus();
+                }
+          }
+        />
+      ) : null}
     </CensusEntryProvider>
   );
+}
+
+/** The area that asks to be acknowledged: the worst, or else the first in the site's order. */
+function asksAbout(tonight: Tonight, outlook: Outlook, site: Site, worstAreaId: string | null): string | null {
+  const zone = zoneOf(site.timeZone);
+  const asking = site.areas
+    .filter((area) => {
+      const pastTonight = hoursPastLimit(outlook.result, area.id, area, tonight.now, zone);
+      const acknowledgements = tonight.acknowledgements.filter((made) => made.areaId === area.id);
+      return askedHours({ pastTonight, acknowledgements }).length > 0;
+    })
+    .map((area) => area.id);
+  return asking.find((areaId) => areaId === worstAreaId) ?? asking.at(0) ?? null;
 }
 
 /** The hour slides and ages grow without a reload: the server's clock as loaded, carried on every few seconds. */
@@ -137,8 +183,17 @@ function SaveReport({
   );
 }
 
-/** On a tablet or phone the two presses of every round stay at the foot, within reach of a thumb. */
-function ActionBar({ entry }: { entry: CensusEntry }) {
+/** On a tablet or phone the presses of every round stay at the foot, within reach of a thumb. */
+function ActionBar({
+  entry,
+  siteId,
+  onAcknowledge,
+}: {
+  entry: CensusEntry;
+  siteId: string;
+  /** Null while nothing asks to be acknowledged. */
+  onAcknowledge: (() => void) | null;
+}) {
   const edited = entry.form.formState.isDirty;
   return (
     <div className="sticky bottom-0 z-30 mt-2 flex gap-3 border-t border-hair bg-paper px-page py-2 lg:hidden print:hidden">
@@ -150,9 +205,14 @@ function ActionBar({ entry }: { entry: CensusEntry }) {
       >
         {edited ? 'Save census' : 'Nothing changed'}
       </Button>
-      <Button look="second" onClick={() => window.print()}>
+      {onAcknowledge ? (
+        <Button look="second" className="px-3!" onClick={onAcknowledge}>
+          Acknowledge
+        </Button>
+      ) : null}
+      <ButtonLink look="second" className="px-3!" to={paths.handover(siteId)}>
         Print
-      </Button>
+      </ButtonLink>
     </div>
   );
 }

@@ -1,7 +1,10 @@
-import { useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
+import { keepPreviousData, useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
+import { acknowledgeRisk } from '../../../shared/api/acknowledgements.ts';
+import type { AcknowledgeBody } from '../../../shared/api/acknowledgements.ts';
 import { enterCensus, getCensus } from '../../../shared/api/censuses.ts';
 import type { CensusBody } from '../../../shared/api/censuses.ts';
-import { getTonight } from '../../../shared/api/outlooks.ts';
+import { getNightLog } from '../../../shared/api/night-log.ts';
+import { getOutlookThen, getTonight } from '../../../shared/api/outlooks.ts';
 import { getSite } from '../../../shared/api/sites.ts';
 import { changeBedsNow } from '../../../shared/api/staffed-beds.ts';
 import type { ChangeBedsBody } from '../../../shared/api/staffed-beds.ts';
@@ -9,6 +12,7 @@ import { call } from '../../lib/api-client.ts';
 
 const tonightKey = (siteId: string) => ['tonight', siteId] as const;
 const censusKey = (siteId: string) => ['census', siteId] as const;
+const nightLogKey = (siteId: string) => ['night-log', siteId] as const;
 
 /** The newest outlook. Asked again every half minute while the page is looked at, each second while one is computed. */
 export function useTonight(siteId: string) {
@@ -30,6 +34,25 @@ export function useCensus(siteId: string) {
   });
 }
 
+/** What was done in the night of an instant; now, and followed, if none is given. */
+export function useNightLog(siteId: string, at?: number) {
+  return useQuery({
+    queryKey: [...nightLogKey(siteId), at ?? 'now'],
+    queryFn: ({ signal }) => call(getNightLog, { params: { siteId }, query: at === undefined ? {} : { at }, signal }),
+    ...(at === undefined ? { refetchInterval: 60_000, refetchIntervalInBackground: false } : {}),
+  });
+}
+
+/** An earlier outlook and what then happened; the one before stays on the page until it is there. */
+export function useOutlookThen(siteId: string, outlookId: string) {
+  return useQuery({
+    queryKey: ['outlook-then', siteId, outlookId],
+    queryFn: ({ signal }) => call(getOutlookThen, { params: { siteId, outlookId }, signal }),
+    placeholderData: keepPreviousData,
+    staleTime: 60_000,
+  });
+}
+
 /** Areas, shifts, limits and zone of the site. */
 export function useSite(siteId: string) {
   return useQuery({
@@ -45,7 +68,18 @@ function useRefreshTonight(siteId: string) {
     Promise.all([
       queryClient.invalidateQueries({ queryKey: tonightKey(siteId) }),
       queryClient.invalidateQueries({ queryKey: censusKey(siteId) }),
+      queryClient.invalidateQueries({ queryKey: nightLogKey(siteId) }),
     ]);
+}
+
+/** Acknowledges that an area passes its limit; done when the page shows who, when and what. */
+export function useAcknowledge(siteId: string) {
+  const refresh = useRefreshTonight(siteId);
+  return useMutation({
+    mutationFn: (body: AcknowledgeBody) =>
+      call(acknowledgeRisk, { params: { siteId }, body, kept: 'Your note is still in its field.' }),
+    onSuccess: refresh,
+  });
 }
 
 /** Saves a census; done when the newer outlook is on the page. */

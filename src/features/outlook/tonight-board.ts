@@ -1,9 +1,11 @@
+import type { Acknowledgement } from '../../../shared/api/acknowledgements.ts';
 import type { Outlook, Tonight } from '../../../shared/api/outlooks.ts';
 import type { CareArea, Site } from '../../../shared/api/sites.ts';
 import { bedsAt } from '../../../shared/domain/bed-schedule.ts';
 import type { Zone } from '../../../shared/domain/zoned-time.ts';
 import type { NeedColumn, StaffedStep } from '../../../shared/charts/need-columns.ts';
 import type { Chance, NeedByHour } from '../../../shared/forecasting/outlook-types.ts';
+import { hoursPastLimit } from '../../../shared/forecasting/hours-past-limit.ts';
 import { isNight, nightIsOverBefore } from '../../../shared/forecasting/tonight-span.ts';
 import { printedShortfall } from '../../../shared/forecasting/printed-shortfall.ts';
 
@@ -38,6 +40,10 @@ export interface BoardArea {
   bedsThatDoNotExist: number[];
   /** Place among the hours ahead of the first past the limit, null if none. */
   firstPast: number | null;
+  /** Hours of tonight past the limit, UTC seconds: what is asked about. */
+  pastTonight: number[];
+  /** Acknowledgements that speak of any of these hours, oldest first. */
+  acknowledgements: Acknowledgement[];
   someTime: SomeTime | null;
 }
 
@@ -59,7 +65,7 @@ export interface Board {
   };
 }
 
-function forecastColumn(need: NeedByHour, at: number, index: number): NeedColumn {
+function forecastColumn(need: NeedByHour, at: number, index: number, actual?: number | null): NeedColumn {
   const { p5, p25, p50, p75, p90, p95 } = need.need;
   return {
     kind: 'forecast',
@@ -71,6 +77,7 @@ function forecastColumn(need: NeedByHour, at: number, index: number): NeedColumn
     p75: p75[index],
     p90: p90[index],
     p95: p95[index],
+    ...(actual === undefined ? {} : { actual }),
   };
 }
 
@@ -125,6 +132,7 @@ function sumSteps(areas: readonly StaffedStep[][]): StaffedStep[] {
  * The page's figures from the outlook as it was issued: hours before and after now, and for the
  * department and each area in the site's own order what is drawn and printed. Hours of the outlook
  * that have passed by now leave the forecast; what is then known of them comes from the past hours.
+ * An earlier outlook is built as of the time it was issued: past hours that lie after it are what then happened.
  */
 export function buildBoard(tonight: Tonight, outlook: Outlook, site: Site, zone: Zone): Board {
   const { result } = outlook;
@@ -148,6 +156,7 @@ export function buildBoard(tonight: Tonight, outlook: Outlook, site: Site, zone:
     const chances = pick(printedShortfall(found, area.spaces));
     const firstPast = chances.findIndex((cell) => cell.chance > area.alertLimit);
     const steps = outlook.staffedBeds.find((candidate) => candidate.areaId === area.id)?.steps ?? [];
+    const pastTonight = hoursPastLimit(result, area.id, area, tonight.now, zone);
     return [
       {
         area,
@@ -161,7 +170,7 @@ export function buildBoard(tonight: Tonight, outlook: Outlook, site: Site, zone:
                 present: pastArea(hour.at)?.present ?? null,
                 staffed: pastArea(hour.at)?.staffed ?? steps[0]?.beds ?? 0,
               }
-            : forecastColumn(found, hour.at, hour.index),
+            : forecastColumn(found, hour.at, hour.index, pastArea(hour.at)?.present),
         ),
         staffed: stepsOf(hours, (at) => pastArea(at)?.staffed ?? null, steps),
         chances,
@@ -169,6 +178,10 @@ export function buildBoard(tonight: Tonight, outlook: Outlook, site: Site, zone:
         bedsToAdd: pick(found.bedsToAdd),
         bedsThatDoNotExist: pick(found.bedsThatDoNotExist),
         firstPast: found.counted && firstPast >= 0 ? firstPast : null,
+        pastTonight,
+        acknowledgements: tonight.acknowledgements.filter(
+          (made) => made.areaId === area.id && made.hours.some((hour) => pastTonight.includes(hour)),
+        ),
         someTime: found.counted ? someTimeOf(found.shifts, tonight.now, zone) : null,
       },
     ];
@@ -183,12 +196,14 @@ export function buildBoard(tonight: Tonight, outlook: Outlook, site: Site, zone:
     areas,
     department: {
       columns: hours.map((hour, place) => {
-        if (!hour.past) return forecastColumn(result.pooled, hour.at, hour.index);
         const parts = areas.map((one) => one.columns[place]);
-        const present = parts.reduce<number | null>(
-          (sum, part) => (sum === null || part.kind !== 'past' || part.present === null ? null : sum + part.present),
-          0,
-        );
+        const present = parts.reduce<number | null>((sum, part) => {
+          const known = part.kind === 'past' ? part.present : (part.actual ?? null);
+          return sum === null || known === null ? null : sum + known;
+        }, 0);
+        if (!hour.past) {
+          return forecastColumn(result.pooled, hour.at, hour.index, pastAt.has(hour.at) ? present : undefined);
+        }
         return { kind: 'past', at: hour.at, present, staffed: parts.reduce((sum, part) => sum + part.staffed, 0) };
       }),
       staffed: sumSteps(areas.map((one) => one.staffed)),

@@ -38,7 +38,13 @@ export function useCensusEntryContext(): CensusEntry {
  * The census of all areas as one form. Fields that nobody edited follow the newest census; edited
  * ones stay as typed until they are saved, also when saving fails.
  */
-export function useCensusEntry(site: Site, census: Census | undefined, serverNow: () => number): CensusEntry {
+export function useCensusEntry(
+  site: Site,
+  census: Census | undefined,
+  serverNow: () => number,
+  /** False where the figures are those of an earlier time: nothing typed is put back or kept. */
+  live = true,
+): CensusEntry {
   const areaIds = useMemo(() => site.areas.map((area) => area.id), [site.areas]);
   const base = useMemo(() => censusFormOf(areaIds, census), [areaIds, census]);
 
@@ -57,7 +63,7 @@ export function useCensusEntry(site: Site, census: Census | undefined, serverNow
   // Figures typed before the session was lost come back as edited ones.
   const restored = useRef(false);
   useEffect(() => {
-    if (restored.current || !census) return;
+    if (!live || restored.current || !census) return;
     restored.current = true;
     const draft = readDraft(site.id, areaIds, Date.now());
     if (!draft) return;
@@ -68,15 +74,17 @@ export function useCensusEntry(site: Site, census: Census | undefined, serverNow
         }
       }
     });
-  }, [areaIds, base, census, form, site.id]);
+  }, [areaIds, base, census, form, live, site.id]);
 
   useEffect(
     () =>
       form.subscribe({
         formState: { values: true, isDirty: true },
-        callback: ({ values, isDirty }) => keepDraft(site.id, isDirty ? values : null, Date.now()),
+        callback: ({ values, isDirty }) => {
+          if (live) keepDraft(site.id, isDirty ? values : null, Date.now());
+        },
       }),
-    [form, site.id],
+    [form, live, site.id],
   );
 
   function send(countAgain: boolean) {

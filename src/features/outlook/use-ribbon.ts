@@ -48,7 +48,7 @@ export function useRibbon(columnWidth: number, columnsBeforeView: number, key: u
 
   function handleKeyDown(event: KeyboardEvent<HTMLElement>) {
     // Arrow keys inside a field move within the field.
-    if (event.target instanceof HTMLInputElement || event.target instanceof HTMLSelectElement) return;
+    if (event.target instanceof HTMLElement && event.target.matches('input, select, textarea')) return;
     if (event.key === 'ArrowRight') by(1);
     else if (event.key === 'ArrowLeft') by(-1);
     else if (event.key === 'Home') scroll(home);

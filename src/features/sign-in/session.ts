@@ -13,9 +13,14 @@ async function fetchSession(signal: AbortSignal): Promise<ReplyOf<typeof getSess
   return session;
 }
 
-/** Who is signed in; asked once and again when the window is looked at after a while. */
+/** Who is signed in; asked once, and again whenever the window is looked at: another tab may have signed out, or in. */
 export function useSessionQuery() {
-  return useQuery({ queryKey: sessionKey, queryFn: ({ signal }) => fetchSession(signal), staleTime: 60_000 });
+  return useQuery({
+    queryKey: sessionKey,
+    queryFn: ({ signal }) => fetchSession(signal),
+    staleTime: 60_000,
+    refetchOnWindowFocus: 'always',
+  });
 }
 
 export type SignedInSession = Session & { person: NonNullable<Session['person']> };

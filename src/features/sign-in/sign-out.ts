@@ -4,5 +4,11 @@ import { call } from '../../lib/api-client.ts';
 /** Ends the session at both ends. By fetch, since a form post that is sent on elsewhere is refused by the content policy. */
 export async function signOut(): Promise<void> {
   const { redirectTo } = await call(signOutRoute, { kept: 'You are still signed in.' });
+  // What was typed belongs to this person: at a shared workstation the next one must not find it in the fields.
+  try {
+    sessionStorage.clear();
+  } catch {
+    // Storage is refused: then nothing was kept either.
+  }
   window.location.assign(redirectTo);
 }

@@ -1,6 +1,6 @@
 import type { ReactNode } from 'react';
-import type { VisitReport } from '../../../shared/domain/visit-report.ts';
-import { rowProblems, visitColumnNames, visitColumns, type RowProblem } from '../../../shared/domain/visit-row.ts';
+import type { ProblemCount, VisitReport } from '../../../shared/domain/visit-report.ts';
+import { rowProblems, visitColumnNames, visitColumns } from '../../../shared/domain/visit-row.ts';
 import { Button } from '../../components/Button.tsx';
 import { DataTable } from '../../components/DataTable.tsx';
 import { Notice } from '../../components/Notice.tsx';
@@ -35,7 +35,7 @@ export function CheckReport({
   study: ReactNode;
   onRepeatedHour: (choice: RepeatedHour) => void;
   /** Saves the numbers of the problem rows, of one kind or all (null). */
-  onSaveRows: (kind: RowProblem | null) => void;
+  onSaveRows: (kind: ProblemCount | null) => void;
 }) {
   const asksRepeated =
     mapping.repeatedHour !== 'refuse' || report.problems.some(({ problem }) => problem === 'time repeated');
@@ -66,7 +66,7 @@ export function CheckReport({
         </fieldset>
       ) : null}
       {report.problems.length > 0 ? (
-        <section className="grid justify-items-start gap-3" aria-label="Problem rows">
+        <section className="grid gap-3" aria-label="Problem rows">
           <DataTable
             caption="Problem rows, by kind"
             rows={report.problems}
@@ -87,12 +87,12 @@ export function CheckReport({
               {
                 key: 'save',
                 header: 'All rows of the kind',
-                cell: ({ problem }) => (
+                cell: (kind) => (
                   <Button
                     look="quiet"
-                    aria-label={`Save the row numbers of “${rowProblems[problem]}” as CSV`}
+                    aria-label={`Save as CSV the rows of: ${kind.column === null ? 'Row' : visitColumnNames[kind.column]}, ${rowProblems[kind.problem]}`}
                     onClick={() => {
-                      onSaveRows(problem);
+                      onSaveRows(kind);
                     }}
                   >
                     CSV
@@ -103,6 +103,7 @@ export function CheckReport({
           />
           <Button
             look="second"
+            className="justify-self-start"
             onClick={() => {
               onSaveRows(null);
             }}

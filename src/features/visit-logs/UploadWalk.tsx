@@ -68,7 +68,7 @@ export function UploadWalk({
       <PageHead
         tab="Load a visit log"
         title={titleOf(walk)}
-        lede={<p className="max-w-[58rem]">{ledeOf(walk)}</p>}
+        lede={<p className="max-w-[58rem]">{ledeOf(walk, last !== null)}</p>}
         aside={
           <div className="grid gap-0.5">
             <div>
@@ -117,8 +117,11 @@ export function UploadWalk({
                   />
                 ) : null
               }
-              onSaveRows={(kind) => {
-                saveFile('problem-rows.csv', 'text/csv', problemRowsCsv(walk.problemRows, kind));
+              onSaveRows={(chosen) => {
+                const rows = walk.problemRows.filter(
+                  ({ problem, column }) => !chosen || (problem === chosen.problem && column === chosen.column),
+                );
+                saveFile('problem-rows.csv', 'text/csv', problemRowsCsv(rows));
               }}
               onRepeatedHour={(repeatedHour) => {
                 act.check(walk, { ...walk.mapping, repeatedHour });
@@ -174,7 +177,7 @@ function titleOf(walk: Walk): string {
   }
 }
 
-function ledeOf(walk: Walk): string {
+function ledeOf(walk: Walk, hasLast: boolean): string {
   switch (walk.step) {
     case 'choose':
       return 'Choose the file, map its columns, look at the check, then accept it. Nothing is sent before that.';
@@ -182,7 +185,9 @@ function ledeOf(walk: Walk): string {
     case 'checking':
       return 'Nothing is sent.';
     case 'map':
-      return 'The columns are guessed from their names and values. Correct what is wrong; what is not mapped is dropped.';
+      return hasLast
+        ? 'Correct what is wrong; what is not mapped is dropped.'
+        : 'The columns are guessed from their names and values. Correct what is wrong; what is not mapped is dropped.';
     case 'report':
       return walk.report.goodRows === 0
         ? 'No row can be loaded. Look at the kinds of problem below: often a column is mapped wrongly.'

@@ -8,12 +8,15 @@ import { leftOutInWords, periodInWords, stateWord } from './log-words.ts';
 /** All logs of the site, newest first. */
 export function VisitLogList({
   logs,
+  numberOf,
   timeZone,
   hrefOf,
   progressOf,
   empty,
 }: {
   logs: readonly VisitLogSummary[];
+  /** The number by which the calendar calls a log. */
+  numberOf: (logId: string) => number;
   timeZone: string;
   hrefOf: (logId: string) => string;
   /** How far a load is. */
@@ -28,6 +31,7 @@ export function VisitLogList({
       rowKey={(log) => log.id}
       empty={empty}
       columns={[
+        { key: 'number', header: 'No.', figure: true, cell: (log) => formatNumber(numberOf(log.id)) },
         {
           key: 'period',
           header: 'Arrivals',

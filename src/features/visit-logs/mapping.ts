@@ -64,7 +64,7 @@ function offerColumns(survey: FileSurvey, remembered: RememberedMapping | null):
   const found = Object.fromEntries(
     visitColumns.map((ours) => {
       const header = remembered.columns[ours]?.trim().toLowerCase();
-      const column = survey.columns.find((each) => each.header.toLowerCase() === header && fits(each, ours));
+      const column = survey.columns.find((each) => each.header.trim().toLowerCase() === header && fits(each, ours));
       return [ours, column?.index ?? null];
     }),
   ) as FileMapping['columns'];

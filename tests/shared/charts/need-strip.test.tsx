@@ -58,6 +58,19 @@ describe('NeedStrip', () => {
     expect(outline).not.toMatch(/fill="var\(--[gs]\d\)"/);
     expect(outline).toContain('stroke-dasharray="3 3"');
   });
+
+  it('lays what then happened over an earlier forecast, and names it where there is room', () => {
+    const known = columns.map((column) => (column.kind === 'forecast' ? { ...column, actual: 22 } : column));
+    expect(draw({ columns: known, tall: true })).toContain('22 were there');
+    expect(draw({ columns: known })).not.toContain('were there');
+    expect(draw({ tall: true })).not.toContain('were there');
+  });
+
+  it('says "not counted" within a run of hours that has room for it, and not in a single one', () => {
+    const two = [past(0, null), past(1, null), ...columns.slice(2)];
+    expect(draw({ columns: two }).match(/not counted/g)).toHaveLength(1);
+    expect(draw()).not.toContain('not counted');
+  });
 });
 
 describe('Ribbon', () => {

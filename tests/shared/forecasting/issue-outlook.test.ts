@@ -1,7 +1,12 @@
 import { describe, expect, it } from 'vitest';
 import { compareNeed } from '../../../shared/forecasting/compare-need.ts';
 import { previewNeed, prepareExact } from '../../../shared/forecasting/exact-outlook.ts';
-import { issueOutlook, outlookFromParts, simulateOutlookPart } from '../../../shared/forecasting/issue-outlook.ts';
+import {
+  issueOutlook,
+  outlookFromParts,
+  prepareOutlook,
+  simulateOutlookPart,
+} from '../../../shared/forecasting/issue-outlook.ts';
 import type { OutlookInput, OutlookResult } from '../../../shared/forecasting/outlook-types.ts';
 import { prepareNeed } from '../../../shared/forecasting/prepare-need.ts';
 import { simulateNeedPart } from '../../../shared/forecasting/simulate-need.ts';
@@ -34,8 +39,8 @@ describe('issueOutlook', () => {
       [600, 1000],
       [0, 599],
       [599, 600],
-    ].map(([from, to]) => simulateOutlookPart(model, input, from, to));
-    expect(outlookFromParts(model, input, parts)).toEqual(result);
+    ].map(([from, to]) => simulateOutlookPart(prepareOutlook(model, input), from, to));
+    expect(outlookFromParts(prepareOutlook(model, input), parts)).toEqual(result);
     const stored = JSON.parse(JSON.stringify({ model, input })) as { model: typeof model; input: OutlookInput };
     expect(issueOutlook(stored.model, stored.input)).toEqual(result);
     expect(issueOutlook(model, { ...input, seed: 100 })).not.toEqual(result);

@@ -127,21 +127,37 @@ describe('length of stay', () => {
     expect(z.reduce((sum, value) => sum + value * value, 0) / z.length).toBeLessThan(1.5);
   });
 
-  it('disposition shares lie between the block’s own and the area’s, and near the true ones', () => {
+  it('disposition shares lie, split by split, between the block’s own and the area’s, and near the true ones', () => {
+    // Left before treatment or not; of those who stay admitted or not; of the rest transferred or home.
+    const splits: [yes: number, of: number[]][] = [
+      [3, [0, 1, 2, 3]],
+      [1, [0, 1, 2]],
+      [2, [0, 2]],
+    ];
+    const share = (row: readonly number[], [yes, of]: [number, number[]]): number =>
+      row[yes] / of.reduce((sum, d) => sum + row[d], 0);
     stay.shares.forEach((shares, area) => {
       const counts = expected.shareCounts[area];
       const visits = counts.map((block) => block.reduce((sum, n) => sum + n, 0));
       const all = visits.reduce((sum, n) => sum + n, 0);
       const fitted = expectedShares(shares);
-      [0, 1, 2, 3].forEach((d) => {
-        const overall = counts.reduce((sum, block) => sum + block[d], 0) / all;
+      const whole = [0, 1, 2, 3].map((d) => counts.reduce((sum, block) => sum + block[d], 0));
+      for (const split of splits) {
+        const overall = share(whole, split);
         fitted.forEach((block, b) => {
-          const own = counts[b][d] / visits[b];
-          const label = `${truth.areas[area]}, block ${b}, disposition ${d}`;
+          const own = share(counts[b], split);
+          const label = `${truth.areas[area]}, block ${b}, disposition ${split[0]}`;
           // The area's shares are themselves held to the site's by four visits.
-          expect(block[d], label).toBeGreaterThan(Math.min(own, overall) - 0.002);
-          expect(block[d], label).toBeLessThan(Math.max(own, overall) + 0.002);
-          expectWithin(block[d], truth.shares[area][b][d], 0.08, label);
+          expect(share(block, split), label).toBeGreaterThan(Math.min(own, overall) - 0.002);
+          expect(share(block, split), label).toBeLessThan(Math.max(own, overall) + 0.002);
+        });
+      }
+      [0, 1, 2, 3].forEach((d) => {
+        fitted.forEach((block, b) => {
+          // Three standard errors of the block's own count.
+          const real = truth.shares[area][b][d];
+          const margin = 3 * Math.sqrt((real * (1 - real)) / visits[b]);
+          expectWithin(block[d], real, margin, `${truth.areas[area]}, block ${b}, disposition ${d}`);
         });
         // Over the whole day nothing is shrunk: within four standard errors of what the process means.
         const real = truth.shares[area].reduce((sum, block, b) => sum + (block[d] * visits[b]) / all, 0);

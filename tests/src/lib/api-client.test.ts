@@ -49,6 +49,21 @@ describe('addressOf', () => {
 });
 
 describe('call', () => {
+  it('says what was kept when a failing server says nothing', async () => {
+    fetched.mockResolvedValue(new Response('<html>bad gateway</html>', { status: 502 }));
+    const error = await failure(save());
+    expect(error.title).toBe('The server could not answer');
+    expect(error.kept).toBe('Your figures are still in the fields.');
+    expect(error.next).toContain('Try again');
+  });
+
+  it('leaves the server’s own words on what was kept', async () => {
+    fetched.mockResolvedValue(
+      json({ type: 'about:blank', title: 'Conflict', status: 409, detail: 'No.', kept: 'Nothing changed.' }, 409),
+    );
+    expect((await failure(save())).kept).toBe('Nothing changed.');
+  });
+
   it('sends what the contract says, with the anti-forgery token on writing only, and parses the reply', async () => {
     rememberCsrfToken('token-1');
     fetched.mockResolvedValue(json({ censusId: 'c1', outlookId: 'o1', reason: null }, 201));

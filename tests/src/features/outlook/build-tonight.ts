@@ -105,6 +105,8 @@ export function buildTonight(change: Partial<Tonight> = {}, areas?: Area[]): Ton
     missing: null,
     moved: null,
     cautions: [],
+    acknowledgements: [],
+    lastNight: null,
     past: [
       {
         at: at(18),

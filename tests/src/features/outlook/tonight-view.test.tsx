@@ -30,7 +30,7 @@ const queryClient = () =>
 function view(
   tonight: Tonight = buildTonight(),
   census: Census = buildCensus(),
-  rights = { enterCensus: true, changeBeds: true },
+  rights = { enterCensus: true, changeBeds: true, acknowledge: true },
 ) {
   return (
     <MemoryRouter>
@@ -43,6 +43,7 @@ function view(
         refreshError={null}
         emptyActions={null}
         howHref="/how"
+        nightLog={null}
       />
     </MemoryRouter>
   );
@@ -139,7 +140,7 @@ describe('the census on Tonight', () => {
   });
 
   it('shows figures instead of fields to those who only read', () => {
-    show(buildTonight(), buildCensus(), { enterCensus: false, changeBeds: false });
+    show(buildTonight(), buildCensus(), { enterCensus: false, changeBeds: false, acknowledge: false });
     expect(document.querySelectorAll('input')).toHaveLength(0);
     expect(screen.getByText('Acute, present:').parentElement?.textContent).toContain('22');
   });

@@ -16,7 +16,15 @@ test('of 500 generated clean files none is refused, none needs more than the ans
     const mapping = stateOrder(survey, offerMapping(survey, areas), dateOrder);
     expect(mappingFaults(survey, mapping), `seed ${String(seed)}`).toEqual([]);
     // UTC, so that no time falls into a clock change.
-    const settings = { survey, mapping, areaIds: areas.map(({ id }) => id), timeZone: 'UTC', now };
+    const settings = {
+      survey,
+      mapping,
+      shiftEnds: [],
+      covered: [],
+      areaIds: areas.map(({ id }) => id),
+      timeZone: 'UTC',
+      now,
+    };
     const { outcome } = await checkFile(file, settings, () => undefined);
     expect(outcome, `seed ${String(seed)}`).toMatchObject({ refused: null, report: { rows, goodRows: rows } });
   }
