@@ -54,7 +54,7 @@ export default defineConfig({
           name: 'client',
           environment: 'jsdom',
           include: ['tests/src/**/*.test.{ts,tsx}', 'tests/shared/**/*.test.tsx'],
-          setupFiles: ['tests/support/setup-client.ts'],
+          setupFiles: ['tests/src/setup-client.ts'],
           testTimeout: 20_000,
         },
       },

@@ -61,8 +61,8 @@ export function fitDecisionLaws(
 /** Operational time is cut at this width, in means of the whole stay, up to `cells` of it; what lies past the end counts at the end. */
 const width = 0.05;
 const cells = 240;
-const remainingStep = 1 / 8;
-const remainingEntries = 64;
+const remainingStep = 1 / 32;
+const remainingEntries = 192;
 
 /** Survival at the cuts 0, width, 2·width, … */
 function survivalAtCuts(shape: StayShape): Float64Array {

@@ -13,16 +13,14 @@ import {
 import type { ReplicationState } from './replication-state.ts';
 import { admittedStream, streamsPerArea } from './stay-model.ts';
 
-/** How arrivals of one area are drawn. */
-interface ArrivalDraw {
-  a: number;
-  rate: Float64Array;
-  /** Only arrivals within these hours count; the others are drawn and dropped. */
+/** Which arrivals count: within these hours, and the share kept, below 1 by a uniform that each carries. */
+interface Kept {
   fromHours: number;
   toHours: number;
-  /** Share kept: below 1 each arrival carries a uniform that decides. */
   keep: number;
 }
+
+const all: Kept = { fromHours: 0, toHours: Infinity, keep: 1 };
 
 /**
  * Draws the arrivals of every area, changes tried included, with their streams and stays. Every kind of extra arrival has
@@ -31,16 +29,15 @@ interface ArrivalDraw {
 export function drawArrivals(state: ReplicationState, replication: number, changedRate: Float64Array): void {
   const { plan, change, stream, rates } = state;
   const { seed, segments, segmentAt } = plan;
-  const whole = { fromHours: 0, toHours: Infinity };
   for (let a = 0; a < plan.areas.length; a += 1) {
     const demand = change.demand?.[a] ?? 1;
     stream.reseed(seed, purposes.arrivals, replication, a);
     if (demand < 1) state.thinning.reseed(seed, purposes.thinning, replication, a);
-    arrive(state, { a, rate: rates[a], keep: Math.min(1, demand), ...whole });
+    arrive(state, a, rates[a], demand < 1 ? { ...all, keep: demand } : all);
     if (demand > 1) {
       stream.reseed(seed, purposes.extra, replication, a);
       for (let k = 0; k < segments; k += 1) changedRate[k] = rates[a][k] * (demand - 1);
-      arrive(state, { a, rate: changedRate, keep: 1, ...whole });
+      arrive(state, a, changedRate, all);
     }
   }
   change.surge?.forEach(({ area, fromHours, toHours, ratePerHour }, i) => {
@@ -48,7 +45,7 @@ export function drawArrivals(state: ReplicationState, replication: number, chang
     for (let k = 0; k < segments; k += 1) {
       changedRate[k] = segmentAt[k] < toHours && segmentAt[k + 1] > fromHours ? ratePerHour : 0;
     }
-    arrive(state, { a: area, rate: changedRate, keep: 1, fromHours, toHours });
+    arrive(state, area, changedRate, { fromHours, toHours, keep: 1 });
   });
 }
 
@@ -57,7 +54,7 @@ export function drawArrivals(state: ReplicationState, replication: number, chang
  * inversion of the cumulative rate; each comes with a stream by the shares and a stay by the time change. Three words a
  * patient, drawn before the loop.
  */
-function arrive(state: ReplicationState, { a, rate, fromHours, toHours, keep }: ArrivalDraw): void {
+function arrive(state: ReplicationState, a: number, rate: Float64Array, kept: Kept): void {
   const { trace, stream, change, guide, arrived, words } = state;
   // Local names: this loop is where the time goes, and captured ones cost a look-up each.
   const { spent, shareSteps } = state.stays;
@@ -68,7 +65,7 @@ function arrive(state: ReplicationState, { a, rate, fromHours, toHours, keep }: 
   const total = cumulateRates(state, rate, state.plan.areas[a].startSegment);
   if (!(total > 0)) return;
   const scale = change.stay;
-  const changed = keep < 1 || fromHours > 0 || toHours < Infinity || change.closed !== undefined;
+  const changed = kept !== all || change.closed !== undefined;
   const row = segments + 2;
   const hoursRow = state.plan.hourTo.length + 1;
   const firstStream = a * streamsPerArea;
@@ -92,7 +89,7 @@ function arrive(state: ReplicationState, { a, rate, fromHours, toHours, keep }: 
       // Sums of comparisons: which stream it is cannot be foreseen, and a wrong guess of a branch costs more.
       const inArea = +(u >= shareSteps[steps]) + +(u >= shareSteps[steps + 1]) + +(u >= shareSteps[steps + 2]);
       const draw = stream.exponentialFrom(words[i + 2]);
-      if (changed && diverted(state, a, inArea, { k, share, draw, fromHours, toHours, keep })) continue;
+      if (changed && diverted(state, a, inArea, kept, k, share, draw)) continue;
       count += 1;
       const s = firstStream + inArea;
       // As in `stayOf`, `enterArea`, `departureOf` and `leaveArea`, written out.
@@ -149,19 +146,16 @@ function cumulateRates(state: ReplicationState, rate: Float64Array, startSegment
   return total;
 }
 
-interface Arrival {
-  k: number;
-  /** Share of the segment gone by. */
-  share: number;
-  draw: number;
-  fromHours: number;
-  toHours: number;
-  keep: number;
-}
-
 /** True for an arrival that a change keeps out of its area; one who goes to another area is placed there. */
-function diverted(state: ReplicationState, a: number, inArea: number, arrival: Arrival): boolean {
-  const { k, share, draw, fromHours, toHours, keep } = arrival;
+function diverted(
+  state: ReplicationState,
+  a: number,
+  inArea: number,
+  { fromHours, toHours, keep }: Kept,
+  k: number,
+  share: number,
+  draw: number,
+): boolean {
   const { segmentAt } = state.plan;
   const t = segmentAt[k] + share * (segmentAt[k + 1] - segmentAt[k]);
   if (keep < 1 && state.thinning.uniform() >= keep) return true;

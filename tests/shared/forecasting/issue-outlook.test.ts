@@ -199,7 +199,11 @@ describe('issueOutlook', () => {
 
 describe('length of stay used', () => {
   it('is exponential where stays are, and their own shape where it moves the 90th percentile', () => {
-    expect(result.lengthOfStay).toBe('exponential');
+    const { arrival, stay, calendar } = buildOutlookModel();
+    const undated = { arrival, calendar, stay: { ...stay, decisions: stay.decisions.map(() => null) } };
+    expect(issueOutlook(undated, buildOutlookInput({ replications: 10 })).lengthOfStay).toBe('exponential');
+    // With decision times, those not yet decided still have all of their boarding ahead: that is not exponential.
+    expect(result.lengthOfStay).toBe('empirical');
     expect(issueOutlook(buildOutlookModel(4), buildOutlookInput({ replications: 50 })).lengthOfStay).toBe('empirical');
   });
 });

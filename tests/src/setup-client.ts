@@ -11,13 +11,5 @@ class NoResizeObserver implements ResizeObserver {
   disconnect(): void {}
 }
 globalThis.ResizeObserver ??= NoResizeObserver;
-globalThis.matchMedia ??= (query: string) => ({
-  matches: false,
-  media: query,
-  onchange: null,
-  addEventListener: () => undefined,
-  removeEventListener: () => undefined,
-  addListener: () => undefined,
-  removeListener: () => undefined,
-  dispatchEvent: () => false,
-});
+globalThis.matchMedia ??= (query: string) =>
+  Object.assign(new EventTarget(), { matches: false, media: query, onchange: null }) as MediaQueryList;
