@@ -33,7 +33,7 @@ const weeksPerChoice = 13;
 const weeksPerStayFit = 4;
 
 /**
- * Rolling-origin evaluation of need: an outlook a day (or several, spread evenly) at changing hours, each from the census that the log shows at
+ * Rolling-origin evaluation of need: an outlook a day at changing hours, each from the census that the log shows at
  * that moment and models that know only what came before (arrival model chosen every 13 weeks, its level refreshed daily;
  * stays fitted every 4 weeks), scored at 1 to 72 h ahead against the log's own count.
  * Origins in the first `capHours` of the log or with too little left of it are not scored.
@@ -48,14 +48,13 @@ export function evaluateNeed(input: {
   facts: ExtractFacts;
   calendar: readonly CalendarDay[];
   weeks: number;
-  outlooksPerDay?: number;
   replications?: number;
   seed?: number;
   capHours?: number;
   onProgress?: (share: number) => void;
 }): NeedEvaluation {
   const { visits, areas, zone, fromUtc, toUtc, facts, calendar, weeks, onProgress } = input;
-  const { replications = 500, seed = 1, capHours = 72, outlooksPerDay = 1 } = input;
+  const { replications = 500, seed = 1, capHours = 72 } = input;
   const counts = countHourly(visits, areas, zone, fromUtc, toUtc);
   const length = Math.floor(counts.exposureHours.length / 24) * 24;
   const firstOrigin = length - weeks * 168;
@@ -68,7 +67,6 @@ export function evaluateNeed(input: {
   const outcomes: boolean[] = [];
   let outlooks = 0;
   let arrival: ArrivalModel | undefined;
-  let today: ArrivalModel | undefined;
   let stay: StayModel | undefined;
   let beds: number[] = [];
   for (let week = 0; week < weeks; week += 1) {
@@ -88,16 +86,13 @@ export function evaluateNeed(input: {
       });
       beds = highPointOfNeed((at) => present.presentAt(at), fromUtc + capHours * 3600, originUtc, areas);
     }
-    for (let k = 0; k < daysPerWeek * outlooksPerDay; k += 1) {
-      const day = Math.floor(k / outlooksPerDay);
+    for (let day = 0; day < daysPerWeek; day += 1) {
       const midnight = origin + 24 * day;
       const midnightUtc = utcOf(zone, counts, midnight);
       // A step of seven hours from day to day visits every part of the day.
-      const hour = (7 * (day + week) + Math.floor((24 * (k % outlooksPerDay)) / outlooksPerDay)) % 24;
-      const issuedAt = midnightUtc + hour * 3600;
+      const issuedAt = midnightUtc + ((7 * (day + week)) % 24) * 3600;
       if (issuedAt + 73 * 3600 > toUtc || !arrival || !stay) continue;
-      if (k % outlooksPerDay === 0) today = refreshLevel(arrival, firstHours(counts, midnight));
-      const model = { arrival: today ?? arrival, stay, calendar };
+      const model = { arrival: refreshLevel(arrival, firstHours(counts, midnight)), stay, calendar };
       const outlook = outlookInput(
         issuedAt,
         midnightUtc,

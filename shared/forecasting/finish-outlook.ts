@@ -86,11 +86,11 @@ function areaOutlook(plan: NeedPlan, part: NeedPart, a: number, input: OutlookIn
   // An area of few bed spaces speaks of any time within the hour, as it is printed.
   const small = area.spaces <= smallAreaSpaces;
   const printed = small ? common.shortfallWithin : common.shortfall;
-  const chanceWith = (h: number, added: number): number =>
+  const chanceWith = (h: number, added: number): Chance =>
     small
-      ? chanceAbove(slice(part.within, a * hours + h, highestExcess + 1), added).chance
-      : chanceAbove(slice(part.need, a * hours + h, size), staffed[h] + added).chance;
-  const bedsToAdd = input.hours.map((_, h) => addedBeds((added) => chanceWith(h, added), area, size));
+      ? chanceAbove(slice(part.within, a * hours + h, highestExcess + 1), added)
+      : chanceAbove(slice(part.need, a * hours + h, size), staffed[h] + added);
+  const bedsToAdd = input.hours.map((_, h) => addedBeds((added) => chanceWith(h, added).chance, area, size));
   const bedsThatDoNotExist = bedsToAdd.map((added, h) =>
     added === 0 ? 0 : Math.min(added, Math.max(0, staffed[h] + added - area.spaces)),
   );
@@ -98,7 +98,7 @@ function areaOutlook(plan: NeedPlan, part: NeedPart, a: number, input: OutlookIn
   const peak = slice(part.peak, a, size);
   const replications = part.toReplication - part.fromReplication;
   const short = part.bedHoursShort.slice(a * replications, (a + 1) * replications).sort();
-  const span = first < 0 ? null : shiftSpan(input, first);
+  const span = first < 0 ? null : shiftSpan(input, first, small);
   return {
     areaId: area.areaId,
     counted: area.census !== null,
@@ -107,9 +107,7 @@ function areaOutlook(plan: NeedPlan, part: NeedPart, a: number, input: OutlookIn
     firstHourPastLimit: first < 0 ? null : first,
     bedsToAdd,
     bedsThatDoNotExist,
-    shortfallWithEverySpace: input.hours.map((_, h) =>
-      chanceAbove(slice(part.need, a * hours + h, size), Math.max(staffed[h], area.spaces)),
-    ),
+    shortfallWithEverySpace: input.hours.map((_, h) => chanceWith(h, Math.max(0, area.spaces - staffed[h]))),
     smallestChange: span === null ? null : smallestChange(input, span, bedsToAdd, bedsThatDoNotExist),
     boardingOut: span === null ? null : boardingOut(part, a, input, span),
     admittedLeaving: flows(part.admittedLeaving, a, part),
@@ -122,8 +120,15 @@ function areaOutlook(plan: NeedPlan, part: NeedPart, a: number, input: OutlookIn
   };
 }
 
+interface Span {
+  first: number;
+  last: number;
+  /** By when a remedy must stand: the first full hour, or the start of the hour that ends with it where any time within counts. */
+  from: number;
+}
+
 /** The hours from the first past the limit to the end of the last shift that holds it. */
-function shiftSpan(input: OutlookInput, first: number): { first: number; last: number } {
+function shiftSpan(input: OutlookInput, first: number, small: boolean): Span {
   const at = input.hours[first];
   const end = input.shifts.reduce(
     (latest, shift) => (shift.from <= at && at < shift.to ? Math.max(latest, shift.to) : latest),
@@ -131,12 +136,13 @@ function shiftSpan(input: OutlookInput, first: number): { first: number; last: n
   );
   let last = first;
   while (last + 1 < input.hours.length && input.hours[last + 1] < end) last += 1;
-  return { first, last };
+  const hourBefore = first > 0 ? input.hours[first - 1] : input.issuedAt;
+  return { first, last, from: small ? hourBefore : at };
 }
 
 function smallestChange(
   input: OutlookInput,
-  { first, last }: { first: number; last: number },
+  { first, last, from }: Span,
   bedsToAdd: readonly number[],
   missing: readonly number[],
 ): AreaOutlook['smallestChange'] {
@@ -145,7 +151,7 @@ function smallestChange(
   if (past.length === 0) return null;
   return {
     beds: Math.max(...past.map((h) => bedsToAdd[h])),
-    from: input.hours[first],
+    from,
     to: input.hours[past[past.length - 1]],
     doNotExist: Math.max(...past.map((h) => missing[h])),
   };
@@ -155,7 +161,7 @@ function boardingOut(
   part: NeedPart,
   a: number,
   input: OutlookInput,
-  { first, last }: { first: number; last: number },
+  { first, last, from }: Span,
 ): AreaOutlook['boardingOut'] {
   const boarders = input.areas[a].census?.boarding ?? 0;
   const { hours, boarderSize } = part;
@@ -167,7 +173,7 @@ function boardingOut(
       const short = needed.reduce((sum, count, k) => (k > patients ? sum + count : sum), 0);
       enough = short <= input.areas[a].alertLimit * input.replications;
     }
-    if (enough) return { patients, by: input.hours[first] };
+    if (enough) return { patients, by: from };
   }
   return null;
 }

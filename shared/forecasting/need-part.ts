@@ -34,7 +34,7 @@ export interface NeedPart {
   flowSize: number;
   admittedLeaving: Int32Array;
   arrivalsToAdmit: Int32Array;
-  /** [(area · hours + hour) · boarderSize + k]: of the replications short at the full hour, fewest of the counted boarders who, gone, end it; last: not even all of them. */
+  /** [(area · hours + hour) · boarderSize + k]: of the replications short at the full hour (within the hour where the area prints that), fewest of the counted boarders who, gone, end it; last: not even all of them. */
   boarderSize: number;
   boardersNeeded: Int32Array;
   /** 1 where a replication was short in a shift, [(area · shifts + shift) · replications + replication − from]; the pooled row is "some area". */

@@ -9,6 +9,8 @@ export const binSeconds = 300;
 export interface StartGroup {
   patients: number;
   steps: Float64Array;
+  /** The same for each of the area's `startFactors`, where who is there depends on the admitted patients' outflow so far. */
+  stepsByFactor?: Float64Array[];
   /** True for patients counted as boarding: a remedy may move them out. */
   boarding: boolean;
 }
@@ -34,6 +36,8 @@ export interface AreaPlan {
   /** Patients up to whom a histogram can tell; more count as this many. */
   highest: number;
   boarders: number;
+  /** True where the chance of any shortfall within the hour is what is printed: remedies must end that. */
+  wholeHour: boolean;
 }
 
 /** Waiting patients whose area is not decided: each goes to an area and stream with the chances of `steps` (cumulative over area · streams + stream). */

@@ -10,11 +10,12 @@ import type { AreaPlan, NeedPlan } from './need-plan.ts';
 import { areaFlows } from './need-flows.ts';
 import type { AreaFlows } from './need-flows.ts';
 import type { BedStep, OutlookInput } from './outlook-types.ts';
+import { smallAreaSpaces } from './printed-shortfall.ts';
 import { expectedRates, makeRateDraw } from './rate-draws.ts';
 import { makeRateGrid } from './rate-grid.ts';
 import { blockOf, holidayNumbers } from './stay-clock.ts';
 import { expectedStays, makeSpentDraw, staySegments } from './stay-draw.ts';
-import { streamsPerArea } from './stay-model.ts';
+import { admittedStream, streamsPerArea } from './stay-model.ts';
 import type { StayModel, StayShape } from './stay-model.ts';
 import { arrivalMix, meansByFactor, startFactors, startGroups } from './start-groups.ts';
 import { chooseStayLaw } from './stay-choice.ts';
@@ -146,10 +147,12 @@ export function prepareNeed(model: OutlookModel, input: OutlookInput): PreparedN
   const night = Math.min(endAt, endOfTonight(input.shifts, issuedAt, zone));
   const lengthOfStay = chooseStayLaw(stay, input, flows, plain, shaped, shapesOf, (night - startAt) / 3600);
   const empirical = lengthOfStay === 'empirical';
+  const lawOf = (a: number): StayShape | null =>
+    empirical ? (stay.decisions[a]?.before ?? shapesOf(a)[admittedStream]) : null;
 
   const areas = input.areas.map((area, a): AreaPlan => {
     const present = empirical ? shaped[a] : plain[a];
-    const groups = area.census === null ? [] : startGroups(stay, a, area.census, present);
+    const groups = area.census === null ? [] : startGroups(stay, a, area.census, present, flows[a].past, lawOf(a));
     const expectedFirstRate = rates[a][flows[a].startSegment];
     return {
       startHours: (starts[a] - startAt) / 3600,
@@ -163,6 +166,7 @@ export function prepareNeed(model: OutlookModel, input: OutlookInput): PreparedN
       beds: Int32Array.from({ length: bins }, (_, b) => bedsAt(area.staffedBeds, startAt + (b + 1) * binSeconds)),
       highest: highestNeed(flows[a], present, area.census?.present ?? 0, input.undecided?.waiting ?? 0),
       boarders: area.census?.boarding ?? 0,
+      wholeHour: area.spaces <= smallAreaSpaces,
     };
   });
   checkWork(areas, input, flows);

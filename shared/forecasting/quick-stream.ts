@@ -27,15 +27,14 @@ const height = new Float64Array(layers + 1);
   height[layers] = 1;
 })();
 
-/** The 64-bit hash that a path is absorbed into, low and high word. */
-let low = 0;
-let high = 0;
+/** The 64-bit hash that a path is absorbed into, low and high word; longer than that because arrays so short are no constants to the compiler. */
+const hash = new Int32Array(32);
 
 /** h += 0x9e3779b97f4a7c15. */
 function advance(): void {
-  const sum = (low >>> 0) + 0x7f4a7c15;
-  low = sum | 0;
-  high = (high + 0x9e3779b9 + (sum > 0xffffffff ? 1 : 0)) | 0;
+  const sum = (hash[0] >>> 0) + 0x7f4a7c15;
+  hash[0] = sum;
+  hash[1] += 0x9e3779b9 + (sum > 0xffffffff ? 1 : 0);
 }
 
 /** Upper 32 bits of the product of two words: schoolbook on halves of 16 bits. */
@@ -52,6 +51,8 @@ function upperProduct(a: number, b: number): number {
 
 /** SplitMix64's output function on the hash. */
 function mix(): void {
+  const low = hash[0];
+  const high = hash[1];
   let l = low ^ ((low >>> 30) | (high << 2));
   let h = high ^ (high >>> 30);
   h = (upperProduct(l, 0x1ce4e5b9) + Math.imul(h, 0x1ce4e5b9) + Math.imul(l, 0xbf58476d)) | 0;
@@ -60,17 +61,20 @@ function mix(): void {
   h ^= h >>> 27;
   h = (upperProduct(l, 0x133111eb) + Math.imul(h, 0x133111eb) + Math.imul(l, 0x94d049bb)) | 0;
   l = Math.imul(l, 0x133111eb);
-  low = l ^ ((l >>> 31) | (h << 1));
-  high = h ^ (h >>> 31);
+  hash[0] = l ^ ((l >>> 31) | (h << 1));
+  hash[1] = h ^ (h >>> 31);
 }
 
 /** Absorbs a whole number of at most 53 bits. */
 function absorb(word: number): void {
   advance();
   mix();
-  low ^= word | 0;
-  high ^= Math.floor(word / 4294967296) | 0;
+  hash[0] ^= word | 0;
+  hash[1] ^= Math.floor(word / 4294967296) | 0;
 }
+
+/** The layers' tables, for loops that keep a copy of their own. */
+export const exponentialLayers: { width: Float64Array; inside: Float64Array } = { width, inside };
 
 /**
  * The stream of the patients' loop: the words of `makeStream` of the same seed and path, made 32 at a time with the state
@@ -79,30 +83,31 @@ function absorb(word: number): void {
 export class QuickStream implements RandomStream {
   private readonly block = new Uint32Array(words);
   private next = words;
-  private a = 0;
-  private b = 0;
-  private c = 0;
-  private d = 1;
+  /** State of the generator, open to loops that draw many words at once; whoever moves it on calls `skipBlock`. */
+  a = 0;
+  b = 0;
+  c = 0;
+  d = 1;
 
   /** Sets seed and path: as makeStream, for safe whole numbers, which the caller has checked. */
   reseed(seed: number, purpose: number, replication: number, place: number): void {
-    low = seed | 0;
-    high = Math.floor(seed / 4294967296) | 0;
+    hash[0] = seed | 0;
+    hash[1] = Math.floor(seed / 4294967296) | 0;
     absorb(purpose);
     absorb(replication);
     absorb(place);
     advance();
-    const keptLow = low;
-    const keptHigh = high;
+    const keptLow = hash[0];
+    const keptHigh = hash[1];
     mix();
-    this.a = low;
-    this.b = high;
-    low = keptLow;
-    high = keptHigh;
+    this.a = hash[0];
+    this.b = hash[1];
+    hash[0] = keptLow;
+    hash[1] = keptHigh;
     advance();
     mix();
-    this.c = low;
-    this.d = high;
+    this.c = hash[0];
+    this.d = hash[1];
     // The state of all zeros would stay there.
     if ((this.a | this.b | this.c | this.d) === 0) this.a = 1;
     this.next = words;
@@ -134,6 +139,11 @@ export class QuickStream implements RandomStream {
     this.b = b;
     this.c = c;
     this.d = d;
+    this.next = words;
+  }
+
+  /** Drops what is left of the block: words of the state as it now is come next. */
+  skipBlock(): void {
     this.next = words;
   }
 
@@ -177,4 +187,10 @@ export class QuickStream implements RandomStream {
       step = word >>> 8;
     }
   }
+}
+
+/** Words of any stream into a buffer; of a quick one all at once. */
+export function takeWords(stream: RandomStream, out: Uint32Array, count: number): void {
+  if (stream instanceof QuickStream) stream.make(out, count);
+  else for (let i = 0; i < count; i += 1) out[i] = stream.uint32();
 }

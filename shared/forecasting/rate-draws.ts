@@ -5,7 +5,8 @@ import { profileHour } from './calendar-effect.ts';
 import { choleskyFactor } from './cholesky.ts';
 import { forecastCalendar } from './log-level-belief.ts';
 import { profileError, type ProfileError } from './profile-error.ts';
-import { drawQuickNormal } from './quick-normal.ts';
+import { drawQuickNormal, fillQuickNormals } from './quick-normal.ts';
+import { takeWords } from './quick-stream.ts';
 import { distinctHoursOfWeek } from './rate-grid.ts';
 import { forecastBelief, type ForecastBelief } from './site-belief.ts';
 import type { CalendarDay } from './visit-table.ts';
@@ -105,16 +106,12 @@ export function makeRateDraw(
   const site = new Float64Array(pieces);
   const own = new Float64Array(pieces);
   const hourLog = new Float64Array(distinct.hours.length);
+  const hourWords = new Uint32Array(hourLog.length);
   const hourPlace = distinct.place;
-
-  function fillNormals(stream: RandomStream, count: number): void {
-    const to = z;
-    for (let i = 0; i < count; i += 1) to[i] = drawQuickNormal(stream);
-  }
 
   /** What all areas share, by piece. */
   function drawSite(stream: RandomStream): void {
-    fillNormals(stream, siteSize);
+    fillQuickNormals(stream, z, siteSize);
     const scale = sdError > 0 ? Math.exp(sdError * drawQuickNormal(stream)) - 1 : 0;
     for (let k = 0; k < pieces; k += 1) {
       let x = siteMean[k] + gammaShift;
@@ -148,7 +145,7 @@ export function makeRateDraw(
       for (let k = 0; k < count; k += 1) to[k] = shared[k] + mean[k];
       return;
     }
-    fillNormals(stream, count);
+    fillQuickNormals(stream, z, count);
     for (let k = 0; k < count; k += 1) {
       let x = shared[k] + mean[k];
       for (let j = 0; j <= k; j += 1) x += factor[k * count + j] * normals[j];
@@ -159,14 +156,16 @@ export function makeRateDraw(
   /** Log rates by distinct hour with the weekly profile's error. */
   function drawProfile(stream: RandomStream, logRate: Float64Array, error: ProfileError, columns: Float64Array): void {
     const { rank, ownSd } = error;
-    fillNormals(stream, rank);
+    fillQuickNormals(stream, z, rank);
     const normals = z;
     const to = hourLog;
     const count = hourLog.length;
+    const words = hourWords;
+    takeWords(stream, words, count);
     for (let h = 0; h < count; h += 1) {
       // Two uniforms of 16 bits make a triangular error of mean 0 and variance 1 at less than a normal's cost; there is one
       // an hour and area, each a few per cent, and every count or sum of them is bell-shaped all the same.
-      const bits = stream.uint32();
+      const bits = words[h];
       to[h] = logRate[h] + ownSd[h] * (((bits >>> 16) + (bits & 0xffff) - 65_535) * triangularScale);
     }
     // By columns, three at a time: sums along a row would each wait for the last.

@@ -3,6 +3,7 @@ import type { NeedPart } from './need-part.ts';
 import { cutPieces } from './need-pieces.ts';
 import { binSeconds } from './need-plan.ts';
 import type { NeedChange, NeedPlan } from './need-plan.ts';
+import { pieces as pieceRoom, scanNeed } from './patient-loops.ts';
 
 /** One replication: what came and went. */
 export interface ReplicationTrace {
@@ -19,7 +20,8 @@ export interface ReplicationTrace {
 const hoursPerBin = binSeconds / 3600;
 
 /**
- * Makes the function that adds one replication to a part; `row` is its place within the part. Buffers are its own.
+ * Makes the function that adds one replication to a part; `row` is its place within the part. The trace is that of the
+ * plan's state: its moves lie in the memory of the patients' loops, and so does what this works with.
  * Cost of a call: one pass over the bins of every area, about 2 ns a bin.
  */
 export function makeNeedRecorder(
@@ -32,128 +34,128 @@ export function makeNeedRecorder(
   const binBeds = plan.areas.map((area, a) => change?.beds?.[a] ?? area.beds);
   const pieces = cutPieces(plan, binBeds);
   const { cuts, count, hourTo, shiftFrom, shiftTo, nightTo } = pieces;
+  const { bins } = plan;
+  const mostNeed = pieceRoom.most;
+  const lastNeed = pieceRoom.last;
   const beds = binBeds.map((own) => Int32Array.from({ length: count }, (_, p) => own[cuts[p]]));
-  const hourBeds = binBeds.map((own) => Int32Array.from(plan.hourTo, (bin) => own[bin - 1]));
   const pooledBeds = Int32Array.from({ length: count }, (_, p) => beds.reduce((sum, own) => sum + own[p], 0));
-  const mostNeed = new Int32Array(count);
+  const hourExcess = new Int32Array(hours);
+  const hourOfPiece = new Uint16Array(count);
+  for (let h = hours - 1; h >= 0; h -= 1) hourOfPiece.fill(h, 0, hourTo[h]);
   const someShort = new Uint8Array(count);
   const hourShort = new Uint8Array(hours);
   const width = highestExcess + 1;
 
+  /** Highest excess over beds within every hour, from that of its pieces; true where some piece is short. */
+  function scanExcess(bedsThere: Int32Array): boolean {
+    const most = mostNeed;
+    const excess = hourExcess;
+    const hourAt = hourOfPiece;
+    let some = 0;
+    excess.fill(0);
+    for (let p = 0; p < count; p += 1) {
+      const over = (most[p] - bedsThere[p]) | 0;
+      if (over > excess[hourAt[p]]) {
+        excess[hourAt[p]] = over;
+        some = 1;
+      }
+    }
+    return some === 1;
+  }
+
   /** One area: need by hour, flows and the night's peak; highest need of every piece for the shifts. @returns bins short. */
   function addArea(a: number, trace: ReplicationTrace): number {
-    // Local names: captured ones are looked up again at every store.
-    const { moves, admittedOut, admittedIn } = trace;
-    const { need, within, admittedLeaving, arrivalsToAdmit } = part;
-    const ends = cuts;
+    scanNeed(a, bins, count);
+    const some = scanExcess(beds[a]);
+    addHours(a, trace);
     const most = mostNeed;
-    const ownBeds = beds[a];
+    let peak = 0;
+    for (let p = 0; p < nightTo; p += 1) if (most[p] > peak) peak = most[p];
+    part.peak[a * size + (peak < size ? peak : size - 1)] += 1;
+    return some ? addShort(a, trace) : 0;
+  }
+
+  function addHours(a: number, { admittedOut, admittedIn }: ReplicationTrace): void {
+    const { need, within, admittedLeaving, arrivalsToAdmit } = part;
+    const excess = hourExcess;
+    const atEnd = lastNeed;
     const pieceTo = hourTo;
-    const atHour = hourBeds[a];
-    const first = a * (plan.bins + 1);
-    const firstHour = a * (hours + 1) + 1;
-    const hourCount = hours;
     const needSize = size;
     const flowRoom = flowSize;
-    let n = 0;
-    let b = 0;
-    for (; b < ends[0]; b += 1) n = (n + moves[first + b]) | 0;
-    let short = 0;
-    let peak = 0;
-    let p = 0;
-    for (let h = 0; h < hourCount; h += 1) {
-      let excess = 0;
-      const last = pieceTo[h];
-      for (; p < last; p += 1) {
-        const end = ends[p + 1];
-        const from = b;
-        const before = n;
-        let highest = 0;
-        // Four bins a turn: the loop itself would cost as much as what it does.
-        for (; b + 3 < end; b += 4) {
-          const one = (n + moves[first + b]) | 0;
-          const two = (one + moves[first + b + 1]) | 0;
-          const three = (two + moves[first + b + 2]) | 0;
-          n = (three + moves[first + b + 3]) | 0;
-          if (one > highest) highest = one;
-          if (two > highest) highest = two;
-          if (three > highest) highest = three;
-          if (n > highest) highest = n;
-        }
-        for (; b < end; b += 1) {
-          n = (n + moves[first + b]) | 0;
-          if (n > highest) highest = n;
-        }
-        most[p] = highest;
-        if (p < nightTo && highest > peak) peak = highest;
-        const over = (highest - ownBeds[p]) | 0;
-        if (over > 0) {
-          if (over > excess) excess = over;
-          someShort[p] = 1;
-          short += binsShort(moves, first + from, first + end, before, ownBeds[p]);
-        }
-      }
-      const place = a * hourCount + h;
-      need[place * needSize + (n < needSize ? n : needSize - 1)] += 1;
-      within[place * width + (excess < highestExcess ? excess : highestExcess)] += 1;
+    const hourCount = hours;
+    const firstHour = a * (hourCount + 1) + 1;
+    for (let h = 0, place = a * hourCount; h < hourCount; h += 1, place += 1) {
+      const n = atEnd[pieceTo[h] - 1];
+      const over = excess[h];
       const out = admittedOut[firstHour + h];
       const come = admittedIn[firstHour + h];
+      need[place * needSize + (n < needSize ? n : needSize - 1)] += 1;
+      within[place * width + (over < highestExcess ? over : highestExcess)] += 1;
       admittedLeaving[place * flowRoom + (out < flowRoom ? out : flowRoom - 1)] += 1;
       arrivalsToAdmit[place * flowRoom + (come < flowRoom ? come : flowRoom - 1)] += 1;
-      if (n > atHour[h]) addBoarders(place, h, n - atHour[h], trace.boarderBin[a]);
     }
-    part.peak[a * size + (peak < size ? peak : size - 1)] += 1;
+  }
+
+  /** Of an area that is short somewhere: where, by how much, and what boarders could do about it. @returns bins short. */
+  function addShort(a: number, { moves, boarderBin }: ReplicationTrace): number {
+    const first = a * (plan.bins + 1);
+    let short = 0;
+    for (let p = 0; p < count; p += 1) {
+      if (mostNeed[p] <= beds[a][p]) continue;
+      someShort[p] = 1;
+      short += binsShort(moves, first + cuts[p], first + cuts[p + 1], lastNeed[p], beds[a][p]);
+    }
+    const { wholeHour } = plan.areas[a];
+    for (let h = 0; h < hours; h += 1) {
+      const last = plan.hourTo[h] - 1;
+      let n = lastNeed[hourTo[h] - 1];
+      let needed = 0;
+      for (let b = last; b >= (wholeHour ? plan.hourFrom[h] : last); b -= 1) {
+        if (n > binBeds[a][b]) needed = Math.max(needed, boardersFor(n - binBeds[a][b], b, boarderBin[a]));
+        n -= moves[first + b];
+      }
+      if (needed > 0) part.boardersNeeded[(a * hours + h) * boarderSize + needed] += 1;
+      if (lastNeed[hourTo[h] - 1] > binBeds[a][last]) hourShort[h] = 1;
+    }
     return short;
   }
 
-  /** Sum over bins of what need exceeds beds by: only where it does at all. */
-  function binsShort(moves: Int32Array, from: number, to: number, before: number, bedsThere: number): number {
-    let n = before;
+  /** Sum over bins of what need exceeds beds by, backwards from the need at the end. */
+  function binsShort(moves: Int32Array, from: number, to: number, atEnd: number, bedsThere: number): number {
+    let n = atEnd;
     let short = 0;
-    for (let b = from; b < to; b += 1) {
-      n += moves[b];
+    for (let b = to - 1; b >= from; b -= 1) {
       if (n > bedsThere) short += n - bedsThere;
+      n -= moves[b];
     }
     return short;
   }
 
   /** The department as a whole: need at the full hour and highest excess within the hour. */
-  function addPooledHours({ moves }: ReplicationTrace): void {
+  function addPooled(): void {
     const { pooledNeed, pooledWithin } = part;
-    const ends = cuts;
+    scanNeed(areas, bins, count);
+    scanExcess(pooledBeds);
+    const excess = hourExcess;
+    const atEnd = lastNeed;
     const pieceTo = hourTo;
-    const bedsThere = pooledBeds;
-    const first = areas * (plan.bins + 1);
-    let n = 0;
-    let b = 0;
-    for (; b < ends[0]; b += 1) n = (n + moves[first + b]) | 0;
-    let p = 0;
     for (let h = 0; h < hours; h += 1) {
-      let excess = 0;
-      for (; p < pieceTo[h]; p += 1) {
-        let highest = 0;
-        for (const end = ends[p + 1]; b < end; b += 1) {
-          n = (n + moves[first + b]) | 0;
-          if (n > highest) highest = n;
-        }
-        if (highest - bedsThere[p] > excess) excess = highest - bedsThere[p];
-      }
+      const n = atEnd[pieceTo[h] - 1];
+      const over = excess[h];
       pooledNeed[h * pooledSize + (n < pooledSize ? n : pooledSize - 1)] += 1;
-      pooledWithin[h * width + (excess < highestExcess ? excess : highestExcess)] += 1;
+      pooledWithin[h * width + (over < highestExcess ? over : highestExcess)] += 1;
     }
   }
 
-  /** Fewest of the counted boarders, in their order, whose going would end a shortfall at the full hour. */
-  function addBoarders(place: number, h: number, excess: number, boarders: Int32Array): void {
-    hourShort[h] = 1;
-    const bin = plan.hourTo[h] - 1;
+  /** Fewest of the counted boarders, in their order, whose going would end an excess in a bin; the last entry when not even all of them. */
+  function boardersFor(excess: number, bin: number, boarders: Int32Array): number {
     let needed = 0;
     let gained = 0;
     while (needed < boarders.length && gained < excess) {
       if (boarders[needed] > bin) gained += 1;
       needed += 1;
     }
-    part.boardersNeeded[place * boarderSize + (gained < excess ? boarderSize - 1 : needed)] += 1;
+    return gained < excess ? boarderSize - 1 : needed;
   }
 
   function addShifts(a: number, row: number): void {
@@ -172,6 +174,7 @@ export function makeNeedRecorder(
     }
   }
 
+  pieceRoom.end.set(cuts);
   return (trace, row) => {
     someShort.fill(0);
     hourShort.fill(0);
@@ -183,7 +186,7 @@ export function makeNeedRecorder(
       addShifts(a, row);
     }
     part.bedHoursShort[areas * rows + row] = allShort * hoursPerBin;
-    addPooledHours(trace);
+    addPooled();
     for (let h = 0; h < hours; h += 1) part.someShort[h] += hourShort[h];
     for (let s = 0; s < shifts; s += 1) {
       let short = 0;

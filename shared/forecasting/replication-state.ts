@@ -1,8 +1,8 @@
 import { binSeconds } from './need-plan.ts';
 import type { NeedChange, NeedPlan } from './need-plan.ts';
+import { takeLoopRoom } from './patient-loops.ts';
 import { QuickStream } from './quick-stream.ts';
 import type { ReplicationTrace } from './record-need.ts';
-import { makeSpentBuffers } from './stay-draw.ts';
 import type { SpentDraw } from './stay-draw.ts';
 import { admittedStream, boardingStream } from './stay-model.ts';
 import type { StayShape } from './stay-model.ts';
@@ -29,26 +29,26 @@ export interface ReplicationState {
   /** Drawn rates, [area][segment]. */
   rates: Float64Array[];
   stays: SpentDraw;
-  /** Laws of newcomers' stays, and of what remains for those present. */
-  newcomers: StayTables;
-  present: StayTables;
+  /** Laws of newcomers' stays by stream, then of what remains for those present. */
+  laws: StayTables;
   /** Start of every segment and the end of the last, and lengths (0 after the last), in bins. */
   segmentBin: Float64Array;
   segmentBins: Float64Array;
   trace: ReplicationTrace;
+  /** What the patients' loops must know of the plan. */
+  sizes: { areas: number; segments: number; bins: number; hours: number };
   /** The stream of what is being drawn, and that of the uniforms for thinning. */
   stream: QuickStream;
   thinning: QuickStream;
-  /** Expected arrivals of an area up to each segment, and the segment that a share of them begins in. */
-  arrived: Float64Array;
-  guide: Uint16Array;
-  words: Uint32Array;
+  /** The batch last drawn: of arrivals segment, share of it gone by, stream within the area and stay; of those present the end. */
+  batch: {
+    segment: Int32Array;
+    share: Float64Array;
+    inArea: Int32Array;
+    stay: Float64Array;
+    until: Float64Array;
+  };
 }
-
-/** Shares of an area's expected arrivals whose segment is looked up. */
-export const guideShares = 64;
-/** Patients whose words are drawn at once. */
-export const patientsAtOnce = 256;
 
 function stayTables(shapes: readonly (StayShape | null)[]): StayTables {
   const from = new Int32Array(shapes.length);
@@ -68,31 +68,51 @@ function stayTables(shapes: readonly (StayShape | null)[]): StayTables {
   };
 }
 
-/** Empty buffers for a plan. */
+/**
+ * Buffers for a plan, emptied. They lie in the one memory of the patients' loops: a state holds until the next is made.
+ */
 export function makeReplicationState(plan: NeedPlan, change: NeedChange): ReplicationState {
   const { segments, areas, bins, segmentAt } = plan;
-  const flows = areas.length * (plan.hourTo.length + 1);
+  const laws = stayTables([...areas.flatMap((area) => area.shapes), ...areas.flatMap((area) => area.remaining)]);
+  const room = takeLoopRoom({
+    areas: areas.length,
+    segments,
+    bins,
+    hours: plan.hourTo.length,
+    shareBlocks: plan.shareBlocks,
+    lawEntries: laws.stays.length,
+  });
+  const row = segments + 2;
+  // A stay that outlasts the horizon stops here: no test for it in the patients' loop.
+  for (let end = row - 1; end < room.spent.length; end += row) room.spent[end] = Infinity;
+  room.segmentBin.set(segmentAt.map((at, k) => (k === segments ? bins : at * binsPerHour)));
+  room.segmentBins.set(segmentAt.map((at, k) => (k === segments ? 0 : (segmentAt[k + 1] - at) * binsPerHour)));
+  room.shareBlock.set(plan.shareBlock);
+  room.hourOfBin.set(plan.hourOfBin);
+  room.stayFactor.fill(1);
+  if (change.stay !== undefined) room.stayFactor.set(change.stay);
+  for (const key of ['stays', 'from', 'last', 'perHazard', 'end', 'tail'] as const) {
+    room.laws[key].set(laws[key]);
+  }
   return {
     plan,
     change,
     rates: areas.map(() => new Float64Array(segments)),
-    stays: makeSpentBuffers(areas.length, segments, plan.shareBlocks),
-    newcomers: stayTables(areas.flatMap((area) => area.shapes)),
-    present: stayTables(areas.flatMap((area) => area.remaining)),
-    segmentBin: segmentAt.map((at, k) => (k === segments ? bins : at * binsPerHour)),
-    segmentBins: segmentAt.map((at, k) => (k === segments ? 0 : (segmentAt[k + 1] - at) * binsPerHour)),
+    stays: { spent: room.spent, shareSteps: room.shareSteps, firstFactor: [1, 1] },
+    laws: room.laws,
+    segmentBin: room.segmentBin,
+    segmentBins: room.segmentBins,
+    sizes: { areas: areas.length, segments, bins, hours: plan.hourTo.length },
     trace: {
       patients: 0,
-      moves: new Int32Array((areas.length + 1) * (bins + 1)),
-      admittedOut: new Int32Array(flows),
-      admittedIn: new Int32Array(flows),
+      moves: room.moves,
+      admittedOut: room.admittedOut,
+      admittedIn: room.admittedIn,
       boarderBin: areas.map((area) => new Int32Array(area.boarders)),
     },
     stream: new QuickStream(),
     thinning: new QuickStream(),
-    arrived: new Float64Array(segments + 1),
-    guide: new Uint16Array(guideShares),
-    words: new Uint32Array(3 * patientsAtOnce),
+    batch: room.batch,
   };
 }
 

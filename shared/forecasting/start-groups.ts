@@ -1,8 +1,8 @@
-import { expectedPresent, sharesNotBoarding, streamOfBoarders } from './census-start.ts';
+import { expectedPresent, sharesNotBoarding, streamOfBoarders, survivalOf } from './census-start.ts';
 import type { ExpectedPresent, ModelledPast } from './census-start.ts';
 import type { AreaFlows } from './need-flows.ts';
 import type { StartGroup } from './need-plan.ts';
-import { streamsPerArea } from './stay-model.ts';
+import { admittedStream, streamsPerArea } from './stay-model.ts';
 import type { StayModel, StayShape } from './stay-model.ts';
 
 /** Outflow factors at which the start of an area that nobody counted is tabulated. */
@@ -13,14 +13,22 @@ function cumulative(chances: readonly number[]): Float64Array {
   return Float64Array.from(chances, (chance) => (sum += chance));
 }
 
-/** Those counted: boarding patients in the stream of boarders, the others by the model's expected present. */
+/**
+ * Those counted: boarding patients in the stream of boarders, the others by the model's expected present. When wards took
+ * patients slowly, more of those present are admitted and will go on leaving slowly: the chances go with the outflow factor.
+ * @param past what the census came from. @param law of an admitted patient's time until the group is left, in means
+ */
 export function startGroups(
   stay: StayModel,
   area: number,
   census: { present: number; boarding: number },
   present: ExpectedPresent,
+  past: ModelledPast,
+  law: StayShape | null,
 ): StartGroup[] {
   const boarder = streamOfBoarders(stay, area);
+  const usual = sharesNotBoarding(stay, area, present.means, present.undecidedAdmitted);
+  const more = admittedByFactor(past, law, stay.outflow.admitted.correlation);
   return [
     {
       patients: census.boarding,
@@ -29,10 +37,41 @@ export function startGroups(
     },
     {
       patients: census.present - census.boarding,
-      steps: cumulative(sharesNotBoarding(stay, area, present.means, present.undecidedAdmitted)),
+      steps: cumulative(usual),
+      stepsByFactor: Array.from(more, (ratio) => {
+        const total = 1 + usual[admittedStream] * (ratio - 1);
+        return cumulative(usual.map((share, s) => (share * (s === admittedStream ? ratio : 1)) / total));
+      }),
       boarding: false,
     },
   ];
+}
+
+/**
+ * By how much more admitted patients there are when the outflow factor is f now, for each of `startFactors`: the factor of
+ * a day d days ago is taken as f^(correlation^d), of hours in between by the share of them on either day.
+ */
+function admittedByFactor(past: ModelledPast, law: StayShape | null, correlation: number): Float64Array {
+  const hazard = past.hazardPerHour[admittedStream];
+  const rate = past.ratePerHour[admittedStream];
+  const means = startFactors.map((factor) => {
+    let age = 0;
+    let back = 0;
+    let mean = 0;
+    for (let k = rate.length - 1; k >= 0; k -= 1) {
+      const length = past.hours[k];
+      const days = (back + length / 2) / 24;
+      const day = Math.floor(days);
+      const kept = correlation ** day * (1 - (days - day) * (1 - correlation));
+      const spent = hazard[k] * length * factor ** kept;
+      mean += rate[k] * length * survivalOf(law, age + spent / 2);
+      age += spent;
+      back += length;
+    }
+    return mean;
+  });
+  const usual = means[startFactors.indexOf(1)];
+  return means.map((mean) => (usual > 0 ? mean / usual : 1));
 }
 
 /** Mean present by stream when the outflow factor has been f for days: the start of an area that nobody counted. */

@@ -1,51 +1,57 @@
 import { drawPoisson } from '../stochastic/poisson.ts';
 import { purposes } from './need-plan.ts';
+import type { StartGroup } from './need-plan.ts';
+import { drawPresent, endStays, patientsAtOnce, postLeaving } from './patient-loops.ts';
 import { binsPerHour, departureOf, leaveArea, move, stayOf } from './replication-state.ts';
 import type { ReplicationState } from './replication-state.ts';
 import { admittedStream, boardingStream, streamsPerArea } from './stay-model.ts';
 
+/** Chances of the streams for somebody who is surely in one of them, cumulative. */
+const surely = Array.from({ length: streamsPerArea }, (_, only) =>
+  Float64Array.from({ length: streamsPerArea }, (_unused, s) => (s >= only ? 1 : 0)),
+);
+
 /** Draws who is present in area a at its start and when each of them leaves. */
 export function startArea(state: ReplicationState, a: number, replication: number): void {
-  const { plan, trace, stream, stays } = state;
+  const { plan, stream, stays } = state;
   const area = plan.areas[a];
   stream.reseed(plan.seed, purposes.present, replication, a);
-  const bins = plan.bins;
-  const startBin = area.startHours * binsPerHour;
-  const entry = Math.min(bins, Math.floor(startBin));
-  for (const { steps, patients, boarding } of area.groups) {
-    for (let i = 0; i < patients; i += 1) {
-      const u = stream.uniform();
-      let inArea = 0;
-      while (inArea < boardingStream && u >= steps[inArea]) inArea += 1;
-      let at = remainingUntil(state, a, inArea);
-      if (boarding) {
-        if (state.change.boardersOut !== undefined) at = movedOut(state, a, i, at);
-        trace.boarderBin[a][i] = at >= bins ? bins + 1 : Math.floor(at);
-      }
-      leaveArea(state, a, inArea, at);
-    }
-    move(state, a, entry, patients);
-    trace.patients += patients;
+  for (const { steps: usual, stepsByFactor, patients, boarding } of area.groups) {
+    const steps = stepsByFactor?.[nearest(area.startFactors, stays.firstFactor[1])] ?? usual;
+    startGroup(state, a, { patients, steps, boarding });
   }
   if (area.startMeans === null) return;
   const expected = area.expectedFirstRate;
   const ratio = expected > 0 ? state.rates[a][area.startSegment] / expected : 1;
   for (let inArea = 0; inArea < boardingStream; inArea += 1) {
     const factor = stays.firstFactor[inArea === admittedStream ? 1 : 0];
-    const count = drawPoisson(stream, ratio * interpolate(area.startFactors, area.startMeans[inArea], factor));
-    for (let i = 0; i < count; i += 1) {
-      leaveArea(state, a, inArea, remainingUntil(state, a, inArea));
-    }
-    move(state, a, entry, count);
-    trace.patients += count;
+    const patients = drawPoisson(stream, ratio * interpolate(area.startFactors, area.startMeans[inArea], factor));
+    startGroup(state, a, { patients, steps: surely[inArea], boarding: false });
   }
 }
 
-/** Draws until when, in bins, a patient present at the start stays. */
-function remainingUntil(state: ReplicationState, a: number, inArea: number): number {
-  const s = a * streamsPerArea + inArea;
-  const x = stayOf(state.present, s, state.stream.exponential()) * (state.change.stay?.[s] ?? 1);
-  return departureOf(state, s, state.plan.areas[a].startSegment, 0, x);
+function startGroup(state: ReplicationState, a: number, group: StartGroup): void {
+  const { plan, trace, stream, sizes, batch } = state;
+  const { bins } = plan;
+  const { startHours, startSegment } = plan.areas[a];
+  const { patients, steps, boarding } = group;
+  const firstStream = a * streamsPerArea;
+  const firstLaw = plan.areas.length * streamsPerArea + firstStream;
+  for (let drawn = 0; drawn < patients; drawn += patientsAtOnce) {
+    const count = Math.min(patientsAtOnce, patients - drawn);
+    drawPresent(stream, count, steps, startSegment);
+    endStays(count, firstStream, firstLaw, plan.segments + 2);
+    if (boarding) {
+      for (let i = 0; i < count; i += 1) {
+        if (state.change.boardersOut !== undefined) batch.until[i] = movedOut(state, a, drawn + i, batch.until[i]);
+        const at = batch.until[i];
+        trace.boarderBin[a][drawn + i] = at >= bins ? bins + 1 : Math.floor(at);
+      }
+    }
+    postLeaving(count, a, sizes);
+  }
+  move(state, a, Math.min(bins, Math.floor(startHours * binsPerHour)), patients);
+  trace.patients += patients;
 }
 
 /** The end of boarder i's stay where a remedy takes boarders out. */
@@ -71,12 +77,19 @@ export function startUndecided(state: ReplicationState, replication: number): vo
     const u = stream.uniform();
     let s = 0;
     while (s < undecided.steps.length - 1 && u >= undecided.steps[s]) s += 1;
-    const x = stayOf(state.newcomers, s, stream.exponential()) * (state.change.stay?.[s] ?? 1);
+    const x = stayOf(state.laws, s, stream.exponential()) * (state.change.stay?.[s] ?? 1);
     const a = Math.floor(s / streamsPerArea);
     move(state, a, bin, 1);
     leaveArea(state, a, s % streamsPerArea, departureOf(state, s, undecided.startSegment, 0, x));
   }
   trace.patients += undecided.patients;
+}
+
+/** Place of the tabulated point nearest to x. */
+function nearest(at: Float64Array, x: number): number {
+  let i = 0;
+  while (i < at.length - 1 && at[i] + at[i + 1] < 2 * x) i += 1;
+  return i;
 }
 
 /** Linear between tabulated points, flat beyond them. */

@@ -1,6 +1,6 @@
 import type { RandomStream } from '../stochastic/random.ts';
 import { makeStayErrors } from './stay-errors.ts';
-import { blockHazards, expectedShares, streamsPerArea } from './stay-model.ts';
+import { blockHazards, expectedShares } from './stay-model.ts';
 import type { StayModel } from './stay-model.ts';
 
 /** Where the segments of a horizon lie: block of the day, block for the shares, and day of the outflow factor, 0, 1, … */
@@ -110,15 +110,6 @@ export function makeSpentDraw(stay: StayModel, segments: StaySegments, hours: Ar
       }
     }
   };
-}
-
-/** Buffers for the added-up draws. @param shareBlocks blocks of the day for the shares. */
-export function makeSpentBuffers(areas: number, segments: number, shareBlocks: number): SpentDraw {
-  const row = segments + 2;
-  const spent = new Float64Array(areas * streamsPerArea * row);
-  // A stay that outlasts the horizon stops here: no test for it in the patients' loop.
-  for (let end = row - 1; end < spent.length; end += row) spent[end] = Infinity;
-  return { spent, shareSteps: new Float64Array(areas * shareBlocks * 3), firstFactor: [1, 1] };
 }
 
 /** Blocks and days of the segments of a horizon. @param localHour the local hour of each segment. */

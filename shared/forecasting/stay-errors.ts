@@ -1,6 +1,7 @@
 import { normalQuantile } from '../stochastic/normal.ts';
 import type { RandomStream } from '../stochastic/random.ts';
 import { drawQuickGamma, drawQuickNormal } from './quick-normal.ts';
+import { takeWords } from './quick-stream.ts';
 import type { StayDraw, StaySegments } from './stay-draw.ts';
 import { admittedStream, boardingStream } from './stay-model.ts';
 import type { OutflowFactor, StayModel } from './stay-model.ts';
@@ -32,14 +33,17 @@ function makeShapeDraws(shapes: readonly number[]): { out: Float64Array; draw: (
   const small = Int32Array.from([...shapes.keys()].filter((i) => shapes[i] < cubeFrom));
   const smallShape = Float64Array.from(small, (i) => shapes[i]);
   const out = new Float64Array(room);
+  const words = new Uint32Array(room / 3);
   function draw(stream: RandomStream): void {
     // Local names: captured ones are looked up again at every store.
     const to = out;
     const mean = centre;
     const sd = spread;
     const normals = roughNormals;
-    for (let i = 0; i < room; i += 3) {
-      const word = stream.uint32();
+    const drawn = words;
+    takeWords(stream, drawn, room / 3);
+    for (let i = 0, next = 0; i < room; i += 3, next += 1) {
+      const word = drawn[next];
       const first = mean[i] + normals[word & 1023] * sd[i];
       const second = mean[i + 1] + normals[(word >>> 10) & 1023] * sd[i + 1];
       const third = mean[i + 2] + normals[(word >>> 20) & 1023] * sd[i + 2];

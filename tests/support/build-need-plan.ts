@@ -15,6 +15,8 @@ export interface KnownArea {
   presentShares: number[];
   boarding?: number;
   beds: number;
+  /** True for an area that prints the chance within the hour. */
+  wholeHour?: boolean;
   shape?: StayShape | null;
 }
 
@@ -53,6 +55,7 @@ export function buildNeedPlan(areas: KnownArea[], seed: number, shifts: [from: n
         beds: new Int32Array(bins).fill(area.beds),
         highest: 400,
         boarders: area.boarding ?? 0,
+        wholeHour: area.wholeHour ?? false,
       };
     }),
     undecided: null,
