@@ -16,7 +16,7 @@ export default defineConfig({
     // A small file inlined into the style sheet as data: would be refused as a font by the content policy.
     assetsInlineLimit: 0,
   },
-  server: { proxy: { '/api': server, '/auth': server, '/healthz': server } },
+  server: { proxy: { '/api': server, '/auth': server, '/mail': server, '/healthz': server } },
   test: {
     projects: [
       {

@@ -4,6 +4,7 @@ import { signInToDemo } from './demo-caller.ts';
 import { demoPassword } from './farrowmere-accounts.ts';
 import { demoSites } from './farrowmere.ts';
 import { enterDemoCensus, finishJob, loadVisits, topUpVisits } from './live-history.ts';
+import { scheduleBriefs } from './schedule-briefs.ts';
 import { isSeeded, seedInstallation } from './seed-installation.ts';
 
 const historyMonths = 18;
@@ -61,6 +62,12 @@ export async function buildDemo(server: RunningServer, say: Say): Promise<void> 
   say('Models fitted and approved');
   await enterDemoCensus(await signIn('charge'), now, 22);
   say('Census entered');
+  await scheduleBriefs(database, operations);
+  // A job that anybody sees running under Track record; it stands back behind everything else and goes on after a restart.
+  for (const site of demoSites) {
+    await steward.send('POST', `/api/sites/${site.id}/track-record/recomputation`, { weeks: 52 });
+  }
+  say('The track record of the last year is being recomputed in the background');
 }
 
 /** Midnight, local time, of the day 18 months before. */

@@ -2,6 +2,8 @@ import { Agent, request } from 'node:http';
 
 /** Somebody signed in to the product through its own sign-in, calling its own API. */
 export interface DemoCaller {
+  /** The header that carries the session, for a caller elsewhere. */
+  cookie(): string;
   get(path: string): Promise<unknown>;
   send(method: 'POST' | 'PUT', path: string, body: unknown): Promise<unknown>;
   /** Sends a body as it is. */
@@ -33,9 +35,13 @@ export async function signInToDemo(
     return url.origin === new URL(baseUrl).origin ? new URL(url.pathname + url.search, localUrl) : url;
   }
 
+  function cookieHeader(): string {
+    return [...jar].map(([name, value]) => `${name}=${value}`).join('; ');
+  }
+
   function call(method: string, url: URL, headers: Record<string, string> = {}, body?: string): Promise<Reply> {
     return new Promise((resolve, reject) => {
-      const cookie = [...jar].map(([name, value]) => `${name}=${value}`).join('; ');
+      const cookie = cookieHeader();
       const sent = request(
         local(url),
         { agent, method, headers: { ...headers, ...(cookie ? { cookie } : {}) } },
@@ -98,6 +104,7 @@ export async function signInToDemo(
     return answer.text === '' ? null : JSON.parse(answer.text);
   }
   return {
+    cookie: cookieHeader,
     get: (path) => checked('GET', path, {}),
     send: (method, path, body) => checked(method, path, { 'content-type': 'application/json' }, JSON.stringify(body)),
     upload: (path, contentType, body) => checked('POST', path, { 'content-type': contentType }, body),

@@ -11,7 +11,7 @@ import { Site } from '../server/entities/Site.ts';
 import { localDate, makeZone } from '../shared/domain/zoned-time.ts';
 import { demoAccounts } from './farrowmere-accounts.ts';
 import { calendarDays, outages } from './farrowmere-calendar.ts';
-import { demoSites } from './farrowmere.ts';
+import { demoSites, onCallAddresses } from './farrowmere.ts';
 
 /** True once the demo's sites are there. */
 export async function isSeeded(database: Database): Promise<boolean> {
@@ -35,6 +35,9 @@ export async function seedInstallation(database: Database, from: number, now: nu
         country: site.country,
         region: site.region,
         planningRisk: site.planningRisk,
+        bedMeetingMinutes: site.bedMeetingMinutes,
+        waitLimitMinutes: site.waitLimitMinutes,
+        onCallAddress: onCallAddresses[site.id] ?? null,
         stayCapHours: 72,
         smallNumberMinimum: 5,
       });

@@ -9,21 +9,36 @@ import type { Dependencies } from './dependencies.ts';
 import { HttpError, notFound } from './errors.ts';
 import { addAlertRoutes } from './features/alerts/routes.ts';
 import { addArrivalModelRoutes } from './features/arrival-models/routes.ts';
+import { addAuditLogRoutes } from './features/audit-log/routes.ts';
+import { addLinkRoutes } from './features/briefs/link-routes.ts';
+import { addBriefRoutes } from './features/briefs/routes.ts';
+import { addInstallationRoutes } from './features/installation/routes.ts';
+import { addCalendarFeedRoutes } from './features/calendar-feeds/routes.ts';
 import { addJobRoutes } from './features/jobs/routes.ts';
 import type { OutlookIssuer } from './features/outlook/issuer.ts';
 import { addOutlookRoutes } from './features/outlook/routes.ts';
-import { addServerStatusRoutes } from './features/server-status/routes.ts';
+import { addPeopleRoutes } from './features/people/routes.ts';
+import { addScenarioRoutes } from './features/scenarios/routes.ts';
+import { makeMetrics } from './features/server-status/metrics.ts';
+import { addServerAdministrationRoutes, addServerStatusRoutes } from './features/server-status/routes.ts';
 import { addSignInRoutes } from './features/sign-in/routes.ts';
+import { addSiteSettingRoutes } from './features/site-settings/routes.ts';
 import { addSiteRoutes } from './features/sites/routes.ts';
 import { addStaffedBedRoutes } from './features/staffed-beds/routes.ts';
 import { addTokenRoutes } from './features/tokens/routes.ts';
+import { addTrackRecordRoutes } from './features/track-record/routes.ts';
+import { scoreJob } from './features/track-record/score-outlooks.job.ts';
 import { addVisitLogRoutes } from './features/visit-logs/routes.ts';
+import { addWeekAheadRoutes } from './features/week-ahead/routes.ts';
 import { requireAntiForgeryToken } from './http/anti-forgery.ts';
+import { limitRequests } from './http/limit-requests.ts';
 import { makeErrorHandler } from './http/error-handler.ts';
 import { recogniseTokens } from './http/machine-token.ts';
 import type { RouteTable } from './http/route.ts';
 import { securityHeaders } from './http/security-headers.ts';
+import { sessionCookie } from './http/session-cookie.ts';
 import type { SessionStore } from './http/session-store.ts';
+import { followUse } from './http/session-use.ts';
 import { serveClient } from './http/static-client.ts';
 
 export interface App {
@@ -70,6 +85,8 @@ export function createApp(
       },
     }),
   );
+  const metrics = makeMetrics(deps);
+  app.use(metrics.follow);
   app.use(securityHeaders(config.production));
   app.use(compression());
   if (clientDir !== null)
@@ -97,7 +114,7 @@ export function createApp(
   app.use(
     ['/api', '/auth'],
     session({
-      name: 'shoalmark',
+      name: sessionCookie(config.production),
       secret: config.sessionSecret,
       store: sessions,
       resave: false,
@@ -107,13 +124,17 @@ export function createApp(
       cookie: { httpOnly: true, sameSite: 'lax', secure: config.production, path: '/' },
     }),
     requireAntiForgeryToken(config.sessionSecret),
+    followUse(sessions, config.idleMinutes * 60),
+    limitRequests(config.requestsPerMinute),
   );
   app.use('/api', express.json({ limit: '1mb', strict: true }));
 
-  addServerStatusRoutes(app, routes, deps);
-  addSignInRoutes(app, routes, deps);
+  addServerStatusRoutes(app, routes, deps, metrics);
+  addServerAdministrationRoutes(app, routes, deps);
+  addSignInRoutes(app, routes, deps, sessions);
   addSiteRoutes(app, routes, deps);
   addOutlookRoutes(app, routes, deps, issuer);
+  addWeekAheadRoutes(app, routes, deps);
   // Features meet here: what changes beds or the model asks for a new outlook.
   addStaffedBedRoutes(
     app,
@@ -121,15 +142,36 @@ export function createApp(
     deps,
     async (siteId) => (await issuer.issueOrReport(siteId, 'staffed beds changed')).outlookId,
   );
+  addSiteSettingRoutes(
+    app,
+    routes,
+    deps,
+    async (siteId) => (await issuer.issueOrReport(siteId, 'settings changed')).outlookId,
+  );
+  addScenarioRoutes(app, routes, deps, issuer.replications, (siteId) =>
+    issuer.issueOrReport(siteId, 'staffed beds changed'),
+  );
+  addCalendarFeedRoutes(app, routes, deps);
   addArrivalModelRoutes(app, routes, deps, async (siteId) => {
     await issuer.issueOrReport(siteId, 'model approved');
   });
-  addVisitLogRoutes(app, routes, deps);
+  // What a withdrawn log told is un-scored.
+  addVisitLogRoutes(app, routes, deps, async (manager, log) => {
+    await deps.jobs.enqueue(manager, scoreJob(log.siteId, log.periodFrom, log.periodTo));
+  });
+  addTrackRecordRoutes(app, routes, deps);
   addJobRoutes(app, routes, deps);
+  addAuditLogRoutes(app, routes, deps);
+  addPeopleRoutes(app, routes, deps, sessions);
+  addInstallationRoutes(app, routes, deps, async (siteId) => {
+    await issuer.issueOrReport(siteId, 'settings changed');
+  });
   addTokenRoutes(app, routes, deps);
   addAlertRoutes(app, routes, deps);
+  addBriefRoutes(app, routes, deps);
+  addLinkRoutes(app, routes, deps);
 
-  app.use(['/api', '/auth', '/healthz', '/readyz'], () => {
+  app.use(['/api', '/auth', '/mail', '/healthz', '/readyz', '/metrics'], () => {
     throw notFound('This address');
   });
   if (clientDir !== null) serveClient(app, clientDir);

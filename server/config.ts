@@ -1,5 +1,5 @@
 import { isIP } from 'node:net';
-import { resolve } from 'node:path';
+import { join, resolve } from 'node:path';
 import { z } from 'zod';
 import { ConfigError } from './errors.ts';
 
@@ -21,6 +21,20 @@ export interface Config {
   administratorContact: string;
   /** Worker threads for fits and simulation. */
   threads: number;
+  /** Minutes without use after which a session locks: unlocking is a fresh sign-in. */
+  idleMinutes: number;
+  /** Hours after which a session ends however much it is used. */
+  sessionHours: number;
+  /** Requests that one session (or, signed out, one address) may make within a minute. */
+  requestsPerMinute: number;
+  /** Opens /metrics; without it that answers 404. */
+  metricsToken: string | null;
+  /** Where backups go; null: the folder backups in the data folder. */
+  backupDir: string | null;
+  /** Hours between backups; 0: none by the clock. */
+  backupEveryHours: number;
+  /** Backups that are kept; older ones are deleted. */
+  backupKeep: number;
   /** Seconds to add to the clock; only outside production, for journeys. */
   clockOffset: number;
 }
@@ -48,6 +62,13 @@ const schema = z.object({
   LOG_LEVEL: z.enum(['fatal', 'error', 'warn', 'info', 'debug', 'trace', 'silent']).default('info'),
   ADMINISTRATOR_CONTACT: z.string().min(1).max(200).default('the administrator of this installation'),
   THREADS: z.coerce.number().int().min(1).max(64).default(2),
+  IDLE_MINUTES: z.coerce.number().int().min(1).max(720).default(15),
+  SESSION_HOURS: z.coerce.number().int().min(1).max(24).default(12),
+  REQUESTS_PER_MINUTE: z.coerce.number().int().min(60).max(1_000_000).default(1200),
+  METRICS_TOKEN: z.string().min(32, 'at least 32 characters').optional(),
+  BACKUP_DIR: z.string().min(1).optional(),
+  BACKUP_EVERY_HOURS: z.coerce.number().int().min(0).max(720).default(24),
+  BACKUP_KEEP: z.coerce.number().int().min(1).max(1000).default(14),
   CLOCK_OFFSET: z.coerce.number().int().default(0),
 });
 
@@ -96,6 +117,13 @@ export function readConfig(env: Record<string, string | undefined>, { production
     logLevel: value.LOG_LEVEL,
     administratorContact: value.ADMINISTRATOR_CONTACT,
     threads: value.THREADS,
+    idleMinutes: value.IDLE_MINUTES,
+    sessionHours: value.SESSION_HOURS,
+    requestsPerMinute: value.REQUESTS_PER_MINUTE,
+    metricsToken: value.METRICS_TOKEN ?? null,
+    backupDir: value.BACKUP_DIR === undefined ? null : resolve(value.BACKUP_DIR),
+    backupEveryHours: value.BACKUP_EVERY_HOURS,
+    backupKeep: value.BACKUP_KEEP,
     clockOffset: value.CLOCK_OFFSET,
   };
 }
@@ -145,6 +173,19 @@ function readTrustProxy(text: string): number | string | false {
   if (text === 'false' || text === '0') return false;
   const hops = Number(text);
   return Number.isInteger(hops) ? hops : text;
+}
+
+/** Where backups go and how many are kept, for the command line; a wrong number is an error of the command. */
+export function readBackupSettings(env: Record<string, string | undefined>): { dir: string; keep: number } {
+  const { BACKUP_DIR, BACKUP_KEEP } = schema
+    .pick({ BACKUP_DIR: true, BACKUP_KEEP: true })
+    .parse(Object.fromEntries(Object.entries(env).filter(([, value]) => value !== undefined && value !== '')));
+  return { dir: BACKUP_DIR === undefined ? backupDirIn(readDataDir(env)) : resolve(BACKUP_DIR), keep: BACKUP_KEEP };
+}
+
+/** Where backups go unless told otherwise. */
+export function backupDirIn(dataDir: string): string {
+  return join(dataDir, 'backups');
 }
 
 /** The data folder alone, for commands that need nothing else. */

@@ -69,6 +69,14 @@ export function notSignedIn(): HttpError {
   });
 }
 
+/** 401: signed in, but the screen was left alone for too long. */
+export function sessionLocked(): HttpError {
+  return new HttpError(401, 'Locked', 'Nobody used this session for a while, so it locked itself.', {
+    kept: 'Nothing was stored.',
+    next: 'Sign in again to unlock it.',
+  });
+}
+
 /** 401: the machine token is not one of ours, or was revoked. */
 export function tokenRefused(): HttpError {
   return new HttpError(401, 'Token refused', 'This machine token is not known here, or was revoked.', {

@@ -50,8 +50,8 @@ export async function openServer(
     const fault = sqliteFault(error);
     throw fault === null ? error : new ConfigError(`Cannot start: the database in DATA_DIR cannot be used (${fault}).`);
   });
-  const pool = makeSimulationPool(config.threads);
-  const simulation = makeSimulationPool(config.threads, { keepThreads: true });
+  const pool = makeSimulationPool(config.threads, { nice: 10 });
+  const simulation = makeSimulationPool(config.threads, { keepThreads: true, nice: 1 });
   const jobs = new JobQueue(database, clock, logger);
   const deps: Dependencies = { config, database, clock, logger, pool, simulation, jobs, mailer };
   const issuer = new OutlookIssuer(deps);
@@ -80,7 +80,7 @@ function sqliteFault(error: unknown): string | null {
 /** Starts the server: migrates, sweeps what a crash left, listens, works jobs and the timetable. */
 export async function startServer(config: Config): Promise<RunningServer> {
   const { deps, issuer, close } = await openServer(config);
-  const sessions = new SessionStore(deps.database, deps.clock);
+  const sessions = new SessionStore(deps.database, deps.clock, config.sessionHours * 3600);
   const app = createApp(deps, issuer, sessions, clientDir());
   const server = createServer(app.express);
   try {

@@ -1,62 +1,48 @@
+import { parseArgs } from 'node:util';
 import { readDataDir } from '../config.ts';
 import { openDatabase } from '../database/database.ts';
-import { newId } from '../database/new-id.ts';
-import { Membership } from '../entities/Membership.ts';
-import { Person } from '../entities/Person.ts';
-import { recordOwnAudit } from '../http/audit.ts';
+import { grantAdministrator, type Named } from '../features/people/grant-administrator.ts';
 
 /**
- * `npm run grant-admin -- ADDRESS`: makes the person with this e-mail address an administrator. Somebody
- * who has not signed in yet is bound at the first sign-in, if the identity provider has verified the address.
+ * `npm run grant-admin -- ADDRESS`: makes the person with this verified e-mail address an administrator; somebody
+ * who has not signed in yet is bound at the first sign-in. `-- --issuer URL --subject ID` names an identity itself.
  */
-const address = process.argv[2]?.trim().toLowerCase();
-if (address === undefined || !/^[^\s@]+@[^\s@]+$/.test(address)) {
-  process.stderr.write('Usage: npm run grant-admin -- ADDRESS (an e-mail address)\n');
+const usage =
+  'Usage: npm run grant-admin -- ADDRESS (an e-mail address)\n       npm run grant-admin -- --issuer URL --subject ID (somebody who has signed in)\n';
+
+function readNamed(): Named | null {
+  try {
+    const { values, positionals } = parseArgs({
+      allowPositionals: true,
+      options: { issuer: { type: 'string' }, subject: { type: 'string' } },
+    });
+    const { issuer, subject } = values;
+    if (issuer !== undefined && subject !== undefined && positionals.length === 0) return { issuer, subject };
+    const email = positionals.at(0)?.trim().toLowerCase();
+    const isAddress = email !== undefined && /^[^\s@]+@[^\s@]+$/.test(email);
+    return isAddress && positionals.length === 1 && issuer === undefined && subject === undefined ? { email } : null;
+  } catch {
+    return null;
+  }
+}
+
+const named = readNamed();
+if (!named) {
+  process.stderr.write(usage);
   process.exit(2);
 }
+const who = 'email' in named ? named.email : named.subject;
 const database = await openDatabase(readDataDir(process.env));
-const now = Math.floor(Date.now() / 1000);
-const people = await database.read.findBy(Person, { email: address });
-if (people.length > 1) {
-  process.stderr.write(`${String(people.length)} people have signed in with ${address}; nothing was changed.\n`);
-  process.exit(1);
+try {
+  const outcome = await grantAdministrator(database, named, Math.floor(Date.now() / 1000));
+  if (outcome === null) {
+    process.stderr.write(`Nobody of ${who} has signed in; nothing was changed.\n`);
+    process.exitCode = 1;
+  } else process.stdout.write(`${who} ${outcome}.\n`);
+} catch (error) {
+  if (!(error instanceof RangeError)) throw error;
+  process.stderr.write(`${error.message} Nothing was changed.\n`);
+  process.exitCode = 1;
+} finally {
+  await database.close();
 }
-const outcome = await database.write(async (manager) => {
-  const person =
-    people.at(0) ??
-    (await manager.save(
-      manager.create(Person, {
-        id: newId(),
-        issuer: null,
-        subject: null,
-        name: address,
-        email: address,
-        createdAt: now,
-        lastSignInAt: null,
-      }),
-    ));
-  const held = await manager.findBy(Membership, { personId: person.id, role: 'administrator' });
-  if (held.some((membership) => membership.endsAt === null || membership.endsAt > now))
-    return 'is an administrator already';
-  const id = newId();
-  await manager.insert(Membership, {
-    id,
-    personId: person.id,
-    role: 'administrator',
-    siteId: null,
-    groupId: null,
-    endsAt: null,
-    createdAt: now,
-  });
-  await recordOwnAudit(manager, {
-    at: now,
-    actor: 'command line',
-    siteId: null,
-    event: 'role.granted',
-    subject: id,
-    detail: { role: 'administrator', personId: person.id },
-  });
-  return people.length > 0 ? 'is now an administrator' : 'will be an administrator from the first sign-in';
-});
-await database.close();
-process.stdout.write(`${address} ${outcome}.\n`);

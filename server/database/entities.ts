@@ -2,19 +2,31 @@ import { AlertSent } from '../entities/AlertSent.ts';
 import { Acknowledgement } from '../entities/Acknowledgement.ts';
 import { ArrivalModelRow } from '../entities/ArrivalModelRow.ts';
 import { AuditEvent } from '../entities/AuditEvent.ts';
+import { AuditNote } from '../entities/AuditNote.ts';
 import { BedChange } from '../entities/BedChange.ts';
+import { Brief } from '../entities/Brief.ts';
+import { BriefDelivery } from '../entities/BriefDelivery.ts';
+import { BriefRecipient } from '../entities/BriefRecipient.ts';
+import { BriefSettings } from '../entities/BriefSettings.ts';
 import { CalendarEntry } from '../entities/CalendarEntry.ts';
+import { CalendarFeed } from '../entities/CalendarFeed.ts';
 import { CareArea } from '../entities/CareArea.ts';
 import { Census } from '../entities/Census.ts';
 import { CensusArea } from '../entities/CensusArea.ts';
 import { ExposureGapRow } from '../entities/ExposureGapRow.ts';
+import { GroupRole } from '../entities/GroupRole.ts';
+import { ForecastScore } from '../entities/ForecastScore.ts';
 import { HealthGroup } from '../entities/HealthGroup.ts';
 import { Job } from '../entities/Job.ts';
 import { MachineToken } from '../entities/MachineToken.ts';
 import { Membership } from '../entities/Membership.ts';
+import { OutlookLawsRow } from '../entities/OutlookLawsRow.ts';
 import { OutlookRow } from '../entities/OutlookRow.ts';
 import { Person } from '../entities/Person.ts';
+import { ScoreWeek } from '../entities/ScoreWeek.ts';
+import { Scenario } from '../entities/Scenario.ts';
 import { SessionRow } from '../entities/SessionRow.ts';
+import { SettingChange } from '../entities/SettingChange.ts';
 import { Shift } from '../entities/Shift.ts';
 import { Site } from '../entities/Site.ts';
 import { StaffedBedPlan } from '../entities/StaffedBedPlan.ts';
@@ -22,6 +34,7 @@ import { StaffedBedPlanArea } from '../entities/StaffedBedPlanArea.ts';
 import { Visit } from '../entities/Visit.ts';
 import { VisitLog } from '../entities/VisitLog.ts';
 import { VisitLogMapping } from '../entities/VisitLogMapping.ts';
+import { WeekOutlookRow } from '../entities/WeekOutlookRow.ts';
 
 /** Every entity, listed by hand: no globs, so that the build and the tests load the same. */
 export const entities = [
@@ -29,19 +42,31 @@ export const entities = [
   AlertSent,
   ArrivalModelRow,
   AuditEvent,
+  AuditNote,
   BedChange,
+  Brief,
+  BriefDelivery,
+  BriefRecipient,
+  BriefSettings,
   CalendarEntry,
+  CalendarFeed,
   CareArea,
   Census,
   CensusArea,
   ExposureGapRow,
+  ForecastScore,
+  GroupRole,
   HealthGroup,
   Job,
   MachineToken,
   Membership,
+  OutlookLawsRow,
   OutlookRow,
   Person,
+  ScoreWeek,
+  Scenario,
   SessionRow,
+  SettingChange,
   Shift,
   Site,
   StaffedBedPlan,
@@ -49,4 +74,5 @@ export const entities = [
   Visit,
   VisitLog,
   VisitLogMapping,
+  WeekOutlookRow,
 ];

@@ -5,6 +5,29 @@ import type { CalendarDay } from '../../shared/forecasting/visit-table.ts';
 import { CalendarEntry } from '../entities/CalendarEntry.ts';
 import type { Site } from '../entities/Site.ts';
 
+const yearsKept = 256;
+const years = new Map<string, readonly CalendarDay[]>();
+
+/** Public holidays of one year; working them out takes tens of milliseconds, so they are kept. */
+function holidaysOfYear(country: string, region: string | null, year: number): readonly CalendarDay[] {
+  const key = `${country} ${region ?? ''} ${String(year)}`;
+  const kept = years.get(key);
+  if (kept) return kept;
+  const calendar = region === null ? new Holidays(country) : new Holidays(country, region);
+  const days = new Map<string, CalendarDay>();
+  for (const holiday of calendar.getHolidays(year)) {
+    const date = holiday.date.slice(0, 10);
+    if (holiday.type !== 'public') continue;
+    // A substitute day carries the name of the day it stands for.
+    const name = holiday.name.replace(/ \(substitute day\)$/, '');
+    days.set(date, { date, kind: 'public holiday', name, statedEffect: null });
+  }
+  const found = [...days.values()];
+  if (years.size >= yearsKept) years.delete(years.keys().next().value ?? key);
+  years.set(key, found);
+  return found;
+}
+
 /** Public holidays of a country (and region) with a date in [fromDate, toDate], both YYYY-MM-DD. Observances are left out. */
 export function publicHolidays(
   country: string,
@@ -12,18 +35,13 @@ export function publicHolidays(
   fromDate: string,
   toDate: string,
 ): CalendarDay[] {
-  const calendar = region === null ? new Holidays(country) : new Holidays(country, region);
-  const days = new Map<string, CalendarDay>();
+  const found: CalendarDay[] = [];
   for (let year = Number(fromDate.slice(0, 4)); year <= Number(toDate.slice(0, 4)); year += 1) {
-    for (const holiday of calendar.getHolidays(year)) {
-      const date = holiday.date.slice(0, 10);
-      if (holiday.type !== 'public' || date < fromDate || date > toDate) continue;
-      // A substitute day carries the name of the day it stands for.
-      const name = holiday.name.replace(/ \(substitute day\)$/, '');
-      days.set(date, { date, kind: 'public holiday', name, statedEffect: null });
+    for (const day of holidaysOfYear(country, region, year)) {
+      if (day.date >= fromDate && day.date <= toDate) found.push({ ...day });
     }
   }
-  return [...days.values()];
+  return found;
 }
 
 /** The unusual days of a site between two instants: public holidays and its own events and closures, by date. */

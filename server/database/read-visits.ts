@@ -54,29 +54,41 @@ type VisitFields = [
  * Loads the visits of a site that count, into columns: of ready logs, and only those that no newer
  * ready log's period holds. Opens its own read-only connection, so that a worker thread can call it.
  * @param arrivedFrom only visits that arrived at or after it, UTC seconds
+ * @param logIds only these logs, as if there were no others; null: all
  * Cost: about 1.5 s and 44 MB for a million visits.
  */
-export function readSiteVisits(databaseFile: string, siteId: string, arrivedFrom = -Infinity): SiteVisits {
+export function readSiteVisits(
+  databaseFile: string,
+  siteId: string,
+  arrivedFrom = -Infinity,
+  logIds: readonly string[] | null = null,
+): SiteVisits {
   const db = new SqliteDatabase(databaseFile, { readonly: true, fileMustExist: true, timeout: 5000 });
   try {
     db.pragma('cache_size = -32000');
     // One transaction, so that logs and visits are of the same moment.
-    return db.transaction(() => load(db, siteId, arrivedFrom))();
+    return db.transaction(() => load(db, siteId, arrivedFrom, logIds))();
   } finally {
     db.close();
   }
 }
 
-function load(db: SqliteDatabase.Database, siteId: string, arrivedFrom: number): SiteVisits {
+function load(
+  db: SqliteDatabase.Database,
+  siteId: string,
+  arrivedFrom: number,
+  logIds: readonly string[] | null,
+): SiteVisits {
   const areas = db
     .prepare('SELECT "id", "code" FROM "care_area" WHERE "siteId" = ? ORDER BY "position"')
     .all(siteId) as { id: string; code: number }[];
   const indexOfCode = new Map(areas.map((area, index) => [area.code, index]));
-  const logs = db
+  const ready = db
     .prepare(
       'SELECT "id", "number", "fileName", "sha256", "rows", "periodFrom", "periodTo", "selectedBy", "takenAt", "missingDeparture" FROM "visit_log" WHERE "siteId" = ? AND "status" = \'ready\' ORDER BY "number" DESC',
     )
     .all(siteId) as LogRow[];
+  const logs = logIds === null ? ready : ready.filter(({ id }) => logIds.includes(id));
   const spans = countingSpans(logs);
   const table = emptyTable(logs.reduce((sum, log) => sum + log.rows, 0));
   const lineage: VisitLineage[] = [];

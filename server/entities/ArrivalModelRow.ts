@@ -26,6 +26,10 @@ export class ArrivalModelRow {
   /** The same approved model before its level was moved on by newer visits; structure and approval are its own. */
   @Column('text', { nullable: true }) refreshedFromId: string | null;
   @Column('integer', { nullable: true }) refreshedAt: number | null;
+  /** When the track record first fell outside what chance explains; null while it has not. Carried on as its level moves. */
+  @Column('integer', { nullable: true }) driftFoundAt: number | null;
+  /** JSON: what the watch found, in words and figures; null until there is enough to watch. */
+  @Column('text', { nullable: true }) drift: string | null;
   @Column('text') engineVersion: string;
   @Column('integer', { nullable: true }) trainedFrom: number | null;
   @Column('integer', { nullable: true }) trainedTo: number | null;

@@ -24,4 +24,8 @@ export class CareArea {
   /** The chance of shortfall past which Tonight speaks up, 0..1. */
   @Column('real') alertLimit: number;
   @Column('text') escalationNote: string;
+  /** Staffed beds that one nurse looks after, by the site's own rule; null: not stated, and never guessed. */
+  @Column('real', { nullable: true }) bedsPerNurse: number | null;
+  /** Ids of the areas that may be lent staffed beds of this one. */
+  @Column('simple-json', { default: '[]' }) lendsTo: string[];
 }

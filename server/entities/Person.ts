@@ -11,6 +11,10 @@ export class Person {
   @Column('text') name: string;
   /** Lower case. */
   @Index() @Column('text') email: string;
+  /** 1 if the provider had verified the address at the last sign-in; only then does it prove who the person is. */
+  @Column('integer', { default: 0 }) emailVerified: number;
+  /** JSON: the groups that the provider put the person into at the last sign-in. */
+  @Column('text', { default: '[]' }) identityGroups: string;
   @Column('integer') createdAt: number;
   @Column('integer', { nullable: true }) lastSignInAt: number | null;
 }

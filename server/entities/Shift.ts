@@ -14,4 +14,6 @@ export class Shift {
   @Column('text') name: string;
   @Column('integer') startMinute: number;
   @Column('integer') endMinute: number;
+  /** Hours before its start until which staff can still be booked for it; null: not stated. */
+  @Column('integer', { nullable: true }) leadTimeHours: number | null;
 }

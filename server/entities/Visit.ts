@@ -1,9 +1,10 @@
-import { Column, Entity, JoinColumn, ManyToOne, PrimaryColumn } from 'typeorm';
+import { Column, Entity, Index, JoinColumn, ManyToOne, PrimaryColumn } from 'typeorm';
 import type { Relation } from 'typeorm';
 import type { VisitLog } from './VisitLog.ts';
 
 /** One visit. Instants are UTC seconds; null means not recorded. Never leaves the server as a row. */
 @Entity({ name: 'visit', withoutRowid: true })
+@Index('visit_arrival', ['logNumber', 'arrivalAt'])
 export class Visit {
   @PrimaryColumn('integer')
   logNumber: number;

@@ -23,7 +23,7 @@ export class VisitLog {
   site: Relation<Site>;
 
   @Column('text')
-  status: 'loading' | 'ready' | 'withdrawn' | 'failed';
+  status: 'loading' | 'ready' | 'withdrawn' | 'failed' | 'purged';
 
   /** As the steward's computer calls it, screened. */
   @Column('text')
@@ -43,6 +43,10 @@ export class VisitLog {
 
   @Column('integer')
   periodTo: number;
+
+  /** Where the period began when it was accepted, if visits from its start were deleted after the retention time. */
+  @Column('integer', { nullable: true })
+  statedFrom: number | null;
 
   @Column('text')
   selectedBy: 'arrived' | 'departed';

@@ -6,9 +6,10 @@ import type { TokenPurpose } from '../../shared/domain/token-purpose.ts';
 import type { Dependencies } from '../dependencies.ts';
 import { MachineToken } from '../entities/MachineToken.ts';
 import { Site } from '../entities/Site.ts';
-import { notAllowed, notFound, notSignedIn, tokenForOther, tokenRefused } from '../errors.ts';
+import { notAllowed, notFound, notSignedIn, sessionLocked, tokenForOther, tokenRefused } from '../errors.ts';
 import { readCaller, type Caller } from './caller.ts';
 import { tokenOf } from './machine-token.ts';
+import { isLocked } from './session-use.ts';
 
 /** `lastUsedAt` is moved on at most this often, so that every call does not write. */
 const touchEverySeconds = 60;
@@ -38,10 +39,11 @@ export async function authorize(
   if (contract.token && token !== undefined) return authorizeToken(deps, req, contract.token, token, now);
 
   // Health checks lie outside the paths that have sessions.
-  const personId = (req.session as Request['session'] | undefined)?.personId;
+  const locked = isLocked(req);
+  const personId = locked ? undefined : (req.session as Request['session'] | undefined)?.personId;
   const caller = personId === undefined ? null : await readCaller(deps.database.read, personId, now);
   if (contract.access === 'public') return { caller, site: null, token: null };
-  if (!caller) throw notSignedIn();
+  if (!caller) throw locked ? sessionLocked() : notSignedIn();
   if (contract.access === 'signed-in') return { caller, site: null, token: null };
 
   const siteId = req.params.siteId;

@@ -1,10 +1,11 @@
-import type { EntityManager } from 'typeorm';
+import { In, type EntityManager } from 'typeorm';
 import { permissionsOf, type Permission, type Role } from '../../shared/domain/permission.ts';
+import { GroupRole } from '../entities/GroupRole.ts';
 import { Membership } from '../entities/Membership.ts';
 import { Person } from '../entities/Person.ts';
 import { Site } from '../entities/Site.ts';
 
-/** A signed-in person with the roles that they hold now. Read anew at every request, so that a removed role is gone at once. */
+/** A signed-in person with the roles that they hold now, by name and by the groups of the identity provider. Read anew at every request, so that a removed role is gone at once. */
 export interface Caller {
   person: Person;
   /** Roles at each site, by site id; a role over a health group stands at each of its sites. */
@@ -26,14 +27,22 @@ export async function readCaller(read: EntityManager, personId: string, now: num
     if (!held) rolesAt.set(siteId, [role]);
     else if (!held.includes(role)) held.push(role);
   };
-  for (const { role, siteId, groupId } of memberships) {
-    if (role === 'administrator') installationRoles.push(role);
-    else if (siteId !== null) give(siteId, role);
+  const claims = identityGroupsOf(person);
+  const byGroups = claims.length === 0 ? [] : await read.findBy(GroupRole, { claim: In(claims) });
+  for (const { role, siteId, groupId } of [...memberships, ...byGroups]) {
+    if (role === 'administrator') {
+      if (!installationRoles.includes(role)) installationRoles.push(role);
+    } else if (siteId !== null) give(siteId, role);
     else if (groupId !== null) {
       for (const site of await read.find(Site, { where: { groupId }, select: { id: true } })) give(site.id, role);
     }
   }
   return { person, rolesAt, installationRoles };
+}
+
+/** The groups that the identity provider put a person into at the last sign-in. */
+export function identityGroupsOf(person: Person): string[] {
+  return JSON.parse(person.identityGroups) as string[];
 }
 
 /** What the caller may do at a site; nothing where no role is held. */

@@ -5,6 +5,8 @@ declare module 'express-session' {
     personId: string;
     /** When the person signed in here, UTC seconds. */
     signedInAt: number;
+    /** When the person last did something here, UTC seconds, to the minute; 0: locked by hand. */
+    usedAt: number;
     /** Kept for the provider's end of a sign-out. */
     idToken: string;
     /** A sign-in under way. */

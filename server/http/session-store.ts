@@ -1,22 +1,30 @@
 import { Store, type SessionData } from 'express-session';
-import { LessThan } from 'typeorm';
+import { LessThan, type EntityManager } from 'typeorm';
 import type { Clock } from '../clock.ts';
 import type { Database } from '../database/database.ts';
 import { SessionRow } from '../entities/SessionRow.ts';
 
-const lifetimeSeconds = 12 * 3600;
-/** A session's end is moved on at most this often, so that reading does not write. */
-const touchEverySeconds = 60;
+/** A session in which nobody has signed in yet lives this long: a sign-in under way. */
+const unsignedSeconds = 3600;
 
-/** Sessions in the database. They live 12 hours from their last use. Writes go through the one gate. */
+/** Sessions in the database. They end a fixed time after the sign-in, however much they are used. Writes go through the one gate. */
 export class SessionStore extends Store {
   private readonly database: Database;
   private readonly clock: Clock;
+  private readonly lifetimeSeconds: number;
+  /** Ids that were ended: a request that was under way meanwhile must not bring its session back. */
+  private readonly ended = new Set<string>();
 
-  constructor(database: Database, clock: Clock) {
+  constructor(database: Database, clock: Clock, lifetimeSeconds = 12 * 3600) {
     super();
     this.database = database;
     this.clock = clock;
+    this.lifetimeSeconds = lifetimeSeconds;
+  }
+
+  /** The clock that sessions live by, UTC seconds. */
+  now(): number {
+    return this.clock();
   }
 
   override get(sid: string, done: (error: unknown, session?: SessionData | null) => void): void {
@@ -29,35 +37,53 @@ export class SessionStore extends Store {
   }
 
   override set(sid: string, session: SessionData, done?: (error?: unknown) => void): void {
-    const row = { sid, expiresAt: this.clock() + lifetimeSeconds, data: JSON.stringify(session) };
+    const { personId = null } = session as Partial<SessionData>;
+    const expiresAt = personId === null ? this.clock() + unsignedSeconds : session.signedInAt + this.lifetimeSeconds;
+    const row = { sid, expiresAt, personId, data: JSON.stringify(session) };
     this.database
-      .write((manager) => manager.upsert(SessionRow, row, ['sid']))
+      .write(async (manager) => {
+        if (!this.ended.has(sid)) await manager.upsert(SessionRow, row, ['sid']);
+      })
       .then(() => done?.())
       .catch((error: unknown) => done?.(error));
   }
 
-  override touch(sid: string, _session: SessionData, done?: () => void): void {
-    const expiresAt = this.clock() + lifetimeSeconds;
-    this.database.read
-      .findOneBy(SessionRow, { sid })
-      .then((row) =>
-        row && row.expiresAt < expiresAt - touchEverySeconds
-          ? this.database.write((manager) => manager.update(SessionRow, { sid }, { expiresAt }))
-          : undefined,
-      )
-      .catch(() => undefined)
-      .finally(() => done?.());
+  /** The end is fixed: nothing to move on. */
+  override touch(_sid: string, _session: SessionData, done?: () => void): void {
+    done?.();
   }
 
   override destroy(sid: string, done?: (error?: unknown) => void): void {
     this.database
-      .write((manager) => manager.delete(SessionRow, { sid }))
+      .write(async (manager) => {
+        await manager.delete(SessionRow, { sid });
+        this.ended.add(sid);
+      })
       .then(() => done?.())
       .catch((error: unknown) => done?.(error));
+  }
+
+  /**
+   * Ends every session of a person.
+   * @param alongside what belongs to it (its audit row), in the same transaction; told how many ended
+   */
+  async endAllOf(
+    personId: string,
+    alongside: (manager: EntityManager, count: number) => Promise<void>,
+  ): Promise<number> {
+    return this.database.write(async (manager) => {
+      const rows = await manager.find(SessionRow, { where: { personId }, select: { sid: true } });
+      await manager.delete(SessionRow, { personId });
+      await alongside(manager, rows.length);
+      for (const { sid } of rows) this.ended.add(sid);
+      return rows.length;
+    });
   }
 
   /** Removes what has run out. */
   async sweep(): Promise<void> {
     await this.database.write((manager) => manager.delete(SessionRow, { expiresAt: LessThan(this.clock()) }));
+    // No request is under way for an hour.
+    this.ended.clear();
   }
 }

@@ -1,5 +1,5 @@
 import type { EntityManager } from 'typeorm';
-import { In, LessThanOrEqual } from 'typeorm';
+import { In, LessThanOrEqual, Not } from 'typeorm';
 import type { Clock } from '../clock.ts';
 import type { Database } from '../database/database.ts';
 import { newId } from '../database/new-id.ts';
@@ -24,12 +24,27 @@ export type JobSettler = (manager: EntityManager, job: Job, error: string) => Pr
 /** A kind of job: how it is done, and what is left to tidy when it fails for good or is cancelled. */
 export interface JobKind {
   run: JobHandler;
+  /** Never two at once, so that long background work leaves a place for what somebody waits for. */
+  oneAtATime?: boolean;
   settle?: JobSettler;
+  /** True if a failed one may be tried again by hand: nothing was tidied away that it needs. */
+  retryable?: boolean;
 }
 
 /** A failure that a retry cannot mend. */
 export class PermanentJobError extends Error {
   override name = 'PermanentJobError';
+}
+
+/** A failure after which a retry is wanted at a time of its own, rather than after the queue's growing pause. */
+export class RetryJobError extends Error {
+  override name = 'RetryJobError';
+  readonly afterSeconds: number;
+
+  constructor(message: string, afterSeconds: number) {
+    super(message);
+    this.afterSeconds = afterSeconds;
+  }
 }
 
 export interface JobSpec {
@@ -56,7 +71,7 @@ export class JobQueue {
   private readonly logger: Logger;
   private readonly width: number;
   private kinds: Record<string, JobKind> = {};
-  private readonly running = new Map<string, { abort: AbortController; ended: Promise<void> }>();
+  private readonly running = new Map<string, { kind: string; abort: AbortController; ended: Promise<void> }>();
   private timer: NodeJS.Timeout | null = null;
   private stopped = true;
   private looking: Promise<void> | null = null;
@@ -142,6 +157,28 @@ export class JobQueue {
     return cancelled;
   }
 
+  /** True if a failed job of this kind may be tried again by hand. */
+  mayRetry(kind: string): boolean {
+    return (this.kinds[kind] as JobKind | undefined)?.retryable ?? false;
+  }
+
+  /**
+   * Queues a failed job again, with all its attempts; false if it has not failed or its kind cannot be tried again.
+   * @param alongside what belongs to it (its audit row), in the same transaction
+   */
+  async retry(jobId: string, alongside: (manager: EntityManager) => Promise<void>): Promise<boolean> {
+    const queued = await this.database.write(async (manager) => {
+      const job = await manager.findOneBy(Job, { id: jobId, status: 'failed' });
+      if (!job || !this.mayRetry(job.kind)) return false;
+      const fresh = { status: 'queued' as const, attempts: 0, runAfter: this.clock(), endedAt: null, progress: 0 };
+      await manager.update(Job, { id: jobId }, { ...fresh, progressText: 'Waiting to start again' });
+      await alongside(manager);
+      return true;
+    });
+    if (queued) this.wake();
+    return queued;
+  }
+
   /** Waits until nothing is queued for now and nothing runs (for tests and the demo's start). */
   async idle(): Promise<void> {
     for (;;) {
@@ -169,8 +206,15 @@ export class JobQueue {
   private async take(): Promise<void> {
     while (!this.stopped && this.running.size < this.width) {
       const now = this.clock();
+      const alone = [...this.running.values()]
+        .map(({ kind }) => kind)
+        .filter((kind) => (this.kinds[kind] as JobKind | undefined)?.oneAtATime);
       const next = await this.database.read.findOne(Job, {
-        where: { status: 'queued', runAfter: LessThanOrEqual(now) },
+        where: {
+          status: 'queued',
+          runAfter: LessThanOrEqual(now),
+          ...(alone.length > 0 ? { kind: Not(In(alone)) } : {}),
+        },
         order: { runAfter: 'ASC', createdAt: 'ASC' },
       });
       if (!next) return;
@@ -199,7 +243,7 @@ export class JobQueue {
           this.running.delete(job.id);
           this.wake();
         });
-      this.running.set(job.id, { abort, ended });
+      this.running.set(job.id, { kind: job.kind, abort, ended });
     }
   }
 
@@ -255,7 +299,7 @@ export class JobQueue {
     }
     await this.end(job, {
       status: 'queued',
-      runAfter: this.clock() + 5 * 4 ** (job.attempts - 1),
+      runAfter: this.clock() + (error instanceof RetryJobError ? error.afterSeconds : 5 * 4 ** (job.attempts - 1)),
       progressText: 'Failed, will be tried again',
       error: message,
     });

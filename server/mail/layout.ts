@@ -9,7 +9,7 @@ export interface MailContent {
 }
 
 /** Text as HTML. */
-function escapeHtml(text: string): string {
+export function escapeHtml(text: string): string {
   return text.replace(/[&<>"']/g, (character) => `&#${String(character.charCodeAt(0))};`);
 }
 

@@ -91,7 +91,8 @@ export function makeMailer({ smtpUrl, mailFrom }: Pick<Config, 'smtpUrl' | 'mail
   };
 }
 
-function readSender(text: string): { name: string; address: string } {
+/** The sender that MAIL_FROM states. */
+export function readSender(text: string): { name: string; address: string } {
   const named = /^"?([^"<>@]*?)"? *<([^<>@\s,;"]+@[^<>@\s,;"]+)>$/.exec(text);
   const bare = /^[^<>@\s,;"]+@[^<>@\s,;"]+$/.exec(text);
   if (!oneLine.test(text) || (!named && !bare)) {

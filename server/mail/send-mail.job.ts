@@ -41,6 +41,7 @@ export function enqueueMail(
 /** Sends a message; what the mail server refuses for good, and what has become too late, is not tried again. */
 export function makeMailKind({ mailer, clock }: Pick<Dependencies, 'mailer' | 'clock'>): JobKind {
   return {
+    retryable: true,
     async run({ job, payload, progress }) {
       const { mail, notAfter } = payloadSchema.parse(payload);
       if (notAfter !== null && clock() >= notAfter) {

@@ -31,13 +31,17 @@ export function workerUrl(here: string, name: string): URL {
 /**
  * Starts a pool of threads. They are made when first needed and kept for a minute of idleness, or for good: a thread that
  * has computed before answers several times faster than a new one, whose code is not compiled yet.
+ * @param threads at most
+ * @param options.nice how far the threads stand back behind the one that answers requests (Linux: added to their nice value);
+ *   without it a fit or an import on every core makes each request wait for its turn
  */
-export function makeSimulationPool(threads: number, { keepThreads = false } = {}): SimulationPool {
+export function makeSimulationPool(threads: number, { keepThreads = false, nice = 0 } = {}): SimulationPool {
   const fromSource = import.meta.url.endsWith('.ts');
   const piscina = new Piscina({
     minThreads: 0,
     maxThreads: threads,
     idleTimeout: keepThreads ? Infinity : 60_000,
+    niceIncrement: nice,
     execArgv: fromSource ? ['--import', 'tsx'] : [],
   });
   return {

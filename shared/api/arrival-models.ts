@@ -31,6 +31,13 @@ export const modelSummary = z.object({
   jobId: id.nullable(),
   /** The person who fitted it may not approve it. */
   fittedByCaller: z.boolean(),
+  /** What has changed since about the visits that it was fitted on; a new fit would not see them, or not so. */
+  sinceFit: z.object({
+    /** File names of logs withdrawn. */
+    withdrawnLogs: z.array(z.string()),
+    /** Outages and diversions declared within its time. */
+    gapsDeclared: z.int(),
+  }),
 });
 export type ModelSummary = z.infer<typeof modelSummary>;
 
@@ -107,9 +114,12 @@ export const fitModel = defineContract({
   method: 'post',
   path: '/api/sites/:siteId/arrival-models',
   access: 'arrival-model:fit',
-  summary: 'Fit a candidate model on the accepted logs, in the background.',
+  summary: 'Fit a candidate model on the accepted logs, or on some of them, in the background.',
   params: siteParams,
-  body: z.object({}),
+  body: z.object({
+    /** Only these logs, as if there were no others; left out: all that count. */
+    logIds: z.array(id).min(1, 'Choose a log').max(1000).optional(),
+  }),
   status: 202,
   reply: z.object({ modelId: id, jobId: id }),
 });

@@ -10,8 +10,8 @@ export const id = z
 /** An instant, UTC seconds. */
 export const instant = z.int().min(0).max(4_102_444_800);
 
-/** The same in an address, where everything is text. */
-export const queryInstant = z.coerce.number<number>().int().min(0).max(4_102_444_800);
+/** The same in an address, where everything is text. A week into 1970 at least: nights and shifts about it have instants too. */
+export const queryInstant = z.coerce.number<number>().int().min(604_800).max(4_102_444_800);
 
 export const siteParams = z.object({ siteId: id });
 

@@ -61,7 +61,14 @@ export const outlookResult = z.object({
   someAreaShort: z.array(chance),
   someAreaShortByShift: z.array(chance),
   arrivalsSoFar: z
-    .object({ counted: z.int(), expected: z.number(), p10: z.number(), p90: z.number(), factor: z.number() })
+    .object({
+      counted: z.int(),
+      expected: z.number(),
+      p10: z.number(),
+      p90: z.number(),
+      factor: z.number(),
+      move: z.number().optional(),
+    })
     .nullable(),
   lengthOfStay: z.enum(['exponential', 'empirical']),
   replications: z.int(),
@@ -73,6 +80,8 @@ export const outlookTrigger = z.enum([
   'model approved',
   'timetable',
   'log accepted',
+  'settings changed',
+  'recomputed',
 ]);
 
 /** An issued outlook as it is kept: never changed once issued. */
@@ -132,6 +141,7 @@ export const caution = z.object({
     'area not counted',
     'gap in the log',
     'unusual day',
+    'model drifted',
   ]),
   text: z.string(),
 });

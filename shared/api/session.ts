@@ -16,6 +16,10 @@ export const session = z.object({
   person: z.object({ id, name: z.string(), email: z.string() }).nullable(),
   /** Sites at which the person holds a role, in the order of their names. */
   sites: z.array(sessionSite),
+  /** Somebody is signed in here, but the session locked itself: only a fresh sign-in opens it. */
+  locked: z.boolean(),
+  /** Seconds without use after which a session locks. */
+  idleSeconds: z.int(),
   /** Roles held for the installation (administrator). */
   installationRoles: z.array(z.enum(roles)),
   installationPermissions: z.array(z.enum(permissions)),
@@ -68,4 +72,23 @@ export const signOut = defineContract({
   access: 'signed-in',
   summary: 'Ends the session here; the reply says where to end it at the identity provider.',
   reply: z.object({ redirectTo: z.string() }),
+});
+
+export const signOutEverywhere = defineContract({
+  id: 'signOutEverywhere',
+  method: 'post',
+  path: '/auth/sign-out-everywhere',
+  access: 'signed-in',
+  summary: 'Ends every session of the person who asks, on every device.',
+  reply: z.object({ redirectTo: z.string() }),
+});
+
+export const lockSession = defineContract({
+  id: 'lockSession',
+  method: 'post',
+  path: '/auth/lock',
+  access: 'signed-in',
+  summary: 'Locks the session: the next request needs a fresh sign-in.',
+  status: 204,
+  reply: z.null(),
 });

@@ -20,6 +20,10 @@ export const careArea = z.object({
   alertLimit: z.number().min(0.01).max(0.99),
   /** The site's own escalation text for this area. */
   escalationNote: z.string().max(2000),
+  /** Staffed beds that one nurse looks after, stated by the site; null: not stated. */
+  bedsPerNurse: z.number().min(0.25).max(50).nullable(),
+  /** The areas that may be lent staffed beds of this one. */
+  lendsTo: z.array(id),
 });
 export type CareArea = z.infer<typeof careArea>;
 
@@ -29,6 +33,8 @@ export const shift = z.object({
   startMinute: minuteOfDay,
   /** May be earlier than the start: the shift then ends on the next day. */
   endMinute: minuteOfDay,
+  /** Hours before its start until which staff can still be booked for it; null: not stated. */
+  leadTimeHours: z.int().min(0).max(720).nullable(),
 });
 export type Shift = z.infer<typeof shift>;
 
@@ -40,6 +46,10 @@ export const site = z.object({
   country: z.string(),
   region: z.string().nullable(),
   planningRisk: z.number().min(0.01).max(0.5),
+  /** Minutes of the local day at which the site meets over its beds, ascending; empty: no such meeting. */
+  bedMeetingMinutes: z.array(minuteOfDay),
+  /** A wait for a bed space past this is too long by the site's own rule, minutes; null: not stated. */
+  waitLimitMinutes: z.int().min(1).max(1440).nullable(),
   areas: z.array(careArea),
   shifts: z.array(shift),
 });

@@ -45,7 +45,12 @@ export const getStaffedBeds = defineContract({
   reply: staffedBeds,
 });
 
-export const savePlanBody = z.object({ areas: z.array(planArea).min(1).max(100), reason: note.min(3, 'Say why') });
+export const savePlanBody = z.object({
+  areas: z.array(planArea).min(1).max(100),
+  reason: note.min(3, 'Say why'),
+  /** The version that was read before the change, 0 for none: if a newer one was saved meanwhile, this is refused (409). */
+  basedOnVersion: z.int().min(0).optional(),
+});
 
 export const savePlan = defineContract({
   id: 'saveStaffedBedPlan',
@@ -78,4 +83,100 @@ export const changeBedsNow = defineContract({
   body: changeBedsBody,
   status: 201,
   reply: z.object({ changeId: id, outlookId: id.nullable() }),
+});
+
+const planVersion = z.object({ version: z.int(), savedAt: instant, savedBy: z.string(), reason: z.string() });
+export type PlanVersion = z.infer<typeof planVersion>;
+
+export const listPlanVersions = defineContract({
+  id: 'listStaffedBedPlanVersions',
+  method: 'get',
+  path: '/api/sites/:siteId/staffed-beds/versions',
+  access: 'outlook:read',
+  summary: 'Every version of the staffed-bed plan, newest first: who saved it, when and why.',
+  params: siteParams,
+  reply: z.object({ versions: z.array(planVersion) }),
+});
+
+export const getPlanVersion = defineContract({
+  id: 'getStaffedBedPlanVersion',
+  method: 'get',
+  path: '/api/sites/:siteId/staffed-beds/versions/:version',
+  access: 'outlook:read',
+  summary: 'A version of the staffed-bed plan, as it was saved.',
+  params: siteParams.extend({ version: z.coerce.number<number>().int().min(1) }),
+  reply: planVersion.extend({ areas: z.array(planArea) }),
+});
+
+/** The longest that one dated exception may last, days. */
+export const exceptionDays = 62;
+
+export const addBedExceptionBody = z
+  .object({
+    areaId: id,
+    fromAt: instant,
+    untilAt: instant,
+    beds,
+    reason: note.min(3, 'Say why'),
+  })
+  .refine(({ fromAt, untilAt }) => untilAt > fromAt, { message: 'The end must lie after the start', path: ['untilAt'] })
+  .refine(({ fromAt, untilAt }) => untilAt - fromAt <= exceptionDays * 86_400, {
+    message: `At most ${String(exceptionDays)} days: for longer, change the plan`,
+    path: ['untilAt'],
+  });
+export type AddBedExceptionBody = z.infer<typeof addBedExceptionBody>;
+
+export const addBedException = defineContract({
+  id: 'addStaffedBedException',
+  method: 'post',
+  path: '/api/sites/:siteId/staffed-bed-exceptions',
+  access: 'staffed-beds:plan',
+  summary: 'Plan other staffed beds for one area between two instants: a dated exception.',
+  params: siteParams,
+  body: addBedExceptionBody,
+  status: 201,
+  reply: z.object({ changeId: id, outlookId: id.nullable() }),
+});
+
+export const removeBedException = defineContract({
+  id: 'removeStaffedBedException',
+  method: 'delete',
+  path: '/api/sites/:siteId/staffed-bed-exceptions/:changeId',
+  access: 'staffed-beds:plan',
+  summary: 'Take a dated exception back; one that has begun ends now.',
+  params: siteParams.extend({ changeId: id }),
+  reply: z.object({ outlookId: id.nullable() }),
+});
+
+export const requiredBeds = z.object({
+  /** When the week outlook was issued; null before the first. */
+  issuedAt: instant.nullable(),
+  planningRisk: z.number(),
+  areas: z.array(
+    z.object({
+      areaId: id,
+      shifts: z.array(
+        z.object({
+          name: z.string(),
+          from: instant,
+          to: instant,
+          /** Constant staffed beds over the shift that keep the chance of any shortfall at the planning risk, in the area's steps. */
+          beds: z.int(),
+          /** Of those, how many cannot be had because the bed spaces do not exist. */
+          doNotExist: z.int(),
+        }),
+      ),
+    }),
+  ),
+});
+export type RequiredBeds = z.infer<typeof requiredBeds>;
+
+export const getRequiredBeds = defineContract({
+  id: 'getRequiredBeds',
+  method: 'get',
+  path: '/api/sites/:siteId/staffed-beds/required',
+  access: 'outlook:read',
+  summary: 'Beds required at the planning risk by area and shift, from the newest week outlook.',
+  params: siteParams,
+  reply: requiredBeds,
 });

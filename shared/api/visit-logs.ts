@@ -104,7 +104,7 @@ const leftOut = z.object({
   kinds: z.array(z.object({ problem: z.string().min(1).max(60), rows: z.int().min(1) })).max(100),
 });
 
-export const visitLogStatus = z.enum(['loading', 'ready', 'withdrawn', 'failed']);
+export const visitLogStatus = z.enum(['loading', 'ready', 'withdrawn', 'failed', 'purged']);
 
 export const visitLogSummary = z.object({
   id,
@@ -113,6 +113,8 @@ export const visitLogSummary = z.object({
   rows: count,
   /** Arrivals of the log lie in it, UTC seconds. */
   period: z.object({ from: instant, to: instant }),
+  /** Visits that arrived before it were deleted after the retention time; null if none was. */
+  purgedTo: instant.nullable(),
   /** The parts of the period that no newer log covers: only visits that arrived in them count. */
   counts: z.array(z.object({ from: instant, to: instant })),
   leftOutRows: count,

@@ -1,9 +1,6 @@
 import { instantOfLocal } from './shift-times.ts';
 import type { Zone } from './zoned-time.ts';
 
-/** Minutes of the local day at which a site meets over its beds, where it has not set its own. Common practice, no source. */
-export const usualMeetingMinutes: readonly number[] = [10 * 60, 16 * 60];
-
 /** A meeting stays the one at hand for this long after it begins, seconds. */
 const meetingLasts = 45 * 60;
 

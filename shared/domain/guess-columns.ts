@@ -13,7 +13,10 @@ export interface ColumnSketch {
 }
 
 const rules: Record<VisitColumn, { isTime: boolean; words: readonly RegExp[] }> = {
-  arrival_at: { isTime: true, words: [/\barriv\w*/, /\b(?:registration|registered|check ?in|presented|attendance)\b/] },
+  arrival_at: {
+    isTime: true,
+    words: [/\barriv\w*/, /\b(?:registration|registered|check ?in|booked in|presented|attendance)\b/],
+  },
   bed_space_at: {
     isTime: true,
     words: [/\b(?:bed space|roomed|cubicle)\b/, /\b(?:bed|room|space|placed|bay|bedded)\b/],

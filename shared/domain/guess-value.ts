@@ -20,7 +20,10 @@ const words: readonly [RegExp, Disposition][] = [
     /\b(?:lwbs|lwbt|dnw|dna|ama|left|walked out|absconded|did not wait|self discharge\w*|eloped)\b/,
     'left before treatment',
   ],
-  [/\b(?:transfer\w*|other (?:hospital|facility|site)|another hospital)\b/, 'transferred'],
+  [
+    /\b(?:transfer\w*|other (?:hospital|facility|site|healthcare facility)|another hospital|psychiatric hospital|rehabilitation|skilled nursing|hospice|long term care)\b/,
+    'transferred',
+  ],
   [/\b(?:admi\w*|inpatient|ward|icu|itu|theatre)\b/, 'admitted'],
   [/\b(?:home|discharge\w*|usual residence|routine)\b/, 'home'],
 ];
@@ -29,6 +32,8 @@ const words: readonly [RegExp, Disposition][] = [
 export function guessDisposition(text: string): number | null {
   const wanted = plain(text);
   if (/^(?:unknown|not known|not recorded|none|n a|null|)$/.test(wanted)) return notRecorded;
+  // A death ends the stay, and is none of the four.
+  if (/\b(?:died|death|dead|deceased|expired)\b/.test(wanted)) return notRecorded;
   const found = words.find(([rule]) => rule.test(wanted));
   return found ? dispositionCode[found[1]] : null;
 }

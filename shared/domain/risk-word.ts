@@ -27,3 +27,12 @@ export function riskStep(chance: number): RiskStep {
 export function riskWord(chance: number): RiskWord {
   return riskWords[riskStep(chance) - 1];
 }
+
+/** What a chance means over many nights like this one; it follows from the printed figure. */
+export function chanceInNights(chance: number): string {
+  const printed = Math.round(chance * 100);
+  if (printed < 5) return 'fewer than 1 night in 20 like this one';
+  if (printed > 95) return 'more than 19 nights in 20 like this one';
+  const nights = Math.max(1, Math.min(9, Math.round(printed / 10)));
+  return `about ${String(nights)} ${nights === 1 ? 'night' : 'nights'} in 10 like this one`;
+}

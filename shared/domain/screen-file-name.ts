@@ -10,8 +10,8 @@ export const neutralFileName = 'visit-log.csv';
  */
 export function screenFileName(name: string, now: number): string {
   const base = (name.split(/[\\/]/).at(-1) ?? '').replace(/\p{C}/gu, '').trim().slice(0, 120);
-  const stem = base.replace(/(?:\.(?:csv|tsv|txt|gz))+$/i, '');
+  const stem = base.replace(/(?:\.(?:csv|tsv|txt|xlsx|ndjson|jsonl|gz))+$/i, '');
   if (stem === '') return neutralFileName;
-  const parts = [stem, stem.replace(/[_+]+/g, ' '), ...stem.split(/[_\s]+/)];
+  const parts = [stem, stem.replace(/[_+]+/g, ' '), ...stem.split(/[_\s]+/), ...stem.split(/[-_\s]+/)];
   return parts.some((part) => findIdentifier(part, now)?.certainty === 'sure') ? neutralFileName : base;
 }

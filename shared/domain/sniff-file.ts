@@ -5,12 +5,17 @@ const signatures: readonly [bytes: readonly number[], message: string][] = [
   ],
   [
     [0xd0, 0xcf, 0x11, 0xe0],
-    'This is an old spreadsheet workbook, not CSV. Open it and save the sheet as CSV (UTF-8).',
+    'This is an old spreadsheet workbook (.xls), or one locked with a password. Open it and save the sheet as CSV (UTF-8) or as .xlsx without a password.',
   ],
   [[0x25, 0x50, 0x44, 0x46], 'This is a PDF document, not CSV. Export the visits as CSV.'],
   [[0xff, 0xfe], 'This file is saved as UTF-16. Save it as CSV (UTF-8).'],
   [[0xfe, 0xff], 'This file is saved as UTF-16. Save it as CSV (UTF-8).'],
 ];
+
+/** True for the first bytes of a zip archive, as an .xlsx workbook is. */
+export function isZip(start: Uint8Array): boolean {
+  return start[0] === 0x50 && start[1] === 0x4b && start[2] === 0x03 && start[3] === 0x04;
+}
 
 /** True for the first bytes of a gzip file (RFC 1952). */
 export function isGzip(start: Uint8Array): boolean {

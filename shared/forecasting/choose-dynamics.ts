@@ -44,11 +44,11 @@ export function chooseDynamics(
   let bestScore = Infinity;
   let from: readonly number[] = [];
   const scores: ChosenDynamics['scores'] = [];
+  const hours = hourly.expected.reduce((n, expected) => n + (expected > 0 ? 1 : 0), 0);
   for (const structure of candidates) {
     const series = withEffectsKnown(gatherBlocks(hourly, blockCuts[structure], index, keys), effects);
     const found = findDynamics(series, structure, given, from);
     from = found.x;
-    const hours = hourly.expected.reduce((n, expected) => n + (expected > 0 ? 1 : 0), 0);
     const score = -(found.logProbability + series.withinLogProbability) / Math.max(hours, 1);
     scores.push({ structure, logScore: score });
     if (score < bestScore) {
@@ -57,7 +57,16 @@ export function chooseDynamics(
     }
   }
   if (!best) throw new RangeError('no structure fits: the log score of every candidate is not a number');
-  return best;
+  return given.factorVariance === undefined ? { ...best, factorVariance: unbiased(best.factorVariance, hours) } : best;
+}
+
+/**
+ * The profile was fitted to the same days, and took their seven weekday levels from what varies: n / (n − 7) gives it back, as
+ * restricted maximum likelihood does (Patterson & Thompson 1971).
+ */
+function unbiased(variance: number, hours: number): number {
+  const days = hours / 24;
+  return variance * (days / Math.max(days - 7, 7));
 }
 
 /** The series with its effects multiplied into what is expected. */

@@ -5,6 +5,7 @@ import { firstHours } from './first-hours.ts';
 import { fitArrivals } from './fit-arrivals.ts';
 import { fitStays } from './fit-stays.ts';
 import { histogramForecast } from './histogram-forecast.ts';
+import { knownAt } from './known-visits.ts';
 import type { OutlookInput } from './outlook-types.ts';
 import { prepareNeed } from './prepare-need.ts';
 import { presentByHour } from './present-by-hour.ts';
@@ -146,24 +147,6 @@ export function evaluateNeed(input: {
 function utcOf(zone: Zone, counts: HourlyCounts, place: number): number {
   const local = (counts.firstLocalHour + place) * 3600;
   return zone.fromLocal(local)[0] ?? zone.fromLocal(local + 3600)[0];
-}
-
-/** Visits as they were known at an instant: those arrived, with departures still to come left out. */
-function knownAt(visits: VisitTable, at: number): VisitTable {
-  const rows: number[] = [];
-  for (let i = 0; i < visits.length; i += 1) if (visits.arrivalAt[i] < at) rows.push(i);
-  const pick = (values: Float64Array): Float64Array =>
-    Float64Array.from(rows, (i) => (values[i] < at ? values[i] : NaN));
-  return {
-    length: rows.length,
-    area: Uint8Array.from(rows, (i) => visits.area[i]),
-    arrivalAt: pick(visits.arrivalAt),
-    bedSpaceAt: pick(visits.bedSpaceAt),
-    admissionDecisionAt: pick(visits.admissionDecisionAt),
-    departureAt: pick(visits.departureAt),
-    disposition: Uint8Array.from(rows, (i) => (visits.departureAt[i] < at ? visits.disposition[i] : 255)),
-    byAmbulance: Uint8Array.from(rows, (i) => visits.byAmbulance[i]),
-  };
 }
 
 /** The 90 % point of each area's past need, looked at every five hours: beds that are short one time in ten. */

@@ -1,4 +1,5 @@
 import { gammaPoissonQuantile } from '../stochastic/gamma-poisson.ts';
+import type { LiveArrivals } from './arrival-model.ts';
 import { finishOutlook } from './finish-outlook.ts';
 import type { OutlookInput, OutlookResult } from './outlook-types.ts';
 import { prepareNeed } from './prepare-need.ts';
@@ -7,6 +8,7 @@ import type { NeedPart } from './need-part.ts';
 import { expectedRates } from './rate-draws.ts';
 import { makeRateGrid } from './rate-grid.ts';
 import { simulateNeedPart } from './simulate-need.ts';
+import { withCalendar } from './with-calendar.ts';
 import { makeZone } from '../domain/zoned-time.ts';
 
 /** What the parts of an outlook and its end stand on; made once a thread. */
@@ -17,7 +19,8 @@ export interface PreparedOutlook extends PreparedNeed {
 
 /** Makes ready for the replications of an outlook. @throws RangeError naming a bad input. Cost: a few ms. */
 export function prepareOutlook(model: OutlookModel, input: OutlookInput): PreparedOutlook {
-  return { ...prepareNeed(model, input), input, arrivalsSoFar: arrivalsSoFar(model, input) };
+  const prepared = prepareNeed(model, input);
+  return { ...prepared, input, arrivalsSoFar: arrivalsSoFar(model, input, prepared.live) };
 }
 
 /** One thread's share of an outlook: replications [from, to). The parts of any split add up to the same result. */
@@ -40,20 +43,35 @@ export function issueOutlook(model: OutlookModel, input: OutlookInput): OutlookR
   return outlookFromParts(prepared, [simulateOutlookPart(prepared, 0, input.replications)]);
 }
 
-/** How the arrivals counted so far compare with what the model expected before it knew them. */
-function arrivalsSoFar(model: OutlookModel, input: OutlookInput): OutlookResult['arrivalsSoFar'] {
+/** "Tonight" of the line that says what a count of arrivals does to the forecast. */
+const movedSeconds = 12 * 3600;
+
+/** How the arrivals counted so far compare with what the model expected before it knew them, and what they do to the hours ahead. */
+function arrivalsSoFar(
+  model: OutlookModel,
+  input: OutlookInput,
+  live: LiveArrivals | null,
+): OutlookResult['arrivalsSoFar'] {
   const since = input.arrivalsSince;
   if (since === null || !(since.to > since.from)) return null;
   const grid = makeRateGrid(makeZone(input.timeZone), since.from, since.to);
-  const rates = expectedRates(model.arrival, grid, model.calendar);
+  const { arrival, calendar } = withCalendar(model, input);
+  const rates = expectedRates(arrival, grid, calendar);
   const expected = rates.reduce((sum, rate) => rate.reduce((all, value, k) => all + value * grid.hours[k], sum), 0);
   if (!(expected > 0)) return null;
   const variance = Math.expm1(model.arrival.factorVariance);
+  const ahead = makeRateGrid(makeZone(input.timeZone), input.issuedAt, input.issuedAt + movedSeconds);
+  const sum = (given?: LiveArrivals) =>
+    expectedRates(arrival, ahead, calendar, given).reduce(
+      (all, rate) => rate.reduce((part, value, k) => part + value * ahead.hours[k], all),
+      0,
+    );
   return {
     counted: since.count,
     expected,
     p10: gammaPoissonQuantile(0.1, expected, variance),
     p90: gammaPoissonQuantile(0.9, expected, variance),
     factor: since.count / expected,
+    ...(live ? { move: sum(live) / sum() } : {}),
   };
 }

@@ -1,4 +1,5 @@
 import type { BedStep } from '../domain/bed-schedule.ts';
+import type { CalendarDay } from './visit-table.ts';
 
 export type { BedStep };
 
@@ -40,6 +41,8 @@ export interface OutlookInput {
   shifts: { name: string; from: number; to: number }[];
   /** Arrivals counted since `from` (live update), if known. */
   arrivalsSince: { from: number; to: number; count: number } | null;
+  /** Unusual days about the outlook, as known when it was issued; they stand in place of those known at the fit. Absent in outlooks issued before it was stored. */
+  calendar?: CalendarDay[];
   seed: number;
   replications: number;
 }
@@ -134,8 +137,18 @@ export interface OutlookResult {
   someAreaShort: Chance[];
   /** The same at any time during each shift. */
   someAreaShortByShift: Chance[];
-  /** How the arrivals so far compare with what the model expected, if they were counted. */
-  arrivalsSoFar: { counted: number; expected: number; p10: number; p90: number; factor: number } | null;
+  /**
+   * How the arrivals so far compare with what the model expected, if they were counted. `move`: expected arrivals of the next
+   * twelve hours given the count, over those without it; absent in outlooks issued before it was stored.
+   */
+  arrivalsSoFar: {
+    counted: number;
+    expected: number;
+    p10: number;
+    p90: number;
+    factor: number;
+    move?: number;
+  } | null;
   /** Which length of stay was used. */
   lengthOfStay: 'exponential' | 'empirical';
   replications: number;

@@ -21,6 +21,7 @@ import { arrivalMix, meansByFactor, startFactors, startGroups } from './start-gr
 import { chooseStayLaw } from './stay-choice.ts';
 import { endOfTonight } from './tonight-span.ts';
 import type { CalendarDay } from './visit-table.ts';
+import { withCalendar } from './with-calendar.ts';
 
 /** The fitted models that an outlook stands on. */
 export interface OutlookModel {
@@ -87,7 +88,7 @@ function liveOf(input: OutlookInput, zone: Zone, startAt: number): LiveArrivals 
  * @throws RangeError naming a bad input. Cost: a few ms.
  */
 export function prepareNeed(model: OutlookModel, input: OutlookInput): PreparedNeed {
-  const { arrival, stay, calendar } = model;
+  const { arrival, stay, calendar } = withCalendar(model, input);
   checkOutlookInput(input, stay.areas);
   if (arrival.areas.length !== stay.areas) {
     throw new RangeError(`arrival model has ${arrival.areas.length} areas, stay model ${stay.areas}`);

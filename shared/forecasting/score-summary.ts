@@ -101,7 +101,11 @@ export function weekResampledError(
     const known = byWeek.get(week) ?? { sum: 0, n: 0 };
     byWeek.set(week, { sum: known.sum + value, n: known.n + 1 });
   }
-  const weeks = [...byWeek.values()];
+  return resampledError([...byWeek.values()], resamples, seed);
+}
+
+/** The same from each week's sum and number of cases. */
+export function resampledError(weeks: readonly { sum: number; n: number }[], resamples = 500, seed = 1): number | null {
   if (weeks.length < 2) return null;
   const stream = makeStream(seed, 7);
   let first = 0;

@@ -6,14 +6,22 @@ import { PanelBoundary } from '../components/PanelBoundary.tsx';
 import { ThemeSwitch } from '../components/ThemeSwitch.tsx';
 import { useSession } from '../features/sign-in/session.ts';
 import type { SessionSite } from '../features/sign-in/session.ts';
+import { LockButton } from '../features/sign-in/LockButton.tsx';
 import { SignOutButton } from '../features/sign-in/SignOutButton.tsx';
+import { SignOutEverywhere } from '../features/sign-in/SignOutEverywhere.tsx';
 import { classNames } from '../lib/class-names.ts';
 import { lastSite } from '../lib/last-site.ts';
+import { FirstSteps } from './FirstSteps.tsx';
 import { paths } from './paths.ts';
 import { Shortcuts } from './Shortcuts.tsx';
 import { SiteSwitcher } from './SiteSwitcher.tsx';
 import { SiteTimes } from './SiteTimes.tsx';
 import { UnsavedGuard } from './UnsavedGuard.tsx';
+
+/** The letters of the places that lie along time; the others stand apart. */
+const alongTime = new Set(['t', 'w', 'i', 'r']);
+/** Of those apart, what stands in the head of a wide screen; the rest is one press away. */
+const inHead = new Set(['l', 'm', 'b', 'e']);
 
 function useCurrentSite(): SessionSite | undefined {
   const { siteId } = useParams();
@@ -43,13 +51,33 @@ export function Shell() {
     const may = (permission: Permission) => site?.permissions.includes(permission) ?? false;
     return [
       ...(site && may('outlook:read') ? [{ key: 't', name: 'Tonight', to: paths.tonight(site.id) }] : []),
+      ...(site && may('outlook:read') ? [{ key: 'w', name: 'Week ahead', to: paths.weekAhead(site.id) }] : []),
+      ...(site && may('scenario:read') ? [{ key: 'i', name: 'What if', to: paths.whatIf(site.id) }] : []),
+      ...(site && may('outlook:read') ? [{ key: 'r', name: 'Track record', to: paths.trackRecord(site.id) }] : []),
       ...(site && may('visit-log:read') ? [{ key: 'l', name: 'Logs', to: paths.visitLogs(site.id) }] : []),
       ...(site && may('arrival-model:read')
         ? [{ key: 'm', name: 'Arrival model', to: paths.arrivalModels(site.id) }]
         : []),
-      ...(session.installationPermissions.includes('installation:administer')
-        ? [{ key: 'k', name: 'Machine tokens', to: paths.tokens() }]
+      ...(site && may('outlook:read')
+        ? [
+            { key: 'b', name: 'Staffed beds', to: paths.staffedBeds(site.id) },
+            { key: 's', name: 'Site settings', to: paths.siteSettings(site.id) },
+          ]
         : []),
+      ...(site && may('brief:read') ? [{ key: 'e', name: 'Briefs', to: paths.briefs(site.id) }] : []),
+      ...(session.installationPermissions.includes('installation:administer')
+        ? [
+            { key: 'j', name: 'Sites', to: paths.installationSites() },
+            { key: 'p', name: 'People', to: paths.people() },
+            { key: 'k', name: 'Machine tokens', to: paths.tokens() },
+            { key: 'v', name: 'Server status', to: paths.serverStatus() },
+          ]
+        : []),
+      ...(session.installationPermissions.includes('audit-log:read-all')
+        ? [{ key: 'a', name: 'Audit trail', to: paths.audit() }]
+        : site && may('audit-log:read-site')
+          ? [{ key: 'a', name: 'Audit trail', to: paths.siteAudit(site.id) }]
+          : []),
       { key: 'h', name: 'How the numbers are made', to: paths.howNumbersAreMade() },
     ];
   }, [site, session]);
@@ -60,18 +88,14 @@ export function Shell() {
     else mainRef.current?.focus({ preventScroll: true });
   }, [location.pathname]);
 
-  const apart = (
-    <>
-      {places
-        .filter(({ key }) => key !== 't')
-        .map(({ key, name, to }) => (
-          <NavLink key={key} to={to} className={sideLink}>
-            {name}
-          </NavLink>
-        ))}
-      <ThemeSwitch />
-    </>
-  );
+  const apart = (shown: (key: string) => boolean) =>
+    places
+      .filter(({ key }) => !alongTime.has(key) && shown(key))
+      .map(({ key, name, to }) => (
+        <NavLink key={key} to={to} className={sideLink}>
+          {name}
+        </NavLink>
+      ));
 
   const keysButton = (
     <button type="button" className="link block min-h-11 cursor-pointer font-semibold text-ink2" onClick={listKeys}>
@@ -92,11 +116,14 @@ export function Shell() {
       >
         Skip to the page
       </a>
-      <header className="page-pad flex min-h-14 items-center gap-x-3 pt-1 sm:gap-x-6 print:hidden">
+      <header className="page-pad flex min-h-14 items-center gap-x-3 pt-1 max-sm:flex-wrap sm:gap-x-6 print:hidden">
         <SiteSwitcher site={site} sites={session.sites} />
-        <nav aria-label="Places along time" className="flex flex-1 flex-wrap items-center gap-x-6">
+        <nav
+          aria-label="Places along time"
+          className="flex flex-1 items-center gap-x-6 whitespace-nowrap max-sm:order-last max-sm:w-full max-sm:flex-none max-sm:justify-between max-sm:gap-x-3 sm:flex-wrap"
+        >
           {places
-            .filter(({ key }) => key === 't')
+            .filter(({ key }) => alongTime.has(key))
             .map(({ key, name, to }) => (
               <NavLink
                 key={key}
@@ -114,27 +141,31 @@ export function Shell() {
               </NavLink>
             ))}
         </nav>
-        <nav aria-label="More" className="hidden items-center gap-6 text-side xl:flex">
-          {apart}
-          <Menu label={session.person.name}>
-            <p className="text-quiet text-ink2">{session.person.email}</p>
-            {keysButton}
-            <SignOutButton className="mt-3 w-full" />
-          </Menu>
+        <nav aria-label="Beside time" className="hidden items-center gap-6 text-side xl:flex">
+          {apart((key) => inHead.has(key))}
         </nav>
-        <div className="text-side xl:hidden">
+        <div className="text-side max-sm:ml-auto">
           <Menu label="More">
             <nav aria-label="More" className="flex flex-col items-start">
-              {apart}
+              <span className="contents xl:hidden">{apart((key) => inHead.has(key))}</span>
+              {apart((key) => !inHead.has(key))}
             </nav>
+            <ThemeSwitch />
             {keysButton}
             <p className="mt-2 border-t border-hair pt-3 font-bold">{session.person.name}</p>
             <p className="text-quiet text-ink2">{session.person.email}</p>
+            <LockButton className="mt-3 w-full" />
             <SignOutButton className="mt-3 w-full" />
+            <SignOutEverywhere />
           </Menu>
         </div>
       </header>
       {site ? <SiteTimes siteName={site.name} timeZone={site.timeZone} now={session.now} /> : null}
+      <FirstSteps
+        personId={session.person.id}
+        roles={[...new Set([...(site?.roles ?? []), ...session.installationRoles])]}
+        siteId={site?.id ?? ''}
+      />
       <main
         id="main"
         ref={mainRef}

@@ -9,6 +9,7 @@ import type { Session } from '../../shared/api/session.ts';
 import { onSignedOut } from '../lib/api-client.ts';
 import { claimTab } from '../lib/tab-owner.ts';
 import { SignedOutPage } from '../pages/SignedOutPage.tsx';
+import { IdleLock } from './IdleLock.tsx';
 import { paths } from './paths.ts';
 
 /**
@@ -62,7 +63,11 @@ export function SignInGate() {
   const signedOut = !session;
   return (
     <>
-      {signedOut ? <SignedOutPage returnTo={here} /> : null}
+      {signedOut ? (
+        <SignedOutPage returnTo={here} locked={query.data.locked} />
+      ) : (
+        <IdleLock idleSeconds={session.idleSeconds} />
+      )}
       <SessionProvider value={session ?? lastSession}>
         <div key={personId} hidden={signedOut}>
           <Outlet />

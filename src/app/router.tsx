@@ -45,8 +45,28 @@ export function makeRouter() {
                   lazy: async () => ({ Component: (await import('../pages/TonightThenPage.tsx')).TonightThenPage }),
                 },
                 {
+                  path: 'week',
+                  lazy: async () => ({ Component: (await import('../pages/WeekAheadPage.tsx')).WeekAheadPage }),
+                },
+                {
+                  path: 'what-if',
+                  lazy: async () => ({ Component: (await import('../pages/WhatIfPage.tsx')).WhatIfPage }),
+                },
+                {
+                  path: 'track-record',
+                  lazy: async () => ({ Component: (await import('../pages/TrackRecordPage.tsx')).TrackRecordPage }),
+                },
+                {
                   path: 'handover',
                   lazy: async () => ({ Component: (await import('../pages/HandoverPage.tsx')).HandoverPage }),
+                },
+                {
+                  path: 'beds',
+                  lazy: async () => ({ Component: (await import('../pages/StaffedBedsPage.tsx')).StaffedBedsPage }),
+                },
+                {
+                  path: 'settings',
+                  lazy: async () => ({ Component: (await import('../pages/SiteSettingsPage.tsx')).SiteSettingsPage }),
                 },
                 {
                   path: 'logs',
@@ -55,6 +75,10 @@ export function makeRouter() {
                 {
                   path: 'logs/new',
                   lazy: async () => ({ Component: (await import('../pages/NewVisitLogPage.tsx')).NewVisitLogPage }),
+                },
+                {
+                  path: 'logs/guide',
+                  lazy: async () => ({ Component: (await import('../pages/VisitLogGuidePage.tsx')).VisitLogGuidePage }),
                 },
                 {
                   path: 'logs/:logId',
@@ -69,8 +93,20 @@ export function makeRouter() {
                   lazy: async () => ({ Component: (await import('../pages/ArrivalModelPage.tsx')).ArrivalModelPage }),
                 },
                 {
+                  path: 'briefs',
+                  lazy: async () => ({ Component: (await import('../pages/BriefsPage.tsx')).BriefsPage }),
+                },
+                {
+                  path: 'briefs/:briefId',
+                  lazy: async () => ({ Component: (await import('../pages/BriefPage.tsx')).BriefPage }),
+                },
+                {
                   path: 'tokens',
                   lazy: async () => ({ Component: (await import('../pages/TokensPage.tsx')).TokensPage }),
+                },
+                {
+                  path: 'audit',
+                  lazy: async () => ({ Component: (await import('../pages/AuditPage.tsx')).AuditPage }),
                 },
                 { path: '*', element: <NotFoundPage /> },
               ],
@@ -79,6 +115,46 @@ export function makeRouter() {
               path: '/tokens',
               lazy: async () => ({ Component: (await import('../pages/TokensPage.tsx')).TokensPage }),
             },
+            {
+              path: '/installation/sites',
+              lazy: async () => ({
+                Component: (await import('../pages/InstallationSitesPage.tsx')).InstallationSitesPage,
+              }),
+            },
+            {
+              path: '/installation/sites/new',
+              lazy: async () => ({ Component: (await import('../pages/NewSitePage.tsx')).NewSitePage }),
+            },
+            {
+              path: '/installation/sites/:installationSiteId',
+              lazy: async () => ({
+                Component: (await import('../pages/InstallationSitePage.tsx')).InstallationSitePage,
+              }),
+            },
+            {
+              path: '/status',
+              lazy: async () => ({ Component: (await import('../pages/ServerStatusPage.tsx')).ServerStatusPage }),
+            },
+            {
+              path: '/people',
+              lazy: async () => ({ Component: (await import('../pages/PeoplePage.tsx')).PeoplePage }),
+            },
+            {
+              path: '/people/:personId',
+              lazy: async () => ({ Component: (await import('../pages/PersonPage.tsx')).PersonPage }),
+            },
+            {
+              path: '/audit',
+              lazy: async () => ({ Component: (await import('../pages/AuditPage.tsx')).AuditPage }),
+            },
+            ...(import.meta.env.DEV
+              ? [
+                  {
+                    path: '/parts',
+                    lazy: async () => ({ Component: (await import('../pages/PartsPage.tsx')).PartsPage }),
+                  },
+                ]
+              : []),
             {
               path: '/how',
               lazy: async () => ({

@@ -2,6 +2,7 @@ import type { z } from 'zod';
 import { problem } from '../../shared/api/common.ts';
 import type { BodyInputOf, Contract, ParamsOf, ReplyOf } from '../../shared/api/contract.ts';
 import { ApiError } from './api-error.ts';
+import { isInUse } from './last-use.ts';
 
 // The widest contract there is; a contract's own schemas are read through the types below.
 type AnyContract = Contract;
@@ -128,6 +129,8 @@ export async function call<C extends AnyContract>(contract: C, ...[given]: Optio
     body = JSON.stringify(options.body);
   }
   if (writing) Object.assign(headers, writingHeaders());
+  // What a page asks by itself must not keep a session awake that nobody uses.
+  if (isInUse()) headers['x-use'] = '1';
 
   const request: RequestInit = { method: contract.method.toUpperCase(), headers, credentials: 'same-origin' };
   if (body !== undefined) request.body = body;

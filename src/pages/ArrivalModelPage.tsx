@@ -5,7 +5,7 @@ import { PageHead } from '../components/PageHead.tsx';
 import { SkeletonLines } from '../components/Skeleton.tsx';
 import { JudgeModel } from '../features/arrival-models/JudgeModel.tsx';
 import { ModelReport } from '../features/arrival-models/ModelReport.tsx';
-import { groundsInWords, modelHeadline } from '../features/arrival-models/model-words.ts';
+import { groundsInWords, modelHeadline, sinceFitInWords } from '../features/arrival-models/model-words.ts';
 import { useModel } from '../features/arrival-models/queries.ts';
 import { JobProgress } from '../features/jobs/JobProgress.tsx';
 import { useSession } from '../features/sign-in/session.ts';
@@ -74,6 +74,14 @@ export function ArrivalModelPage() {
         {model.status === 'failed' ? (
           <Notice kind="caution" title={model.error ?? 'The fit ended without a reason.'}>
             <p>The model in use is unchanged. Mend the cause, then fit another candidate.</p>
+          </Notice>
+        ) : null}
+        {sinceFitInWords(model).length > 0 ? (
+          <Notice kind="caution" title="The visits of this model have changed since it was fitted.">
+            {sinceFitInWords(model).map((sentence) => (
+              <p key={sentence}>{sentence}</p>
+            ))}
+            <p>Fit a candidate without them, and have it approved in place of this one.</p>
           </Notice>
         ) : null}
         {model.status === 'fitting' || model.status === 'failed' ? null : <ModelReport model={model} />}

@@ -9,6 +9,8 @@ import { ModelList } from '../features/arrival-models/ModelList.tsx';
 import { useModels } from '../features/arrival-models/queries.ts';
 import { JobProgress } from '../features/jobs/JobProgress.tsx';
 import { useSession } from '../features/sign-in/session.ts';
+import { periodInWords } from '../features/visit-logs/log-words.ts';
+import { useVisitLogs } from '../features/visit-logs/queries.ts';
 import { formatAge } from '../lib/format.ts';
 import { useServerNow } from '../features/sign-in/use-server-now.ts';
 
@@ -19,6 +21,7 @@ export function ArrivalModelsPage() {
   const now = useServerNow();
   const models = useModels(siteId);
   const mayFit = site?.permissions.includes('arrival-model:fit') ?? false;
+  const logs = useVisitLogs(siteId, mayFit && (site?.permissions.includes('visit-log:read') ?? false));
 
   if (!models.data || !site) {
     return (
@@ -58,6 +61,12 @@ export function ArrivalModelsPage() {
             siteId={siteId}
             readyLogs={models.data.readyLogs}
             fitting={list.some((model) => model.status === 'fitting')}
+            logs={(logs.data ?? [])
+              .filter(({ status }) => status === 'ready')
+              .map(({ id, period, fileName }) => ({
+                id,
+                label: `${periodInWords(period, site.timeZone)}, ${fileName}`,
+              }))}
             loadLog={
               site.permissions.includes('visit-log:upload') ? (
                 <ButtonLink to={paths.newVisitLog(siteId)}>Load a visit log</ButtonLink>

@@ -12,8 +12,11 @@ const parts = [
   ['need', 'Need, tonight'],
   ['chances', 'Chances and words of risk'],
   ['beds', 'Beds to add, and what else would help'],
+  ['week-ahead', 'The week ahead'],
+  ['what-if', 'What if: plans against as is'],
   ['limits', 'What it does not know'],
   ['checks', 'How it is checked'],
+  ['track-record', 'Track record: how forecasts are scored'],
   ['cautions', 'Cautions'],
   ['sources', 'Sources'],
 ] as const;
@@ -110,10 +113,12 @@ export function HowNumbersAreMadePage() {
           <Part id="need">
             <p>
               Tonight starts from the census, each area from its own count and its time. Boarding patients leave as
-              admitted ones do; the others are shared over the streams as the model expects at that hour. Patients whose
-              area is not decided are shared over the areas as arrivals are. Then the night is run 10,000 times or more,
-              with arrivals, stays, day factors and the uncertainty of the fit itself drawn anew each time, and all
-              areas together, so that a busy night is busy everywhere.
+              admitted ones do; the others are shared over the streams as the model expects at that hour. How many of
+              those are admitted but still waiting for the decision follows from the times from arrival to decision in
+              the log, where it has them, and from how fast patients have left so far. Patients whose area is not
+              decided are shared over the areas as arrivals are. Then the night is run 10,000 times or more, with
+              arrivals, stays, day factors and the uncertainty of the fit itself drawn anew each time, and all areas
+              together, so that a busy night is busy everywhere.
             </p>
             <p>
               What the page shows are the percentiles of those nights. Totals are counted from the same nights; they are
@@ -156,6 +161,63 @@ export function HowNumbersAreMadePage() {
               Every bed figure prints the risk it is for. The product does not suggest fewer beds than the area’s safe
               minimum, and asks a reason for any reduction.
             </p>
+            <p>
+              Beds needed beside the staffed-bed plan are, for each shift of the week outlook, the fewest constant beds
+              whose chance of any shortfall in the shift is at most the planning risk, in the area’s steps; of two dates
+              on the same weekday the higher stands. How often an alert limit would have warned is counted over the
+              nights of eight weeks: a night was warned of if the outlook that stood at its start printed a chance past
+              the limit for any hour, and ran short if need was above staffed beds at any full hour. Nights of which
+              either is not known are left out and counted.
+            </p>
+          </Part>
+          <Part id="week-ahead">
+            <p>
+              Each morning, and whenever the model, the plan, the calendar or the site’s settings change, what is left
+              of today and fourteen whole days are simulated together, 4,000 times, from the newest census, or where
+              there is none from what the model expects. Within a day or two little is left of how it began.
+            </p>
+            <p>
+              Need is taken at its highest within each shift. “Some time short” is the share of runs in which need was
+              above the planned beds at any time of the shift. Beds to add are the fewest, in the area’s own steps and
+              on top of the plan as it runs through the shift, that bring this share to the planning risk, and at least
+              what the safe minimum lacks. The last chance to book is the shift’s lead time before its start, or the
+              area’s notice where that is longer. Nurse hours follow from the site’s own ratio, or are not given.
+            </p>
+            <p>
+              Arrivals of an hour, a shift, a day and a week each have intervals of their own, from joint draws of the
+              rates: the ends of hourly intervals added up are not a day’s interval. Arrivals by ambulance are the share
+              of such arrivals in the last year by area and four hours of the day, where nearly all visits say how they
+              came. Admissions of a day are counted in the runs.
+            </p>
+            <p>
+              The effect of a holiday or of a day of your own is learned from past days of that name, held close to none
+              until they were seen often; without any it is the range that the site stated, and without that a guess
+              that says so. Last week’s forecast stands as it was issued.
+            </p>
+          </Part>
+          <Part id="what-if">
+            <p>
+              A plan changes arrivals, stays, staffed beds, boarding patients, or the areas that are open, over the next
+              seven days. While you drag or type, the browser answers by the exact method: stays as exponential by
+              stream and hour, the week’s busyness and the pace of departures each as one factor, the chance of
+              shortfall at each full hour. “Confirm” simulates the same seven days 10,000 times, each once as it is and
+              once with the plan on the same random numbers, so that what both share cancels; every difference carries
+              its 95 % interval from these pairs. Its chances are those of any shortfall during a shift and are higher
+              by definition. In the first hours after a census the two methods lie furthest apart, because the
+              simulation knows how long patients have been there; how far is said beside each confirmed plan.
+            </p>
+            <p>
+              Extra arrivals come on random numbers of their own, fewer are thinned by a number that each arrival
+              carries, and a longer stay is the same draw stretched. More beds can therefore never raise a chance in a
+              compared pair. Need does not wait for a bed: more beds alone do not shorten a stay here.
+            </p>
+            <p>
+              “Smallest change” takes, for each area and each shift while it is in charge, the fewest whole steps of
+              beds that bring every full hour to the risk you choose; areas and shifts do not touch each other, so the
+              sum is the least there is. With fewer bed-hours to give it lowers the worst hour first. It never takes a
+              bed away, never goes past the bed spaces that exist, and raises an area that stands below its safe
+              minimum.
+            </p>
           </Part>
           <Part id="limits">
             <ul>
@@ -182,6 +244,27 @@ export function HowNumbersAreMadePage() {
               weeks that were kept back: of all hours, nine in ten should fall within the 90 % interval. It is compared
               with what a good spreadsheet would give: the same hour last week, the mean of the last four weeks, of the
               last year, and a regression.
+            </p>
+          </Part>
+          <Part id="track-record">
+            <p>
+              Every outlook is kept as it was issued, with the distributions behind it. When an accepted log tells what
+              came, need is scored 1, 4, 12 and 24 hours ahead for outlooks issued by the clock, and each shift’s
+              highest need and each day’s arrivals for the last outlook before it began. A chance is held against the
+              staffed beds that it was issued with; acknowledged hours are told apart. A withdrawn log takes its scores
+              with it.
+            </p>
+            <p>
+              Coverage is compared with what each interval really holds, since counts are whole. Pinball loss and the
+              mean absolute scaled error stand beside three rules of the past, and beside the floor that chance leaves
+              even to a forecast that is right. Standard errors come from drawing whole weeks again.
+            </p>
+            <p>
+              Once a week the scores of the model in use are checked for what chance does not explain, by cumulative
+              sums. On simulated site-years of 260 visits a day with nightly logs it spoke up wrongly 0.9 times a year,
+              saw a change of level by 10 % within three weeks in 92 of 100 runs, and ranges 20 % too narrow within
+              twelve in 98. At 70 visits a day: 0.9 times, 63 and 98. With weekly logs it speaks up wrongly 1.1 times a
+              year.
             </p>
           </Part>
           <Part id="cautions">

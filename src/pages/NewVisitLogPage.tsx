@@ -40,6 +40,7 @@ export function NewVisitLogPage() {
           shiftEnds={site.data.shifts.map(({ endMinute }) => endMinute)}
           logs={logs.data}
           aside={allLogs}
+          guideHref={paths.visitLogGuide(siteId)}
           onAccepted={(logId) => void navigate(paths.visitLog(siteId, logId), { state: { saved: true } })}
         />
       </div>

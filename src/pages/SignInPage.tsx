@@ -46,7 +46,7 @@ export function SignInPage() {
           </Notice>
         ) : null}
         <a
-          href={paths.startSignIn(returnTo)}
+          href={session.data?.locked ? paths.startFreshSignIn(returnTo) : paths.startSignIn(returnTo)}
           className="mt-6 flex min-h-13 items-center justify-center rounded-button bg-act px-5 text-body font-extrabold text-act-ink hover:bg-act-strong"
         >
           Continue with your hospital account

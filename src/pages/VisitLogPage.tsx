@@ -7,6 +7,8 @@ import { SkeletonLines } from '../components/Skeleton.tsx';
 import { JobProgress } from '../features/jobs/JobProgress.tsx';
 import { useSession } from '../features/sign-in/session.ts';
 import { periodInWords, stateWord } from '../features/visit-logs/log-words.ts';
+import { useLogPresence } from '../features/visit-logs/kept-visits-queries.ts';
+import { PresenceCheck } from '../features/visit-logs/PresenceCheck.tsx';
 import { useVisitLog } from '../features/visit-logs/queries.ts';
 import { VisitLogReport } from '../features/visit-logs/VisitLogReport.tsx';
 import { WithdrawLog } from '../features/visit-logs/WithdrawLog.tsx';
@@ -18,6 +20,7 @@ export function VisitLogPage() {
   const site = useSession().sites.find((candidate) => candidate.id === siteId);
   const query = useVisitLog(siteId, logId);
   const log = query.data;
+  const presence = useLogPresence(siteId, logId, log?.status === 'ready');
   const may = (permission: 'visit-log:upload' | 'arrival-model:fit') => site?.permissions.includes(permission) ?? false;
   if (!log || !site) {
     return (
@@ -43,11 +46,13 @@ export function VisitLogPage() {
         ? 'This log was not loaded.'
         : log.status === 'withdrawn'
           ? 'This log is withdrawn.'
-          : state === 'Counts'
-            ? `${visits} count.`
-            : state === 'Counts in part'
-              ? `${visits}, of which a part counts.`
-              : 'Newer logs replaced this one.';
+          : log.status === 'purged'
+            ? 'The visits of this log were deleted after the retention time.'
+            : state === 'Counts'
+              ? `${visits} count.`
+              : state === 'Counts in part'
+                ? `${visits}, of which a part counts.`
+                : 'Newer logs replaced this one.';
   return (
     <>
       <PageHead
@@ -66,7 +71,7 @@ export function VisitLogPage() {
           </div>
         }
       />
-      <div className="page-pad grid gap-8 pt-2">
+      <div className="page-pad grid grid-cols-[minmax(0,1fr)] gap-8 pt-2">
         {log.status === 'loading' && log.jobId ? (
           <JobProgress siteId={siteId} jobId={log.jobId} mayCancel={may('arrival-model:fit')} />
         ) : null}
@@ -76,6 +81,14 @@ export function VisitLogPage() {
           </div>
         ) : null}
         <VisitLogReport log={log} timeZone={site.timeZone} />
+        {presence.data ? <PresenceCheck compared={presence.data} timeZone={site.timeZone} /> : null}
+        {presence.error ? (
+          <ProblemNotice
+            error={presence.error}
+            onRetry={() => void presence.refetch()}
+            retrying={presence.isFetching}
+          />
+        ) : null}
         {log.status === 'ready' && may('visit-log:upload') ? <WithdrawLog siteId={siteId} log={log} /> : null}
       </div>
     </>

@@ -6,17 +6,20 @@ import { PageHead } from '../components/PageHead.tsx';
 import { SkeletonLines } from '../components/Skeleton.tsx';
 import { JobProgress } from '../features/jobs/JobProgress.tsx';
 import { useSession } from '../features/sign-in/session.ts';
+import { useServerNow } from '../features/sign-in/use-server-now.ts';
 import { CoverageCalendar } from '../features/visit-logs/CoverageCalendar.tsx';
 import { ExposureGaps } from '../features/visit-logs/ExposureGaps.tsx';
 import { coverageHeadline, gapsBetween, periodInWords } from '../features/visit-logs/log-words.ts';
 import { useSite, useVisitLogs } from '../features/visit-logs/queries.ts';
 import { VisitLogList } from '../features/visit-logs/VisitLogList.tsx';
+import { VisitRetention } from '../features/visit-logs/VisitRetention.tsx';
 
 /** /sites/:siteId/logs */
 export function VisitLogsPage() {
   const { siteId = '' } = useParams();
   const site = useSession().sites.find((candidate) => candidate.id === siteId);
   const query = useVisitLogs(siteId);
+  const now = useServerNow();
   const details = useSite(siteId);
   const logs = query.data;
   const mayUpload = site?.permissions.includes('visit-log:upload') ?? false;
@@ -53,12 +56,15 @@ export function VisitLogsPage() {
           </p>
         }
       />
-      <div className="page-pad grid gap-6 pt-2">
+      <div className="page-pad grid grid-cols-[minmax(0,1fr)] gap-6 pt-2">
         {mayUpload ? (
           <div className="flex flex-wrap items-center gap-x-6 gap-y-2">
             <ButtonLink to={paths.newVisitLog(siteId)}>Load a visit log</ButtonLink>
             <Link to={paths.siteTokens(siteId)} className="link inline-flex min-h-11 items-center font-semibold">
               Machine tokens for nightly upload
+            </Link>
+            <Link to={paths.visitLogGuide(siteId)} className="link inline-flex min-h-11 items-center font-semibold">
+              Columns, formats and a template
             </Link>
           </div>
         ) : null}
@@ -84,6 +90,7 @@ export function VisitLogsPage() {
         {details.data && site ? (
           <ExposureGaps siteId={siteId} areas={details.data.areas} timeZone={site.timeZone} mayDeclare={mayUpload} />
         ) : null}
+        {site ? <VisitRetention siteId={siteId} timeZone={site.timeZone} now={now} mayChange={mayUpload} /> : null}
       </div>
     </>
   );

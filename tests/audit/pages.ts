@@ -33,6 +33,22 @@ export const auditedPages: readonly AuditedPage[] = [
     },
   },
   { name: 'tonight-executive', username: 'executive', path: `${site}/tonight`, ready: '.night-board' },
+  { name: 'staffed-beds', username: 'operations', path: `${site}/beds`, ready: '[role=grid]' },
+  {
+    name: 'staffed-beds-edited',
+    username: 'operations',
+    path: `${site}/beds?halfHours=farrowmere-general-acute`,
+    ready: '[role=grid]',
+    prepare: async (page) => {
+      await page.locator('[data-cell="3.0"]').first().click();
+      await page.keyboard.type('19');
+      await page.keyboard.press('Enter');
+      await page.getByRole('button', { name: 'Discard all changes' }).waitFor();
+    },
+  },
+  { name: 'staffed-beds-executive', username: 'executive', path: `${site}/beds`, ready: '[role=grid]' },
+  { name: 'settings', username: 'operations', path: `${site}/settings`, ready: '#history table' },
+  { name: 'settings-charge', username: 'charge', path: `${site}/settings`, ready: '#calendar table' },
   { name: 'logs', username: 'steward', path: `${site}/logs`, ready: 'table' },
   {
     name: 'log',
@@ -54,6 +70,23 @@ export const auditedPages: readonly AuditedPage[] = [
       for (const summary of await page.locator('summary').all()) await summary.click();
     },
   },
+  {
+    name: 'what-if',
+    username: 'operations',
+    path: `${site}/what-if`,
+    ready: '#side-by-side',
+    prepare: async (page) => {
+      await page.getByRole('button', { name: 'Add it' }).click();
+    },
+  },
+  { name: 'week-ahead', username: 'operations', path: `${site}/week`, ready: 'table' },
+  { name: 'track-record', username: 'executive', path: `${site}/track-record`, ready: 'main h1' },
+  { name: 'briefs', username: 'operations', path: `${site}/briefs`, ready: 'main h1' },
+  { name: 'briefs-executive', username: 'executive', path: `${site}/briefs`, ready: 'main h1' },
+  { name: 'audit-trail', username: 'admin', path: '/audit', ready: 'table' },
+  { name: 'people', username: 'admin', path: '/people', ready: 'table' },
+  { name: 'sites', username: 'admin', path: '/installation/sites', ready: 'main h1' },
+  { name: 'status', username: 'admin', path: '/status', ready: 'main h2' },
   { name: 'how', username: 'charge', path: '/how', ready: '#sources' },
   {
     name: 'shortcuts',

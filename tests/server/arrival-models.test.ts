@@ -256,6 +256,54 @@ describe('a fit', () => {
     expect(aWeek[1] / aWeek[0]).toBeGreaterThan(1.1);
   });
 
+  test('on chosen logs is as if there were no others, and one of another site is refused', async () => {
+    const older = await loadDays(40);
+    const newer = await loadDays(16);
+    const asked = await steward.send('post', models, { logIds: [older.id] });
+    expect(asked.status, asked.text).toBe(202);
+    const { modelId } = asked.body as { modelId: string };
+    expect((await ended(modelId)).status).toBe('candidate');
+    // The newer log would have taken its place for the last 16 days.
+    expect(await detailOf(modelId)).toMatchObject({
+      lineage: [{ logId: older.id, rows: older.rows }],
+      visits: older.rows,
+    });
+    const other = await buildSite(server.deps.database);
+    const period = { periodFrom: now - day, periodTo: now, takenAt: now };
+    const theirs = await buildVisitLog(server.deps.database, other, [], period);
+    for (const logIds of [[theirs.id], [newer.id, 'nosuchlog']]) {
+      const refused = await steward.send('post', models, { logIds });
+      expect(refused.status).toBe(400);
+      expect(refused.text).toContain('one may have been withdrawn');
+    }
+    expect((await steward.send('post', models, { logIds: [] })).status).toBe(400);
+  });
+
+  test('on a log that is withdrawn later says so, and so it does of an outage declared later within its time', async () => {
+    const log = await loadDays(15);
+    const { modelId } = (await fit()).body as { modelId: string };
+    const unchanged = { withdrawnLogs: [], gapsDeclared: 0 };
+    expect((await ended(modelId)).status).toBe('candidate');
+    expect((await detailOf(modelId)).sinceFit).toEqual(unchanged);
+    server.time.now += 60;
+    const gaps = `/api/sites/${built.site.id}/exposure-gaps`;
+    const outage = (from: number) => ({
+      kind: 'outage',
+      areaId: null,
+      from,
+      until: from + 3600,
+      reason: 'Network down',
+    });
+    expect((await steward.send('post', gaps, outage(today - 3 * day))).status).toBe(201);
+    // Outside the time that it was fitted on.
+    expect((await steward.send('post', gaps, outage(today - 300 * day))).status).toBe(201);
+    const withdrawal = `/api/sites/${built.site.id}/visit-logs/${log.id}/withdrawal`;
+    expect((await steward.send('post', withdrawal, { reason: 'Wrong clock' })).status).toBe(200);
+    const changed = { withdrawnLogs: [log.fileName], gapsDeclared: 1 };
+    expect((await detailOf(modelId)).sinceFit).toEqual(changed);
+    expect((await list()).models.find(({ id }) => id === modelId)?.sinceFit).toEqual(changed);
+  });
+
   test('runs one at a time at a site, even when asked for twice at once', async () => {
     await loadDays(3);
     await server.deps.jobs.stop();

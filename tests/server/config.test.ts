@@ -47,6 +47,13 @@ describe('settings', () => {
       logLevel: 'info',
       administratorContact: 'the administrator of this installation',
       threads: 2,
+      idleMinutes: 15,
+      sessionHours: 12,
+      requestsPerMinute: 1200,
+      metricsToken: null,
+      backupDir: null,
+      backupEveryHours: 24,
+      backupKeep: 14,
       clockOffset: 0,
     });
   });

@@ -1,6 +1,6 @@
 import { describe, expect, test } from 'vitest';
 import { makeZone } from '../../shared/domain/zoned-time.ts';
-import { fullHoursAfter } from '../../server/features/outlook/build-input.ts';
+import { fullHoursAfter } from '../../server/database/read-need-input.ts';
 
 const utc = (text: string) => Date.parse(text) / 1000;
 const written = (at: number) => new Date(at * 1000).toISOString().slice(11, 16);

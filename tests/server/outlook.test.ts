@@ -306,6 +306,12 @@ describe('arrivals since midnight', () => {
     expect(arrivalsSoFar!.p10).toBeLessThan(arrivalsSoFar!.expected);
     expect(arrivalsSoFar!.p90).toBeGreaterThan(arrivalsSoFar!.expected);
     expect(arrivalsSoFar!.factor).toBeCloseTo(55 / arrivalsSoFar!.expected, 10);
+    // A count is some of the evidence, never all of it: the forecast moves its way, by less.
+    const move = arrivalsSoFar!.move!;
+    expect(Math.sign(move - 1)).toBe(Math.sign(arrivalsSoFar!.factor - 1));
+    expect(Math.abs(Math.log(move))).toBeLessThan(Math.abs(Math.log(arrivalsSoFar!.factor)));
+    const asExpected = await getOutlook(await enter({ arrivalsSinceMidnight: Math.round(arrivalsSoFar!.expected) }));
+    expect(Math.abs(asExpected.result.arrivalsSoFar!.move! - 1)).toBeLessThan(0.01);
   });
 
   test('say nothing within a quarter of an hour of it', async () => {

@@ -274,7 +274,9 @@ describe('a person whom an administrator named by address', () => {
     return id;
   }
   const recognise = (subject: string, emailVerified: boolean, email = claims.email) =>
-    server.deps.database.write((manager) => recognisePerson(manager, { ...claims, email, subject, emailVerified }, 5));
+    server.deps.database.write((manager) =>
+      recognisePerson(manager, { ...claims, email, subject, emailVerified, groups: [] }, 5),
+    );
 
   test('is bound by an address that the provider has verified, once', async () => {
     const invited = await invite();

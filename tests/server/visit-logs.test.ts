@@ -15,6 +15,7 @@ import { visitLogJobs } from '../../server/features/visit-logs/routes.ts';
 import { sweepVisitLogs } from '../../server/features/visit-logs/sweep-visit-logs.ts';
 import { buildPerson, buildSite, type BuiltSite } from '../support/build-site.ts';
 import { buildVisitCsv, visitLine } from '../support/build-visit-csv.ts';
+import { plantedHeaders, plantedValues } from '../support/planted-identifiers.ts';
 import { openTestServer, type SignedIn, type TestServer } from '../support/test-server.ts';
 
 const day = 86_400;
@@ -391,28 +392,7 @@ describe('a file that is refused leaves nothing behind', () => {
 });
 
 describe('planted identifiers sent past the browser', () => {
-  // Specimen numbers: 943 476 5919 is printed in the NHS Data Dictionary's worked example of the check digit;
-  // 078-05-1120 is the retired specimen of the US Social Security Administration; QQ 12 34 56 C of HMRC begins
-  // with letters that are never given, so AB 12 34 56 C stands in its place; 07700 900123 lies in Ofcom's range for drama.
-  const values: [kind: string, value: string][] = [
-    ['name', 'Olivia Fairweather'],
-    ['name', 'Mr Quillfeather'],
-    ['date of birth', '1950-02-01'],
-    ['record number', 'MRN 00482913'],
-    ['record number', 'H0482913'],
-    ['insurance number', '078-05-1120'],
-    ['insurance number', 'AB 12 34 56 C'],
-    ['national patient number', '943 476 5919'],
-    ['telephone number', '07700 900123'],
-    ['telephone number', '+44 7700 900123'],
-    ['e-mail address', 'olivia@example.org'],
-    ['postal address', '12 Mill Lane'],
-    ['postcode', 'SW1A 1AA'],
-    ['web address', 'https://example.org/p/1'],
-    ['IP address', '192.0.2.44'],
-    ['free text', 'came in after falling off a ladder at home today'],
-  ];
-  test.each(values)('a %s among values (%s), in any column', async (kind, value) => {
+  test.each(plantedValues)('a %s among values (%s), in any column', async (kind, value) => {
     const clean = buildVisitCsv({ from: midnight - 5 * day, rows: 40 });
     for (const column of ['arrival', 'departure', 'area', 'disposition', 'ambulance'] as const) {
       const refused = await upload(`${clean}${visitLine({ arrival: now - day, [column]: value })}\n`);
@@ -424,22 +404,7 @@ describe('planted identifiers sent past the browser', () => {
     await expectNothingKept();
   });
 
-  const headers: [kind: string, header: string][] = [
-    ['name', 'Surname'],
-    ['name', 'patientName'],
-    ['date of birth', 'DOB'],
-    ['record number', 'MRN'],
-    ['insurance number', 'Insurance No'],
-    ['national patient number', 'NHS_Number'],
-    ['telephone number', 'mobile phone'],
-    ['e-mail address', 'e-mail'],
-    ['postal address', 'home_address'],
-    ['postcode', 'Post Code'],
-    ['web address', 'URL'],
-    ['IP address', 'client IP'],
-    ['free text', 'Presenting Complaint'],
-  ];
-  test.each(headers)('a %s column (%s)', async (kind, header) => {
+  test.each(plantedHeaders)('a %s column (%s)', async (kind, header) => {
     const refused = await upload(`arrival_at,care_area,${header}\n2026-09-20T10:00:00Z,Acute,x\n`);
     expect(refused.status).toBe(422);
     expect((refused.body as { faults: { at: string; message: string }[] }).faults[0]).toMatchObject({ at: 'column 3' });

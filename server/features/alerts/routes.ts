@@ -1,5 +1,6 @@
 import type { Express } from 'express';
 import { getOnCallAddress, setOnCallAddress } from '../../../shared/api/alerts.ts';
+import { recordSettingChanges } from '../../database/record-setting-changes.ts';
 import type { Dependencies } from '../../dependencies.ts';
 import { Site } from '../../entities/Site.ts';
 import { recordAudit } from '../../http/audit.ts';
@@ -18,6 +19,10 @@ export function addAlertRoutes(app: Express, table: RouteTable, deps: Dependenci
           from: site.onCallAddress,
           to: body.address,
         });
+        const who = { siteId: site.id, at: context.now, madeBy: context.caller.person.name };
+        await recordSettingChanges(manager, who, 'on-call', [
+          { subject: null, setting: 'On-call address', before: site.onCallAddress, after: body.address },
+        ]);
       });
     }
     return { address: body.address };

@@ -8,6 +8,8 @@ import type { MessagePort } from 'node:worker_threads';
 export interface FitRequest {
   databaseFile: string;
   siteId: string;
+  /** Only these logs; null: all that count. */
+  logIds: string[] | null;
   timeZone: string;
   areaNames: Record<string, string>;
   /** Unusual days, past and a year ahead. */

@@ -13,7 +13,7 @@ import { workerUrl } from '../../simulation/pool.ts';
 import type { FitReply, FitRequest } from './fit-input.ts';
 
 export const fitJobKind = 'arrival-model.fit';
-const payloadSchema = z.object({ modelId: id });
+const payloadSchema = z.object({ modelId: id, logIds: z.array(id).optional() });
 const calendarYearsAhead = 1;
 const longestHistorySeconds = 12 * 366 * 86_400;
 
@@ -21,7 +21,7 @@ const longestHistorySeconds = 12 * 366 * 86_400;
 export function makeFitKind(deps: Dependencies): JobKind {
   const { database, clock, pool } = deps;
   const run: JobKind['run'] = async ({ payload, signal, progress }) => {
-    const { modelId } = payloadSchema.parse(payload);
+    const { modelId, logIds = null } = payloadSchema.parse(payload);
     const model = await database.read.findOneByOrFail(ArrivalModelRow, { id: modelId });
     const site = await database.read.findOneByOrFail(Site, { id: model.siteId });
     const now = clock();
@@ -36,6 +36,7 @@ export function makeFitKind(deps: Dependencies): JobKind {
       const request: FitRequest = {
         databaseFile: database.file,
         siteId: site.id,
+        logIds,
         timeZone: site.timeZone,
         areaNames: Object.fromEntries(areas.map((area) => [area.id, area.name])),
         calendar: await readCalendar(

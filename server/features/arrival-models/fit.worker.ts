@@ -28,7 +28,7 @@ export default function fit(request: FitRequest): FitReply {
 function fitSite(request: FitRequest, tell: (share: number, text: string) => void): FitReply {
   const { databaseFile, siteId, timeZone, calendar, now } = request;
   tell(0.02, 'Reading visits');
-  const { table, areaIds, lineage, facts } = readSiteVisits(databaseFile, siteId);
+  const { table, areaIds, lineage, facts } = readSiteVisits(databaseFile, siteId, -Infinity, request.logIds);
   if (!facts || table.length === 0) return { refused: 'No accepted visit log holds a visit that counts.' };
   const zone = makeZone(timeZone);
   const capSeconds = request.stayCapHours * 3600;

@@ -4,8 +4,8 @@ import { ArrivalModelRow } from '../../entities/ArrivalModelRow.ts';
 import type { Caller } from '../../http/caller.ts';
 import type { FittedDetail } from './fit-input.ts';
 
-/** A model as lists show it. */
-export function presentModel(row: ArrivalModelRow, caller: Caller): ModelSummary {
+/** A model as lists show it. @param changed what has changed about its visits since it was fitted; see since-fit */
+export function presentModel(row: ArrivalModelRow, caller: Caller, changed: ModelSummary['sinceFit']): ModelSummary {
   const { trainedFrom, trainedTo } = row;
   return {
     id: row.id,
@@ -24,6 +24,7 @@ export function presentModel(row: ArrivalModelRow, caller: Caller): ModelSummary
     error: row.error,
     jobId: row.jobId,
     fittedByCaller: row.fittedByPersonId === caller.person.id,
+    sinceFit: changed,
   };
 }
 
@@ -32,6 +33,7 @@ export async function presentModelDetail(
   read: EntityManager,
   row: ArrivalModelRow,
   caller: Caller,
+  changed: ModelSummary['sinceFit'],
 ): Promise<ModelDetail> {
   const { detail } = await read.findOneOrFail(ArrivalModelRow, {
     where: { id: row.id },
@@ -49,7 +51,7 @@ export async function presentModelDetail(
         }
       : (JSON.parse(detail) as FittedDetail);
   return {
-    ...presentModel(row, caller),
+    ...presentModel(row, caller, changed),
     engineVersion: row.engineVersion,
     lineage: JSON.parse(row.lineage) as ModelDetail['lineage'],
     ...fitted,

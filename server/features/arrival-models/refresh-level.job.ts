@@ -22,6 +22,7 @@ const payloadSchema = z.object({ siteId: id });
 export function makeRefreshKind(deps: Dependencies, onRefreshed: (siteId: string) => Promise<void>): JobKind {
   const { database, clock, pool } = deps;
   return {
+    retryable: true,
     run: async ({ payload, signal }) => {
       const { siteId } = payloadSchema.parse(payload);
       const model = await readModelInUse(database.read, siteId);

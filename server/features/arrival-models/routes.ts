@@ -13,6 +13,9 @@ import { recordAudit } from '../../http/audit.ts';
 import { addSiteRoute, type RouteTable } from '../../http/route.ts';
 import { fitJobKind } from './fit-model.job.ts';
 import { presentModel, presentModelDetail } from './present.ts';
+import { sinceFit } from './since-fit.ts';
+
+const unchanged = { withdrawnLogs: [], gapsDeclared: 0 };
 
 /** Arrival models: fit in the background, read, approve (never by the person who fitted), retire. */
 export function addArrivalModelRoutes(
@@ -28,6 +31,9 @@ export function addArrivalModelRoutes(
     if (!row) throw notFound('This model');
     return row;
   }
+
+  const changedSince = async (row: ArrivalModelRow) =>
+    (await sinceFit(database.read, row.siteId, [row])).get(row.id) ?? unchanged;
 
   function checkReason(reason: string): void {
     const kind = screenNote(reason);
@@ -51,17 +57,31 @@ export function addArrivalModelRoutes(
     const movedOn = new Set(all.map((row) => row.refreshedFromId));
     const rows = all.filter((row) => !movedOn.has(row.id));
     const readyLogs = await database.read.countBy(VisitLog, { siteId: site.id, status: 'ready' });
-    return { models: rows.map((row) => presentModel(row, caller)), readyLogs };
+    const changed = await sinceFit(database.read, site.id, rows);
+    return {
+      models: rows.map((row) => presentModel(row, caller, changed.get(row.id) ?? unchanged)),
+      readyLogs,
+    };
   });
 
-  addSiteRoute(app, table, deps, getModel, async ({ site, caller, params }) =>
-    presentModelDetail(database.read, await findModel(site.id, params.modelId), caller),
-  );
+  addSiteRoute(app, table, deps, getModel, async ({ site, caller, params }) => {
+    const row = await findModel(site.id, params.modelId);
+    return presentModelDetail(database.read, row, caller, await changedSince(row));
+  });
 
   addSiteRoute(app, table, deps, fitModel, async (context) => {
-    const { site, caller, now } = context;
+    const { site, caller, now, body } = context;
+    const { logIds } = body;
     if (!(await database.read.existsBy(VisitLog, { siteId: site.id, status: 'ready' }))) {
       throw conflict('There is no accepted visit log to fit on.', 'A data steward loads one first.');
+    }
+    if (logIds) {
+      const ready = await database.read.countBy(VisitLog, { siteId: site.id, status: 'ready', id: In(logIds) });
+      if (ready !== new Set(logIds).size) {
+        throw badInput('A chosen log is not there.', [
+          { at: 'logIds', message: 'Choose among the loaded logs of this site; one may have been withdrawn.' },
+        ]);
+      }
     }
     const modelId = newId();
     const jobId = await database.write(async (manager) => {
@@ -72,7 +92,7 @@ export function addArrivalModelRoutes(
         kind: fitJobKind,
         title: 'Fit an arrival model',
         siteId: site.id,
-        payload: { modelId },
+        payload: { modelId, ...(logIds ? { logIds } : {}) },
         createdBy: caller.person.name,
         maxAttempts: 2,
       });
@@ -86,7 +106,7 @@ export function addArrivalModelRoutes(
         engineVersion,
         jobId: queued,
       });
-      await recordAudit(manager, context, 'arrival-model.fit-asked', modelId);
+      await recordAudit(manager, context, 'arrival-model.fit-asked', modelId, logIds ? { logIds } : {});
       return queued;
     });
     return { modelId, jobId };
@@ -117,10 +137,11 @@ export function addArrivalModelRoutes(
         { id: row.id },
         { status: 'in use', approvedAt: now, approvedBy: caller.person.name, reason: body.reason },
       );
-      await recordAudit(manager, context, 'arrival-model.approved', row.id);
+      await recordAudit(manager, context, 'arrival-model.approved', row.id, {}, body.reason);
     });
     await onApproved(site.id);
-    return presentModel(await findModel(site.id, row.id), caller);
+    const judged = await findModel(site.id, row.id);
+    return presentModel(judged, caller, await changedSince(judged));
   });
 
   addSiteRoute(app, table, deps, retireModel, async (context) => {
@@ -135,8 +156,9 @@ export function addArrivalModelRoutes(
       );
       if (retired.affected !== 1)
         throw conflict(`This model is ${row.status}; it cannot be retired.`, 'Reload the page.');
-      await recordAudit(manager, context, 'arrival-model.retired', row.id);
+      await recordAudit(manager, context, 'arrival-model.retired', row.id, {}, body.reason);
     });
-    return presentModel(await findModel(site.id, row.id), caller);
+    const judged = await findModel(site.id, row.id);
+    return presentModel(judged, caller, await changedSince(judged));
   });
 }

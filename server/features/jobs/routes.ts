@@ -23,6 +23,8 @@ export function addJobRoutes(app: Express, table: RouteTable, deps: Dependencies
     // What concerns visit logs is the steward's alone.
     const roles = context.caller.rolesAt.get(where.siteId) ?? [];
     if (job.kind.startsWith('visit-log.') && !isGranted(roles, 'visit-log:upload')) throw notAllowed();
+    // A plan's confirmation is cancelled by those who save plans.
+    if (job.kind.startsWith('scenario.') && !isGranted(roles, 'scenario:save')) throw notAllowed();
     const cancelled = await deps.jobs.cancel(where.id, (manager) =>
       recordAudit(manager, context, 'job.cancelled', where.id),
     );

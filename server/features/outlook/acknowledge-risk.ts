@@ -57,11 +57,8 @@ export async function acknowledgeRisk(
   });
   await write(async (manager) => {
     await manager.insert(Acknowledgement, acknowledgement);
-    await recordAudit(manager, context, 'risk.acknowledged', acknowledgement.id, {
-      areaId: area.id,
-      outlookId: row.id,
-      hours: hours.length,
-    });
+    const detail = { areaId: area.id, outlookId: row.id, hours: hours.length };
+    await recordAudit(manager, context, 'risk.acknowledged', acknowledgement.id, detail, body.note);
   });
   return presentAcknowledgement(acknowledgement);
 }

@@ -1,95 +1,22 @@
-import { randomInt } from 'node:crypto';
-import { shiftsBetween } from '../../../shared/domain/shift-times.ts';
-import { makeZone, type Zone } from '../../../shared/domain/zoned-time.ts';
-import type { OutlookInput } from '../../../shared/forecasting/outlook-types.ts';
 import type { EntityManager } from 'typeorm';
-import { censusDroppedAfterSeconds, readNewestCensus } from '../../database/read-census.ts';
-import { readAreas, readShifts } from '../../database/read-site.ts';
-import { readStaffedBedSteps } from '../../database/read-staffed-beds.ts';
+import { makeZone } from '../../../shared/domain/zoned-time.ts';
+import type { OutlookInput } from '../../../shared/forecasting/outlook-types.ts';
+import { fullHoursAfter, readNeedInput } from '../../database/read-need-input.ts';
 import type { Site } from '../../entities/Site.ts';
 
-export const outlookHours = 36;
-
-/** The full local hours after an instant, UTC seconds. A clock change may put two within an hour of real time, or none. */
-export function fullHoursAfter(zone: Zone, at: number, count: number): number[] {
-  const hours: number[] = [];
-  let next = at;
-  while (hours.length < count) {
-    const rest = ((zone.toLocal(next) % 3600) + 3600) % 3600;
-    const candidate = next + 3600 - rest;
-    // Where the clock jumps within the step, the candidate may not be a full hour any more: go on from the jump.
-    const jump = zone.changesBetween(next, candidate).at(0);
-    if (jump && ((zone.toLocal(candidate) % 3600) + 3600) % 3600 !== 0) {
-      next = jump.at;
-      if (((zone.toLocal(next) % 3600) + 3600) % 3600 === 0) hours.push(next);
-      continue;
-    }
-    hours.push(candidate);
-    next = candidate;
-  }
-  return hours;
-}
+const outlookHours = 36;
 
 /**
- * Gathers everything that an outlook is computed from, as of `now`.
+ * Gathers everything that Tonight's outlook is computed from, as of `now`.
  * @returns null where the site has no staffed-bed plan that names every area.
  */
-export async function buildOutlookInput(
+export function buildOutlookInput(
   read: EntityManager,
   site: Site,
   modelAreaIds: readonly string[],
   now: number,
   replications: number,
 ): Promise<OutlookInput | null> {
-  const zone = makeZone(site.timeZone);
-  const all = await readAreas(read, site.id);
-  // The model's order of areas is the engine's; an area that the model has never seen cannot be forecast.
-  const areas = modelAreaIds.flatMap((id) => all.filter((area) => area.id === id));
-  const hours = fullHoursAfter(zone, now, outlookHours);
-  const end = hours[hours.length - 1] + 3600;
-  const steps = await readStaffedBedSteps(
-    read,
-    site.id,
-    zone,
-    areas.map((area) => area.id),
-    now,
-    end,
-  );
-  if (!steps) return null;
-  const census = await readNewestCensus(read, site.id, now - censusDroppedAfterSeconds, now);
-  const counted = new Map(census.areas.map((area) => [area.areaId, area]));
-  const shifts = shiftsBetween(zone, await readShifts(read, site.id), now, end);
-  const arrivals = census.arrivalsSinceMidnight;
-  return {
-    issuedAt: now,
-    timeZone: site.timeZone,
-    hours,
-    areas: areas.map((area) => {
-      const count = counted.get(area.id);
-      return {
-        areaId: area.id,
-        census: count
-          ? { takenAt: count.takenAt, present: count.present, waiting: count.waiting, boarding: count.boarding }
-          : null,
-        staffedBeds: steps.get(area.id) ?? [],
-        spaces: area.spaces,
-        safeMinimum: area.safeMinimum,
-        bedStep: area.bedStep,
-        alertLimit: area.alertLimit,
-      };
-    }),
-    undecided: census.undecided ? { takenAt: census.undecided.takenAt, waiting: census.undecided.waiting } : null,
-    planningRisk: site.planningRisk,
-    shifts,
-    arrivalsSince: arrivals ? arrivalsSinceMidnight(zone, arrivals) : null,
-    seed: randomInt(0, 2 ** 31),
-    replications,
-  };
-}
-
-function arrivalsSinceMidnight(zone: Zone, entry: { takenAt: number; count: number }): OutlookInput['arrivalsSince'] {
-  const local = zone.toLocal(entry.takenAt);
-  const midnight = zone.fromLocal(local - (((local % 86_400) + 86_400) % 86_400)).at(0);
-  if (midnight === undefined || entry.takenAt - midnight < 900) return null;
-  return { from: midnight, to: entry.takenAt, count: entry.count };
+  const hours = fullHoursAfter(makeZone(site.timeZone), now, outlookHours);
+  return readNeedInput(read, site, modelAreaIds, now, hours, replications);
 }

@@ -18,10 +18,13 @@ export interface CautionFacts {
   unusualDays: { date: string; name: string }[];
   /** The time that accepted logs speak for, ascending. */
   covered: readonly Span[];
+  /** What the watch over the model's scores found, in words. */
+  drift?: readonly string[];
 }
 
 /** The cautions of product and policy that are true now, gravest first. */
-export function cautionsNow({ now, outlook, areas, census, unusualDays, covered }: CautionFacts): Caution[] {
+export function cautionsNow(facts: CautionFacts): Caution[] {
+  const { now, outlook, areas, census, unusualDays, covered, drift = [] } = facts;
   const cautions: Caution[] = [];
   const ages = census.areas.map((area) => now - area.takenAt);
   if (ages.length === 0) {
@@ -49,6 +52,7 @@ export function cautionsNow({ now, outlook, areas, census, unusualDays, covered 
       text: `Not forecast: ${unknown.map((area) => area.name).join(', ')}. The model in use does not know ${unknown.length === 1 ? 'this area' : 'these areas'}. Fit a new one.`,
     });
   }
+  for (const text of drift) cautions.push({ kind: 'model drifted', text });
   const { model } = outlook;
   if (model.weeksOfHistory < 8) {
     cautions.push({

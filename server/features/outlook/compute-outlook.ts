@@ -3,7 +3,7 @@ import type { NeedPart } from '../../../shared/forecasting/need-part.ts';
 import type { OutlookInput, OutlookResult } from '../../../shared/forecasting/outlook-types.ts';
 import type { ModelParameters } from '../../database/read-model.ts';
 import { workerUrl, type SimulationPool } from '../../simulation/pool.ts';
-import type { OutlookTask, SharedModel } from './outlook.worker.ts';
+import type { FinishedOutlook, OutlookTask, SharedModel } from './outlook.worker.ts';
 
 const worker = workerUrl(import.meta.url, 'outlook.worker');
 
@@ -33,6 +33,15 @@ export async function computeOutlook(
   parameters: ModelParameters,
   input: OutlookInput,
 ): Promise<OutlookResult> {
+  return (await computeOutlookWithLaws(pool, parameters, input)).result;
+}
+
+/** The same, with the distributions behind it that the track record will score. */
+export async function computeOutlookWithLaws(
+  pool: SimulationPool,
+  parameters: ModelParameters,
+  input: OutlookInput,
+): Promise<FinishedOutlook> {
   outlooks += 1;
   const common = { outlook: outlooks, model: share(parameters), input };
   const shares = Math.min(pool.threads, input.replications);
@@ -47,5 +56,5 @@ export async function computeOutlook(
       } satisfies OutlookTask),
     ),
   );
-  return pool.run<OutlookResult>(worker, { ...common, kind: 'finish', parts } satisfies OutlookTask);
+  return pool.run<FinishedOutlook>(worker, { ...common, kind: 'finish', parts } satisfies OutlookTask);
 }

@@ -6,10 +6,11 @@ import { newId } from '../../database/new-id.ts';
 import { readModelInUse, readModelParameters } from '../../database/read-model.ts';
 import type { Dependencies } from '../../dependencies.ts';
 import { OutlookRow } from '../../entities/OutlookRow.ts';
+import { OutlookLawsRow } from '../../entities/OutlookLawsRow.ts';
 import { Site } from '../../entities/Site.ts';
 import { softwareVersion } from '../../software-version.ts';
 import { buildOutlookInput } from './build-input.ts';
-import { computeOutlook } from './compute-outlook.ts';
+import { computeOutlookWithLaws } from './compute-outlook.ts';
 
 export type OutlookTrigger = z.infer<typeof outlookTrigger>;
 
@@ -30,7 +31,8 @@ interface SiteQueue {
  */
 export class OutlookIssuer {
   private readonly deps: Dependencies;
-  private readonly replications: number;
+  /** Of every outlook; comparisons of plans take as many. */
+  readonly replications: number;
   private readonly queues = new Map<string, SiteQueue>();
   /** What follows from an outlook (an alert mail); it never holds up or fails the outlook itself. */
   onIssued: ((outlookId: string) => Promise<unknown>) | null = null;
@@ -44,6 +46,11 @@ export class OutlookIssuer {
   /** True while an outlook of the site is being computed. */
   computing(siteId: string): boolean {
     return this.queues.has(siteId);
+  }
+
+  /** True while an outlook of any site is being computed. */
+  computingAny(): boolean {
+    return this.queues.size > 0;
   }
 
   /** Computes and stores a new outlook from what is stored now. */
@@ -95,11 +102,12 @@ export class OutlookIssuer {
     const input = await buildOutlookInput(database.read, site, parameters.areaIds, clock(), this.replications);
     if (!input) return { outlookId: null, reason: 'no staffed-bed plan' };
     const startedAt = performance.now();
-    const result = JSON.stringify(await computeOutlook(simulation, parameters, input));
+    const computed = await computeOutlookWithLaws(simulation, parameters, input);
+    const result = JSON.stringify(computed.result);
     const computeMilliseconds = performance.now() - startedAt;
     const outlookId = newId();
-    await database.write((manager) =>
-      manager.insert(OutlookRow, {
+    await database.write(async (manager) => {
+      await manager.insert(OutlookRow, {
         id: outlookId,
         siteId,
         issuedAt: input.issuedAt,
@@ -113,8 +121,10 @@ export class OutlookIssuer {
         input: JSON.stringify(input),
         result,
         digest: digestOf(result),
-      }),
-    );
+      });
+      const laws = JSON.stringify(computed.laws);
+      await manager.insert(OutlookLawsRow, { outlookId, siteId, issuedAt: input.issuedAt, laws });
+    });
     this.follow(siteId, outlookId);
     return { outlookId, reason: null };
   }

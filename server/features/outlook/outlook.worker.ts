@@ -2,6 +2,7 @@ import { deserialize } from 'node:v8';
 import { outlookFromParts, prepareOutlook, simulateOutlookPart } from '../../../shared/forecasting/issue-outlook.ts';
 import type { PreparedOutlook } from '../../../shared/forecasting/issue-outlook.ts';
 import type { NeedPart } from '../../../shared/forecasting/need-part.ts';
+import { outlookLaws, type IssuedLaw } from '../../../shared/forecasting/outlook-laws.ts';
 import type { OutlookInput, OutlookResult } from '../../../shared/forecasting/outlook-types.ts';
 import type { ModelParameters } from '../../database/read-model.ts';
 
@@ -31,15 +32,22 @@ function kept<Value>(values: Map<number, Value>, most: number, key: number, make
   return made;
 }
 
-export default function work(task: OutlookTask): NeedPart | OutlookResult {
+/** An outlook, and the distributions behind it that will be scored. */
+export interface FinishedOutlook {
+  result: OutlookResult;
+  laws: IssuedLaw[];
+}
+
+export default function work(task: OutlookTask): NeedPart | FinishedOutlook {
   const { model, input, outlook } = task;
-  const prepared = kept(outlooks, keptOutlooks, outlook, () =>
-    prepareOutlook(
-      kept(models, keptModels, model.key, () => deserialize(Buffer.from(model.bytes)) as ModelParameters),
-      input,
-    ),
+  const parameters = kept(
+    models,
+    keptModels,
+    model.key,
+    () => deserialize(Buffer.from(model.bytes)) as ModelParameters,
   );
-  return task.kind === 'part'
-    ? simulateOutlookPart(prepared, task.from, task.to)
-    : outlookFromParts(prepared, task.parts);
+  const prepared = kept(outlooks, keptOutlooks, outlook, () => prepareOutlook(parameters, input));
+  if (task.kind === 'part') return simulateOutlookPart(prepared, task.from, task.to);
+  const result = outlookFromParts(prepared, task.parts);
+  return { result, laws: outlookLaws(prepared, task.parts, result, parameters) };
 }

@@ -3,6 +3,7 @@ import { nightOf } from '../../../shared/domain/night.ts';
 import { makeZone, type Zone } from '../../../shared/domain/zoned-time.ts';
 import { readCalendar } from '../../database/read-calendar.ts';
 import { censusDroppedAfterSeconds, readNewestCensus } from '../../database/read-census.ts';
+import { readDriftCautions } from '../../database/read-drift.ts';
 import { readModelInUse } from '../../database/read-model.ts';
 import { readAreas, readShifts } from '../../database/read-site.ts';
 import { readPlan } from '../../database/read-staffed-beds.ts';
@@ -61,6 +62,7 @@ export async function presentTonight(
       census,
       unusualDays: await readCalendar(read, site, now, lastHour),
       covered: coveredByLogs(logs, site, now),
+      drift: await readDriftCautions(read, site.id),
     }),
     moved: older ? whyMoved(outlook, await presentOutlook(read, older), names, site.timeZone) : null,
     acknowledgements,

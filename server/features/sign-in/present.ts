@@ -10,7 +10,7 @@ import { permissionsAt, type Caller } from '../../http/caller.ts';
 export async function presentSession(
   deps: Dependencies,
   caller: Caller | null,
-  sessionId: string,
+  { sessionId, locked }: { sessionId: string; locked: boolean },
   now: number,
 ): Promise<Session> {
   const { config, database } = deps;
@@ -33,6 +33,8 @@ export async function presentSession(
           permissions: permissionsAt(caller, site.id),
         }))
       : [],
+    locked,
+    idleSeconds: config.idleMinutes * 60,
     installationRoles: caller?.installationRoles ?? [],
     installationPermissions: permissionsOf(caller?.installationRoles ?? []),
     administratorContact: config.administratorContact,

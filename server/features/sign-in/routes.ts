@@ -1,22 +1,34 @@
 import type { Express, Request } from 'express';
 import * as oidc from 'openid-client';
-import { getSession, signIn, signInCallback, signOut } from '../../../shared/api/session.ts';
+import {
+  getSession,
+  lockSession,
+  signIn,
+  signInCallback,
+  signOut,
+  signOutEverywhere,
+} from '../../../shared/api/session.ts';
 import type { Dependencies } from '../../dependencies.ts';
 import { recordAudit } from '../../http/audit.ts';
-import { addRoute, type RouteTable } from '../../http/route.ts';
+import { addRoute, type RouteContext, type RouteTable } from '../../http/route.ts';
+import type { SessionStore } from '../../http/session-store.ts';
+import { sessionCookie } from '../../http/session-cookie.ts';
+import { isLocked } from '../../http/session-use.ts';
 import { presentSession } from './present.ts';
 import { makeProvider } from './provider.ts';
-import { recognisePerson } from './recognise-person.ts';
+import { readGroups, recognisePerson } from './recognise-person.ts';
 
 const signInMinutes = 15;
 
 /** Sign-in by OpenID Connect: authorization code with PKCE, state and nonce. */
-export function addSignInRoutes(app: Express, table: RouteTable, deps: Dependencies): void {
+export function addSignInRoutes(app: Express, table: RouteTable, deps: Dependencies, sessions: SessionStore): void {
   const { config, database, logger } = deps;
   const provider = makeProvider(config);
   const redirectUri = `${config.baseUrl}/auth/callback`;
 
-  addRoute(app, table, deps, getSession, ({ req, caller, now }) => presentSession(deps, caller, req.sessionID, now));
+  addRoute(app, table, deps, getSession, ({ req, caller, now }) =>
+    presentSession(deps, caller, { sessionId: req.sessionID, locked: isLocked(req) }, now),
+  );
 
   addRoute(app, table, deps, signIn, async ({ req, res, query, now }) => {
     let configuration: oidc.Configuration;
@@ -30,7 +42,8 @@ export function addSignInRoutes(app: Express, table: RouteTable, deps: Dependenc
     const codeVerifier = oidc.randomPKCECodeVerifier();
     const state = oidc.randomState();
     const nonce = oidc.randomNonce();
-    const fresh = query.fresh === '1';
+    // A locked session is never opened by a sign-in that the provider still remembers.
+    const fresh = query.fresh === '1' || isLocked(req);
     req.session.signIn = { state, nonce, codeVerifier, returnTo: localPath(query.returnTo), fresh, startedAt: now };
     await saveSession(req);
     res.redirect(
@@ -87,6 +100,7 @@ export function addSignInRoutes(app: Express, table: RouteTable, deps: Dependenc
           name: typeof claims.name === 'string' && claims.name !== '' ? claims.name : email || claims.sub,
           email,
           emailVerified: claims.email_verified === true,
+          groups: readGroups(claims.groups),
         },
         now,
       );
@@ -103,25 +117,22 @@ export function addSignInRoutes(app: Express, table: RouteTable, deps: Dependenc
     });
     req.session.personId = person.id;
     req.session.signedInAt = now;
+    req.session.usedAt = now;
     req.session.idToken = tokens.id_token ?? '';
     await saveSession(req);
     res.redirect(underWay.returnTo);
     return undefined;
   });
 
-  addRoute(app, table, deps, signOut, async (context) => {
-    const { req, res } = context;
+  const leave = async ({ req, res }: RouteContext): Promise<{ redirectTo: string }> => {
     const idToken = req.session.idToken;
-    await database.write((manager) =>
-      recordAudit(manager, context, 'person.signed-out', context.caller?.person.id ?? ''),
-    );
     await new Promise<void>((resolve, reject) => {
       req.session.destroy((error: unknown) => {
         if (error) reject(error instanceof Error ? error : new Error('the session could not be ended'));
         else resolve();
       });
     });
-    res.clearCookie('shoalmark');
+    res.clearCookie(sessionCookie(config.production), { path: '/', secure: config.production });
     let redirectTo = '/sign-in';
     try {
       const configuration = await provider();
@@ -135,6 +146,27 @@ export function addSignInRoutes(app: Express, table: RouteTable, deps: Dependenc
       logger.warn({ err: error }, 'the identity provider could not be asked to end its session');
     }
     return { redirectTo };
+  };
+
+  addRoute(app, table, deps, signOut, async (context) => {
+    await database.write((manager) =>
+      recordAudit(manager, context, 'person.signed-out', context.caller?.person.id ?? ''),
+    );
+    return leave(context);
+  });
+
+  addRoute(app, table, deps, signOutEverywhere, async (context) => {
+    const personId = context.caller?.person.id ?? '';
+    await sessions.endAllOf(personId, (manager, count) =>
+      recordAudit(manager, context, 'person.signed-out-everywhere', personId, { sessions: count }),
+    );
+    return leave(context);
+  });
+
+  addRoute(app, table, deps, lockSession, async ({ req }) => {
+    req.session.usedAt = 0;
+    await saveSession(req);
+    return null;
   });
 }
 

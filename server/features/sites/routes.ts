@@ -20,8 +20,10 @@ export function addSiteRoutes(app: Express, table: RouteTable, deps: Dependencie
       country: site.country,
       region: site.region,
       planningRisk: site.planningRisk,
+      bedMeetingMinutes: site.bedMeetingMinutes,
+      waitLimitMinutes: site.waitLimitMinutes,
       areas: areas.map(
-        ({ id, name, spaceKind, spaces, safeMinimum, bedStep, noticeHours, alertLimit, escalationNote }) => ({
+        ({
           id,
           name,
           spaceKind,
@@ -31,9 +33,29 @@ export function addSiteRoutes(app: Express, table: RouteTable, deps: Dependencie
           noticeHours,
           alertLimit,
           escalationNote,
+          bedsPerNurse,
+          lendsTo,
+        }) => ({
+          id,
+          name,
+          spaceKind,
+          spaces,
+          safeMinimum,
+          bedStep,
+          noticeHours,
+          alertLimit,
+          escalationNote,
+          bedsPerNurse,
+          lendsTo,
         }),
       ),
-      shifts: shifts.map(({ id, name, startMinute, endMinute }) => ({ id, name, startMinute, endMinute })),
+      shifts: shifts.map(({ id, name, startMinute, endMinute, leadTimeHours }) => ({
+        id,
+        name,
+        startMinute,
+        endMinute,
+        leadTimeHours,
+      })),
     };
   });
 }

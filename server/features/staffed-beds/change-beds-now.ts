@@ -68,12 +68,8 @@ export async function changeBedsNow(
   });
   await write(async (manager) => {
     await manager.insert(BedChange, change);
-    await recordAudit(manager, context, 'staffed-beds.changed-now', change.id, {
-      areaId: area.id,
-      beds: change.beds,
-      blocked: change.blocked,
-      untilAt: change.untilAt,
-    });
+    const detail = { areaId: area.id, beds: change.beds, blocked: change.blocked, untilAt: change.untilAt };
+    await recordAudit(manager, context, 'staffed-beds.changed-now', change.id, detail, change.reason);
   });
   return change;
 }

@@ -1,26 +1,28 @@
 import type { EntityManager } from 'typeorm';
 import { withArticle } from '../../../shared/domain/identifier-kind.ts';
+import { planFaults } from '../../../shared/domain/plan-faults.ts';
 import { screenNote } from '../../../shared/domain/screen-note.ts';
 import { newId } from '../../database/new-id.ts';
 import { readAreas } from '../../database/read-site.ts';
 import { StaffedBedPlan } from '../../entities/StaffedBedPlan.ts';
 import { StaffedBedPlanArea } from '../../entities/StaffedBedPlanArea.ts';
-import { badInput, type Fault } from '../../errors.ts';
+import { badInput, conflict, type Fault } from '../../errors.ts';
 
 /** A plan to save: every care area by half hour of week. */
 export interface PlanInput {
   areas: { areaId: string; halfHours: number[] }[];
   reason: string;
+  /** The version that was read before the change, 0 for none; left out: whatever is in force is followed. */
+  basedOnVersion?: number | undefined;
 }
 
 /** More than a person reads; the count tells of the rest. */
 const faultsListed = 200;
-const days = ['Monday', 'Tuesday', 'Wednesday', 'Thursday', 'Friday', 'Saturday', 'Sunday'];
 
 /**
  * Saves a new version of a site's plan within the caller's transaction. Refused whole, with every cell
  * named, where an area is missing, unknown or named twice, a cell is below the area's safe minimum, or
- * beyond the bed spaces that exist; and where the reason could identify a person.
+ * beyond the bed spaces that exist; where the reason could identify a person; and where somebody else saved meanwhile.
  */
 export async function savePlan(
   manager: EntityManager,
@@ -46,19 +48,7 @@ export async function savePlan(
       faults.push({ at: `areas.${String(index)}`, message: `${area.name} is named twice.` });
       continue;
     }
-    for (const [halfHour, beds] of planned.halfHours.entries()) {
-      if (beds < area.safeMinimum) {
-        faults.push({
-          at: cell(area.name, halfHour),
-          message: `${String(beds)} is below the safe minimum of ${String(area.safeMinimum)}.`,
-        });
-      } else if (beds > area.spaces) {
-        faults.push({
-          at: cell(area.name, halfHour),
-          message: `${String(beds)} is beyond the ${String(area.spaces)} bed spaces that exist.`,
-        });
-      }
-    }
+    for (const { at, message } of planFaults(area, planned.halfHours)) faults.push({ at, message });
   }
   const kind = screenNote(input.reason);
   if (kind !== null) {
@@ -72,6 +62,14 @@ export async function savePlan(
     throw badInput(`The plan has ${count}.`, faults.slice(0, faultsListed));
   }
   const last = await manager.findOne(StaffedBedPlan, { where: { siteId }, order: { version: 'DESC' } });
+  if (input.basedOnVersion !== undefined && input.basedOnVersion !== (last?.version ?? 0)) {
+    throw conflict(
+      last
+        ? `${last.savedBy} saved version ${String(last.version)} of the plan meanwhile.`
+        : `The plan has no version ${String(input.basedOnVersion)}.`,
+      'Compare your plan with the one in force, then save it on top of that.',
+    );
+  }
   const plan = await manager.save(
     manager.create(StaffedBedPlan, {
       id: newId(),
@@ -87,10 +85,4 @@ export async function savePlan(
     input.areas.map(({ areaId, halfHours }) => ({ planId: plan.id, areaId, halfHours })),
   );
   return plan;
-}
-
-function cell(area: string, halfHour: number): string {
-  const minutes = (halfHour % 48) * 30;
-  const time = `${String(Math.floor(minutes / 60)).padStart(2, '0')}:${String(minutes % 60).padStart(2, '0')}`;
-  return `${area}, ${days[Math.floor(halfHour / 48)]} ${time}`;
 }

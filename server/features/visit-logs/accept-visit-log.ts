@@ -93,6 +93,7 @@ export async function acceptVisitLog({
       rows: report.goodRows,
       periodFrom: period.from,
       periodTo: period.to,
+      statedFrom: null,
       ...facts,
       problems: {
         rows: report.problemRows + body.leftOutBeforeSending.rows,

@@ -58,7 +58,8 @@ export async function declareGap({
     await manager.insert(ExposureGapRow, row);
     const { from, until } = body;
     const detail = { kind: body.kind, areaId, from, until };
-    await recordAudit(manager, { ...request, caller, site, now }, 'exposure-gap.declared', row.id, detail);
+    const source = { ...request, caller, site, now };
+    await recordAudit(manager, source, 'exposure-gap.declared', row.id, detail, row.reason);
   });
   return presentGap(row);
 }

@@ -1,6 +1,8 @@
 import type { Express } from 'express';
 import { declareExposureGap, listExposureGaps, removeExposureGap } from '../../../shared/api/exposure-gaps.ts';
 import { getVisitLogMapping } from '../../../shared/api/visit-log-mapping.ts';
+import { getVisitLogPresence } from '../../../shared/api/visit-log-presence.ts';
+import { getVisitRetention, setVisitRetention } from '../../../shared/api/visit-retention.ts';
 import * as api from '../../../shared/api/visit-logs.ts';
 import { countingSpans } from '../../database/counting-spans.ts';
 import type { Dependencies } from '../../dependencies.ts';
@@ -13,18 +15,27 @@ import type { JobKind } from '../../jobs/queue.ts';
 import { acceptVisitLog } from './accept-visit-log.ts';
 import { findChecked, forgetChecked } from './checked-file.ts';
 import { checkVisitLog } from './check-visit-log.ts';
+import { comparePresence } from './compare-presence.ts';
 import { deleteRowsJobKind, makeDeleteVisits } from './delete-visits.job.ts';
 import { declareGap, listGaps, removeGap } from './exposure-gaps.ts';
 import { importJobKind } from './import-payload.ts';
 import { makeImportVisitLog, type OnLogReady } from './import-visit-log.job.ts';
 import { presentVisitLog, presentVisitLogDetail } from './present.ts';
+import { makePurgeVisits, purgeJobKind } from './purge-visits.job.ts';
 import { readMapping } from './remember-mapping.ts';
 import { sendProblemRows } from './send-problem-rows.ts';
 import { checksInUse } from './sweep-visit-logs.ts';
-import { withdrawVisitLog } from './withdraw-visit-log.ts';
+import { tellIfRefused } from './tell-stewards.ts';
+import { readRetention, saveRetention } from './visit-retention.ts';
+import { withdrawVisitLog, type OnLogWithdrawn } from './withdraw-visit-log.ts';
 
 /** Routes of visit logs (list, one, check, accept, discard, withdraw) and of the hours that no log can speak for. */
-export function addVisitLogRoutes(app: Express, routes: RouteTable, deps: Dependencies): void {
+export function addVisitLogRoutes(
+  app: Express,
+  routes: RouteTable,
+  deps: Dependencies,
+  onWithdrawn: OnLogWithdrawn,
+): void {
   addSiteRoute(app, routes, deps, api.listVisitLogs, async ({ site }) => {
     const { logs, spans } = await readLogs(deps, site);
     return { logs: logs.map((log) => presentVisitLog(log, spans.get(log.number) ?? [])) };
@@ -32,7 +43,11 @@ export function addVisitLogRoutes(app: Express, routes: RouteTable, deps: Depend
 
   addSiteRoute(app, routes, deps, api.getVisitLog, ({ site, params }) => readDetail(deps, site, params.logId));
 
-  addActorRoute(app, routes, deps, api.checkVisitLog, (context) => checkVisitLog(context));
+  addSiteRoute(app, routes, deps, getVisitLogPresence, (context) => comparePresence(context));
+
+  addActorRoute(app, routes, deps, api.checkVisitLog, (context) =>
+    tellIfRefused(context, () => checkVisitLog(context)),
+  );
 
   addSiteRoute(app, routes, deps, api.discardVisitLogCheck, async ({ site, params, now }) => {
     const checked = await findChecked(deps.config.dataDir, site.id, params.checkId, now);
@@ -43,7 +58,9 @@ export function addVisitLogRoutes(app: Express, routes: RouteTable, deps: Depend
 
   addSiteRoute(app, routes, deps, api.getProblemRows, (context) => sendProblemRows(context));
 
-  addActorRoute(app, routes, deps, api.acceptVisitLog, (context) => acceptVisitLog(context));
+  addActorRoute(app, routes, deps, api.acceptVisitLog, (context) =>
+    tellIfRefused(context, () => acceptVisitLog(context)),
+  );
 
   addSiteRoute(app, routes, deps, getVisitLogMapping, async ({ site }) => ({
     remembered: await readMapping(deps.database.read, site.id),
@@ -55,15 +72,23 @@ export function addVisitLogRoutes(app: Express, routes: RouteTable, deps: Depend
 
   addSiteRoute(app, routes, deps, removeExposureGap, (context) => removeGap(context));
 
+  addSiteRoute(app, routes, deps, getVisitRetention, ({ site, now }) => readRetention(deps, site.id, now));
+
+  addSiteRoute(app, routes, deps, setVisitRetention, (context) => saveRetention(context));
+
   addSiteRoute(app, routes, deps, api.withdrawVisitLog, async (context) => {
-    await withdrawVisitLog(context);
+    await withdrawVisitLog(context, onWithdrawn);
     return readDetail(deps, context.site, context.params.logId);
   });
 }
 
 /** What the job queue does for this feature. */
 export function visitLogJobs(deps: Dependencies, onReady: OnLogReady): Record<string, JobKind> {
-  return { [importJobKind]: makeImportVisitLog(deps, onReady), [deleteRowsJobKind]: makeDeleteVisits(deps) };
+  return {
+    [importJobKind]: makeImportVisitLog(deps, onReady),
+    [deleteRowsJobKind]: makeDeleteVisits(deps),
+    [purgeJobKind]: makePurgeVisits(deps),
+  };
 }
 
 async function readLogs(deps: Dependencies, site: Site) {

@@ -1,22 +1,21 @@
 import { withArticle } from '../../../shared/domain/identifier-kind.ts';
 import { screenNote } from '../../../shared/domain/screen-note.ts';
 import type { withdrawVisitLog as contract } from '../../../shared/api/visit-logs.ts';
+import type { EntityManager } from 'typeorm';
 import { VisitLog } from '../../entities/VisitLog.ts';
 import { badInput, conflict, notFound } from '../../errors.ts';
 import { recordAudit } from '../../http/audit.ts';
 import type { SiteContext } from '../../http/route.ts';
 import { deleteRowsJob } from './delete-visits.job.ts';
 
+/** Told, in the same transaction, that a log has stopped counting. */
+export type OnLogWithdrawn = (manager: EntityManager, log: VisitLog) => Promise<void>;
+
 /** Takes a log back: its visits stop counting with this write, and are deleted by a job. */
-export async function withdrawVisitLog({
-  deps,
-  site,
-  caller,
-  now,
-  params,
-  body,
-  ...request
-}: SiteContext<typeof contract>): Promise<void> {
+export async function withdrawVisitLog(
+  { deps, site, caller, now, params, body, ...request }: SiteContext<typeof contract>,
+  onWithdrawn: OnLogWithdrawn,
+): Promise<void> {
   const kind = screenNote(body.reason);
   if (kind !== null) {
     throw badInput(`The reason looks as if it held ${withArticle(kind)}.`, [
@@ -35,6 +34,8 @@ export async function withdrawVisitLog({
       { status: 'withdrawn', withdrawnBy: caller.person.name, withdrawnAt: now, reason: body.reason },
     );
     await deps.jobs.enqueue(manager, deleteRowsJob(log, caller.person.name, null));
-    await recordAudit(manager, { ...request, caller, site, now }, 'visit-log.withdrawn', log.id, { rows: log.rows });
+    await onWithdrawn(manager, log);
+    const source = { ...request, caller, site, now };
+    await recordAudit(manager, source, 'visit-log.withdrawn', log.id, { rows: log.rows }, body.reason);
   });
 }

@@ -3,7 +3,7 @@ import { Link } from 'react-router-dom';
 import type { ModelSummary } from '../../../shared/api/arrival-models.ts';
 import { DataTable } from '../../components/DataTable.tsx';
 import { formatDateTime } from '../../lib/format.ts';
-import { groundsInWords, statusWord } from './model-words.ts';
+import { groundsInWords, sinceFitInWords, statusWord } from './model-words.ts';
 
 /** All models of the site: the one in use, candidates, earlier ones. */
 export function ModelList({
@@ -32,15 +32,18 @@ export function ModelList({
           key: 'status',
           header: 'Model',
           rowHeader: true,
+          value: (model) => statusWord(model.status),
           cell: (model) => (
             <Link to={hrefOf(model.id)} className="link inline-block min-h-6">
               {statusWord(model.status)}
+              {sinceFitInWords(model).length > 0 ? ', its visits have changed since' : ''}
             </Link>
           ),
         },
         {
           key: 'fitted',
           header: 'Fitted',
+          value: (model) => model.fittedAt,
           cell: (model) =>
             model.status === 'fitting' && model.jobId ? (
               progressOf(model.jobId)
@@ -54,6 +57,7 @@ export function ModelList({
         {
           key: 'verdict',
           header: 'Approved',
+          value: (model) => model.approvedAt,
           cell: (model) =>
             model.approvedAt === null
               ? '–'

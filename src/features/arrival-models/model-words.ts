@@ -1,5 +1,5 @@
 import type { ModelDetail, ModelSummary } from '../../../shared/api/arrival-models.ts';
-import { formatAge, formatDate, formatNumber } from '../../lib/format.ts';
+import { formatAge, formatCount, formatDate, formatList, formatNumber } from '../../lib/format.ts';
 
 const statusWords: Record<ModelSummary['status'], string> = {
   fitting: 'Being fitted',
@@ -20,6 +20,23 @@ export function groundsInWords(model: ModelSummary, timeZone: string): string {
     `${formatNumber(model.visits)} visits, ${formatNumber(model.weeksOfHistory)} weeks, ` +
     `${formatDate(model.trainedFrom, timeZone)} to ${formatDate(model.trainedTo, timeZone)}`
   );
+}
+
+/** What has changed about its visits since it was fitted, as sentences; none if nothing has. */
+export function sinceFitInWords({ sinceFit }: ModelSummary): string[] {
+  const { withdrawnLogs, gapsDeclared } = sinceFit;
+  return [
+    ...(withdrawnLogs.length > 0
+      ? [
+          `It was fitted on ${formatCount(withdrawnLogs.length, 'log that was', 'logs that were')} withdrawn since: ${formatList(withdrawnLogs)}.`,
+        ]
+      : []),
+    ...(gapsDeclared > 0
+      ? [
+          `${formatCount(gapsDeclared, 'outage or diversion was', 'outages or diversions were')} declared since within its time; it took those hours for ordinary ones.`,
+        ]
+      : []),
+  ];
 }
 
 /** The headline of a model's page. */

@@ -34,7 +34,9 @@ function useRefresh(siteId: string) {
 export function useFitModel(siteId: string) {
   const refresh = useRefresh(siteId);
   return useMutation({
-    mutationFn: () => call(fitModel, { params: { siteId }, body: {}, kept: 'No fit was started.' }),
+    /** On these logs only, or on all that count. */
+    mutationFn: (logIds: string[] | null) =>
+      call(fitModel, { params: { siteId }, body: logIds === null ? {} : { logIds }, kept: 'No fit was started.' }),
     onSuccess: refresh,
   });
 }

@@ -2,7 +2,7 @@ import { useId } from 'react';
 import type { CareArea } from '../../../shared/api/sites.ts';
 import { RiskMark } from '../../../shared/charts/RiskMark.tsx';
 import { bedsAt } from '../../../shared/domain/bed-schedule.ts';
-import { formatChance, riskStep, riskWord } from '../../../shared/domain/risk-word.ts';
+import { chanceInNights, formatChance, riskStep, riskWord } from '../../../shared/domain/risk-word.ts';
 import { formatAge, formatCount, formatTime } from '../../lib/format.ts';
 import { CensusFields, CensusSave } from './CensusFields.tsx';
 import { StaffedTonight } from './StaffedTonight.tsx';
@@ -26,10 +26,13 @@ export function SomeTimeLine({
   someTime,
   timeZone,
   subject = '',
+  inNights = false,
 }: {
   someTime: SomeTime;
   timeZone: string;
   subject?: string;
+  /** Adds what the chance means over many such nights. */
+  inNights?: boolean;
 }) {
   const { chance } = someTime.chance;
   const step = riskStep(chance);
@@ -38,6 +41,7 @@ export function SomeTimeLine({
       <RiskMark step={step} className="mr-1 inline-block h-4 w-5 align-[-2px] text-ink" />
       <span className={step >= 3 ? 'font-extrabold text-ink' : 'font-semibold'}>{riskWord(chance)}</span> {subject}
       {whenInWords(someTime, timeZone)}, <b className="text-ink">{formatChance(chance).replace(' ', '\u00a0')}</b>
+      {inNights ? `: ${chanceInNights(chance)}` : null}
     </p>
   );
 }
@@ -116,7 +120,7 @@ export function AreaGutter({
         </h3>
         {row?.counted === false || !counted ? <p className="text-label font-bold text-ink2">Not counted</p> : null}
       </div>
-      {row?.someTime ? <SomeTimeLine someTime={row.someTime} timeZone={timeZone} /> : null}
+      {row?.someTime ? <SomeTimeLine someTime={row.someTime} timeZone={timeZone} inNights={open} /> : null}
       {row && firstPast !== null ? (
         <p className="text-label text-ink2 tight">
           Past {limit} from{' '}

@@ -1,7 +1,7 @@
 import { Fragment } from 'react';
 import type { Outlook } from '../../../shared/api/outlooks.ts';
 import type { Site } from '../../../shared/api/sites.ts';
-import { meetingAtHand, usualMeetingMinutes } from '../../../shared/domain/bed-meeting.ts';
+import { meetingAtHand } from '../../../shared/domain/bed-meeting.ts';
 import { Dialog } from '../../components/Dialog.tsx';
 import { formatCount, formatNumber, formatTime, zoneOf } from '../../lib/format.ts';
 import { meetingHours, meetingReach, meetingRows } from './bed-meeting.ts';
@@ -58,7 +58,7 @@ export function BedMeeting({
     need: hours.map(({ place }) => (place >= 0 && board.department.counted ? ahead[place] : null)),
     ask: null,
   };
-  const meeting = meetingAtHand(zoneOf(site.timeZone), usualMeetingMinutes, now);
+  const meeting = meetingAtHand(zoneOf(site.timeZone), site.bedMeetingMinutes, now);
   return (
     <Dialog title="Bed meeting" open={open} onClose={onClose}>
       <table className="w-full border-collapse text-right max-sm:text-label max-sm:font-stretch-[88%]">

@@ -7,14 +7,14 @@ import { formatChance, riskWord } from '../../../shared/domain/risk-word.ts';
 import { formatNumber, formatSigned, formatTime } from '../../lib/format.ts';
 import { FigureCaptions, SomeTimeLine } from './AreaGutter.tsx';
 import type { Rights } from './AreaGutter.tsx';
-import { BoardRow } from './BoardRow.tsx';
-import { ChanceTable } from './ChanceTable.tsx';
+import { BoardRow } from '../../components/BoardRow.tsx';
+import { ChanceTable } from '../../components/ChanceTable.tsx';
 import { DepartmentFields } from './DepartmentFields.tsx';
 import { pastHours } from './tonight-board.ts';
 import type { Board } from './tonight-board.ts';
 import { useCensusEntryContext } from './use-census-entry.ts';
 
-/** How the arrivals so far compare with what was expected; quieter or busier only outside the 80 % range. */
+/** How the arrivals so far compare with what was expected, and what that does to the forecast; quieter or busier only outside the 80 % range. */
 export function arrivalsInWords(soFar: NonNullable<Outlook['result']['arrivalsSoFar']>): string {
   const spread =
     soFar.counted < soFar.p10
@@ -22,7 +22,12 @@ export function arrivalsInWords(soFar: NonNullable<Outlook['result']['arrivalsSo
       : soFar.counted > soFar.p90
         ? 'busier than usual'
         : 'within the usual spread';
-  return `${formatNumber(soFar.counted)} arrivals so far, ${formatNumber(soFar.expected)} expected: ${spread}.`;
+  const said = `${formatNumber(soFar.counted)} arrivals so far, ${formatNumber(soFar.expected)} expected: ${spread}`;
+  if (soFar.move === undefined) return `${said}.`;
+  const percent = Math.round((soFar.move - 1) * 100);
+  return percent === 0
+    ? `${said}; tonight’s forecast stays as it was.`
+    : `${said}; tonight’s forecast moves ${percent > 0 ? 'up' : 'down'} ${String(Math.abs(percent))}\u00a0%.`;
 }
 
 /** The whole department: its totals, the chance that some area is short, and the pooled need beneath it. */
@@ -82,6 +87,7 @@ export function DepartmentRow({
                 someTime={department.someTime}
                 timeZone={site.timeZone}
                 subject="that some area is short "
+                inNights
               />
             ) : null}
             {soFar ? <p className="text-label text-ink2 tight">{arrivalsInWords(soFar)}</p> : null}

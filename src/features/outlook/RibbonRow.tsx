@@ -3,15 +3,15 @@ import type { Site } from '../../../shared/api/sites.ts';
 import { skyTone } from '../../../shared/charts/daylight.ts';
 import { Ribbon, ribbonHeight } from '../../../shared/charts/Ribbon.tsx';
 import type { RibbonEvent } from '../../../shared/charts/Ribbon.tsx';
-import { meetingsBetween, usualMeetingMinutes } from '../../../shared/domain/bed-meeting.ts';
+import { meetingsBetween } from '../../../shared/domain/bed-meeting.ts';
 import { shiftsBetween } from '../../../shared/domain/shift-times.ts';
 import { Link } from 'react-router-dom';
 import { Button } from '../../components/Button.tsx';
 import { formatDay, formatHour, formatTime, formatWeekday, zoneOf } from '../../lib/format.ts';
-import { BoardRow } from './BoardRow.tsx';
+import { BoardRow } from '../../components/BoardRow.tsx';
 import { pastHours } from './tonight-board.ts';
 import type { Board } from './tonight-board.ts';
-import type { useRibbon } from './use-ribbon.ts';
+import type { useRibbon } from '../../lib/use-ribbon.ts';
 
 /** Where areas change their staffed beds within the hours ahead; many at one time are told together. */
 function bedEvents(board: Board, outlook: Outlook, now: number): RibbonEvent[] {
@@ -31,9 +31,9 @@ function bedEvents(board: Board, outlook: Outlook, now: number): RibbonEvent[] {
 }
 
 /** Bed meetings within the hours ahead. */
-function meetingEvents(board: Board, timeZone: string, now: number): RibbonEvent[] {
+function meetingEvents(board: Board, { timeZone, bedMeetingMinutes }: Site, now: number): RibbonEvent[] {
   const last = board.hours[board.hours.length - 1].at;
-  return meetingsBetween(zoneOf(timeZone), usualMeetingMinutes, now, last).map((at) => ({ at, text: 'Bed meeting' }));
+  return meetingsBetween(zoneOf(timeZone), bedMeetingMinutes, now, last).map((at) => ({ at, text: 'Bed meeting' }));
 }
 
 /** The ribbon with its flag of now, and in the gutter how to step it. */
@@ -126,7 +126,7 @@ export function RibbonRow({
                   : null,
             }))}
             shifts={shifts}
-            events={[...bedEvents(board, outlook, now), ...meetingEvents(board, site.timeZone, now)]
+            events={[...bedEvents(board, outlook, now), ...meetingEvents(board, site, now)]
               .filter((event) => !starts.has(event.at))
               .sort((a, b) => a.at - b.at)}
             timeOf={(at) => formatTime(at, site.timeZone)}

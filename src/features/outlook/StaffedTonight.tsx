@@ -6,6 +6,7 @@ import { screenNote } from '../../../shared/domain/screen-note.ts';
 import { Button } from '../../components/Button.tsx';
 import { SelectField, TextField } from '../../components/Field.tsx';
 import { ProblemNotice } from '../../components/Notice.tsx';
+import { useUnsavedWork } from '../../lib/unsaved-work.ts';
 import { FigureInput } from './FigureInput.tsx';
 import { useChangeBeds } from './queries.ts';
 
@@ -59,6 +60,7 @@ export function StaffedTonight({ area, siteId, inForce }: { area: CareArea; site
   const formId = useId();
   const current = inForce === null ? '' : String(inForce);
   const open = draft !== null && draft.beds !== current;
+  useUnsavedWork(open, 'a change of staffed beds that is not saved yet');
   const set = (change: Partial<Draft>) => {
     setDraft({ ...(draft ?? start), ...change });
     setErrors({});
@@ -91,7 +93,8 @@ export function StaffedTonight({ area, siteId, inForce }: { area: CareArea; site
         onChange={(event) => set({ beds: event.target.value })}
       />
       {open ? (
-        <div className="col-span-full mt-2 grid gap-3">
+        // While it is open the bar at the foot gives way: it would lie over these fields, and speaks of the census only.
+        <div data-beds-change="" className="col-span-full mt-2 grid gap-3">
           {errors.beds ? (
             <p className="text-label font-bold text-warn" role="alert">
               {errors.beds}
@@ -114,7 +117,7 @@ export function StaffedTonight({ area, siteId, inForce }: { area: CareArea; site
             onChange={(event) => set({ blocked: event.target.value })}
           />
           <TextField
-            label="Why"
+            label="Reason"
             placeholder="No patient details"
             maxLength={500}
             value={draft.reason}

@@ -18,7 +18,7 @@ import { RiskKey } from '../../components/RiskKey.tsx';
 import { buildBoard, pastHours } from './tonight-board.ts';
 import { UndecidedRow } from './UndecidedRow.tsx';
 import type { BoardRows } from './use-board-rows.ts';
-import { useRibbon } from './use-ribbon.ts';
+import { useRibbon } from '../../lib/use-ribbon.ts';
 
 /** The night board: ribbon, department, areas in the site's own order, area not decided, key. */
 export function TonightBoard({

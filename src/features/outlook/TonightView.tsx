@@ -196,7 +196,7 @@ function ActionBar({
 }) {
   const edited = entry.form.formState.isDirty;
   return (
-    <div className="sticky bottom-0 z-30 mt-2 flex gap-3 border-t border-hair bg-paper px-page py-2 lg:hidden print:hidden">
+    <div className="action-bar sticky bottom-0 z-30 mt-2 flex flex-wrap gap-3 border-t border-hair bg-paper px-page py-2 lg:hidden print:hidden">
       <Button
         className="flex-1"
         onClick={edited ? entry.save : entry.nothingChanged}

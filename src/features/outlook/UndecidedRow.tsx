@@ -1,5 +1,5 @@
 import { formatTime } from '../../lib/format.ts';
-import { BoardRow } from './BoardRow.tsx';
+import { BoardRow } from '../../components/BoardRow.tsx';
 import { DepartmentFields } from './DepartmentFields.tsx';
 import type { Rights } from './AreaGutter.tsx';
 import { useCensusEntryContext } from './use-census-entry.ts';

@@ -6,6 +6,7 @@ import type { Site } from '../../../shared/api/sites.ts';
 import { keepDraft, readDraft } from './census-draft.ts';
 import { censusBodyOf, censusFields, censusFormOf, censusResolver } from './census-form.ts';
 import type { CensusContext, CensusForm } from './census-form.ts';
+import { useUnsavedWork } from '../../lib/unsaved-work.ts';
 import { useEnterCensus } from './queries.ts';
 
 export interface CensusEntry {
@@ -95,6 +96,8 @@ export function useCensusEntry(
         onSuccess: () => {
           const typedSince = form.getValues();
           form.reset(values, { keepDirtyValues: false });
+          // Before the figures typed meanwhile are put back: each of them is kept as a draft again.
+          keepDraft(site.id, null, 0);
           typedSince.areas.forEach((area, index) => {
             for (const field of censusFields) {
               if (area[field] !== values.areas[index][field]) {
@@ -102,12 +105,13 @@ export function useCensusEntry(
               }
             }
           });
-          keepDraft(site.id, null, 0);
           setSavedAt(takenAt);
         },
       });
     })();
   }
+
+  useUnsavedWork(live && form.formState.isDirty, 'a census that is not saved yet');
 
   return {
     form,

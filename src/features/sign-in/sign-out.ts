@@ -1,9 +1,17 @@
-import { signOut as signOutRoute } from '../../../shared/api/session.ts';
+import { signOut as signOutRoute, signOutEverywhere as everywhereRoute } from '../../../shared/api/session.ts';
 import { call } from '../../lib/api-client.ts';
 
 /** Ends the session at both ends. By fetch, since a form post that is sent on elsewhere is refused by the content policy. */
 export async function signOut(): Promise<void> {
-  const { redirectTo } = await call(signOutRoute, { kept: 'You are still signed in.' });
+  leaveFor((await call(signOutRoute, { kept: 'You are still signed in.' })).redirectTo);
+}
+
+/** The same on every device. */
+export async function signOutEverywhere(): Promise<void> {
+  leaveFor((await call(everywhereRoute, { kept: 'You are still signed in.' })).redirectTo);
+}
+
+function leaveFor(redirectTo: string): void {
   // What was typed belongs to this person: at a shared workstation the next one must not find it in the fields.
   try {
     sessionStorage.clear();

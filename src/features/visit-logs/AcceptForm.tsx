@@ -1,7 +1,12 @@
 import { useState } from 'react';
 import type { RememberedMapping } from '../../../shared/api/visit-log-mapping.ts';
 import type { ExtractFactsInput } from '../../../shared/api/visit-logs.ts';
-import { areaMeanings, arrivalMeanings } from '../../../shared/domain/extract-meaning.ts';
+import {
+  areaMeanings,
+  arrivalMeanings,
+  type AreaMeaning,
+  type ArrivalMeaning,
+} from '../../../shared/domain/extract-meaning.ts';
 import type { VisitReport } from '../../../shared/domain/visit-report.ts';
 import { Button } from '../../components/Button.tsx';
 import { TextField } from '../../components/Field.tsx';
@@ -11,6 +16,29 @@ import { Choice } from './Choice.tsx';
 import { areaMeaningWords, arrivalMeaningWords } from './log-words.ts';
 import { fromLocalInput, toLocalInput } from './local-input.ts';
 
+/** The answers so far. They stand outside the form, so that a send that fails or is cancelled keeps them. */
+export interface AcceptAnswers {
+  selectedBy: ExtractFactsInput['selectedBy'] | null;
+  missing: ExtractFactsInput['missingDeparture'] | null;
+  arrival: ArrivalMeaning | null;
+  area: AreaMeaning | null;
+  /** As typed, in the site's time; null while the first guess stands. */
+  takenAt: string | null;
+  goodOnly: boolean;
+}
+
+/** The answers that are offered for a new file: those of the site's last. */
+export function offerAnswers(remembered: RememberedMapping | null): AcceptAnswers {
+  return {
+    selectedBy: remembered?.selectedBy ?? null,
+    missing: remembered?.missingDeparture ?? null,
+    arrival: remembered?.arrivalMeaning ?? null,
+    area: remembered?.areaMeaning ?? null,
+    takenAt: null,
+    goodOnly: false,
+  };
+}
+
 /** Fourth step: the three facts that decide how the rows are counted, and the word to load them. */
 export function AcceptForm({
   report,
@@ -18,6 +46,8 @@ export function AcceptForm({
   now,
   fileDate,
   remembered,
+  answers,
+  onAnswer,
   onAccept,
 }: {
   report: VisitReport;
@@ -27,16 +57,14 @@ export function AcceptForm({
   fileDate: number;
   /** The answers of the site's last file; null before the first. */
   remembered: RememberedMapping | null;
+  answers: AcceptAnswers;
+  onAnswer: (changed: Partial<AcceptAnswers>) => void;
   onAccept: (facts: ExtractFactsInput, wasAskedMissing: boolean) => void;
 }) {
   const last = report.lastTimeAt ?? 0;
-  const [selectedBy, setSelectedBy] = useState(remembered?.selectedBy ?? null);
-  const [missing, setMissing] = useState(remembered?.missingDeparture ?? null);
-  const [arrival, setArrival] = useState(remembered?.arrivalMeaning ?? null);
-  const [area, setArea] = useState(remembered?.areaMeaning ?? null);
+  const { selectedBy, missing, arrival, area, goodOnly } = answers;
   const usesFileDate = fileDate >= last && fileDate <= now;
-  const [takenAt, setTakenAt] = useState(() => toLocalInput(usesFileDate ? fileDate : last, timeZone));
-  const [goodOnly, setGoodOnly] = useState(false);
+  const takenAt = answers.takenAt ?? toLocalInput(usesFileDate ? fileDate : last, timeZone);
   const [tried, setTried] = useState(false);
 
   const asksMissing = report.recorded.departure < report.goodRows;
@@ -94,7 +122,9 @@ export function AcceptForm({
           { value: 'arrived', label: 'Those that arrived in its period' },
           { value: 'departed', label: 'Those that departed in its period: long stays at its end are then missing' },
         ]}
-        onChoose={setSelectedBy}
+        onChoose={(value) => {
+          onAnswer({ selectedBy: value });
+        }}
       />
       <Choice
         legend="What does the arrival time mark, for patients who come by ambulance?"
@@ -103,7 +133,9 @@ export function AcceptForm({
         chosen={arrival}
         error={tried ? faults.arrival : undefined}
         options={arrivalMeanings.map((value) => ({ value, label: arrivalMeaningWords[value] }))}
-        onChoose={setArrival}
+        onChoose={(value) => {
+          onAnswer({ arrival: value });
+        }}
       />
       <Choice
         legend="Which care area does a row name, if the patient moved between areas?"
@@ -112,7 +144,9 @@ export function AcceptForm({
         chosen={area}
         error={tried ? faults.area : undefined}
         options={areaMeanings.map((value) => ({ value, label: areaMeaningWords[value] }))}
-        onChoose={setArea}
+        onChoose={(value) => {
+          onAnswer({ area: value });
+        }}
       />
       <div className="max-w-80">
         <TextField
@@ -134,7 +168,7 @@ export function AcceptForm({
           value={takenAt}
           error={tried ? takenFault : undefined}
           onChange={(event) => {
-            setTakenAt(event.target.value);
+            onAnswer({ takenAt: event.target.value });
           }}
         />
       </div>
@@ -148,7 +182,9 @@ export function AcceptForm({
             { value: 'still present', label: 'The patient was still present when the extract was taken' },
             { value: 'unknown', label: 'It is unknown when the patient left' },
           ]}
-          onChoose={setMissing}
+          onChoose={(value) => {
+            onAnswer({ missing: value });
+          }}
         />
       ) : null}
       {report.problemRows > 0 ? (
@@ -159,7 +195,7 @@ export function AcceptForm({
               className="size-5 shrink-0 accent-act"
               checked={goodOnly}
               onChange={(event) => {
-                setGoodOnly(event.target.checked);
+                onAnswer({ goodOnly: event.target.checked });
               }}
             />
             Load the {formatCount(report.goodRows, 'good row')} and leave out{' '}

@@ -5,6 +5,7 @@ import { Button } from '../../components/Button.tsx';
 import { DataTable } from '../../components/DataTable.tsx';
 import { Notice } from '../../components/Notice.tsx';
 import { formatCount, formatDateTime, formatNumber } from '../../lib/format.ts';
+import { formatBytes } from './format-bytes.ts';
 import type { FileMapping, RepeatedHour } from './check-file.ts';
 import type { AreaName } from './mapping.ts';
 
@@ -41,7 +42,7 @@ export function CheckReport({
     mapping.repeatedHour !== 'refuse' || report.problems.some(({ problem }) => problem === 'time repeated');
   const sent = visitColumns.filter((column) => mapping.columns[column] !== null);
   return (
-    <div className="grid gap-8">
+    <div className="grid grid-cols-[minmax(0,1fr)] gap-8">
       {asksRepeated ? (
         <fieldset className="grid max-w-[58rem] gap-1 border-l-4 border-ink py-1 pl-3">
           <legend className="sr-only">The hour that came twice</legend>
@@ -66,7 +67,7 @@ export function CheckReport({
         </fieldset>
       ) : null}
       {report.problems.length > 0 ? (
-        <section className="grid gap-3" aria-label="Problem rows">
+        <section className="grid grid-cols-[minmax(0,1fr)] gap-3" aria-label="Problem rows">
           <DataTable
             caption="Problem rows, by kind"
             rows={report.problems}
@@ -122,7 +123,7 @@ export function CheckReport({
       ) : null}
       {study}
       {report.goodRows > 0 ? (
-        <div className="grid gap-8 lg:grid-cols-2">
+        <div className="grid grid-cols-[minmax(0,1fr)] gap-8 lg:grid-cols-2">
           <DataTable
             caption="Visits by care area"
             rows={report.visitsByArea}
@@ -136,8 +137,7 @@ export function CheckReport({
             <h2 className="font-bold text-ink">What will be sent</h2>
             <ul className="mt-2 list-disc pl-5 text-ink2">
               <li>
-                <b className="text-ink">{formatCount(report.goodRows, 'row')}</b>, {formatNumber(payloadBytes / 1e6, 1)}{' '}
-                MB packed
+                <b className="text-ink">{formatCount(report.goodRows, 'row')}</b>, {formatBytes(payloadBytes)} packed
               </li>
               <li>{sent.map((column) => visitColumnNames[column]).join(', ')}</li>
               <li>

@@ -1,4 +1,5 @@
 import { useRef, useState } from 'react';
+import { Link } from 'react-router-dom';
 import { visitLogLimits } from '../../../shared/api/visit-logs.ts';
 import { canonicalHeader } from '../../../shared/domain/canonical-visit.ts';
 import { Button } from '../../components/Button.tsx';
@@ -6,7 +7,7 @@ import { classNames } from '../../lib/class-names.ts';
 import { formatNumber } from '../../lib/format.ts';
 
 /** First step: a file is chosen or dropped. Nothing of it is sent yet. */
-export function ChooseFile({ onChoose }: { onChoose: (file: File) => void }) {
+export function ChooseFile({ guideHref, onChoose }: { guideHref: string; onChoose: (file: File) => void }) {
   const inputRef = useRef<HTMLInputElement>(null);
   const [over, setOver] = useState(false);
   return (
@@ -37,7 +38,7 @@ export function ChooseFile({ onChoose }: { onChoose: (file: File) => void }) {
           className="sr-only"
           tabIndex={-1}
           aria-label="Visit log file"
-          accept=".csv,.tsv,.txt,.gz,text/csv,text/plain,application/gzip"
+          accept=".csv,.tsv,.txt,.gz,.xlsx,.ndjson,.jsonl,text/csv,text/plain,application/gzip,application/fhir+ndjson,application/vnd.openxmlformats-officedocument.spreadsheetml.sheet"
           onChange={(event) => {
             const file = event.target.files?.item(0);
             if (file) onChoose(file);
@@ -46,8 +47,8 @@ export function ChooseFile({ onChoose }: { onChoose: (file: File) => void }) {
         />
         <Button onClick={() => inputRef.current?.click()}>Choose a file</Button>
         <p className="text-ink2">
-          or drop it here. CSV with any separator, gzipped or not, up to {formatNumber(visitLogLimits.bytes / 1e6)} MB
-          of text to send.
+          or drop it here. CSV with any separator, gzipped or not; the first sheet of an .xlsx workbook; or HL7 FHIR R4
+          Encounters, one a line (NDJSON). Up to {formatNumber(visitLogLimits.bytes / 1e6)} MB of text to send.
         </p>
       </div>
       <div className="prose-column">
@@ -76,6 +77,11 @@ export function ChooseFile({ onChoose }: { onChoose: (file: File) => void }) {
             <li>Disposition: home, admitted, transferred, left before treatment, or empty.</li>
             <li>Arrived by ambulance: yes, no, or empty.</li>
           </ul>
+          <p>
+            <Link to={guideHref} className="link font-semibold">
+              Columns, formats and a template
+            </Link>
+          </p>
         </details>
       </div>
     </div>

@@ -5,7 +5,7 @@ import type { VisitLogSummary } from '../../../shared/api/visit-logs.ts';
 import { Button } from '../../components/Button.tsx';
 import { DataTable } from '../../components/DataTable.tsx';
 import { formatCount, formatList, formatNumber } from '../../lib/format.ts';
-import { useWidth } from './use-width.ts';
+import { useWidth } from '../../lib/use-width.ts';
 import { coverDays, type CoverDay, type CoverMonth } from './cover-days.ts';
 
 const monthNames = ['Jan', 'Feb', 'Mar', 'Apr', 'May', 'Jun', 'Jul', 'Aug', 'Sep', 'Oct', 'Nov', 'Dec'];
@@ -36,7 +36,7 @@ export function CoverageCalendar({
   const missing = months.reduce((sum, { days }) => sum + count(days, 'missing'), 0);
   const part = months.reduce((sum, { days }) => sum + count(days, 'part'), 0);
   return (
-    <section className="grid gap-3" aria-label="Coverage calendar">
+    <section className="grid grid-cols-[minmax(0,1fr)] gap-3" aria-label="Coverage calendar">
       <h2 className="text-h2">Days covered</h2>
       <p className="max-w-[58rem] text-ink2">
         {missing === 0 ? 'No day is missing' : `${formatCount(missing, 'day is', 'days are')} missing, outlined`}

@@ -109,7 +109,7 @@ export function DeclareGapForm({
         />
       </div>
       <TextArea
-        label="Why"
+        label="Reason"
         hint="Shown in the list. No patient details."
         maxLength={500}
         value={reason}

@@ -33,11 +33,11 @@ export function ExposureGaps({
   const hours = ({ from, until }: ExposureGap) =>
     `${formatDateTime(from, timeZone)} to ${formatDateTime(until, timeZone)}`;
   return (
-    <section className="grid gap-3" aria-label="Outages and diversions">
+    <section className="grid grid-cols-[minmax(0,1fr)] gap-3" aria-label="Outages and diversions">
       <h2 className="text-h2">Outages and diversions</h2>
       <p className="max-w-[58rem] text-ink2">
         Hours in which visits were not recorded, or patients were sent elsewhere. The next fit leaves them out, so that
-        the model does not take them for quiet hours.
+        the model does not take them for quiet hours; a model fitted before says that it did not know of them.
       </p>
       {query.error ? (
         <ProblemNotice error={query.error} onRetry={() => void query.refetch()} retrying={query.isFetching} />
@@ -54,7 +54,7 @@ export function ExposureGaps({
             { key: 'hours', header: 'Hours', rowHeader: true, cell: hours },
             { key: 'kind', header: 'Kind', cell: ({ kind }) => kindNames[kind] },
             { key: 'where', header: 'Where', cell: areaName },
-            { key: 'why', header: 'Why', cell: ({ reason }) => <span className="text-ink2">{reason}</span> },
+            { key: 'why', header: 'Reason', cell: ({ reason }) => <span className="text-ink2">{reason}</span> },
             {
               key: 'who',
               header: 'Declared',

@@ -48,7 +48,7 @@ export function MapColumns({
   const mapped = new Set(Object.values(mapping.columns));
   const dropped = survey.columns.filter((column) => !mapped.has(column.index));
   return (
-    <div className="grid gap-6">
+    <div className="grid grid-cols-[minmax(0,1fr)] gap-6">
       <DataTable
         caption="Which column is which"
         rows={visitColumns}

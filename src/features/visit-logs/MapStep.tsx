@@ -1,11 +1,12 @@
 import { Button } from '../../components/Button.tsx';
 import { Notice } from '../../components/Notice.tsx';
-import { formatCount, formatDate } from '../../lib/format.ts';
+import { formatCount, formatDate, formatNumber } from '../../lib/format.ts';
 import { DateOrderQuestion } from './DateOrderQuestion.tsx';
 import { MapColumns } from './MapColumns.tsx';
 import { MapValues } from './MapValues.tsx';
 import { ambiguousColumns, mappingFaults, remap, stateOrder, type AreaName } from './mapping.ts';
 import { findNews, type LastMapping, type News } from './remember-mapping.ts';
+import type { FileSurvey } from './survey-file.ts';
 import type { useUploadWalk, Walk } from './use-upload-walk.ts';
 
 /** Second step: columns, the order of day and month, values. */
@@ -41,6 +42,7 @@ export function MapStep({
           </ul>
         </Notice>
       ) : null}
+      <SourceNotice survey={survey} />
       {last ? <LastTime last={last} news={news} timeZone={timeZone} /> : null}
       <MapColumns
         survey={survey}
@@ -83,6 +85,38 @@ export function MapStep({
       </div>
     </>
   );
+}
+
+/** What of the file was not read as rows. */
+function SourceNotice({ survey: { facts } }: { survey: FileSurvey }) {
+  const { sheet, encounters } = facts;
+  if (sheet !== null && sheet.otherSheets > 0) {
+    return (
+      <Notice title={`Only the first sheet, “${sheet.sheetName}”, was read.`}>
+        <p>
+          The workbook has {formatCount(sheet.otherSheets, 'other sheet')}. Save the one with the visits first if this
+          is not it.
+        </p>
+      </Notice>
+    );
+  }
+  if (encounters !== null && encounters.otherClass + encounters.notHappened > 0) {
+    return (
+      <Notice
+        kind={encounters.onceEmergency > 0 ? 'caution' : 'note'}
+        title={`${formatCount(encounters.otherClass + encounters.notHappened, 'Encounter is', 'Encounters are')} left out here.`}
+      >
+        <p>
+          Of {formatCount(encounters.encounters, 'Encounter')}, {formatNumber(encounters.otherClass)} have another class
+          than EMER and {formatNumber(encounters.notHappened)} are planned, cancelled or entered in error.
+          {encounters.onceEmergency > 0
+            ? ` ${formatNumber(encounters.onceEmergency)} of them were of class EMER earlier: admitted patients whose encounter changed its class. Without them the log misses admissions; export the emergency part of such an encounter as one of its own.`
+            : ''}
+        </p>
+      </Notice>
+    );
+  }
+  return null;
 }
 
 /** Whose answers are offered, and what of this file they do not cover. */

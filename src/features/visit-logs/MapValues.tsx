@@ -7,8 +7,14 @@ import type { FileMapping } from './check-file.ts';
 import { columnOf, type AreaName } from './mapping.ts';
 import type { News } from './remember-mapping.ts';
 import type { FileSurvey } from './survey-file.ts';
+import { groupWords, type WordGroup } from './word-groups.ts';
 
 const leaveOut = 'leave out';
+
+/** The same meaning for every spelling of a word. */
+function each<T>(spellings: readonly string[], meaning: T): Record<string, T> {
+  return Object.fromEntries(spellings.map((spelling) => [spelling, meaning]));
+}
 
 /** Second step, second half: what each value of the three word columns means. */
 export function MapValues({
@@ -29,15 +35,15 @@ export function MapValues({
   const none = { value: String(notRecorded), label: 'not recorded' };
   const read = (text: string) => (text === leaveOut ? null : Number(text));
   return (
-    <div className="grid gap-8 lg:grid-cols-2">
+    <div className="grid grid-cols-[minmax(0,1fr)] gap-8 lg:grid-cols-2">
       <ValueTable
         caption="Care areas"
         fresh={news.care_area}
         values={columnOf(survey, mapping, 'care_area')?.values ?? []}
         chosen={(value) => mapping.areas[value] ?? leaveOut}
         options={areas.map(({ id, name }) => ({ value: id, label: name }))}
-        onChoose={(value, area) => {
-          onChange({ ...mapping, areas: { ...mapping.areas, [value]: area === leaveOut ? null : area } });
+        onChoose={(values, area) => {
+          onChange({ ...mapping, areas: { ...mapping.areas, ...each(values, area === leaveOut ? null : area) } });
         }}
       />
       <ValueTable
@@ -46,8 +52,8 @@ export function MapValues({
         values={columnOf(survey, mapping, 'disposition')?.values ?? []}
         chosen={(value) => String(mapping.dispositions[value] ?? leaveOut)}
         options={[...codes, none]}
-        onChoose={(value, code) => {
-          onChange({ ...mapping, dispositions: { ...mapping.dispositions, [value]: read(code) } });
+        onChoose={(values, code) => {
+          onChange({ ...mapping, dispositions: { ...mapping.dispositions, ...each(values, read(code)) } });
         }}
       />
       <ValueTable
@@ -56,8 +62,8 @@ export function MapValues({
         values={columnOf(survey, mapping, 'arrived_by_ambulance')?.values ?? []}
         chosen={(value) => String(mapping.ambulances[value] ?? leaveOut)}
         options={[{ value: '1', label: 'yes' }, { value: '0', label: 'no' }, none]}
-        onChoose={(value, code) => {
-          onChange({ ...mapping, ambulances: { ...mapping.ambulances, [value]: read(code) } });
+        onChoose={(values, code) => {
+          onChange({ ...mapping, ambulances: { ...mapping.ambulances, ...each(values, read(code)) } });
         }}
       />
     </div>
@@ -77,32 +83,42 @@ function ValueTable({
   fresh: ReadonlySet<string>;
   chosen: (value: string) => string;
   options: readonly { value: string; label: string }[];
-  onChoose: (value: string, choice: string) => void;
+  onChoose: (spellings: readonly string[], choice: string) => void;
 }) {
   if (values.length === 0) return null;
+  const isFresh = ({ spellings }: WordGroup) => spellings.some((spelling) => fresh.has(spelling));
   return (
     <DataTable
       caption={caption}
-      rows={[...values].sort((a, b) => Number(fresh.has(b.value)) - Number(fresh.has(a.value)))}
-      rowKey={({ value }) => value}
+      rows={groupWords(values).sort((a, b) => Number(isFresh(b)) - Number(isFresh(a)))}
+      rowKey={({ spellings }) => spellings[0]}
       columns={[
         {
           key: 'value',
           header: 'In the file',
           rowHeader: true,
-          cell: ({ value }) => (fresh.has(value) ? `${value}, new` : value),
+          cell: (group) => (
+            <>
+              {isFresh(group) ? `${group.spellings[0]}, new` : group.spellings[0]}
+              {group.spellings.length > 1 ? (
+                <span className="block text-quiet font-medium text-ink2">
+                  also written {group.spellings.slice(1).map(quoted).join(', ')}
+                </span>
+              ) : null}
+            </>
+          ),
         },
         { key: 'rows', header: 'Rows', figure: true, cell: ({ rows }) => formatNumber(rows) },
         {
           key: 'means',
           header: 'Means',
-          cell: ({ value }) => (
+          cell: ({ spellings }) => (
             <select
-              aria-label={`${caption}: “${value}” means`}
+              aria-label={`${caption}: “${spellings[0]}” means`}
               className={`${fieldLook} min-w-40`}
-              value={chosen(value)}
+              value={chosen(spellings[0])}
               onChange={(event) => {
-                onChoose(value, event.target.value);
+                onChoose(spellings, event.target.value);
               }}
             >
               {options.map((option) => (
@@ -118,3 +134,5 @@ function ValueTable({
     />
   );
 }
+
+const quoted = (text: string) => `“${text}”`;

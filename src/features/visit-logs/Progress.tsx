@@ -1,7 +1,5 @@
 import { Button } from '../../components/Button.tsx';
-import { formatNumber } from '../../lib/format.ts';
-
-const megabytes = (bytes: number) => formatNumber(bytes / 1e6, bytes < 9.95e6 ? 1 : 0);
+import { formatBytes } from './format-bytes.ts';
 
 /** Work on a file under way: what is done, how many bytes of how many, and a way to stop it. */
 export function Progress({
@@ -19,7 +17,7 @@ export function Progress({
   doneText: string;
 }) {
   const through = total > 0 && bytes >= total;
-  const figures = through ? doneText : `${megabytes(bytes)} of ${megabytes(total)} MB`;
+  const figures = through ? doneText : `${formatBytes(bytes)} of ${formatBytes(total)}`;
   return (
     <div className="grid max-w-xl gap-2" role="group" aria-label={title}>
       <h2 className="text-section">{title}</h2>

@@ -108,7 +108,7 @@ export function StudyReport({
 
 function Finding({ title, text, children }: { title: string; text: string; children: ReactNode }) {
   return (
-    <section className="grid gap-2" aria-label={title}>
+    <section className="grid grid-cols-[minmax(0,1fr)] gap-2" aria-label={title}>
       <Notice kind="caution" title={title}>
         <p className="max-w-[58rem]">{text}</p>
       </Notice>

@@ -1,4 +1,4 @@
-import { useEffect, useRef } from 'react';
+import { useEffect, useRef, useState } from 'react';
 import type { ReactNode } from 'react';
 import type { VisitLogSummary } from '../../../shared/api/visit-logs.ts';
 import { periodOf } from '../../../shared/domain/log-period.ts';
@@ -7,14 +7,14 @@ import { Button } from '../../components/Button.tsx';
 import { ProblemNotice } from '../../components/Notice.tsx';
 import { PageHead } from '../../components/PageHead.tsx';
 import { formatCount, formatNumber } from '../../lib/format.ts';
-import { AcceptForm } from './AcceptForm.tsx';
+import { AcceptForm, offerAnswers } from './AcceptForm.tsx';
 import { CheckReport } from './CheckReport.tsx';
 import { ChooseFile } from './ChooseFile.tsx';
 import { MapStep } from './MapStep.tsx';
 import type { AreaName } from './mapping.ts';
 import { Progress } from './Progress.tsx';
 import type { LastMapping } from './remember-mapping.ts';
-import { saveFile } from './save-file.ts';
+import { saveFile } from '../../lib/save-file.ts';
 import { StudyReport } from './StudyReport.tsx';
 import { useUploadWalk, type Walk } from './use-upload-walk.ts';
 
@@ -28,6 +28,7 @@ export function UploadWalk({
   shiftEnds,
   logs,
   aside,
+  guideHref,
   onAccepted,
 }: {
   siteId: string;
@@ -40,6 +41,8 @@ export function UploadWalk({
   shiftEnds: readonly number[];
   logs: readonly VisitLogSummary[];
   aside: ReactNode;
+  /** The page that tells of columns and formats. */
+  guideHref: string;
   onAccepted: (logId: string) => void;
 }) {
   const { walk, error, ...act } = useUploadWalk({
@@ -52,6 +55,8 @@ export function UploadWalk({
     covered: logs.flatMap(({ counts }) => counts),
     onAccepted,
   });
+  const remembered = last?.mapping ?? null;
+  const [answers, setAnswers] = useState(() => offerAnswers(remembered));
   const bodyRef = useRef<HTMLDivElement>(null);
   const lastStep = useRef(walk.step);
   useEffect(() => {
@@ -62,6 +67,11 @@ export function UploadWalk({
     window.scrollTo?.({ top: 0 });
   }, [walk.step]);
 
+  /** What is left out is asked again after a new check; the other answers stay. */
+  const recheck: typeof act.check = (read, mapping) => {
+    setAnswers((before) => ({ ...before, goodOnly: false }));
+    act.check(read, mapping);
+  };
   const period = walk.step === 'report' ? periodOf(walk.report, timeZone, now) : null;
   return (
     <>
@@ -79,9 +89,17 @@ export function UploadWalk({
           </div>
         }
       />
-      <div ref={bodyRef} tabIndex={-1} className="page-pad grid gap-8 pt-2 outline-none">
+      <div ref={bodyRef} tabIndex={-1} className="page-pad grid grid-cols-[minmax(0,1fr)] gap-8 pt-2 outline-none">
         {error ? <ProblemNotice error={error} /> : null}
-        {walk.step === 'choose' ? <ChooseFile onChoose={act.choose} /> : null}
+        {walk.step === 'choose' ? (
+          <ChooseFile
+            guideHref={guideHref}
+            onChoose={(file) => {
+              setAnswers(offerAnswers(remembered));
+              act.choose(file);
+            }}
+          />
+        ) : null}
         {walk.step === 'surveying' ? (
           <Progress title="Reading the file" {...walk} onCancel={act.cancel} doneText="Looking at what was read" />
         ) : null}
@@ -96,7 +114,9 @@ export function UploadWalk({
             doneText="Sent; the server is checking every row again"
           />
         ) : null}
-        {walk.step === 'map' ? <MapStep walk={walk} areas={areas} last={last} timeZone={timeZone} act={act} /> : null}
+        {walk.step === 'map' ? (
+          <MapStep walk={walk} areas={areas} last={last} timeZone={timeZone} act={{ ...act, check: recheck }} />
+        ) : null}
         {walk.step === 'report' ? (
           <>
             <CheckReport
@@ -124,7 +144,7 @@ export function UploadWalk({
                 saveFile('problem-rows.csv', 'text/csv', problemRowsCsv(rows));
               }}
               onRepeatedHour={(repeatedHour) => {
-                act.check(walk, { ...walk.mapping, repeatedHour });
+                recheck(walk, { ...walk.mapping, repeatedHour });
               }}
             />
             {walk.payload ? (
@@ -133,7 +153,11 @@ export function UploadWalk({
                 timeZone={timeZone}
                 now={now}
                 fileDate={Math.floor(walk.file.lastModified / 1000)}
-                remembered={last?.mapping ?? null}
+                remembered={remembered}
+                answers={answers}
+                onAnswer={(changed) => {
+                  setAnswers((before) => ({ ...before, ...changed }));
+                }}
                 onAccept={(facts, wasAskedMissing) => {
                   act.send(walk, facts, wasAskedMissing);
                 }}

@@ -2,18 +2,26 @@ import type { ReactNode } from 'react';
 import type { VisitLogDetail } from '../../../shared/api/visit-logs.ts';
 import { DataTable } from '../../components/DataTable.tsx';
 import { Notice } from '../../components/Notice.tsx';
-import { formatCount, formatDateTime, formatList, formatNumber } from '../../lib/format.ts';
+import { formatCount, formatDate, formatDateTime, formatList, formatNumber } from '../../lib/format.ts';
 import { areaMeaningWords, arrivalMeaningWords, periodInWords, problemInWords, stateWord } from './log-words.ts';
 
 /** Everything that is kept of a log besides its visits, which are never shown. */
 export function VisitLogReport({ log, timeZone }: { log: VisitLogDetail; timeZone: string }) {
   const facts: { name: string; value: ReactNode }[] = [
     { name: 'Period', value: periodInWords(log.period, timeZone) },
+    ...(log.purgedTo === null
+      ? []
+      : [
+          {
+            name: 'Deleted after the retention time',
+            value: log.status === 'purged' ? 'every visit' : `visits before ${formatDate(log.purgedTo, timeZone)}`,
+          },
+        ]),
     ...(log.status === 'ready' && stateWord(log) === 'Counts in part'
       ? [
           {
             name: 'Counts',
-            value: `${formatList(log.counts.map((span) => periodInWords(span, timeZone)))}; newer logs cover the rest`,
+            value: `${formatList(log.counts.map((span) => periodInWords(span, timeZone)))}${log.purgedTo === null ? '; newer logs cover the rest' : ''}`,
           },
         ]
       : []),
@@ -39,7 +47,7 @@ export function VisitLogReport({ log, timeZone }: { log: VisitLogDetail; timeZon
     { name: 'SHA-256 of what was received', value: <span className="tighter break-all">{log.sha256}</span> },
   ];
   return (
-    <div className="grid gap-8">
+    <div className="grid grid-cols-[minmax(0,1fr)] gap-8">
       {log.status === 'failed' ? (
         <Notice kind="caution" title={log.reason ?? 'The log was not loaded.'}>
           <p>Nothing of it was kept; everything loaded before is unchanged.</p>
@@ -50,7 +58,7 @@ export function VisitLogReport({ log, timeZone }: { log: VisitLogDetail; timeZon
           <p>“{log.reason}” Its visits no longer count and are deleted.</p>
         </Notice>
       ) : null}
-      <div className="grid gap-8 lg:grid-cols-2">
+      <div className="grid grid-cols-[minmax(0,1fr)] gap-8 lg:grid-cols-2">
         <DataTable
           caption="About this log"
           rows={facts}
@@ -60,7 +68,7 @@ export function VisitLogReport({ log, timeZone }: { log: VisitLogDetail; timeZon
             { key: 'value', header: 'Is', cell: ({ value }) => value },
           ]}
         />
-        <div className="grid content-start gap-8">
+        <div className="grid grid-cols-[minmax(0,1fr)] content-start gap-8">
           <DataTable
             caption="Visits by care area"
             rows={log.visitsByArea}

@@ -55,10 +55,10 @@ export function WithdrawLog({ siteId, log }: { siteId: string; log: VisitLogDeta
         >
           <p className="text-ink2">
             Its {formatCount(log.rows, 'visit')} stop counting at once and are deleted. Models fitted on them stay as
-            they are until a new one is fitted. Older logs that it replaced count again.
+            they are and say so until a new one is fitted. Older logs that it replaced count again.
           </p>
           <TextArea
-            label="Why"
+            label="Reason"
             hint="Kept with the log. No patient details."
             maxLength={500}
             value={reason}

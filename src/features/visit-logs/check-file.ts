@@ -5,8 +5,8 @@ import { readLocalTime, type DateOrder } from '../../../shared/domain/local-time
 import { VisitFileReader, type FileOutcome } from '../../../shared/domain/visit-file.ts';
 import { visitColumns, type VisitColumn, type VisitReading } from '../../../shared/domain/visit-row.ts';
 import { makeZone, type Zone } from '../../../shared/domain/zoned-time.ts';
-import { decodeFile } from './decode-file.ts';
 import { makeRecordParser } from './parse-records.ts';
+import { readSource } from './read-source.ts';
 import type { FileSurvey } from './survey-file.ts';
 
 /** How a local time that came twice in an autumn night is read. */
@@ -82,9 +82,9 @@ export async function checkFile(
     },
   });
   try {
-    await decodeFile(
+    await readSource(
       file,
-      survey.encoding,
+      survey,
       async (text) => {
         const goOn = reader.push(text);
         await flush();

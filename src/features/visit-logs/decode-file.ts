@@ -1,12 +1,8 @@
 import { isGzip, notText } from '../../../shared/domain/sniff-file.ts';
+import { UnreadableFileError } from './unreadable-file.ts';
 
 /** How the bytes of a file are to be read. */
 export type Encoding = 'utf-8' | 'windows-1252';
-
-/** A file that is no text of ours; the message says what it is and what to do. */
-export class UnreadableFileError extends Error {
-  override name = 'UnreadableFileError';
-}
 
 /** Thrown where bytes are not of the encoding given. */
 export class WrongEncodingError extends Error {

@@ -8,6 +8,7 @@ export function stateWord(log: VisitLogSummary): string {
   if (log.status === 'loading') return 'Loading';
   if (log.status === 'failed') return 'Not loaded';
   if (log.status === 'withdrawn') return 'Withdrawn';
+  if (log.status === 'purged') return 'Deleted after the retention time';
   if (log.counts.length === 0) return 'Replaced by newer logs';
   const whole = log.counts.length === 1 && log.counts[0].from === log.period.from && log.counts[0].to === log.period.to;
   return whole ? 'Counts' : 'Counts in part';

@@ -10,6 +10,7 @@ import {
 } from '../../../shared/domain/visit-row.ts';
 import type { FileMapping } from './check-file.ts';
 import type { ColumnSurvey, FileSurvey } from './survey-file.ts';
+import { groupWords, sameWord } from './word-groups.ts';
 
 export const timeColumns = ['arrival_at', 'bed_space_at', 'admission_decision_at', 'departure_at'] as const;
 export const choiceColumns = ['care_area', 'disposition', 'arrived_by_ambulance'] as const;
@@ -109,11 +110,16 @@ function offerValues(
   areas: readonly AreaName[],
   remembered: RememberedMapping | null,
 ): FileMapping {
-  const values = (columnOf(survey, mapping, ours)?.values ?? []).map(({ value }) => value);
+  const values = columnOf(survey, mapping, ours)?.values ?? [];
   const each = <T>(known: readonly (readonly [string, T])[], guess: (value: string) => T) => {
-    const before = new Map(known);
+    const before = new Map(known.map(([value, meaning]) => [sameWord(value), meaning]));
+    // Spellings of one word mean the same, so that they can be offered as one.
     return Object.fromEntries(
-      values.map((value) => [value, before.has(value) ? (before.get(value) as T) : guess(value)]),
+      groupWords(values).flatMap(({ spellings }) => {
+        const word = sameWord(spellings[0]);
+        const meaning = before.has(word) ? (before.get(word) as T) : guess(spellings[0]);
+        return spellings.map((value) => [value, meaning]);
+      }),
     );
   };
   const codes = (known: readonly { value: string; code: number | null }[] = []) =>

@@ -6,6 +6,7 @@ import { visitColumnNames, visitColumns, type VisitColumn } from '../../../share
 import type { FileMapping } from './check-file.ts';
 import { choiceColumns, columnOf, guessOthers, timeColumns, type ChoiceColumn } from './mapping.ts';
 import type { FileSurvey } from './survey-file.ts';
+import { sameWord } from './word-groups.ts';
 
 /** The site's last mapping, with who accepted it and when. */
 export interface LastMapping {
@@ -82,8 +83,8 @@ export function findNews(survey: FileSurvey, mapping: FileMapping, remembered: R
   };
   for (const column of choiceColumns) {
     if (remembered.columns[column] === null) continue;
-    const before = new Set(known[column].map(({ value }) => value));
-    const fresh = (columnOf(survey, mapping, column)?.values ?? []).filter(({ value }) => !before.has(value));
+    const before = new Set(known[column].map(({ value }) => sameWord(value)));
+    const fresh = (columnOf(survey, mapping, column)?.values ?? []).filter(({ value }) => !before.has(sameWord(value)));
     values[column] = new Set(fresh.map(({ value }) => value));
   }
   return { columns, values };

@@ -6,8 +6,10 @@ import { DateOrderTally, readLocalTime, type DateOrderVerdict } from '../../../s
 import { screenHeader } from '../../../shared/domain/screen-header.ts';
 import { rareBelow } from '../../../shared/domain/value-tally.ts';
 import { longestRecord } from '../../../shared/domain/visit-file.ts';
-import { decodeFile, UnreadableFileError, WrongEncodingError, type Encoding } from './decode-file.ts';
+import { WrongEncodingError, type Encoding } from './decode-file.ts';
 import { findRecordForm, makeRecordParser, type RecordForm } from './parse-records.ts';
+import { kindOf, readSource, type SourceFacts, type SourceKind } from './read-source.ts';
+import { UnreadableFileError } from './unreadable-file.ts';
 
 /** What is known of one column after the whole file was looked at. No value leaves this computer. */
 export interface ColumnSurvey extends ColumnSketch {
@@ -23,6 +25,8 @@ export interface ColumnSurvey extends ColumnSketch {
 }
 
 export interface FileSurvey {
+  kind: SourceKind;
+  facts: SourceFacts;
   encoding: Encoding;
   form: RecordForm;
   rows: number;
@@ -49,22 +53,26 @@ export async function surveyFile(
 ): Promise<FileSurvey> {
   if (file.size === 0)
     throw new UnreadableFileError('The file is empty. Choose a file with a header row and at least one visit.');
+  const kind = await kindOf(file);
   try {
-    return await surveyAs(file, 'utf-8', known, now, onBytes);
+    return await surveyAs(file, { kind, encoding: 'utf-8' }, known, now, onBytes);
   } catch (error) {
     if (!(error instanceof WrongEncodingError)) throw error;
-    return surveyAs(file, 'windows-1252', known, now, onBytes);
+    // JSON is UTF-8 by its own standard.
+    if (kind === 'encounters')
+      throw new UnreadableFileError('The file is not encoded in UTF-8, which JSON is. Export the Encounters again.');
+    return surveyAs(file, { kind, encoding: 'windows-1252' }, known, now, onBytes);
   }
 }
 
 async function surveyAs(
   file: Blob,
-  encoding: Encoding,
+  source: { kind: SourceKind; encoding: Encoding },
   known: ReadonlySet<string>,
   now: number,
   onBytes: (bytes: number) => void,
 ): Promise<FileSurvey> {
-  let form: RecordForm | null = null;
+  let form: RecordForm | null = source.kind === 'text' ? null : { delimiter: ',', newline: '\n' };
   let columns: ColumnStudy[] | null = null;
   let rest = '';
   let rows = 0;
@@ -102,13 +110,20 @@ async function surveyAs(
     }
     return true;
   };
-  await decodeFile(file, encoding, (text) => take(text, false), onBytes);
+  const facts = await readSource(file, source, (text) => take(text, false), onBytes);
   take('', true);
   const studied = columns as ColumnStudy[] | null;
   if (studied === null || form === null)
     throw new UnreadableFileError('The file is empty. Choose a file with a header row and at least one visit.');
   if (rows === 0) throw new UnreadableFileError('The file has a header but no visits under it.');
-  return { encoding, form, rows, columns: studied.map((column) => column.survey()) };
+  return {
+    kind: source.kind,
+    facts,
+    encoding: source.encoding,
+    form,
+    rows,
+    columns: studied.map((column) => column.survey()),
+  };
 }
 
 function checkHeader(record: readonly string[]): void {

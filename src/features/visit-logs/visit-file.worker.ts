@@ -1,5 +1,5 @@
 import { checkFile, type CheckSettings, type FileCheck } from './check-file.ts';
-import { UnreadableFileError } from './decode-file.ts';
+import { UnreadableFileError } from './unreadable-file.ts';
 import { surveyFile, type FileSurvey } from './survey-file.ts';
 
 /** What the page asks of the thread. */

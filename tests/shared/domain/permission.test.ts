@@ -34,6 +34,7 @@ const expected: Record<(typeof roles)[number], Permission[]> = {
     'arrival-model:fit',
     'arrival-model:approve',
     'brief:read',
+    'brief:subscribe',
     'brief:send',
     'audit-log:read-site',
   ],
@@ -45,7 +46,7 @@ const expected: Record<(typeof roles)[number], Permission[]> = {
     'arrival-model:read',
     'arrival-model:fit',
   ],
-  executive: ['outlook:read', 'brief:read'],
+  executive: ['outlook:read', 'brief:read', 'brief:subscribe'],
   administrator: ['audit-log:read-all', 'installation:administer'],
 };
 

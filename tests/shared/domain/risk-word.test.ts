@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { formatChance, riskStep, riskWord, riskWords } from '../../../shared/domain/risk-word.ts';
+import { chanceInNights, formatChance, riskStep, riskWord, riskWords } from '../../../shared/domain/risk-word.ts';
 
 // The bounds are the product's own (common practice, no source): 5, 25, 50 and 80 %.
 describe('a chance in words and figures', () => {
@@ -40,5 +40,15 @@ describe('a chance in words and figures', () => {
 
   it('what is no chance is named', () => {
     for (const value of [-0.001, 1.001, NaN, Infinity]) expect(() => formatChance(value)).toThrow(RangeError);
+  });
+
+  it('says what a chance means over many nights, never more than the printed figure does', () => {
+    for (let printed = 0; printed <= 100; printed += 1) {
+      const words = chanceInNights(printed / 100);
+      const about = /^about (\d) nights? in 10 like this one$/.exec(words);
+      if (about) expect(Math.abs(Number(about[1]) - printed / 10)).toBeLessThanOrEqual(0.5);
+      else if (printed < 50) expect([words, printed < 5]).toEqual(['fewer than 1 night in 20 like this one', true]);
+      else expect([words, printed > 95]).toEqual(['more than 19 nights in 20 like this one', true]);
+    }
   });
 });

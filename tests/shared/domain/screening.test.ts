@@ -189,6 +189,8 @@ describe('screenFileName', () => {
     ['Olivia Fairweather.csv', neutralFileName],
     ['olivia@example.org.csv', neutralFileName],
     ['dob_1950-02-01.csv', neutralFileName],
+    ['march-07700900123.csv', neutralFileName],
+    ['visits-2026-09-01.xlsx', 'visits-2026-09-01.xlsx'],
     ['', neutralFileName],
   ])('%s', (name, kept) => {
     expect(screenFileName(name, now)).toBe(kept);

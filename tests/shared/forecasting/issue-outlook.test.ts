@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { compareNeed } from '../../../shared/forecasting/compare-need.ts';
-import { previewNeed, prepareExact } from '../../../shared/forecasting/exact-outlook.ts';
+import { prepareExact } from '../../../shared/forecasting/exact-outlook.ts';
 import {
   issueOutlook,
   outlookFromParts,
@@ -9,6 +9,7 @@ import {
 } from '../../../shared/forecasting/issue-outlook.ts';
 import type { OutlookInput, OutlookResult } from '../../../shared/forecasting/outlook-types.ts';
 import { prepareNeed } from '../../../shared/forecasting/prepare-need.ts';
+import { previewNeed } from '../../../shared/forecasting/preview-need.ts';
 import { simulateNeedPart } from '../../../shared/forecasting/simulate-need.ts';
 import { buildOutlookInput, buildOutlookModel } from '../../support/build-outlook-model.ts';
 import { expectWithin } from '../../support/closeness.ts';

@@ -26,6 +26,7 @@ const candidate: ModelSummary = {
   trainedTo: 1_796_000_000,
   visits: 142_381,
   weeksOfHistory: 78,
+  sinceFit: { withdrawnLogs: [], gapsDeclared: 0 },
   refreshedAt: null,
   error: null,
   jobId: null,

@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import type { NightLogEntry } from '../../../../shared/api/night-log.ts';
 import { makeZone } from '../../../../shared/domain/zoned-time.ts';
-import { meetingAtHand, meetingsBetween, usualMeetingMinutes } from '../../../../shared/domain/bed-meeting.ts';
+import { meetingAtHand, meetingsBetween } from '../../../../shared/domain/bed-meeting.ts';
 import { askInWords } from '../../../../src/features/outlook/BedMeeting.tsx';
 import { meetingHours, meetingRows } from '../../../../src/features/outlook/bed-meeting.ts';
 import { handoverShift } from '../../../../src/features/outlook/handover-shift.ts';
@@ -76,11 +76,12 @@ describe('the bed meeting', () => {
 
   it('is the one that runs or comes next', () => {
     const at = (hour: number, minute = 0) => Date.UTC(2026, 11, 1, hour, minute) / 1000;
-    expect(meetingAtHand(zone, usualMeetingMinutes, at(10, 30))).toBe(at(10));
-    expect(meetingAtHand(zone, usualMeetingMinutes, at(10, 46))).toBe(at(16));
-    expect(meetingAtHand(zone, usualMeetingMinutes, at(20))).toBe(at(34));
+    const minutes = [10 * 60, 16 * 60];
+    expect(meetingAtHand(zone, minutes, at(10, 30))).toBe(at(10));
+    expect(meetingAtHand(zone, minutes, at(10, 46))).toBe(at(16));
+    expect(meetingAtHand(zone, minutes, at(20))).toBe(at(34));
     expect(meetingAtHand(zone, [], at(20))).toBeNull();
-    expect(meetingsBetween(zone, usualMeetingMinutes, at(10), at(34))).toEqual([at(10), at(16)]);
+    expect(meetingsBetween(zone, minutes, at(10), at(34))).toEqual([at(10), at(16)]);
   });
 });
 

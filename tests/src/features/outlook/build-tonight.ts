@@ -18,6 +18,8 @@ export function buildArea(change: Partial<CareArea> = {}): CareArea {
     noticeHours: 2,
     alertLimit: 0.25,
     escalationNote: 'Call the site manager.',
+    bedsPerNurse: null,
+    lendsTo: [],
     ...change,
   };
 }
@@ -33,10 +35,12 @@ export function buildSite(
     country: 'GB',
     region: null,
     planningRisk: 0.1,
+    bedMeetingMinutes: [600, 960],
+    waitLimitMinutes: null,
     areas,
     shifts: [
-      { id: 'late', name: 'Late', startMinute: 840, endMinute: 1290 },
-      { id: 'night', name: 'Night', startMinute: 1260, endMinute: 450 },
+      { id: 'late', name: 'Late', startMinute: 840, endMinute: 1290, leadTimeHours: 48 },
+      { id: 'night', name: 'Night', startMinute: 1260, endMinute: 450, leadTimeHours: 72 },
     ],
   };
 }

@@ -150,7 +150,7 @@ describe('staffed beds tonight', () => {
   it('asks until when and why, and refuses what identifies a patient or lies below the safe minimum', async () => {
     show();
     const user = await type('Acute, staffed beds now', '11');
-    const why = field('Why');
+    const why = field('Reason');
     await user.type(why, 'Nurse called in sick');
     await user.click(screen.getByText('Change beds', { selector: 'button' }));
     expect(await screen.findByText('Not below the safe minimum of 12')).toBeTruthy();

@@ -1,9 +1,10 @@
 import { render, screen } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
+import { useState } from 'react';
 import { expect, test, vi } from 'vitest';
 import type { RememberedMapping } from '../../../../shared/api/visit-log-mapping.ts';
 import type { VisitReport } from '../../../../shared/domain/visit-report.ts';
-import { AcceptForm } from '../../../../src/features/visit-logs/AcceptForm.tsx';
+import { AcceptForm, offerAnswers } from '../../../../src/features/visit-logs/AcceptForm.tsx';
 
 /** 2026-11-30T10:15:00Z */
 const last = 1_796_033_700;
@@ -23,16 +24,24 @@ const report: VisitReport = {
 
 function show(more: Partial<VisitReport> = {}, remembered: RememberedMapping | null = null) {
   const onAccept = vi.fn();
-  render(
-    <AcceptForm
-      report={{ ...report, ...more }}
-      timeZone="Europe/London"
-      now={now}
-      fileDate={last + 3600}
-      remembered={remembered}
-      onAccept={onAccept}
-    />,
-  );
+  function Page() {
+    const [answers, setAnswers] = useState(() => offerAnswers(remembered));
+    return (
+      <AcceptForm
+        report={{ ...report, ...more }}
+        timeZone="Europe/London"
+        now={now}
+        fileDate={last + 3600}
+        remembered={remembered}
+        answers={answers}
+        onAnswer={(changed) => {
+          setAnswers((before) => ({ ...before, ...changed }));
+        }}
+        onAccept={onAccept}
+      />
+    );
+  }
+  render(<Page />);
   return { onAccept, user: userEvent.setup(), send: screen.getByRole('button', { name: /^Send and load/ }) };
 }
 

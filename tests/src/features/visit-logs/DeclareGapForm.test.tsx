@@ -26,7 +26,7 @@ function show() {
 
 test('every fault is told at once, and nothing is sent', async () => {
   const { user, sent, declare } = show();
-  await user.type(screen.getByLabelText('Why'), 'Mrs Fairweather called');
+  await user.type(screen.getByLabelText('Reason'), 'Mrs Fairweather called');
   await user.click(declare);
   expect(screen.getAllByRole('alert').map((alert) => alert.textContent)).toEqual([
     'Choose one.',
@@ -43,7 +43,7 @@ test('the hours are the site’s own, and the end must lie after the start', asy
   await user.selectOptions(screen.getByLabelText('Where'), 'Acute');
   await user.type(screen.getByLabelText('From'), '2026-07-01T08:00');
   await user.type(screen.getByLabelText('Until'), '2026-07-01T07:00');
-  await user.type(screen.getByLabelText('Why'), 'Bridge closed');
+  await user.type(screen.getByLabelText('Reason'), 'Bridge closed');
   await user.click(declare);
   expect(screen.getByRole('alert').textContent).toBe('The end must lie after the start.');
   await user.clear(screen.getByLabelText('Until'));

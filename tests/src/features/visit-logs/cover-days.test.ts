@@ -12,6 +12,7 @@ function log(id: string, ...counts: [from: string, to: string][]): VisitLogSumma
     status: 'ready',
     fileName: `${id}.csv`,
     rows: 1,
+    purgedTo: null,
     period: spans.at(0) ?? { from: 0, to: 0 },
     counts: spans,
     leftOutRows: 0,

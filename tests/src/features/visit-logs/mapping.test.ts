@@ -31,6 +31,8 @@ function column(header: string, more: Partial<ColumnSurvey> = {}): Omit<ColumnSu
 
 function survey(...columns: Omit<ColumnSurvey, 'index'>[]): FileSurvey {
   return {
+    kind: 'text',
+    facts: { sheet: null, encounters: null },
     encoding: 'utf-8',
     form: { delimiter: ',', newline: '\n' },
     rows: 10,

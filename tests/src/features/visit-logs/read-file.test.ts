@@ -225,7 +225,7 @@ describe('files that cannot be read', () => {
     ['blank', '\n \n', /empty|no visits/],
     ['header only', 'arrival,area\n', /no visits under it/],
     ['one column', 'arrival\n2026-03-01 10:00\n', /Only one column/],
-    ['a workbook', 'PK\u0003\u0004xx', /spreadsheet/],
+    ['a torn workbook', 'PK\u0003\u0004xx', /workbook is damaged or cut short/],
     ['a binary file', '\u0001\u0002\u0003arrival,area', /binary/],
     ['NUL far inside', `arrival,area\n${'2026-03-01 10:00,Acute\n'.repeat(1000)}\0`, /NUL/],
     [

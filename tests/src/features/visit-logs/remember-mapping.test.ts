@@ -12,6 +12,8 @@ function survey(
   columns: [header: string, values?: Record<string, number>, more?: Partial<ColumnSurvey>][],
 ): FileSurvey {
   return {
+    kind: 'text',
+    facts: { sheet: null, encounters: null },
     encoding: 'utf-8',
     form: { delimiter: ',', newline: '\n' },
     rows: 100,

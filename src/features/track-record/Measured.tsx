@@ -1,0 +1,39 @@
+import type { ReactNode } from 'react';
+import { useWidth } from '../../lib/use-width.ts';
+
+/** Room for a drawing that is told its width; nothing is drawn before it is known. */
+export function Measured({ height, children }: { height: number; children: (width: number) => ReactNode }) {
+  const [ref, width] = useWidth<HTMLDivElement>();
+  return (
+    <div ref={ref} className="overflow-hidden" style={{ minHeight: height }}>
+      {width > 0 ? children(width) : null}
+    </div>
+  );
+}
+
+/** One drawing: its name, what it means in a sentence, the drawing, and the same as a table. */
+export function Finding({
+  title,
+  sentence,
+  drawing,
+  table,
+}: {
+  title: string;
+  sentence: ReactNode;
+  drawing: ReactNode;
+  table: ReactNode;
+}) {
+  return (
+    <section className="grid min-w-0 grid-cols-[minmax(0,1fr)] content-start gap-2" aria-label={title}>
+      <h2 className="text-h2">{title}</h2>
+      <p className="max-w-[44rem] text-ink2">{sentence}</p>
+      {drawing}
+      <details>
+        <summary className="link inline-block min-h-6 cursor-pointer font-semibold text-ink2">
+          The same as a table
+        </summary>
+        <div className="pt-2">{table}</div>
+      </details>
+    </section>
+  );
+}
