@@ -22,6 +22,8 @@ import { UnsavedGuard } from './UnsavedGuard.tsx';
 const alongTime = new Set(['t', 'w', 'i', 'r']);
 /** Of those apart, what stands in the head of a wide screen; the rest is one press away. */
 const inHead = new Set(['l', 'm', 'b', 'e']);
+/** The same for somebody who only administers. */
+const inHeadOfAdministration = new Set(['j', 'p', 'v', 'a']);
 
 function useCurrentSite(): SessionSite | undefined {
   const { siteId } = useParams();
@@ -88,9 +90,10 @@ export function Shell() {
     else mainRef.current?.focus({ preventScroll: true });
   }, [location.pathname]);
 
-  const apart = (shown: (key: string) => boolean) =>
+  const first = places.some(({ key }) => alongTime.has(key)) ? inHead : inHeadOfAdministration;
+  const apart = (inFirst: boolean) =>
     places
-      .filter(({ key }) => !alongTime.has(key) && shown(key))
+      .filter(({ key }) => !alongTime.has(key) && first.has(key) === inFirst)
       .map(({ key, name, to }) => (
         <NavLink key={key} to={to} className={sideLink}>
           {name}
@@ -142,13 +145,13 @@ export function Shell() {
             ))}
         </nav>
         <nav aria-label="Beside time" className="hidden items-center gap-6 text-side xl:flex">
-          {apart((key) => inHead.has(key))}
+          {apart(true)}
         </nav>
         <div className="text-side max-sm:ml-auto">
           <Menu label="More">
             <nav aria-label="More" className="flex flex-col items-start">
-              <span className="contents xl:hidden">{apart((key) => inHead.has(key))}</span>
-              {apart((key) => !inHead.has(key))}
+              <span className="contents xl:hidden">{apart(true)}</span>
+              {apart(false)}
             </nav>
             <ThemeSwitch />
             {keysButton}

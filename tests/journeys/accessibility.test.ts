@@ -6,6 +6,7 @@ import { openBrowser, openPage, signIn, startBuiltDemo, type RunningDemo } from 
 // Source of the rules: WCAG 2.2, levels A and AA, as axe-core tests them. `npm run audit` looks at every page and width.
 const site = '/sites/saltby-bay';
 const pages = [
+  { name: 'Tonight', username: 'charge', path: `${site}/tonight`, ready: '.night-board' },
   { name: 'Logs', username: 'steward', path: `${site}/logs`, ready: 'main h1' },
   { name: 'Arrival models', username: 'operations', path: `${site}/models`, ready: 'main h1' },
   { name: 'How the numbers are made', username: 'charge', path: '/how', ready: '#sources' },

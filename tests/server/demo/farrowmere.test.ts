@@ -63,7 +63,7 @@ describe('Farrowmere', () => {
     expect(acute).toBeLessThan(0.5);
     for (const area of general.areas.filter(({ name }) => name !== 'Acute')) {
       const share = shortShare(area.id, () => true);
-      expect(share).toBeGreaterThan(0.005);
+      expect(share).toBeGreaterThan(0.001);
       expect(share).toBeLessThan(0.1);
     }
   });
