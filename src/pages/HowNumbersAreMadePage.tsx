@@ -17,6 +17,7 @@ const parts = [
   ['limits', 'What it does not know'],
   ['checks', 'How it is checked'],
   ['track-record', 'Track record: how forecasts are scored'],
+  ['briefs', 'The weekly brief'],
   ['cautions', 'Cautions'],
   ['sources', 'Sources'],
 ] as const;
@@ -267,6 +268,18 @@ export function HowNumbersAreMadePage() {
               year.
             </p>
           </Part>
+          <Part id="briefs">
+            <p>
+              What is to come in a brief is the newest week outlook: arrivals with their range, and the shifts whose
+              chance of any shortfall passes the planning risk, with the beds that would bring it there and the last
+              chance to book. What has been is counted from the accepted logs and the censuses, beside the means of four
+              weeks and of a year.
+            </p>
+            <p>
+              Past counts of people under the site’s minimum are kept back, and so many others with them that nobody can
+              work them out by subtraction. Forecasts are not counts of people and stand as they are.
+            </p>
+          </Part>
           <Part id="cautions">
             <ul>
               <li>
@@ -280,7 +293,7 @@ export function HowNumbersAreMadePage() {
               <li>A low chance is not a reason to staff below your safe minimum.</li>
               <li>
                 Minute-level times can identify people under some rules (in the US they make a limited data set, 45 CFR
-                164.514(e)): follow your data-sharing agreement. Hourly counts are accepted instead.
+                164.514(e)): follow your data-sharing agreement.
               </li>
             </ul>
           </Part>

@@ -7,7 +7,7 @@ import { SkeletonLines } from '../components/Skeleton.tsx';
 import { useSession } from '../features/sign-in/session.ts';
 import { MakeToken } from '../features/tokens/MakeToken.tsx';
 import { useMakeToken, useRevokeToken, useTokens } from '../features/tokens/queries.ts';
-import { SecretOnce } from '../features/tokens/SecretOnce.tsx';
+import { SecretOnce } from '../components/SecretOnce.tsx';
 import { TokenList } from '../features/tokens/TokenList.tsx';
 import { formatCount } from '../lib/format.ts';
 
@@ -35,7 +35,18 @@ export function TokensPage() {
         }
       />
       <div className="page-pad grid gap-8 pt-2">
-        {made ? <SecretOnce name={made.token.name} secret={made.secret} onKept={() => setMade(null)} /> : null}
+        {made ? (
+          <SecretOnce
+            title={`The token for “${made.token.name}” is made. Copy its secret now: it is not shown again.`}
+            label="Secret"
+            secret={made.secret}
+            copyText="Copy the secret"
+            onKept={() => setMade(null)}
+          >
+            The system sends it with every call, in the header <code>Authorization: Bearer</code>. Whoever has it can
+            send data in this site’s name: keep it as you keep a password.
+          </SecretOnce>
+        ) : null}
         {query.error && !query.data ? (
           <ProblemNotice error={query.error} onRetry={() => void query.refetch()} retrying={query.isFetching} />
         ) : null}

@@ -1,12 +1,9 @@
 import type { Caution, Outlook } from '../../../shared/api/outlooks.ts';
 import type { Span } from '../../database/counting-spans.ts';
-import { gapsBetween } from '../../database/covered-spans.ts';
+import { groundCautions } from '../../database/ground-cautions.ts';
 import type { NewestCensus } from '../../database/read-census.ts';
 
 const hour = 3600;
-const day = 86_400;
-/** What the level of arrivals rests on most. */
-const recentWeeks = 8;
 
 /** What the cautions are judged by. */
 export interface CautionFacts {
@@ -65,31 +62,7 @@ export function cautionsNow(facts: CautionFacts): Caution[] {
       text: 'Less than a year of visits: not every season has been seen yet.',
     });
   }
-  const modelAge = now - model.fittedAt;
-  if (modelAge > 45 * day) {
-    cautions.push({
-      kind: 'model old',
-      text: `The model was fitted ${String(Math.floor(modelAge / day))} days ago. Fit a new one.`,
-    });
-  }
-  const logTo = covered.at(-1)?.to;
-  if (logTo !== undefined && now - logTo > 14 * day) {
-    cautions.push({
-      kind: 'gap in the log',
-      text: `The newest visit log ends ${String(Math.floor((now - logTo) / day))} days ago: the level of arrivals since then is unknown.`,
-    });
-  }
-  const missing = gapsBetween(covered)
-    .map((gap) => Math.max(0, gap.to - Math.max(gap.from, now - recentWeeks * 7 * day)))
-    .filter((length) => length >= day)
-    .reduce((sum, length) => sum + length, 0);
-  if (missing > 0) {
-    const days = Math.floor(missing / day);
-    cautions.push({
-      kind: 'gap in the log',
-      text: `The visit logs leave out ${String(days)} ${days === 1 ? 'day' : 'days'} of the last ${String(recentWeeks)} weeks: the level of arrivals is less certain.`,
-    });
-  }
+  cautions.push(...groundCautions(now, model.fittedAt, covered));
   for (const { date, name } of unusualDays) {
     cautions.push({ kind: 'unusual day', text: `${name} on ${date}: an unusual day, its range is wider.` });
   }

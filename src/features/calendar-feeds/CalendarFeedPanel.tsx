@@ -1,10 +1,11 @@
-import { useEffect, useId, useRef, useState } from 'react';
+import { useState } from 'react';
 import type { CalendarFeed } from '../../../shared/api/calendar-feeds.ts';
 import { Button } from '../../components/Button.tsx';
 import { DataTable } from '../../components/DataTable.tsx';
 import { Dialog } from '../../components/Dialog.tsx';
-import { fieldLook, TextField } from '../../components/Field.tsx';
-import { Notice, ProblemNotice } from '../../components/Notice.tsx';
+import { TextField } from '../../components/Field.tsx';
+import { ProblemNotice } from '../../components/Notice.tsx';
+import { SecretOnce } from '../../components/SecretOnce.tsx';
 import { SkeletonLines } from '../../components/Skeleton.tsx';
 import { formatDate, formatDateTime } from '../../lib/format.ts';
 import { useCalendarFeeds, useMakeCalendarFeed, useRevokeCalendarFeed } from './queries.ts';
@@ -27,7 +28,17 @@ export function CalendarFeedPanel({ siteId, timeZone }: { siteId: string; timeZo
         A calendar program can subscribe to the shifts past their limit, at a secret address that you can revoke.
         Whoever has the address can read it without signing in: chances, areas and shifts, nothing about patients.
       </p>
-      {made ? <AddressOnce {...made} onKept={() => setMade(null)} /> : null}
+      {made ? (
+        <SecretOnce
+          title={`The address for “${made.name}” is made. Copy it now: it is not shown again.`}
+          label="Address to subscribe to"
+          secret={made.address}
+          copyText="Copy the address"
+          onKept={() => setMade(null)}
+        >
+          Whoever has it reads the feed without signing in: keep it as you keep a password.
+        </SecretOnce>
+      ) : null}
       {feeds.error && !feeds.data ? (
         <ProblemNotice error={feeds.error} onRetry={() => void feeds.refetch()} retrying={feeds.isFetching} />
       ) : null}
@@ -115,50 +126,5 @@ export function CalendarFeedPanel({ siteId, timeZone }: { siteId: string; timeZo
         </div>
       </Dialog>
     </section>
-  );
-}
-
-function AddressOnce({ name, address, onKept }: { name: string; address: string; onKept: () => void }) {
-  const id = useId();
-  const field = useRef<HTMLInputElement>(null);
-  const [copied, setCopied] = useState<'yes' | 'by hand' | null>(null);
-  useEffect(() => field.current?.focus(), []);
-  const copy = async () => {
-    try {
-      await navigator.clipboard.writeText(address);
-      setCopied('yes');
-    } catch {
-      // Without leave to use the clipboard the person copies it.
-      field.current?.select();
-      setCopied('by hand');
-    }
-  };
-  return (
-    <Notice kind="caution" title={`The address for “${name}” is made. Copy it now: it is not shown again.`}>
-      <div className="mt-2 grid max-w-2xl gap-3">
-        <label htmlFor={id} className="font-bold text-ink">
-          Address to subscribe to
-        </label>
-        <input
-          id={id}
-          ref={field}
-          readOnly
-          value={address}
-          autoComplete="off"
-          spellCheck={false}
-          className={fieldLook}
-          onFocus={(event) => event.target.select()}
-        />
-        <div className="flex flex-wrap items-center gap-4">
-          <Button onClick={() => void copy()}>Copy the address</Button>
-          <Button look="second" onClick={onKept}>
-            I have kept it
-          </Button>
-          <span role="status" className="font-bold text-ink">
-            {copied === 'yes' ? 'Copied.' : copied === 'by hand' ? 'Chosen: copy it with your keyboard.' : ''}
-          </span>
-        </div>
-      </div>
-    </Notice>
   );
 }

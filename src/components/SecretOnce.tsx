@@ -1,10 +1,27 @@
 import { useEffect, useId, useRef, useState } from 'react';
-import { Button } from '../../components/Button.tsx';
-import { fieldLook } from '../../components/Field.tsx';
-import { Notice } from '../../components/Notice.tsx';
+import type { ReactNode } from 'react';
+import { Button } from './Button.tsx';
+import { fieldLook } from './Field.tsx';
+import { Notice } from './Notice.tsx';
 
-/** A new token's secret, this once: to be copied, then gone. */
-export function SecretOnce({ name, secret, onKept }: { name: string; secret: string; onKept: () => void }) {
+/** Something secret that is shown this once: to be copied, then gone. */
+export function SecretOnce({
+  title,
+  label,
+  secret,
+  copyText,
+  onKept,
+  children,
+}: {
+  title: string;
+  label: string;
+  secret: string;
+  /** On the button that copies it. */
+  copyText: string;
+  onKept: () => void;
+  /** What it opens, and how to keep it. */
+  children: ReactNode;
+}) {
   const id = useId();
   const field = useRef<HTMLInputElement>(null);
   const [copied, setCopied] = useState<'no' | 'yes' | 'by hand'>('no');
@@ -20,10 +37,10 @@ export function SecretOnce({ name, secret, onKept }: { name: string; secret: str
     }
   };
   return (
-    <Notice kind="caution" title={`The token for “${name}” is made. Copy its secret now: it is not shown again.`}>
+    <Notice kind="caution" title={title}>
       <div className="mt-2 grid max-w-2xl gap-3">
         <label htmlFor={id} className="font-bold text-ink">
-          Secret
+          {label}
         </label>
         <input
           id={id}
@@ -35,12 +52,9 @@ export function SecretOnce({ name, secret, onKept }: { name: string; secret: str
           className={fieldLook}
           onFocus={(event) => event.target.select()}
         />
-        <p>
-          The system sends it with every call, in the header <code>Authorization: Bearer</code>. Whoever has it can send
-          data in this site’s name: keep it as you keep a password.
-        </p>
+        <p>{children}</p>
         <div className="flex flex-wrap items-center gap-4">
-          <Button onClick={() => void copy()}>Copy the secret</Button>
+          <Button onClick={() => void copy()}>{copyText}</Button>
           <Button look="second" onClick={onKept}>
             I have kept it
           </Button>
