@@ -15,6 +15,14 @@ export default defineConfig({
     sourcemap: true,
     // A small file inlined into the style sheet as data: would be refused as a font by the content policy.
     assetsInlineLimit: 0,
+    // What the service worker keeps; beside the page, since its name must not change.
+    manifest: 'parts.json',
+    rolldownOptions: {
+      input: { index: 'index.html', 'service-worker': 'src/service-worker.ts' },
+      output: {
+        entryFileNames: ({ name }) => (name === 'service-worker' ? '[name].js' : 'assets/[name]-[hash].js'),
+      },
+    },
   },
   server: { proxy: { '/api': server, '/auth': server, '/mail': server, '/healthz': server } },
   test: {

@@ -2,6 +2,7 @@ import { createServer } from 'node:http';
 import type { ServerResponse } from 'node:http';
 import type { AddressInfo, Server } from 'node:net';
 import { SMTPServer } from 'smtp-server';
+import { bounceReport, bounces } from './bounce-report.ts';
 import { mailHtml, mailListPage, mailPage, noMailPage } from './mailbox-pages.ts';
 import type { KeptMail } from './mailbox-pages.ts';
 import { fontPath, nunitoSans, pagePolicy } from './page-shell.ts';
@@ -23,8 +24,17 @@ const kept = 200;
 /**
  * Starts the demo's stand-in mail server and its mailbox page, both on the loopback address. It takes every message,
  * keeps the last 200 in memory and passes none on. Port 0 takes a free one.
+ * @param onReturned takes the report, as a whole message, that mail to an address such as bounce@… came back
  */
-export async function startMailbox({ smtpPort, httpPort }: { smtpPort: number; httpPort: number }): Promise<Mailbox> {
+export async function startMailbox({
+  smtpPort,
+  httpPort,
+  onReturned,
+}: {
+  smtpPort: number;
+  httpPort: number;
+  onReturned?: (report: string) => void;
+}): Promise<Mailbox> {
   const mails: KeptMail[] = [];
   let nextId = 1;
   const smtp = new SMTPServer({
@@ -45,6 +55,7 @@ export async function startMailbox({ smtpPort, httpPort }: { smtpPort: number; h
           mails.sort((a, b) => b.id - a.id);
           mails.length = Math.min(mails.length, kept);
           callback();
+          for (const address of recipients.filter(bounces)) onReturned?.(bounceReport(mail, address));
         }, callback);
       });
     },

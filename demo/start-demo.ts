@@ -19,7 +19,7 @@ export interface RunningDemo {
  */
 export async function startDemo(env: Record<string, string | undefined>, say: Say): Promise<RunningDemo> {
   const port = Number(env.PORT ?? 4310);
-  const [sessionSecret, clientSecret] = demoSecrets;
+  const [sessionSecret, clientSecret, reportToken] = demoSecrets;
   const config = readConfig(
     {
       LOG_LEVEL: 'warn',
@@ -28,6 +28,7 @@ export async function startDemo(env: Record<string, string | undefined>, say: Sa
       OIDC_CLIENT_SECRET: clientSecret,
       SESSION_SECRET: sessionSecret,
       SMTP_URL: `smtp://127.0.0.1:${String(port + 2)}`,
+      DELIVERY_REPORT_TOKEN: reportToken,
       ADMINISTRATOR_CONTACT: 'Kirsa Quayle, kirsa.quayle@farrowmere.example',
       ...env,
     },
@@ -43,7 +44,20 @@ export async function startDemo(env: Record<string, string | undefined>, say: Sa
     dataDir: config.dataDir,
     password: demoPassword,
   });
-  const mailbox = await startMailbox({ smtpPort: port + 2, httpPort: port + 3 });
+  const mailbox = await startMailbox({
+    smtpPort: port + 2,
+    httpPort: port + 3,
+    // As a mail server's pipe would do it, a moment after it took the message.
+    onReturned: (report) => {
+      setTimeout(() => {
+        fetch(`http://127.0.0.1:${String(port)}/mail/delivery-reports`, {
+          method: 'POST',
+          headers: { authorization: `Bearer ${reportToken}`, 'content-type': 'message/rfc822' },
+          body: report,
+        }).catch(() => undefined);
+      }, 1000);
+    },
+  });
   const server = await startServer(config);
   await buildDemo(server, say);
   return {

@@ -1,5 +1,6 @@
 import { randomUUID } from 'node:crypto';
 import { join } from 'node:path';
+import { constants } from 'node:zlib';
 import compression from 'compression';
 import express, { type Express } from 'express';
 import rateLimit from 'express-rate-limit';
@@ -8,9 +9,13 @@ import { pinoHttp } from 'pino-http';
 import type { Dependencies } from './dependencies.ts';
 import { HttpError, notFound } from './errors.ts';
 import { addAlertRoutes } from './features/alerts/routes.ts';
+import { addComparisonRoutes } from './features/arrival-models/comparison-routes.ts';
+import { levelJob } from './features/arrival-models/level-job.ts';
 import { addArrivalModelRoutes } from './features/arrival-models/routes.ts';
 import { addAuditLogRoutes } from './features/audit-log/routes.ts';
 import { addLinkRoutes } from './features/briefs/link-routes.ts';
+import { addDeliveryReportRoute } from './features/briefs/report-route.ts';
+import { addRecipientRoutes } from './features/briefs/recipient-routes.ts';
 import { addBriefRoutes } from './features/briefs/routes.ts';
 import { addInstallationRoutes } from './features/installation/routes.ts';
 import { addCalendarFeedRoutes } from './features/calendar-feeds/routes.ts';
@@ -40,6 +45,7 @@ import { sessionCookie } from './http/session-cookie.ts';
 import type { SessionStore } from './http/session-store.ts';
 import { followUse } from './http/session-use.ts';
 import { serveClient } from './http/static-client.ts';
+import { loggedPath, presentError } from './log.ts';
 
 export interface App {
   express: Express;
@@ -74,21 +80,22 @@ export function createApp(
       },
       customLogLevel: (_req, res, error) =>
         error || res.statusCode >= 500 ? 'error' : res.statusCode >= 400 ? 'info' : 'debug',
-      // Paths only: a query may hold a file's name.
       serializers: {
         req: (req: { id: string; method: string; url: string }) => ({
           id: req.id,
           method: req.method,
-          path: req.url.split('?')[0],
+          path: loggedPath(req.url),
         }),
         res: (res: { statusCode: number }) => ({ statusCode: res.statusCode }),
+        err: presentError,
       },
     }),
   );
   const metrics = makeMetrics(deps);
   app.use(metrics.follow);
   app.use(securityHeaders(config.production));
-  app.use(compression());
+  // Scripts and style sheets are a tenth smaller at 5 than at the middleware's own 4, in no more time; from 7 on it takes long.
+  app.use(compression({ brotli: { params: { [constants.BROTLI_PARAM_QUALITY]: 5 } } }));
   if (clientDir !== null)
     app.use('/assets', express.static(join(clientDir, 'assets'), { immutable: true, maxAge: '1y' }));
 
@@ -152,12 +159,19 @@ export function createApp(
     issuer.issueOrReport(siteId, 'staffed beds changed'),
   );
   addCalendarFeedRoutes(app, routes, deps);
+  addComparisonRoutes(app, routes, deps);
   addArrivalModelRoutes(app, routes, deps, async (siteId) => {
     await issuer.issueOrReport(siteId, 'model approved');
   });
-  // What a withdrawn log told is un-scored.
-  addVisitLogRoutes(app, routes, deps, async (manager, log) => {
-    await deps.jobs.enqueue(manager, scoreJob(log.siteId, log.periodFrom, log.periodTo));
+  // What a withdrawn log told is un-scored, and leaves the level of the model in use; so does what an outage covers.
+  addVisitLogRoutes(app, routes, deps, {
+    withdrawn: async (manager, log) => {
+      await deps.jobs.enqueue(manager, scoreJob(log.siteId, log.periodFrom, log.periodTo));
+      await deps.jobs.enqueue(manager, levelJob(log.siteId));
+    },
+    gapsChanged: async (manager, siteId) => {
+      await deps.jobs.enqueue(manager, levelJob(siteId));
+    },
   });
   addTrackRecordRoutes(app, routes, deps);
   addJobRoutes(app, routes, deps);
@@ -169,7 +183,9 @@ export function createApp(
   addTokenRoutes(app, routes, deps);
   addAlertRoutes(app, routes, deps);
   addBriefRoutes(app, routes, deps);
+  addRecipientRoutes(app, routes, deps);
   addLinkRoutes(app, routes, deps);
+  addDeliveryReportRoute(app, routes, deps);
 
   app.use(['/api', '/auth', '/mail', '/healthz', '/readyz', '/metrics'], () => {
     throw notFound('This address');

@@ -27,6 +27,8 @@ export interface Config {
   sessionHours: number;
   /** Requests that one session (or, signed out, one address) may make within a minute. */
   requestsPerMinute: number;
+  /** Lets the mail server pass on what comes back; without it that answers 404. */
+  deliveryReportToken: string | null;
   /** Opens /metrics; without it that answers 404. */
   metricsToken: string | null;
   /** Where backups go; null: the folder backups in the data folder. */
@@ -65,6 +67,7 @@ const schema = z.object({
   IDLE_MINUTES: z.coerce.number().int().min(1).max(720).default(15),
   SESSION_HOURS: z.coerce.number().int().min(1).max(24).default(12),
   REQUESTS_PER_MINUTE: z.coerce.number().int().min(60).max(1_000_000).default(1200),
+  DELIVERY_REPORT_TOKEN: z.string().min(32, 'at least 32 characters').optional(),
   METRICS_TOKEN: z.string().min(32, 'at least 32 characters').optional(),
   BACKUP_DIR: z.string().min(1).optional(),
   BACKUP_EVERY_HOURS: z.coerce.number().int().min(0).max(720).default(24),
@@ -76,6 +79,7 @@ const schema = z.object({
 export const demoSecrets = [
   'shoalmark-demo-session-secret-not-for-production',
   'shoalmark-demo-client-secret',
+  'shoalmark-demo-delivery-reports-not-for-production',
 ] as const;
 
 /**
@@ -120,6 +124,7 @@ export function readConfig(env: Record<string, string | undefined>, { production
     idleMinutes: value.IDLE_MINUTES,
     sessionHours: value.SESSION_HOURS,
     requestsPerMinute: value.REQUESTS_PER_MINUTE,
+    deliveryReportToken: value.DELIVERY_REPORT_TOKEN ?? null,
     metricsToken: value.METRICS_TOKEN ?? null,
     backupDir: value.BACKUP_DIR === undefined ? null : resolve(value.BACKUP_DIR),
     backupEveryHours: value.BACKUP_EVERY_HOURS,
@@ -140,6 +145,7 @@ function productionFaults(given: Record<string, string | undefined>, known: read
   if (isDemos(SESSION_SECRET)) refuse('SESSION_SECRET', 'is the demo’s');
   else if (new Set(SESSION_SECRET).size < 8) refuse('SESSION_SECRET', 'is too plain');
   if (isDemos(OIDC_CLIENT_SECRET)) refuse('OIDC_CLIENT_SECRET', 'is the demo’s');
+  if (isDemos(given.DELIVERY_REPORT_TOKEN ?? '')) refuse('DELIVERY_REPORT_TOKEN', 'is the demo’s');
   if (BASE_URL === undefined) refuse('BASE_URL', 'is missing');
   else if (!isHttps(BASE_URL)) refuse('BASE_URL', 'must begin with https:// (session cookies are sent over TLS only)');
   if (!isHttps(OIDC_ISSUER_URL)) refuse('OIDC_ISSUER_URL', 'must begin with https://');

@@ -3,7 +3,8 @@ import { createServer, type Server } from 'node:http';
 import { fileURLToPath } from 'node:url';
 import { createApp } from './app.ts';
 import { systemClock } from './clock.ts';
-import type { Config } from './config.ts';
+import { readConfig, type Config } from './config.ts';
+import { databaseFaultOf, type DatabaseFaultKind } from './database/database-fault.ts';
 import { openDatabase } from './database/database.ts';
 import type { Dependencies } from './dependencies.ts';
 import { ConfigError } from './errors.ts';
@@ -47,8 +48,12 @@ export async function openServer(
   const logger = makeLogger(config.logLevel);
   const clock = systemClock(config.clockOffset);
   const database = await openDatabase(config.dataDir).catch((error: unknown) => {
-    const fault = sqliteFault(error);
-    throw fault === null ? error : new ConfigError(`Cannot start: the database in DATA_DIR cannot be used (${fault}).`);
+    const fault = databaseFaultOf(error);
+    throw fault === null
+      ? error
+      : new ConfigError(
+          `Cannot start: the database in DATA_DIR cannot be used (${fault.message}). ${remedies[fault.kind]}`,
+        );
   });
   const pool = makeSimulationPool(config.threads, { nice: 10 });
   const simulation = makeSimulationPool(config.threads, { keepThreads: true, nice: 1 });
@@ -69,13 +74,13 @@ export async function openServer(
   };
 }
 
-/** What SQLite says of a file that is no database, damaged, locked, read-only or without room; null for any other error. */
-function sqliteFault(error: unknown): string | null {
-  if (!(error instanceof Error)) return null;
-  const cause: unknown = 'driverError' in error ? error.driverError : error;
-  if (!(cause instanceof Error) || !('code' in cause) || typeof cause.code !== 'string') return null;
-  return /^SQLITE_(NOTADB|CORRUPT|CANTOPEN|BUSY|READONLY|FULL|IOERR|PERM|AUTH)/.test(cause.code) ? cause.message : null;
-}
+/** What an operator does about it. */
+const remedies: Record<DatabaseFaultKind, string> = {
+  'no room': 'Make room on its disk and start again.',
+  locked: 'Another program holds it: end that program, or wait until it is done, and start again.',
+  'not writable': 'Let the user that runs the server write to the folder and its files, and start again.',
+  damaged: 'Restore a backup (npm run restore) and start again.',
+};
 
 /** Starts the server: migrates, sweeps what a crash left, listens, works jobs and the timetable. */
 export async function startServer(config: Config): Promise<RunningServer> {
@@ -113,6 +118,28 @@ export async function startServer(config: Config): Promise<RunningServer> {
       await close();
     },
   };
+}
+
+/**
+ * A server in production, from the environment until it is told to end: no stand-ins, secure cookies, every secret from
+ * the environment. What keeps it from starting is one line on standard error and exit code 1.
+ */
+export async function runServer(env: Record<string, string | undefined>): Promise<void> {
+  try {
+    const server = await startServer(readConfig(env, { production: true }));
+    let stopping = false;
+    for (const signal of ['SIGINT', 'SIGTERM'] as const) {
+      process.on(signal, () => {
+        if (stopping) return;
+        stopping = true;
+        void server.stop().then(() => process.exit(0));
+      });
+    }
+  } catch (error) {
+    if (!(error instanceof ConfigError)) throw error;
+    process.stderr.write(`${error.message}\n`);
+    process.exitCode = 1;
+  }
 }
 
 function listen(server: Server, config: Config): Promise<void> {

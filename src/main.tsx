@@ -4,6 +4,7 @@ import { z } from 'zod';
 import '@fontsource-variable/nunito-sans/full.css';
 import './assets/app.css';
 import { App } from './app/App.tsx';
+import { registerServiceWorker } from './lib/register-service-worker.ts';
 
 // zod otherwise tries `new Function`, which the content policy refuses.
 z.config({ jitless: true });
@@ -15,3 +16,4 @@ createRoot(root).render(
     <App />
   </StrictMode>,
 );
+registerServiceWorker();

@@ -6,8 +6,17 @@ import { migrations } from './migrations/index.ts';
 /** What is used of better-sqlite3's connection. */
 export interface SqliteConnection {
   pragma(text: string, options?: { simple?: boolean }): unknown;
-  backup(file: string): Promise<unknown>;
+  exec(sql: string): unknown;
+  readonly inTransaction: boolean;
 }
+
+/** The connection beneath TypeORM's. */
+export function rawConnection(source: DataSource): SqliteConnection {
+  return (source.driver as unknown as { databaseConnection: SqliteConnection }).databaseConnection;
+}
+
+/** How long a write waits for another process's lock. */
+export const lockWaitMilliseconds = 5000;
 
 /** The connection that writes. All use of it goes through the gate in write.ts. */
 export function makeWriteSource(file: string): DataSource {
@@ -19,7 +28,7 @@ export function makeWriteSource(file: string): DataSource {
     migrationsTransactionMode: 'each',
     synchronize: false,
     enableWAL: true,
-    timeout: 5000,
+    timeout: lockWaitMilliseconds,
     prepareDatabase: (connection) => {
       const db = connection as SqliteConnection;
       db.pragma('synchronous = NORMAL');

@@ -18,6 +18,12 @@ export function databaseFile(dataDir: string): string {
   return join(dataDir, 'shoalmark.sqlite');
 }
 
+/** Writes a page that changes nothing. */
+async function provesWritable(writer: DataSource): Promise<void> {
+  const [{ user_version }] = await writer.query<{ user_version: number }[]>('PRAGMA user_version');
+  await writer.query(`PRAGMA user_version = ${String(user_version)}`);
+}
+
 /** Opens the database, made if missing, and runs the migrations that it lacks. */
 export async function openDatabase(dataDir: string): Promise<Database> {
   mkdirSync(dataDir, { recursive: true });
@@ -26,6 +32,8 @@ export async function openDatabase(dataDir: string): Promise<Database> {
   let reader: DataSource;
   try {
     await writer.runMigrations();
+    // Nothing may be left to migrate: a file that can only be read is found out now, not by the first nurse who saves.
+    await provesWritable(writer);
     reader = await makeReadSource(file).initialize();
   } catch (error) {
     await writer.destroy();

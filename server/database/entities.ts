@@ -17,9 +17,11 @@ import { ExposureGapRow } from '../entities/ExposureGapRow.ts';
 import { GroupRole } from '../entities/GroupRole.ts';
 import { ForecastScore } from '../entities/ForecastScore.ts';
 import { HealthGroup } from '../entities/HealthGroup.ts';
+import { HourlyCountRow } from '../entities/HourlyCountRow.ts';
 import { Job } from '../entities/Job.ts';
 import { MachineToken } from '../entities/MachineToken.ts';
 import { Membership } from '../entities/Membership.ts';
+import { ModelComparisonRow } from '../entities/ModelComparisonRow.ts';
 import { OutlookLawsRow } from '../entities/OutlookLawsRow.ts';
 import { OutlookRow } from '../entities/OutlookRow.ts';
 import { Person } from '../entities/Person.ts';
@@ -34,6 +36,7 @@ import { StaffedBedPlanArea } from '../entities/StaffedBedPlanArea.ts';
 import { Visit } from '../entities/Visit.ts';
 import { VisitLog } from '../entities/VisitLog.ts';
 import { VisitLogMapping } from '../entities/VisitLogMapping.ts';
+import { WeekOutlookLawsRow } from '../entities/WeekOutlookLawsRow.ts';
 import { WeekOutlookRow } from '../entities/WeekOutlookRow.ts';
 
 /** Every entity, listed by hand: no globs, so that the build and the tests load the same. */
@@ -57,9 +60,11 @@ export const entities = [
   ForecastScore,
   GroupRole,
   HealthGroup,
+  HourlyCountRow,
   Job,
   MachineToken,
   Membership,
+  ModelComparisonRow,
   OutlookLawsRow,
   OutlookRow,
   Person,
@@ -74,5 +79,6 @@ export const entities = [
   Visit,
   VisitLog,
   VisitLogMapping,
+  WeekOutlookLawsRow,
   WeekOutlookRow,
 ];

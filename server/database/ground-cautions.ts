@@ -1,4 +1,5 @@
 import type { Caution } from '../../shared/api/outlooks.ts';
+import type { ArrivalModelRow } from '../entities/ArrivalModelRow.ts';
 import type { Span } from './counting-spans.ts';
 import { gapsBetween } from './covered-spans.ts';
 
@@ -39,4 +40,20 @@ export function groundCautions(now: number, fittedAt: number, covered: readonly 
     });
   }
   return cautions;
+}
+
+/**
+ * What a model fitted on hourly counts cannot know; nothing of one fitted on visits.
+ * @param staysFrom where its lengths of stay come from
+ */
+export function countCautions(staysFrom: ArrivalModelRow['staysFrom'] | undefined): Caution[] {
+  if (!staysFrom) return [];
+  const pace =
+    staysFrom === 'stated mean' ? '' : ', and the pace of leaving through the day is that of the counted departures';
+  return [
+    {
+      kind: 'hourly counts',
+      text: `Fitted on hourly counts: mean stays are stated by the site, not measured${pace}. Admissions are not forecast, and every patient of an area is taken to leave at the same pace, boarding patients too.`,
+    },
+  ];
 }

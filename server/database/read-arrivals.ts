@@ -2,7 +2,9 @@ import type { EntityManager } from 'typeorm';
 import { ExposureGapRow } from '../entities/ExposureGapRow.ts';
 import type { Site } from '../entities/Site.ts';
 import { VisitLog } from '../entities/VisitLog.ts';
-import { countingSpans } from './counting-spans.ts';
+import { instantsOfLocalHour } from '../../shared/domain/local-hour-span.ts';
+import { makeZone } from '../../shared/domain/zoned-time.ts';
+import { countingSpans, type Span } from './counting-spans.ts';
 import { coveredSpans } from './covered-spans.ts';
 
 /** Arrivals counted in one span; null where no accepted log speaks for the whole of it, never zero. */
@@ -36,7 +38,9 @@ export async function readArrivals(
   const first = spans[0].from;
   const last = spans[spans.length - 1].to;
   const counting = countingSpans(logs);
-  for (const { number } of logs) {
+  await addHourlyCounts(read, site, counted, logs, counting);
+  for (const { number, kind } of logs) {
+    if (kind === 'hourly counts') continue;
     for (const span of counting.get(number) ?? []) {
       const from = Math.max(span.from, first);
       const to = Math.min(span.to, last);
@@ -54,4 +58,38 @@ export async function readArrivals(
     }
   }
   return counted;
+}
+
+/** Adds what logs of hourly counts hold. A span that cuts an hour of theirs in two is not known. */
+async function addHourlyCounts(
+  read: EntityManager,
+  site: Site,
+  counted: CountedSpan[],
+  logs: readonly VisitLog[],
+  counting: ReadonlyMap<number, readonly Span[]>,
+): Promise<void> {
+  const counts = logs.filter(({ kind }) => kind === 'hourly counts');
+  if (counts.length === 0) return;
+  const zone = makeZone(site.timeZone);
+  const first = Math.floor(zone.toLocal(counted[0].from) / 3600) - 1;
+  const last = Math.floor(zone.toLocal(counted[counted.length - 1].to) / 3600) + 1;
+  for (const { number } of counts) {
+    const spans = counting.get(number) ?? [];
+    const rows = await read.query<{ localHour: number; arrivals: number }[]>(
+      'SELECT localHour, SUM(arrivals) AS arrivals FROM hourly_count WHERE logNumber = ? AND localHour BETWEEN ? AND ? GROUP BY localHour ORDER BY localHour',
+      [number, first, last],
+    );
+    let at = 0;
+    for (const { localHour, arrivals } of rows) {
+      const hour = instantsOfLocalHour(zone, localHour);
+      if (!spans.some(({ from, to }) => from <= hour.from && hour.to <= to)) continue;
+      while (at < counted.length && counted[at].to <= hour.from) at += 1;
+      for (let next = at; next < counted.length && counted[next].from < hour.to; next += 1) {
+        const span = counted[next];
+        if (span.count === null) continue;
+        if (span.from <= hour.from && hour.to <= span.to) span.count += arrivals;
+        else span.count = null;
+      }
+    }
+  }
 }

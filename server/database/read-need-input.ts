@@ -83,6 +83,7 @@ export async function readNeedInput(
     }),
     undecided: census.undecided ? { takenAt: census.undecided.takenAt, waiting: census.undecided.waiting } : null,
     planningRisk: site.planningRisk,
+    waitLimitMinutes: site.waitLimitMinutes,
     shifts,
     arrivalsSince: arrivals ? arrivalsSinceMidnight(zone, arrivals) : null,
     // A holiday acts on the days about it.

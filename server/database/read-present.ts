@@ -60,7 +60,8 @@ export async function presentInLogs(
   now: number,
 ): Promise<(number | null)[][]> {
   const reach = site.stayCapHours * hour;
-  const logs = await read.find(VisitLog, { where: { siteId: site.id, status: 'ready' } });
+  // Hourly counts tell of arrivals, and not of who was there.
+  const logs = await read.find(VisitLog, { where: { siteId: site.id, status: 'ready', kind: 'visits' } });
   const facts = logs.map((log) => ({ periodFrom: log.periodFrom, periodTo: log.periodTo, facts: log }));
   // Before the longest stay has passed since a log's start, who came earlier is missing from it.
   const spoken = coveredSpans(facts, now, reach).map(({ from, to }) => ({ from: from + reach, to }));

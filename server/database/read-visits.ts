@@ -1,6 +1,9 @@
 import SqliteDatabase from 'better-sqlite3';
 import type { ExtractFacts, VisitTable } from '../../shared/forecasting/visit-table.ts';
+import { makeZone } from '../../shared/domain/zoned-time.ts';
+import type { CountedHours } from '../../shared/forecasting/counted-hours.ts';
 import { countingSpans } from './counting-spans.ts';
+import { loadHourlyCounts, statedMeans } from './load-hourly-counts.ts';
 
 /** A log that visits were read from. */
 export interface VisitLineage {
@@ -25,11 +28,20 @@ export interface SiteVisits {
    * time of the newest extract.
    */
   facts: ExtractFacts | null;
+  /** Logs of hourly counts, which tell of arrivals where no visits do; visits above are never made of them. */
+  hourly: {
+    counted: CountedHours;
+    lineage: VisitLineage[];
+    /** Mean stays that the logs state, by place of the area. */
+    stated: Map<number, { meanHours: number; source: string }>;
+  };
 }
 
 interface LogRow {
   id: string;
   number: number;
+  kind: 'visits' | 'hourly counts';
+  statedStays: string | null;
   fileName: string;
   sha256: string;
   rows: number;
@@ -85,11 +97,12 @@ function load(
   const indexOfCode = new Map(areas.map((area, index) => [area.code, index]));
   const ready = db
     .prepare(
-      'SELECT "id", "number", "fileName", "sha256", "rows", "periodFrom", "periodTo", "selectedBy", "takenAt", "missingDeparture" FROM "visit_log" WHERE "siteId" = ? AND "status" = \'ready\' ORDER BY "number" DESC',
+      'SELECT "id", "number", "kind", "statedStays", "fileName", "sha256", "rows", "periodFrom", "periodTo", "selectedBy", "takenAt", "missingDeparture" FROM "visit_log" WHERE "siteId" = ? AND "status" = \'ready\' ORDER BY "number" DESC',
     )
     .all(siteId) as LogRow[];
-  const logs = logIds === null ? ready : ready.filter(({ id }) => logIds.includes(id));
-  const spans = countingSpans(logs);
+  const chosen = logIds === null ? ready : ready.filter(({ id }) => logIds.includes(id));
+  const spans = countingSpans(chosen);
+  const logs = chosen.filter(({ kind }) => kind === 'visits');
   const table = emptyTable(logs.reduce((sum, log) => sum + log.rows, 0));
   const lineage: VisitLineage[] = [];
   const read = db
@@ -118,11 +131,39 @@ function load(
     }
     const rows = table.length - before;
     if (rows === 0) continue;
-    const { id: logId, fileName, sha256, periodFrom, periodTo, selectedBy, takenAt, missingDeparture } = log;
-    const facts: ExtractFacts = { selectedBy, takenAt, missingDeparture };
-    lineage.push({ logId, fileName, sha256, rows, periodFrom, periodTo, facts });
+    lineage.push(lineageOf(log, rows));
   }
-  return { table: cut(table), areaIds: areas.map((area) => area.id), lineage, facts: together(lineage) };
+  const counts = chosen.filter(({ kind }) => kind === 'hourly counts');
+  const { timeZone } = db.prepare('SELECT "timeZone" FROM "site" WHERE "id" = ?').get(siteId) as { timeZone: string };
+  const { counted, rowsOf } = loadHourlyCounts(
+    db,
+    counts,
+    ({ number }) =>
+      (spans.get(number) ?? [])
+        .map((span) => ({ from: Math.max(span.from, arrivedFrom), to: span.to }))
+        .filter((span) => span.to > span.from),
+    indexOfCode,
+    makeZone(timeZone),
+  );
+  return {
+    table: cut(table),
+    areaIds: areas.map((area) => area.id),
+    lineage,
+    facts: together(lineage),
+    hourly: {
+      counted,
+      lineage: counts.flatMap((log) => {
+        const rows = rowsOf.get(log.number);
+        return rows === undefined ? [] : [lineageOf(log, rows)];
+      }),
+      stated: statedMeans(counts, indexOfCode),
+    },
+  };
+}
+
+function lineageOf(log: LogRow, rows: number): VisitLineage {
+  const { id: logId, fileName, sha256, periodFrom, periodTo, selectedBy, takenAt, missingDeparture } = log;
+  return { logId, fileName, sha256, rows, periodFrom, periodTo, facts: { selectedBy, takenAt, missingDeparture } };
 }
 
 function together(lineage: readonly VisitLineage[]): ExtractFacts | null {

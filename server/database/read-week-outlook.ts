@@ -11,16 +11,21 @@ export interface StoredWeekOutlook {
 const parsed = (row: WeekOutlookRow | null): StoredWeekOutlook | null =>
   row && { row, result: JSON.parse(row.result) as WeekOutlookResult };
 
-/** The newest week outlook issued at or before an instant (of all, without one); null before the first. */
+/**
+ * The newest week outlook issued at or before an instant (of all, without one); null before the first.
+ * @param recomputed whether one made afterwards counts too
+ */
 export async function readNewestWeekOutlook(
   read: EntityManager,
   siteId: string,
   until = Number.MAX_SAFE_INTEGER,
+  recomputed = false,
 ): Promise<StoredWeekOutlook | null> {
   const row = await read
     .createQueryBuilder(WeekOutlookRow, 'week')
     .addSelect('week.result')
     .where('week.siteId = :siteId AND week.issuedAt <= :until', { siteId, until })
+    .andWhere(recomputed ? '1 = 1' : "week.trigger <> 'recomputed'")
     .orderBy('week.issuedAt', 'DESC')
     .addOrderBy('week.rowid', 'DESC')
     .limit(1)

@@ -1,5 +1,8 @@
 import { AsyncLocalStorage } from 'node:async_hooks';
+import { setTimeout as pause } from 'node:timers/promises';
 import type { DataSource, EntityManager } from 'typeorm';
+import { lockWaitMilliseconds, rawConnection } from './data-source.ts';
+import { databaseFaultOf } from './database-fault.ts';
 
 /** Runs work in a transaction, alone: no other write runs meanwhile. */
 export type Write = <T>(work: (manager: EntityManager) => Promise<T>) => Promise<T>;
@@ -22,6 +25,9 @@ interface Mark {
  * along and later slip past the gate.
  *
  * Never wait for the network, mail or a worker inside: everybody else's write waits too.
+ *
+ * Another process's lock is waited for here, five seconds from when the write was asked for: SQLite's own waiting
+ * would stop every request meanwhile, and each write in the queue would begin its wait anew.
  */
 export function makeWriteGate(source: DataSource): Write {
   const inside = new AsyncLocalStorage<Mark>();
@@ -34,8 +40,10 @@ export function makeWriteGate(source: DataSource): Write {
       // A promise of its own, so that a failure that nobody awaits is still reported.
       return joined.then((result) => result);
     }
-    const turn = tail.then(() =>
-      source.transaction(async (manager) => {
+    const giveUpAt = performance.now() + lockWaitMilliseconds;
+    const turn = tail.then(async () => {
+      await untilUnlocked(source, giveUpAt);
+      return source.transaction(async (manager) => {
         const mark: Mark = { open: true, manager, joined: [] };
         try {
           return await inside.run(mark, () => work(manager));
@@ -44,9 +52,41 @@ export function makeWriteGate(source: DataSource): Write {
           while (mark.joined.length > 0) await Promise.allSettled(mark.joined.splice(0));
           mark.open = false;
         }
-      }),
-    );
-    tail = turn.catch(() => undefined);
+      });
+    });
+    tail = turn.catch(() => leaveTransaction(source));
     return turn;
   };
+}
+
+/** Waits until no other process holds the write lock, without stopping the thread; past the time it throws SQLite's error. */
+async function untilUnlocked(source: DataSource, giveUpAt: number): Promise<void> {
+  const connection = rawConnection(source);
+  for (;;) {
+    try {
+      connection.pragma('busy_timeout = 0');
+      connection.exec('BEGIN IMMEDIATE');
+      connection.exec('ROLLBACK');
+      return;
+    } catch (error) {
+      // Any other fault is the transaction's to tell.
+      if (databaseFaultOf(error)?.kind !== 'locked') return;
+      if (performance.now() >= giveUpAt) throw error;
+    } finally {
+      connection.pragma(`busy_timeout = ${String(lockWaitMilliseconds)}`);
+    }
+    await pause(20);
+  }
+}
+
+/**
+ * SQLite may end a transaction by itself (no room, a failing disk); TypeORM's own rollback then fails, and it would take
+ * every later transaction for one within the lost one.
+ */
+async function leaveTransaction(source: DataSource): Promise<void> {
+  if (!source.isInitialized) return;
+  const runner = source.createQueryRunner();
+  if (!runner.isTransactionActive) return;
+  if (!rawConnection(source).inTransaction) rawConnection(source).exec('BEGIN');
+  await runner.rollbackTransaction().catch(() => undefined);
 }

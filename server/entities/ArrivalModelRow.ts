@@ -34,6 +34,8 @@ export class ArrivalModelRow {
   @Column('integer', { nullable: true }) trainedFrom: number | null;
   @Column('integer', { nullable: true }) trainedTo: number | null;
   @Column('integer', { default: 0 }) visits: number;
+  /** Where its stays come from; null means visits, or a model that is not fitted. */
+  @Column('text', { nullable: true }) staysFrom: 'departures by hour' | 'stated mean' | null;
   /** JSON: the logs it was fitted on. */
   @Column('text', { default: '[]' }) lineage: string;
   /** JSON: arrival model, stay model, calendar; as the engine made it. Null until fitted. */

@@ -42,4 +42,8 @@ export class BriefDelivery {
   @Column('integer', { nullable: true }) sentAt: number | null;
   /** What the mail server said last, without addresses; or why it was left out. */
   @Column('text', { nullable: true }) lastAnswer: string | null;
+  /** When a report came that the message, once taken, could not be delivered. */
+  @Column('integer', { nullable: true }) returnedAt: number | null;
+  /** The report's status code and what it says, without addresses. */
+  @Column('text', { nullable: true }) returnedBecause: string | null;
 }

@@ -29,4 +29,6 @@ export class BriefRecipient {
   @Column('integer', { nullable: true }) confirmedAt: number | null;
   @Column('integer', { nullable: true }) unsubscribedAt: number | null;
   @Column('integer', { nullable: true }) removedAt: number | null;
+  /** When mail to the address came back for good: it gets nothing until somebody confirms it. */
+  @Column('integer', { nullable: true }) returnedAt: number | null;
 }

@@ -30,8 +30,8 @@ export class ForecastScore {
   @Column('text') modelId: string;
   /** Empty for the whole department, so that it can stand in a key. */
   @Column('text') areaId: string;
-  @Column('text') measure: 'need' | 'peak' | 'arrivals';
-  /** Hours ahead for need, 0 for the others. */
+  @Column('text') measure: 'need' | 'peak' | 'arrivals' | 'shift arrivals';
+  /** Hours ahead; 0 for the last outlook before a shift or day. What a week outlook said is grouped, see record-lead. */
   @Column('integer') leadHours: number;
   /** The shift in charge at the hour, or the shift itself; empty where none is. */
   @Column('text') shift: string;

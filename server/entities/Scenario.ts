@@ -47,4 +47,5 @@ export class Scenario {
   @Column('text', { nullable: true }) resultDigest: string | null;
   @Column('integer', { nullable: true }) adoptedAt: number | null;
   @Column('text', { nullable: true }) adoptedBy: string | null;
+  @Column('text', { nullable: true }) adoptedAs: 'these dates' | 'every week' | null;
 }

@@ -5,7 +5,7 @@ import { Column, Entity, PrimaryColumn } from 'typeorm';
 export class ScoreWeek {
   @PrimaryColumn('text') siteId: string;
   @PrimaryColumn('integer') week: number;
-  @PrimaryColumn('text') measure: 'need' | 'peak' | 'arrivals';
+  @PrimaryColumn('text') measure: 'need' | 'peak' | 'arrivals' | 'shift arrivals';
   @PrimaryColumn('integer') leadHours: number;
   @PrimaryColumn('text') areaId: string;
   @PrimaryColumn('text') shift: string;

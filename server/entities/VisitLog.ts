@@ -3,6 +3,12 @@ import type { Relation } from 'typeorm';
 import type { ArrivalMeaning, AreaMeaning } from '../../shared/domain/extract-meaning.ts';
 import type { Site } from './Site.ts';
 
+/** Mean length of stay by care area, hours, and where the figures are from. */
+export interface StatedStays {
+  source: string;
+  areas: { areaCode: number; meanHours: number }[];
+}
+
 /** One accepted file of visits. Its rows count only while it is ready; rules of precedence stand in database/read-visits. */
 @Entity({ name: 'visit_log' })
 @Index(['siteId', 'uploadedAt'])
@@ -10,6 +16,10 @@ import type { Site } from './Site.ts';
 export class VisitLog {
   @PrimaryColumn('text')
   id: string;
+
+  /** What its rows are: one a visit, or one an hour and care area. */
+  @Column('text', { default: 'visits' })
+  kind: 'visits' | 'hourly counts';
 
   /** Small number that its visits carry instead of the id: a million rows repeat it. */
   @Column('integer', { unique: true })
@@ -73,6 +83,10 @@ export class VisitLog {
   /** Accepted rows by care area: the area's code and how many. */
   @Column('simple-json')
   visitsByArea: { areaCode: number; visits: number }[];
+
+  /** Of hourly counts: mean stays that the site states, with their source. */
+  @Column('simple-json', { nullable: true })
+  statedStays: StatedStays | null;
 
   @Column('text')
   uploadedBy: string;

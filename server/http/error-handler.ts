@@ -1,6 +1,7 @@
 import type { ErrorRequestHandler } from 'express';
+import { databaseFaultOf, type DatabaseFaultKind } from '../database/database-fault.ts';
 import { HttpError, notFound } from '../errors.ts';
-import type { Logger } from '../log.ts';
+import { loggedPath, type Logger } from '../log.ts';
 import { requestIdOf } from './route.ts';
 
 /** The one place that turns an error into a reply: an RFC 9457 problem document. */
@@ -12,9 +13,13 @@ export function makeErrorHandler(logger: Logger): ErrorRequestHandler {
     }
     const requestId = requestIdOf(req);
     const known = error instanceof HttpError ? error : fromExpress(error);
-    if (!known) logger.error({ err: error, requestId, method: req.method, path: req.path }, 'a request failed');
+    const fault = known ? null : databaseFaultOf(error);
+    if (!known)
+      logger.error({ err: error, requestId, method: req.method, path: loggedPath(req.path) }, 'a request failed');
+    if (fault?.kind === 'locked') res.setHeader('retry-after', '5');
     const answer =
       known ??
+      (fault ? cannotStore[fault.kind] : null) ??
       new HttpError(
         500,
         'Server fault',
@@ -31,6 +36,23 @@ export function makeErrorHandler(logger: Logger): ErrorRequestHandler {
       .send(JSON.stringify(answer.toProblem(requestId)));
   };
 }
+
+const kept = 'Nothing of this request was stored; everything stored before is unchanged.';
+const tellAdministrator = 'Keep what you typed and tell the administrator; it can be sent again once that is mended.';
+
+/** Faults of the place where data is kept. A damaged file stays a fault of ours: nobody but the administrator can act. */
+const cannotStore: Record<DatabaseFaultKind, HttpError | null> = {
+  'no room': new HttpError(507, 'No room', 'The server’s disk is full.', { kept, next: tellAdministrator }),
+  locked: new HttpError(503, 'Database in use', 'Another program on the server holds the database.', {
+    kept,
+    next: 'Wait a few seconds and send it again.',
+  }),
+  'not writable': new HttpError(503, 'Cannot be stored', 'The server cannot write to its data folder.', {
+    kept,
+    next: tellAdministrator,
+  }),
+  damaged: null,
+};
 
 /**
  * Errors that Express and its middleware raise over what a client sent: those of http-errors mark

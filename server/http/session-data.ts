@@ -7,6 +7,9 @@ declare module 'express-session' {
     signedInAt: number;
     /** When the person last did something here, UTC seconds, to the minute; 0: locked by hand. */
     usedAt: number;
+    /** Browser and system, and the address, at the sign-in: for the person's own list of sessions. */
+    device: string;
+    address: string;
     /** Kept for the provider's end of a sign-out. */
     idToken: string;
     /** A sign-in under way. */

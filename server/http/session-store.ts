@@ -7,6 +7,9 @@ import { SessionRow } from '../entities/SessionRow.ts';
 /** A session in which nobody has signed in yet lives this long: a sign-in under way. */
 const unsignedSeconds = 3600;
 
+/** A clock that is corrected by so little ends nobody's session. */
+const clockSlackSeconds = 300;
+
 /** Sessions in the database. They end a fixed time after the sign-in, however much they are used. Writes go through the one gate. */
 export class SessionStore extends Store {
   private readonly database: Database;
@@ -31,9 +34,15 @@ export class SessionStore extends Store {
     this.database.read
       .findOneBy(SessionRow, { sid })
       .then((row) => {
-        done(null, row && row.expiresAt > this.clock() ? (JSON.parse(row.data) as SessionData) : null);
+        done(null, row && this.stands(row) ? (JSON.parse(row.data) as SessionData) : null);
       })
       .catch(done);
+  }
+
+  /** False once it has run out, and for one that would outlive its time because the clock was set back. */
+  private stands({ expiresAt }: SessionRow): boolean {
+    const now = this.clock();
+    return expiresAt > now && expiresAt <= now + this.lifetimeSeconds + clockSlackSeconds;
   }
 
   override set(sid: string, session: SessionData, done?: (error?: unknown) => void): void {
@@ -77,6 +86,28 @@ export class SessionStore extends Store {
       await alongside(manager, rows.length);
       for (const { sid } of rows) this.ended.add(sid);
       return rows.length;
+    });
+  }
+
+  /** The sessions of a person that stand, with their ids. */
+  async listOf(personId: string): Promise<{ sid: string; session: SessionData }[]> {
+    const rows = await this.database.read.findBy(SessionRow, { personId });
+    return rows
+      .filter((row) => this.stands(row))
+      .map(({ sid, data }) => ({ sid, session: JSON.parse(data) as SessionData }));
+  }
+
+  /**
+   * Ends one session of a person; false if there is no such.
+   * @param alongside what belongs to it (its audit row), in the same transaction
+   */
+  async endOne(sid: string, personId: string, alongside: (manager: EntityManager) => Promise<void>): Promise<boolean> {
+    return this.database.write(async (manager) => {
+      const { affected } = await manager.delete(SessionRow, { sid, personId });
+      if (affected !== 1) return false;
+      await alongside(manager);
+      this.ended.add(sid);
+      return true;
     });
   }
 

@@ -24,7 +24,9 @@ export function followUse(sessions: SessionStore, idleSeconds: number): RequestH
       return;
     }
     const now = sessions.now();
-    const usedAt = session.usedAt ?? session.signedInAt ?? 0;
+    let usedAt = session.usedAt ?? session.signedInAt ?? 0;
+    // The clock was set back: the wait for use begins now, not when the clock has caught up.
+    if (usedAt > now + noteEverySeconds) session.usedAt = usedAt = now;
     if (now - usedAt > idleSeconds) locked.add(req);
     else if ((req.get('x-use') === '1' || !['GET', 'HEAD'].includes(req.method)) && now - usedAt >= noteEverySeconds) {
       session.usedAt = now;

@@ -14,7 +14,16 @@ export function serveClient(app: Express, clientDir: string): void {
   app.use('/assets', (_req, _res, next) => {
     next(notFound('This file'));
   });
-  app.use(express.static(clientDir, { index: false, maxAge: '1h' }));
+  app.use(
+    express.static(clientDir, {
+      index: false,
+      maxAge: '1h',
+      setHeaders: (res, file) => {
+        // A kept copy of these would hold a device to an older version.
+        if (/(?:service-worker\.js|parts\.json)$/.test(file)) res.setHeader('cache-control', 'no-cache');
+      },
+    }),
+  );
   app.get('/{*path}', (_req, res) => {
     res
       .setHeader('cache-control', 'no-store')

@@ -1,7 +1,9 @@
+import { setTimeout as pause } from 'node:timers/promises';
 import type { EntityManager } from 'typeorm';
-import { In, LessThanOrEqual, Not } from 'typeorm';
+import { In, LessThanOrEqual, MoreThan, Not } from 'typeorm';
 import type { Clock } from '../clock.ts';
 import type { Database } from '../database/database.ts';
+import { databaseFaultOf } from '../database/database-fault.ts';
 import { newId } from '../database/new-id.ts';
 import { Job } from '../entities/Job.ts';
 import type { Logger } from '../log.ts';
@@ -209,12 +211,13 @@ export class JobQueue {
       const alone = [...this.running.values()]
         .map(({ kind }) => kind)
         .filter((kind) => (this.kinds[kind] as JobKind | undefined)?.oneAtATime);
+      const waiting = { status: 'queued', ...(alone.length > 0 ? { kind: Not(In(alone)) } : {}) } as const;
       const next = await this.database.read.findOne(Job, {
-        where: {
-          status: 'queued',
-          runAfter: LessThanOrEqual(now),
-          ...(alone.length > 0 ? { kind: Not(In(alone)) } : {}),
-        },
+        // What was asked for at a time to come is from before the clock was set back: it need not wait for that again.
+        where: [
+          { ...waiting, runAfter: LessThanOrEqual(now) },
+          { ...waiting, createdAt: MoreThan(now + leaseSeconds) },
+        ],
         order: { runAfter: 'ASC', createdAt: 'ASC' },
       });
       if (!next) return;
@@ -236,8 +239,7 @@ export class JobQueue {
       const job: Job = Object.assign(next, { attempts: next.attempts + 1 });
       const ended = this.work(job, abort)
         .catch((error: unknown) => {
-          // The database took no end of the job (full, say): it stays marked as running until the next start.
-          this.logger.error({ err: error, jobId: job.id }, 'the end of a job could not be written');
+          this.logger.error({ err: error, jobId: job.id }, 'a job was left as it stood');
         })
         .finally(() => {
           this.running.delete(job.id);
@@ -258,6 +260,7 @@ export class JobQueue {
           this.logger.warn({ err: error, jobId: job.id }, 'progress of a job could not be written');
         });
     }, 500);
+    let writeEnd: () => Promise<void>;
     try {
       const kind = this.kinds[job.kind] as JobKind | undefined;
       if (!kind) throw new PermanentJobError(`No handler for jobs of kind ${job.kind}.`);
@@ -269,11 +272,29 @@ export class JobQueue {
           latest = { progress: Math.min(1, Math.max(0, share)), progressText: text };
         },
       });
-      await this.end(job, { status: 'done', progress: 1, progressText: 'Done', error: null });
+      writeEnd = () => this.end(job, { status: 'done', progress: 1, progressText: 'Done', error: null });
     } catch (error) {
-      await this.fail(job, abort, error);
+      if (!abort.signal.aborted) this.logger.warn({ err: error, jobId: job.id, kind: job.kind }, 'a job failed');
+      writeEnd = () => this.fail(job, abort, error);
     } finally {
       clearInterval(keep);
+    }
+    await this.untilWritten(job, writeEnd);
+  }
+
+  /** Writes a job's end, again and again while the database takes nothing (no room, say); a stopping server leaves it to the next start. */
+  private async untilWritten(job: Job, write: () => Promise<void>): Promise<void> {
+    for (let told = false; ;) {
+      try {
+        await write();
+        return;
+      } catch (error) {
+        if (!databaseFaultOf(error)) throw error;
+        if (!told) this.logger.error({ err: error, jobId: job.id }, 'the end of a job could not be written');
+        told = true;
+        if (this.stopped) return;
+        await pause(pollMilliseconds);
+      }
     }
   }
 
@@ -288,7 +309,6 @@ export class JobQueue {
       });
       return;
     }
-    this.logger.warn({ err: error, jobId: job.id, kind: job.kind }, 'a job failed');
     if (error instanceof PermanentJobError || job.attempts >= job.maxAttempts) {
       await this.database.write(async (manager) => {
         if (await manager.existsBy(Job, { id: job.id, status: 'running' })) {

@@ -1,3 +1,4 @@
+import { LessThanOrEqual } from 'typeorm';
 import type { Dependencies } from '../dependencies.ts';
 import { OutlookRow } from '../entities/OutlookRow.ts';
 import { Site } from '../entities/Site.ts';
@@ -31,7 +32,8 @@ export function startTimetable(
       if (stopped) return;
       const newest = await deps.database.read.findOne(OutlookRow, {
         // One on saving does not take its place: the record would then hold only the hours in which somebody saved.
-        where: { siteId: site.id, trigger: 'timetable' },
+        // Nor does one from before the clock was set back.
+        where: { siteId: site.id, trigger: 'timetable', issuedAt: LessThanOrEqual(now) },
         order: { issuedAt: 'DESC' },
         select: { id: true, issuedAt: true },
       });

@@ -44,21 +44,28 @@ export function unpackWoff(woff: Buffer): Buffer {
   return Buffer.concat(parts);
 }
 
-let files: string[] | null = null;
+let fonts: { name: string; data: Buffer }[] | null = null;
 
-/** Nunito Sans, regular and bold, as files that the drawing of pictures can read; written once for this process and removed at its end. */
-export function mailFontFiles(): string[] {
-  if (files) return files;
+/**
+ * Gives Nunito Sans, regular and bold, to a drawing of pictures, which reads fonts from files only: they are there while
+ * `draw` runs and not a moment longer, so that no process, however it ends, leaves a folder behind for long.
+ */
+export function withMailFonts<Output>(draw: (fontFiles: string[]) => Output): Output {
   const require = createRequire(import.meta.url);
-  const folder = mkdtempSync(join(tmpdir(), 'shoalmark-fonts-'));
-  process.once('exit', () => {
-    rmSync(folder, { recursive: true, force: true });
-  });
-  files = ['400', '700'].map((weight) => {
-    const file = join(folder, `nunito-sans-${weight}.ttf`);
+  fonts ??= ['400', '700'].map((weight) => {
     const woff = require.resolve(`@fontsource/nunito-sans/files/nunito-sans-latin-${weight}-normal.woff`);
-    writeFileSync(file, unpackWoff(readFileSync(woff)));
-    return file;
+    return { name: `nunito-sans-${weight}.ttf`, data: unpackWoff(readFileSync(woff)) };
   });
-  return files;
+  const folder = mkdtempSync(join(tmpdir(), 'shoalmark-fonts-'));
+  try {
+    return draw(
+      fonts.map(({ name, data }) => {
+        const file = join(folder, name);
+        writeFileSync(file, data);
+        return file;
+      }),
+    );
+  } finally {
+    rmSync(folder, { recursive: true, force: true });
+  }
 }

@@ -1,7 +1,7 @@
 import { Resvg } from '@resvg/resvg-js';
 import type { ReactElement } from 'react';
 import { renderToStaticMarkup } from 'react-dom/server';
-import { mailFontFiles } from './mail-fonts.ts';
+import { withMailFonts } from './mail-fonts.ts';
 
 /** The day theme's colours by the names that drawings use: a picture in a mail cannot follow the reader's theme. */
 export const mailColours = {
@@ -53,16 +53,18 @@ export function drawMailPicture(cid: string, drawing: ReactElement, background: 
       if (!(name in mailColours)) throw new RangeError(`mail has no colour ${name}`);
       return mailColours[name as keyof typeof mailColours];
     });
-  const image = new Resvg(svg, {
-    fitTo: { mode: 'zoom', value: 2 },
-    ...(background === null ? {} : { background }),
-    font: { fontFiles: mailFontFiles(), loadSystemFonts: false, defaultFontFamily: 'Nunito Sans' },
-  }).render();
-  return {
-    cid,
-    contentType: 'image/png',
-    content: image.asPng().toString('base64'),
-    width: image.width / 2,
-    height: image.height / 2,
-  };
+  return withMailFonts((fontFiles) => {
+    const image = new Resvg(svg, {
+      fitTo: { mode: 'zoom', value: 2 },
+      ...(background === null ? {} : { background }),
+      font: { fontFiles, loadSystemFonts: false, defaultFontFamily: 'Nunito Sans' },
+    }).render();
+    return {
+      cid,
+      contentType: 'image/png',
+      content: image.asPng().toString('base64'),
+      width: image.width / 2,
+      height: image.height / 2,
+    };
+  });
 }

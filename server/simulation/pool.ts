@@ -7,14 +7,16 @@ export interface SimulationPool {
   /**
    * Runs a worker module's default export on a thread.
    * @param worker URL of the module, made with `workerUrl` beside the caller.
+   * A task whose thread dies under it is given to another thread once, unless something was handed over to the first.
    * @throws an AbortError once `signal` aborts; the thread is ended and replaced.
    */
-  run<Output>(
-    worker: URL,
-    input: unknown,
-    options?: { signal?: AbortSignal; transferList?: readonly Transferable[] },
-  ): Promise<Output>;
+  run<Output>(worker: URL, input: unknown, options?: RunOptions): Promise<Output>;
   close(): Promise<void>;
+}
+
+interface RunOptions {
+  signal?: AbortSignal;
+  transferList?: readonly Transferable[];
 }
 
 type Transferable = ArrayBuffer | MessagePort;
@@ -44,14 +46,47 @@ export function makeSimulationPool(threads: number, { keepThreads = false, nice 
     niceIncrement: nice,
     execArgv: fromSource ? ['--import', 'tsx'] : [],
   });
-  return {
-    threads,
-    run: (worker, input, options = {}) =>
-      piscina.run(input, {
+  // A thread that fails without a task is replaced when one is next needed; unheard, the event would end the server.
+  piscina.on('error', () => undefined);
+  const attempt = async (worker: URL, input: unknown, options: RunOptions): Promise<never> => {
+    try {
+      return (await piscina.run(input, {
         filename: worker.href,
         ...(options.signal ? { signal: options.signal } : {}),
         ...(options.transferList ? { transferList: [...options.transferList] } : {}),
-      }) as Promise<never>,
+      })) as never;
+    } catch (error) {
+      // The pool gives what waits in its queue to a new thread only when it is next asked for something.
+      if (piscina.queueSize > 0 && piscina.threads.length < threads) {
+        void piscina.run(null, { filename: workerUrl(import.meta.url, 'rouse.worker').href }).catch(() => undefined);
+      }
+      throw error;
+    }
+  };
+  return {
+    threads,
+    async run(worker, input, options = {}) {
+      // A port that was handed over died with its thread: then the caller (a job) begins anew.
+      for (let left = options.transferList ? 0 : 1; ; left -= 1) {
+        try {
+          return await attempt(worker, input, options);
+        } catch (error) {
+          if (!threadDied(error) || options.signal?.aborted) throw error;
+          if (left === 0) {
+            throw new Error(`The thread that computed this ended in the middle (${error.message}).`, { cause: error });
+          }
+        }
+      }
+    },
     close: () => piscina.destroy(),
   };
+}
+
+/** True if a task failed because its thread ended under it, rather than by an error of its own. */
+function threadDied(error: unknown): error is Error {
+  if (!(error instanceof Error)) return false;
+  return (
+    error.message.startsWith('worker exited with code') ||
+    ('code' in error && error.code === 'ERR_WORKER_OUT_OF_MEMORY')
+  );
 }

@@ -1,6 +1,6 @@
 import { z } from 'zod';
 import { defineContract } from './contract.ts';
-import { id, instant, note, siteParams } from './common.ts';
+import { id, instant, note, siteParams, staysFrom } from './common.ts';
 
 export const modelStatus = z.enum(['fitting', 'candidate', 'in use', 'retired', 'failed']);
 
@@ -24,6 +24,7 @@ export const modelSummary = z.object({
   trainedTo: instant.nullable(),
   visits: z.int(),
   weeksOfHistory: z.number(),
+  staysFrom,
   /** When its level was last moved on by newer visits, without a new fit. */
   refreshedAt: instant.nullable(),
   /** Why a fit failed. */
@@ -88,6 +89,81 @@ export const modelDetail = modelSummary.extend({
 export type ModelDetail = z.infer<typeof modelDetail>;
 
 const modelParams = siteParams.extend({ modelId: id });
+
+const score = z.number().nullable();
+const comparedSide = z.object({
+  logScore: score,
+  mase: score,
+  pinball: score,
+  coverage: z.array(z.object({ level: z.number(), observed: score, expected: score, se: score })),
+});
+const scoreDifference = z.object({ value: z.number(), se: score, monteCarlo: score });
+const comparedScale = z.object({
+  n: z.int(),
+  candidate: comparedSide,
+  inUse: comparedSide,
+  /** Candidate less the one in use: under 0 the candidate did better. */
+  difference: z.object({ logScore: scoreDifference, pinball: scoreDifference }).nullable(),
+});
+export type ComparedScale = z.infer<typeof comparedScale>;
+
+/** A backtest of a candidate beside the model in use; the meaning of each figure stands with the engine's ModelComparison. */
+export const modelComparison = z.object({
+  id,
+  inUse: z.object({ id, fittedAt: instant.nullable(), fittedBy: z.string() }),
+  /** False once another model is in use than the one it was compared with. */
+  stillInUse: z.boolean(),
+  status: z.enum(['running', 'done', 'failed']),
+  createdAt: instant,
+  askedBy: z.string(),
+  jobId: id,
+  error: z.string().nullable(),
+  /** Null until it is done. */
+  result: z
+    .object({
+      /** The weeks scored. */
+      from: instant,
+      to: instant,
+      weeks: z.int(),
+      weeksAlike: z.int(),
+      arrivals: z.array(comparedScale.extend({ level: z.enum(['hour', 'shift', 'day', 'week']) })),
+      need: z.array(comparedScale.extend({ leadHours: z.int() })),
+      draws: z.int(),
+      replications: z.int(),
+      batches: z.int(),
+      words: z.object({
+        headline: z.string(),
+        arrivals: z.string(),
+        need: z.string(),
+        ranges: z.string(),
+        grounds: z.string(),
+      }),
+    })
+    .nullable(),
+});
+export type ModelComparisonReply = z.infer<typeof modelComparison>;
+
+export const getModelComparison = defineContract({
+  id: 'getModelComparison',
+  method: 'get',
+  path: '/api/sites/:siteId/arrival-models/:modelId/comparison',
+  access: 'arrival-model:read',
+  summary: 'The newest backtest of a model beside the one that was in use; null before the first.',
+  params: modelParams,
+  reply: z.object({ comparison: modelComparison.nullable(), mayCompare: z.boolean() }),
+});
+
+export const compareModel = defineContract({
+  id: 'compareArrivalModel',
+  method: 'post',
+  path: '/api/sites/:siteId/arrival-models/:modelId/comparison',
+  access: 'arrival-model:fit',
+  summary: 'Backtest a candidate beside the model in use on the site’s own visits, in the background.',
+  params: modelParams,
+  body: z.object({ weeks: z.int().min(1).max(52).default(13) }),
+  status: 202,
+  reply: z.object({ comparisonId: id, jobId: id }),
+});
 
 export const listModels = defineContract({
   id: 'listArrivalModels',

@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import { defineContract } from './contract.ts';
+import { subscription } from './brief-recipients.ts';
 import { id, instant, siteParams } from './common.ts';
 
 export const covers = z.enum(['site', 'group']);
@@ -40,6 +41,8 @@ const tally = z.object({
   refused: z.int(),
   notKnown: z.int(),
   leftOut: z.int(),
+  /** Taken by the mail server and returned later; among `sent`. */
+  returned: z.int(),
 });
 export type BriefTally = z.infer<typeof tally>;
 
@@ -49,10 +52,6 @@ const settingsReply = settings.extend({
   mayCoverGroup: z.boolean(),
   groupName: z.string(),
 });
-
-/** Own subscription: none, or since when. */
-const subscription = z.object({ subscribed: z.boolean(), address: z.string() });
-export type Subscription = z.infer<typeof subscription>;
 
 const briefParams = siteParams.extend({ briefId: id });
 const base = '/api/sites/:siteId/briefs';
@@ -139,6 +138,10 @@ export const delivery = z.object({
   attemptedAt: instant.nullable(),
   sentAt: instant.nullable(),
   lastAnswer: z.string().nullable(),
+  /** When a report came that it could not be delivered after all (RFC 3464); null if none did. */
+  returnedAt: instant.nullable(),
+  /** The report's status code (RFC 3463), for instance 5.1.1, and what it says, without addresses. */
+  returnedBecause: z.string().nullable(),
 });
 export type Delivery = z.infer<typeof delivery>;
 
@@ -173,107 +176,4 @@ export const saveBriefSettings = defineContract({
   params: siteParams,
   body: settings,
   reply: settingsReply,
-});
-
-export const recipient = z.object({
-  id,
-  name: z.string(),
-  address: z.string(),
-  /** A person of the site, or an outside address. */
-  kind: z.enum(['person', 'outside']),
-  state: z.enum(['receives', 'asked', 'unsubscribed']),
-  addedBy: z.string(),
-  addedAt: instant,
-  askedAt: instant.nullable(),
-  confirmedAt: instant.nullable(),
-  unsubscribedAt: instant.nullable(),
-});
-export type Recipient = z.infer<typeof recipient>;
-
-const recipients = '/api/sites/:siteId/brief-recipients';
-
-export const listRecipients = defineContract({
-  id: 'listRecipients',
-  method: 'get',
-  path: recipients,
-  access: 'brief:send',
-  summary: 'Whom the brief goes to, who was asked, and who unsubscribed; and people of the site who could be added.',
-  params: siteParams,
-  reply: z.object({
-    recipients: z.array(recipient),
-    people: z.array(z.object({ name: z.string(), address: z.string() })),
-  }),
-});
-
-export const addRecipient = defineContract({
-  id: 'addRecipient',
-  method: 'post',
-  path: recipients,
-  access: 'brief:send',
-  summary: 'Add a person of the site at once, or ask an outside address to confirm.',
-  params: siteParams,
-  body: z.object({
-    name: z.string().trim().min(1, 'A name').max(100, 'At most 100 characters'),
-    address: z.string().max(300),
-  }),
-  status: 201,
-  reply: recipient,
-});
-
-export const removeRecipient = defineContract({
-  id: 'removeRecipient',
-  method: 'delete',
-  path: `${recipients}/:recipientId`,
-  access: 'brief:send',
-  summary: 'Remove a recipient; a brief on its way passes them over.',
-  params: siteParams.extend({ recipientId: id }),
-  status: 204,
-  reply: z.undefined(),
-});
-
-export const setSubscription = defineContract({
-  id: 'setSubscription',
-  method: 'put',
-  path: '/api/sites/:siteId/brief-subscription',
-  access: 'brief:subscribe',
-  summary: 'Subscribe to the brief, or unsubscribe, for oneself.',
-  params: siteParams,
-  body: z.object({ subscribed: z.boolean() }),
-  reply: subscription,
-});
-
-/** Signed links of mails; they lie outside the API, for browsers and mail programs without a session. */
-const linkParams = z.object({ link: z.string().min(10).max(200) });
-const page = { access: 'public', params: linkParams, reply: z.string(), replyType: 'text/html' } as const;
-
-export const showConfirmation = defineContract({
-  ...page,
-  id: 'showConfirmation',
-  method: 'get',
-  path: '/mail/confirm/:link',
-  summary: 'A page that asks whether an address wants the brief; changes nothing.',
-});
-
-export const confirmRecipient = defineContract({
-  ...page,
-  id: 'confirmRecipient',
-  method: 'post',
-  path: '/mail/confirm/:link',
-  summary: 'Confirm an address by the link sent to it.',
-});
-
-export const showUnsubscribe = defineContract({
-  ...page,
-  id: 'showUnsubscribe',
-  method: 'get',
-  path: '/mail/unsubscribe/:link',
-  summary: 'A page with a button to unsubscribe; changes nothing.',
-});
-
-export const unsubscribe = defineContract({
-  ...page,
-  id: 'unsubscribe',
-  method: 'post',
-  path: '/mail/unsubscribe/:link',
-  summary: 'Unsubscribe in one click (RFC 8058) by a signed link, without a sign-in.',
 });

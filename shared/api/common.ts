@@ -31,3 +31,6 @@ export const problem = z.object({
   faults: z.array(z.object({ at: z.string(), message: z.string() })).optional(),
 });
 export type Problem = z.infer<typeof problem>;
+
+/** Where a model's stays come from when it was fitted on hourly counts; null or absent: visits. Such a model knows no admissions. */
+export const staysFrom = z.enum(['departures by hour', 'stated mean']).nullable().optional();

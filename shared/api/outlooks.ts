@@ -1,7 +1,7 @@
 import { z } from 'zod';
 import { acknowledgement } from './acknowledgements.ts';
 import { defineContract } from './contract.ts';
-import { id, instant, queryInstant, siteParams } from './common.ts';
+import { id, instant, queryInstant, siteParams, staysFrom } from './common.ts';
 
 const figures = z.array(z.number());
 const percentiles = z.object({
@@ -108,6 +108,7 @@ export const outlook = z.object({
     approvedAt: instant.nullable(),
     trainedTo: instant,
     weeksOfHistory: z.number(),
+    staysFrom,
   }),
   planningRisk: z.number(),
   seed: z.int(),
@@ -142,6 +143,7 @@ export const caution = z.object({
     'gap in the log',
     'unusual day',
     'model drifted',
+    'hourly counts',
   ]),
   text: z.string(),
 });

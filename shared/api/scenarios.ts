@@ -58,6 +58,7 @@ export const exactInputs = z.object({
       startMeans: row.nullable(),
       boarders: z.int(),
       boarderStream: z.int(),
+      staged: z.boolean(),
       arrivalVariance: z.number(),
       outflowNodes: z.array(z.object({ value: z.number(), weight: z.number() })),
       staffedBeds: z.array(bedStep),
@@ -127,17 +128,23 @@ export const scenarioResult = z.object({
   lengthOfStay: z.enum(['exponential', 'empirical']),
   hours: z.array(instant),
   shifts: z.array(z.object({ name: z.string(), from: instant, to: instant })),
+  waitLimitMinutes: z.int().nullish(),
   rows: z.array(
     z.object({
       /** Null: the department, where "some area is short" is compared. */
       areaId: id.nullable(),
       shifts: z.array(comparedFigure),
       bedHoursShort: comparedFigure,
+      /** Patients of each shift who wait longer than the site's limit for a bed space, on average; null where it cannot be known. */
+      waits: z.array(comparedFigure).nullish(),
       hours: z.object({ asIs: z.array(z.number()), plan: z.array(z.number()) }),
     }),
   ),
 });
 export type ScenarioResult = z.infer<typeof scenarioResult>;
+
+/** Whether a plan's beds hold on the dates it was tried on, or every week from now on. */
+export const adoptions = ['these dates', 'every week'] as const;
 
 export const scenarioStates = ['saved', 'confirming', 'confirmed', 'failed', 'cancelled', 'withdrawn'] as const;
 
@@ -157,6 +164,7 @@ export const scenarioLine = z.object({
   confirmedAt: instant.nullable(),
   adoptedAt: instant.nullable(),
   adoptedBy: z.string().nullable(),
+  adoptedAs: z.enum(adoptions).nullable(),
   /** While it is being confirmed: a share 0..1 and a few words. */
   progress: z.object({ share: z.number(), text: z.string() }).nullable(),
   /** Why the last confirmation failed. */
@@ -260,8 +268,10 @@ export const adoptScenario = defineContract({
   method: 'post',
   path: `${scenarios}/:scenarioId/adoption`,
   access: 'staffed-beds:plan',
-  summary: 'Put a confirmed plan’s staffed beds into the staffed-bed plan as dated exceptions, with a reason.',
+  summary:
+    'Put a confirmed plan’s staffed beds into the staffed-bed plan, with a reason: as dated exceptions, or as a new version of the weekly plan.',
   params: scenarioParams,
-  body: z.object({ reason: note.min(3, 'Say why') }),
-  reply: z.object({ scenario: scenarioLine, exceptions: z.int() }),
+  body: z.object({ reason: note.min(3, 'Say why'), as: z.enum(adoptions).default('these dates') }),
+  /** How many dated exceptions were made, or the version of the weekly plan that was saved. */
+  reply: z.object({ scenario: scenarioLine, exceptions: z.int(), planVersion: z.int().nullable() }),
 });

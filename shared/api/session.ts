@@ -1,7 +1,7 @@
 import { z } from 'zod';
 import { permissions, roles } from '../domain/permission.ts';
 import { defineContract } from './contract.ts';
-import { id } from './common.ts';
+import { id, instant } from './common.ts';
 
 export const sessionSite = z.object({
   id,
@@ -81,6 +81,43 @@ export const signOutEverywhere = defineContract({
   access: 'signed-in',
   summary: 'Ends every session of the person who asks, on every device.',
   reply: z.object({ redirectTo: z.string() }),
+});
+
+/** One of the caller's own sessions: a browser somewhere in which they are signed in. */
+export const ownSession = z.object({
+  /** Names the session; not the token that opens it. */
+  id,
+  /** Browser and system as the browser names them, for instance "Firefox on Windows". */
+  device: z.string(),
+  /** Where it signed in from, as the server saw it. */
+  address: z.string(),
+  signedInAt: instant,
+  usedAt: instant,
+  /** Left alone for too long: only a fresh sign-in opens it. */
+  locked: z.boolean(),
+  /** The one that asks. */
+  current: z.boolean(),
+});
+export type OwnSession = z.infer<typeof ownSession>;
+
+export const listOwnSessions = defineContract({
+  id: 'listOwnSessions',
+  method: 'get',
+  path: '/api/own-sessions',
+  access: 'signed-in',
+  summary: 'Where the caller is signed in, the newest use first.',
+  reply: z.object({ sessions: z.array(ownSession) }),
+});
+
+export const endOwnSession = defineContract({
+  id: 'endOwnSession',
+  method: 'post',
+  path: '/api/own-sessions/:sessionId/ending',
+  access: 'signed-in',
+  summary: 'Ends one other session of the caller: it is refused from its next request on.',
+  params: z.object({ sessionId: id }),
+  status: 204,
+  reply: z.null(),
 });
 
 export const lockSession = defineContract({

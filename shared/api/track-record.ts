@@ -2,15 +2,15 @@ import { z } from 'zod';
 import { defineContract } from './contract.ts';
 import { id, instant, siteParams } from './common.ts';
 
-export const trackMeasures = ['need', 'peak', 'arrivals'] as const;
+export const trackMeasures = ['need', 'peak', 'arrivals', 'shift arrivals'] as const;
 export const trackWeeks = [13, 26, 52, 104] as const;
 
 /** What of the record is looked at; the same in the page's address and in the request. */
 export const trackFilter = z.object({
-  /** Need some hours ahead, the highest need of a shift, or a day's arrivals. */
+  /** Need some hours ahead, the highest need of a shift, or the arrivals of a day or a shift. */
   measure: z.enum(trackMeasures).default('need'),
-  /** Hours ahead, for need. */
-  lead: z.coerce.number<number>().int().min(1).max(72).default(4),
+  /** Hours ahead; where a measure has no scores so far ahead, the nearest that it has is shown. */
+  lead: z.coerce.number<number>().int().min(0).max(168).default(4),
   /** A care area's id; empty for the whole department. */
   area: z.union([id, z.literal('')]).default(''),
   /** A shift's name; empty for all. */
@@ -110,6 +110,7 @@ export const trackRecord = z.object({
   }),
   areas: z.array(z.object({ id, name: z.string() })),
   shifts: z.array(z.string()),
+  /** What of the measure is scored, by hours ahead; 0 is the last outlook before a shift or day. */
   leads: z.array(z.int()),
   models: z.array(z.object({ id, name: z.string() })),
   /** Every outlook ever issued for the site, by how far it is scored; none is left out. */
@@ -125,6 +126,17 @@ export const trackRecord = z.object({
     recomputed: z.int(),
     replicationsRecomputed: z.int().nullable(),
     firstAt: instant.nullable(),
+  }),
+  /** The same of the week ahead; one that was not issued by the daily timetable counts as overtaken. */
+  weekOutlooks: z.object({
+    issued: z.int(),
+    scored: z.int(),
+    waiting: z.int(),
+    withdrawn: z.int(),
+    notRecorded: z.int(),
+    overtaken: z.int(),
+    withoutLaws: z.int(),
+    recomputed: z.int(),
   }),
   summary: recordSummary,
   /** Hours and shifts whose risk somebody acknowledged: what was done about them may have changed what came. */

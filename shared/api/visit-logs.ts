@@ -48,8 +48,13 @@ export const visitLogStudy = z.object({
 });
 
 /** What the check of an uploaded file found; it holds no visit. */
+export const visitLogKind = z.enum(['visits', 'hourly counts']);
+
 export const visitLogCheck = z.object({
   checkId: id,
+  kind: visitLogKind,
+  /** Care areas of hourly counts: their mean stays have to be stated, since counts do not tell them. */
+  needsMean: z.array(id),
   /** The file is deleted then, unless it was accepted. */
   keptUntil: instant,
   fileName: z.string(),
@@ -98,6 +103,19 @@ export const extractFacts = z.object({
 });
 export type ExtractFactsInput = z.infer<typeof extractFacts>;
 
+/** Longest mean stay that may be stated, hours. */
+export const longestStatedMean = 72;
+
+/** Mean length of stay, of hourly counts: hours by care area, and where the figures are from. */
+export const statedStays = z.object({
+  source: note.min(3, 'Say where the figures are from'),
+  areas: z
+    .array(z.object({ areaId: id, meanHours: z.number().min(0.1).max(longestStatedMean) }))
+    .min(1)
+    .max(255),
+});
+export type StatedStaysInput = z.infer<typeof statedStays>;
+
 /** Rows left out: how many, and by kind of problem; a row may have several. */
 const leftOut = z.object({
   rows: count,
@@ -108,6 +126,7 @@ export const visitLogStatus = z.enum(['loading', 'ready', 'withdrawn', 'failed',
 
 export const visitLogSummary = z.object({
   id,
+  kind: visitLogKind,
   status: visitLogStatus,
   fileName: z.string(),
   rows: count,
@@ -132,6 +151,13 @@ export type VisitLogSummary = z.infer<typeof visitLogSummary>;
 export const visitLogDetail = visitLogSummary.extend({
   sha256: z.string(),
   facts: extractFacts,
+  /** Mean stays that the site states; null where visits tell them. */
+  statedStays: z
+    .object({
+      source: z.string(),
+      areas: z.array(z.object({ areaId: id, name: z.string(), meanHours: z.number() })),
+    })
+    .nullable(),
   /** By kind of problem; a row may have several. */
   leftOut: z.array(z.object({ problem: z.string(), rows: count })),
   visitsByArea: z.array(z.object({ areaId: id, name: z.string(), visits: count })),
@@ -168,7 +194,7 @@ export const checkVisitLog = defineContract({
   access: 'visit-log:upload',
   token: 'visit-log',
   summary:
-    'Send a visit log for checking: the body is CSV (text/csv), or the same gzipped (application/gzip), at most 1 GB unpacked. A file with anything that could identify a patient is refused and not kept.',
+    'Send a visit log for checking: the body is CSV (text/csv), or the same gzipped (application/gzip), at most 1 GB unpacked; one row a visit, or one row an hour and care area (hourly counts, told by the header). A file with anything that could identify a patient is refused and not kept.',
   params: siteParams,
   query: z.object({ fileName: z.string().max(400).default('visit-log.csv') }),
   streamedBody: 'text/csv',
@@ -215,6 +241,8 @@ export const acceptVisitLog = defineContract({
     facts: extractFacts,
     /** Rows that the sender itself left out before sending. */
     leftOutBeforeSending: leftOut.default({ rows: 0, kinds: [] }),
+    /** Needed for hourly counts. */
+    statedStays: statedStays.optional(),
     /** How the file was read before sending; remembered for the site's next upload. */
     mapping: rememberedMapping.optional(),
   }),

@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import { id, instant, queryInstant, siteParams } from './common.ts';
+import { id, instant, queryInstant, siteParams, staysFrom } from './common.ts';
 import { defineContract } from './contract.ts';
 import { caution } from './outlooks.ts';
 
@@ -94,10 +94,30 @@ export const weekOutlookResult = z.object({
     }),
   ),
   ordinaryWeek: z.array(figures),
+  /** Waits for a bed space against the site's limit; null where it has stated none, absent in outlooks of before. */
+  waits: z
+    .object({
+      limitMinutes: z.int(),
+      share,
+      replications: z.int(),
+      areas: z.array(
+        z
+          .array(
+            z.object({
+              arrivals: z.number(),
+              meanMinutes: z.number().nullable(),
+              overLimit: share.nullable(),
+              bedsToAdd: z.int().nullable(),
+            }),
+          )
+          .nullable(),
+      ),
+    })
+    .nullish(),
   lengthOfStay: z.enum(['exponential', 'empirical']),
 });
 
-export const weekOutlookTrigger = z.enum(['first', 'daily', 'what it stands on changed']);
+export const weekOutlookTrigger = z.enum(['first', 'daily', 'what it stands on changed', 'recomputed']);
 
 /** An issued week outlook as it is kept: never changed once issued. */
 export const weekOutlook = z.object({
@@ -105,7 +125,7 @@ export const weekOutlook = z.object({
   issuedAt: instant,
   trigger: weekOutlookTrigger,
   planVersion: z.int(),
-  model: z.object({ id, fittedAt: instant, trainedTo: instant, weeksOfHistory: z.number() }),
+  model: z.object({ id, fittedAt: instant, trainedTo: instant, weeksOfHistory: z.number(), staysFrom }),
   seed: z.int(),
   softwareVersion: z.string(),
   computeMilliseconds: z.number(),
@@ -117,6 +137,8 @@ export type WeekOutlook = z.infer<typeof weekOutlook>;
 export const lastWeek = z.object({
   outlookId: id,
   issuedAt: instant,
+  /** Made afterwards, from what was known then: none had been issued. */
+  recomputed: z.boolean(),
   days: z.array(
     z.object({
       date: z.string(),

@@ -21,6 +21,12 @@ const pad = { left: 40, right: 8, top: 12, bottom: 26 };
 /** Room for the names at the lines' ends. */
 const nameRoom = 150;
 
+/** Between which places, px, the weeks of a drawing of this width lie; names of the lines follow where there is room. */
+export function lossSpan(width: number): { left: number; right: number; named: boolean } {
+  const named = width > 520;
+  return { left: pad.left, right: width - pad.right - (named ? nameRoom : 0), named };
+}
+
 /** Losses by week, each line named at its end; lower is better. Decoration: a table says the same. */
 export function LossLines({
   lines,
@@ -32,11 +38,10 @@ export function LossLines({
   labels: readonly string[];
   width: number;
 }) {
-  const named = width > 520;
-  const right = pad.right + (named ? nameRoom : 0);
+  const { left, right, named } = lossSpan(width);
   const values = lines.flatMap((line) => line.values.filter((value): value is number => value !== null));
   const high = Math.max(1e-6, ...values) * 1.08;
-  const x = scaleLinear<number>({ domain: [0, Math.max(1, labels.length - 1)], range: [pad.left, width - right] });
+  const x = scaleLinear<number>({ domain: [0, Math.max(1, labels.length - 1)], range: [left, right] });
   const y = scaleLinear<number>({ domain: [0, high], range: [height - pad.bottom, pad.top] });
   const places = spread(
     lines.map((line) => y(line.values.findLast((value) => value !== null) ?? 0)),
@@ -48,7 +53,7 @@ export function LossLines({
     <svg width={width} height={height} viewBox={`0 0 ${String(width)} ${String(height)}`} aria-hidden="true">
       {y.ticks(4).map((tick) => (
         <Group key={tick}>
-          <line x1={pad.left} x2={width - right} y1={y(tick)} y2={y(tick)} stroke="var(--hair)" />
+          <line x1={pad.left} x2={right} y1={y(tick)} y2={y(tick)} stroke="var(--hair)" />
           <text x={pad.left - 6} y={y(tick) + 4} textAnchor="end" fontSize={13} fill="var(--ink2)" style={labelStyle}>
             {String(tick)}
           </text>
@@ -72,7 +77,7 @@ export function LossLines({
           />
           {named ? (
             <text
-              x={width - right + 8}
+              x={right + 8}
               y={places[index] + 4}
               fontSize={13}
               fontWeight={line.look === 'own' ? 850 : 650}

@@ -14,20 +14,11 @@ export interface RangeColumn {
   observed: number;
 }
 
-export const rangeHeight = 230;
+const rangeHeight = 230;
 const pad = { left: 34, top: 10, bottom: 24 };
 
 /** Ranges that were issued, one a column, and what came as a dot: ink within its 90 % range, ember and open outside. Decoration: a table says the same. */
-export function RangeColumns({
-  columns,
-  columnWidth,
-  chosen,
-}: {
-  columns: readonly RangeColumn[];
-  columnWidth: number;
-  /** Key of the column that is pointed at. */
-  chosen: string | null;
-}) {
+export function RangeColumns({ columns, columnWidth }: { columns: readonly RangeColumn[]; columnWidth: number }) {
   const width = pad.left + columns.length * columnWidth;
   const high = Math.max(1, ...columns.map((column) => Math.max(column.high90, column.observed)));
   const low = Math.min(...columns.map((column) => Math.min(column.low90, column.observed)), high);
@@ -49,9 +40,6 @@ export function RangeColumns({
         const outside = column.observed < column.low90 || column.observed > column.high90;
         return (
           <Group key={column.key} left={x}>
-            {column.key === chosen ? (
-              <Bar x={-1} y={0} width={columnWidth} height={rangeHeight} fill="var(--strand-b)" />
-            ) : null}
             <Bar
               x={1}
               y={y(column.high90)}

@@ -15,6 +15,11 @@ const pad = { left: 44, right: 14, top: 10, bottom: 36 };
 /** Bins of fewer cases than this say little: they are drawn pale, and the line passes them by. */
 const fewCases = 10;
 
+/** Between which places, px, the chances from 0 to 1 lie in a drawing of this width. */
+export function reliabilitySpan(width: number): { left: number; right: number } {
+  return { left: pad.left, right: Math.min(width, 460) - pad.right };
+}
+
 /** What was said (across) against how often it came (up), with two standard errors and the number of cases; on the dashed line both agree. Decoration: a table says the same. */
 export function ReliabilityDiagram({ points, width }: { points: readonly ReliabilityPoint[]; width: number }) {
   const size = Math.min(width, 460);

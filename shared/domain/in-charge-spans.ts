@@ -13,3 +13,15 @@ export function inChargeSpans(shifts: readonly ShiftTime[], from: number, to: nu
     return end > start ? [{ name: shift.name, from: start, to: end }] : [];
   });
 }
+
+/**
+ * The same shifts, each ending where the next one begins: its own half hours, for which its beds are staffed. A shift whose
+ * own half hours are over at `at` (it only hands over) keeps its end.
+ * @param shifts ascending by start
+ */
+export function withOwnEnds<Shift extends ShiftTime>(shifts: readonly Shift[], at: number): Shift[] {
+  return shifts.map((shift, i) => {
+    const next = shifts.slice(i + 1).find((later) => later.from > shift.from);
+    return next && next.from < shift.to && next.from > at ? { ...shift, to: next.from } : shift;
+  });
+}

@@ -11,22 +11,27 @@ export interface BedHeap {
   clear(): void;
 }
 
-/** A binary heap in one array. @param capacity most beds at a time; it grows if need be. Cost: log₂ beds a call. */
+/**
+ * A binary heap in one array, whose unused places hold Infinity: which of two children is earlier is then told by adding
+ * a comparison, without a branch that the processor guesses wrong half of the time.
+ * @param capacity most beds at a time; it grows if need be. Cost: log₂ beds a call.
+ */
 export function makeBedHeap(capacity: number): BedHeap {
-  let times = new Float64Array(Math.max(4, capacity + 1));
+  let times = new Float64Array(2 * Math.max(4, capacity + 1)).fill(Infinity);
   let count = 0;
 
   function sink(at: number): void {
     const last = count;
     const heap = times;
     let hole = 0;
-    for (;;) {
-      let child = 2 * hole + 1;
-      if (child >= last) break;
-      if (child + 1 < last && heap[child + 1] < heap[child]) child += 1;
-      if (heap[child] >= at) break;
-      heap[hole] = heap[child];
+    let child = 1;
+    while (child < last) {
+      child += Number(heap[child + 1] < heap[child]);
+      const earlier = heap[child];
+      if (earlier >= at) break;
+      heap[hole] = earlier;
       hole = child;
+      child = 2 * hole + 1;
     }
     heap[hole] = at;
   }
@@ -35,8 +40,8 @@ export function makeBedHeap(capacity: number): BedHeap {
     size: () => count,
     first: () => times[0],
     add(at) {
-      if (count === times.length) {
-        const larger = new Float64Array(2 * count);
+      if (2 * count + 2 > times.length) {
+        const larger = new Float64Array(4 * count + 4).fill(Infinity);
         larger.set(times);
         times = larger;
       }
@@ -53,10 +58,13 @@ export function makeBedHeap(capacity: number): BedHeap {
     removeFirst() {
       if (count === 0) return;
       count -= 1;
-      if (count > 0) sink(times[count]);
+      const last = times[count];
+      times[count] = Infinity;
+      if (count > 0) sink(last);
     },
     replaceFirst: sink,
     clear() {
+      times.fill(Infinity, 0, count);
       count = 0;
     },
   };

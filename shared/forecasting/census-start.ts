@@ -17,8 +17,6 @@ export interface ExpectedPresent {
   means: number[];
   /** Null: exponential, which has no memory. */
   remaining: (StayShape | null)[];
-  /** Mean of the admitted who are not yet decided, where the law of decisions is known; `means` holds all of them. */
-  undecidedAdmitted?: number;
 }
 
 /**
@@ -93,16 +91,15 @@ function remainingShape(survivors: (extra: number) => number, mean: number, tail
 
 /**
  * Chances of each of an area's streams for a patient who is present and not boarding: the model's expected present by
- * stream; of the admitted only the share before the decision, where decision times tell it.
+ * stream; of the admitted those before the decision: where it is no stage of its own, the share that decision times tell.
  */
 export function sharesNotBoarding(
-  stay: StayModel,
+  stay: StayModel & { staged?: readonly boolean[] },
   area: number,
   means: readonly number[],
-  undecidedAdmitted?: number,
 ): number[] {
   const weights = means.slice(0, boardingStream);
-  weights[admittedStream] = undecidedAdmitted ?? weights[admittedStream] * (stay.shareBeforeDecision[area] ?? 1);
+  if (stay.staged?.[area] !== true) weights[admittedStream] *= stay.shareBeforeDecision[area] ?? 1;
   let total = weights.reduce((sum, value) => sum + value, 0);
   if (!(total > 0)) {
     const { alpha } = stay.shares[area];

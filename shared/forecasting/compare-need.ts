@@ -42,6 +42,8 @@ export interface ComparedPart {
   /** Replications with need above staffed beds at each full hour, [area · hours + hour]. */
   hourAsIs: Int32Array;
   hourChanged: Int32Array;
+  /** Patients who wait longer than the site's limit, [row · shifts + shift of arrival]; null where it has stated none. */
+  waits: PairedSums | null;
 }
 
 function pairedSums(
@@ -114,6 +116,7 @@ export function comparePart(
     bedHoursShort: pairedSums(rows, count, asIs.bedHoursShort, changed.bedHoursShort, binSeconds / 3600),
     hourAsIs: hoursAbove(asIs, beds.asIs),
     hourChanged: hoursAbove(changed, beds.changed),
+    waits: null,
   };
 }
 
@@ -140,6 +143,7 @@ export function mergeCompared(parts: readonly ComparedPart[]): ComparedPart {
     bedHoursShort: copy(first.bedHoursShort),
     hourAsIs: first.hourAsIs.slice(),
     hourChanged: first.hourChanged.slice(),
+    waits: first.waits && copy(first.waits),
   };
   for (const part of sorted.slice(1)) {
     if (part.fromReplication !== merged.toReplication) {
@@ -148,6 +152,7 @@ export function mergeCompared(parts: readonly ComparedPart[]): ComparedPart {
     merged.toReplication = part.toReplication;
     addUp(merged.shiftShort, part.shiftShort);
     addUp(merged.bedHoursShort, part.bedHoursShort);
+    if (merged.waits && part.waits) addUp(merged.waits, part.waits);
     for (let i = 0; i < merged.hourAsIs.length; i += 1) {
       merged.hourAsIs[i] += part.hourAsIs[i];
       merged.hourChanged[i] += part.hourChanged[i];

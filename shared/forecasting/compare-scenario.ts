@@ -1,7 +1,9 @@
+import { withOwnEnds } from '../domain/in-charge-spans.ts';
 import type { PlanChange } from '../domain/plan-change.ts';
 import { comparePart, mergeCompared, pairedDifference } from './compare-need.ts';
 import type { ComparedPart, PairedSums } from './compare-need.ts';
 import { engineVersion } from './engine-version.ts';
+import { compareWaitsPart, prepareWaits, type PreparedWaits } from './compare-waits.ts';
 import type { NeedChange, NeedPlan } from './need-plan.ts';
 import type { OutlookInput, OutlookResult } from './outlook-types.ts';
 import { prepareNeed } from './prepare-need.ts';
@@ -26,6 +28,8 @@ export interface ComparedRow {
   shifts: ComparedFigure[];
   /** Bed-hours short until the last hour, on average. */
   bedHoursShort: ComparedFigure;
+  /** Patients of each shift who wait longer than the site's limit, on average; null where no bed-space times are loaded or no limit is stated, absent before it was told. */
+  waits?: ComparedFigure[] | null;
   /** Chance of shortfall at each full hour; empty for the department. */
   hours: { asIs: number[]; plan: number[] };
 }
@@ -38,6 +42,8 @@ export interface ScenarioResult {
   lengthOfStay: OutlookResult['lengthOfStay'];
   hours: number[];
   shifts: { name: string; from: number; to: number }[];
+  /** The site's limit for a wait; null where it has stated none. */
+  waitLimitMinutes?: number | null;
   rows: ComparedRow[];
 }
 
@@ -46,6 +52,7 @@ export interface PreparedScenario {
   input: OutlookInput;
   plan: NeedPlan;
   change: NeedChange;
+  waits: PreparedWaits | null;
   lengthOfStay: OutlookResult['lengthOfStay'];
 }
 
@@ -55,22 +62,35 @@ export function prepareScenario(
   input: OutlookInput,
   changes: readonly PlanChange[],
 ): PreparedScenario {
-  const { plan, lengthOfStay } = prepareNeed(model, input);
-  return { input, plan, lengthOfStay, change: needChangeOf(changes, { ...plan, areas: input.areas }) };
+  // A shift's chance is that of its own half hours, as on Week ahead.
+  const own = { ...input, shifts: withOwnEnds(input.shifts, input.issuedAt) };
+  const { plan, lengthOfStay } = prepareNeed(model, own);
+  return {
+    input,
+    plan,
+    lengthOfStay,
+    change: needChangeOf(changes, { ...plan, areas: input.areas }),
+    waits: prepareWaits(model, input, changes),
+  };
 }
+
+/** Waits are compared in the first replications alone: a mean of patients needs fewer than a small chance does. */
+const mostWaits = 2000;
 
 /** One thread's share: replications [from, to), each with and without the plan. */
 export function compareScenarioPart(prepared: PreparedScenario, from: number, to: number): ComparedPart {
-  const { plan, change } = prepared;
+  const { plan, change, waits } = prepared;
   const bedsAtHours = (changed: NeedChange | null) =>
     plan.areas.map((area, a) => {
       const beds = changed?.beds?.[a] ?? area.beds;
       return Array.from(plan.hourTo, (bin) => beds[bin - 1]);
     });
-  return comparePart(simulateNeedPart(plan, from, to), simulateNeedPart(plan, from, to, change), {
+  const part = comparePart(simulateNeedPart(plan, from, to), simulateNeedPart(plan, from, to, change), {
     asIs: bedsAtHours(null),
     changed: bedsAtHours(change),
   });
+  const until = Math.min(to, mostWaits);
+  return waits === null || from >= until ? part : { ...part, waits: compareWaitsPart(waits, from, until) };
 }
 
 const normal95 = 1.959964;
@@ -97,7 +117,7 @@ function figure(sums: PairedSums, cell: number, count: number, isChance: boolean
  */
 export function scenarioFromParts(
   input: OutlookInput,
-  lengthOfStay: OutlookResult['lengthOfStay'],
+  { lengthOfStay, waits }: Pick<PreparedScenario, 'lengthOfStay' | 'waits'>,
   parts: readonly ComparedPart[],
 ): ScenarioResult {
   const part = mergeCompared(parts);
@@ -105,6 +125,15 @@ export function scenarioFromParts(
   if (part.fromReplication !== 0 || part.toReplication !== count) {
     throw new RangeError(`parts hold replications ${part.fromReplication}..${part.toReplication}`);
   }
+  // The areas' sum is told only where every area's waits are known.
+  const known = (row: number): boolean =>
+    waits !== null && (row < part.areas ? waits.pairs[row] !== null : waits.pairs.every((pair) => pair !== null));
+  const waitsOf = (row: number): ComparedFigure[] | null => {
+    const sums = part.waits;
+    if (sums === null || !known(row)) return null;
+    const pairs = Math.min(count, mostWaits);
+    return input.shifts.map((_, s) => figure(sums, row * part.shifts + s, pairs, false));
+  };
   const hoursOf = (above: Int32Array, a: number): number[] =>
     Array.from({ length: part.hours }, (_, h) => above[a * part.hours + h] / count);
   return {
@@ -114,12 +143,14 @@ export function scenarioFromParts(
     lengthOfStay,
     hours: [...input.hours],
     shifts: input.shifts.map(({ name, from, to }) => ({ name, from, to })),
+    waitLimitMinutes: input.waitLimitMinutes ?? null,
     rows: Array.from({ length: part.areas + 1 }, (_, row): ComparedRow => {
       const isArea = row < part.areas;
       return {
         areaId: isArea ? input.areas[row].areaId : null,
         shifts: input.shifts.map((_, s) => figure(part.shiftShort, row * part.shifts + s, count, true)),
         bedHoursShort: figure(part.bedHoursShort, row, count, false),
+        waits: waitsOf(row),
         hours: isArea
           ? { asIs: hoursOf(part.hourAsIs, row), plan: hoursOf(part.hourChanged, row) }
           : { asIs: [], plan: [] },

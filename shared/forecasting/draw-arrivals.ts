@@ -1,8 +1,16 @@
 import { drawPoisson } from '../stochastic/poisson.ts';
 import { purposes } from './need-plan.ts';
 import type { NeedChange } from './need-plan.ts';
-import { cumulateRates, drawBatch, endStays, patientsAtOnce, postComing, postLeaving } from './patient-loops.ts';
-import { binsPerHour, departureOf, enterArea, leaveArea, stayOf } from './replication-state.ts';
+import {
+  cumulateRates,
+  drawBatch,
+  endStays,
+  passIntoBoarding,
+  patientsAtOnce,
+  postComing,
+  postLeaving,
+} from './patient-loops.ts';
+import { binsPerHour, enterArea, lastDeparture, leaveArea } from './replication-state.ts';
 import type { ReplicationState } from './replication-state.ts';
 import { streamsPerArea } from './stay-model.ts';
 
@@ -57,10 +65,13 @@ function arrive(state: ReplicationState, a: number, rate: Float64Array, kept: Ke
   const patients = drawPoisson(stream, total / binsPerHour);
   for (let drawn = 0; drawn < patients; drawn += patientsAtOnce) {
     let count = Math.min(patientsAtOnce, patients - drawn);
-    drawBatch(stream, count, total, a * plan.shareBlocks * 3);
+    drawBatch(stream, count, total, a * plan.shareBlocks * 3, state.stages);
     if (changed) count = divert(state, a, count, kept);
     endStays(count, firstStream, firstStream, segments + 2);
     postComing(count, a, state.sizes);
+    if (plan.areas[a].staged) {
+      endStays(passIntoBoarding(count, plan.bins), firstStream, firstStream, segments + 2);
+    }
     postLeaving(count, a, state.sizes);
     state.trace.patients += count;
   }
@@ -70,7 +81,7 @@ function arrive(state: ReplicationState, a: number, rate: Float64Array, kept: Ke
 function divert(state: ReplicationState, a: number, count: number, { fromHours, toHours, keep }: Kept): number {
   const { batch, thinning, trace } = state;
   const { segmentAt } = state.plan;
-  const { segment, share, inArea, stay } = batch;
+  const { segment, share, inArea, stay, boardingStay } = batch;
   let kept = 0;
   for (let i = 0; i < count; i += 1) {
     const k = segment[i];
@@ -84,14 +95,13 @@ function divert(state: ReplicationState, a: number, count: number, { fromHours, 
       share[kept] = share[i];
       inArea[kept] = inArea[i];
       stay[kept] = stay[i];
+      boardingStay[kept] = boardingStay[i];
       kept += 1;
       continue;
     }
-    // Same disposition and draw, the other area's stays.
-    const s = to * streamsPerArea + inArea[i];
-    const x = stayOf(state.laws, s, stay[i]) * (state.change.stay?.[s] ?? 1);
+    // Same disposition and draws, the other area's stays.
     enterArea(state, to, inArea[i], Math.floor(t * binsPerHour));
-    leaveArea(state, to, inArea[i], departureOf(state, s, k, share[i], x));
+    leaveArea(state, to, inArea[i], lastDeparture(state, to, inArea[i], k, share[i], stay[i], boardingStay[i]));
     trace.patients += 1;
   }
   return kept;

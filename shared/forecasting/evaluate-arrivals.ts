@@ -137,8 +137,8 @@ export function evaluateArrivals(
   };
 }
 
-/** Forecasts of the site's sums at every level, all from the same joint draws of rates. */
-function forecastSums(
+/** Forecasts of the site's sums at every level, all from the same joint draws of rates. `origin` and `hours` are places in the counts. */
+export function forecastSums(
   model: ArrivalModel,
   counts: HourlyCounts,
   origin: number,

@@ -14,7 +14,7 @@ import { brierScore, reliability, type ReliabilityBin } from './scoring.ts';
 import { scoreCount, summariseScores, type ScoredCount, type ScoreSummary } from './score-summary.ts';
 import { simulateNeedPart } from './simulate-need.ts';
 import type { StayModel } from './stay-model.ts';
-import type { CalendarDay, ExtractFacts, VisitTable } from './visit-table.ts';
+import type { CalendarDay, ExposureGap, ExtractFacts, VisitTable } from './visit-table.ts';
 
 export const needLeads = [1, 4, 8, 12, 24, 72] as const;
 export type NeedLead = `${(typeof needLeads)[number]}h`;
@@ -27,6 +27,14 @@ export interface NeedEvaluation {
   /** Chance that an area's need exceeds the 90 % point of its past need, at every lead. */
   shortfall: { brier: number | null; reliability: ReliabilityBin[] };
   outlooks: number;
+  /** What the summaries of the department's need are made of, by lead. */
+  scores: Record<NeedLead, ScoredCount[]>;
+}
+
+/** What is known of arrivals and stays at an origin. */
+export interface KnownModels {
+  arrival: ArrivalModel;
+  stay: StayModel;
 }
 
 const daysPerWeek = 7;
@@ -52,11 +60,17 @@ export function evaluateNeed(input: {
   replications?: number;
   seed?: number;
   capHours?: number;
+  /** Time taken out of the exposure. */
+  gaps?: readonly ExposureGap[];
+  /** Whether the log tells who was there at an instant; it does if left out. */
+  tells?: (at: number) => boolean;
+  /** Models known at the start of a week (`origin` counts hours into the counts); fitted as told above if left out. */
+  modelsAt?: (origin: number, week: number) => KnownModels;
   onProgress?: (share: number) => void;
 }): NeedEvaluation {
-  const { visits, areas, zone, fromUtc, toUtc, facts, calendar, weeks, onProgress } = input;
-  const { replications = 500, seed = 1, capHours = 72 } = input;
-  const counts = countHourly(visits, areas, zone, fromUtc, toUtc);
+  const { visits, areas, zone, fromUtc, toUtc, facts, calendar, weeks, modelsAt, onProgress } = input;
+  const { replications = 500, seed = 1, capHours = 72, gaps = [], tells = () => true } = input;
+  const counts = countHourly(visits, areas, zone, fromUtc, toUtc, gaps);
   const length = Math.floor(counts.exposureHours.length / 24) * 24;
   const firstOrigin = length - weeks * 168;
   if (firstOrigin < 8 * 168) throw new RangeError(`${weeks} weeks of evaluation need 8 weeks before them`);
@@ -73,18 +87,20 @@ export function evaluateNeed(input: {
   for (let week = 0; week < weeks; week += 1) {
     const origin = firstOrigin + week * 168;
     const originUtc = utcOf(zone, counts, origin);
-    if (week % weeksPerChoice === 0) arrival = fitArrivals({ counts: firstHours(counts, origin), calendar });
+    if (modelsAt) ({ arrival, stay } = modelsAt(origin, week));
+    else if (week % weeksPerChoice === 0) arrival = fitArrivals({ counts: firstHours(counts, origin), calendar });
     if (week % weeksPerStayFit === 0) {
-      const known = knownAt(visits, originUtc);
-      stay = fitStays({
-        visits: known,
-        areas,
-        zone,
-        window: { from: fromUtc, to: originUtc },
-        facts: { ...facts, takenAt: originUtc, missingDeparture: 'still present' },
-        capHours,
-        calendar,
-      });
+      if (!modelsAt) {
+        stay = fitStays({
+          visits: knownAt(visits, originUtc),
+          areas,
+          zone,
+          window: { from: fromUtc, to: originUtc },
+          facts: { ...facts, takenAt: originUtc, missingDeparture: 'still present' },
+          capHours,
+          calendar,
+        });
+      }
       beds = highPointOfNeed((at) => present.presentAt(at), fromUtc + capHours * 3600, originUtc, areas);
     }
     for (let day = 0; day < daysPerWeek; day += 1) {
@@ -92,7 +108,7 @@ export function evaluateNeed(input: {
       const midnightUtc = utcOf(zone, counts, midnight);
       // A step of seven hours from day to day visits every part of the day.
       const issuedAt = midnightUtc + ((7 * (day + week)) % 24) * 3600;
-      if (issuedAt + 73 * 3600 > toUtc || !arrival || !stay) continue;
+      if (issuedAt + 73 * 3600 > toUtc || !arrival || !stay || !tells(issuedAt)) continue;
       const model = { arrival: refreshLevel(arrival, firstHours(counts, midnight)), stay, calendar };
       const outlook = outlookInput(
         issuedAt,
@@ -107,6 +123,7 @@ export function evaluateNeed(input: {
       const part = simulateNeedPart(prepareNeed(model, outlook).plan, 0, replications);
       outlooks += 1;
       needLeads.forEach((lead, l) => {
+        if (!tells(issuedAt + lead * 3600)) return;
         const truth = present.presentAt(issuedAt + lead * 3600);
         const before = present.presentAt(issuedAt + lead * 3600 - 168 * 3600);
         const pooled = part.pooledNeed.subarray(l * part.pooledSize, (l + 1) * part.pooledSize);
@@ -135,7 +152,9 @@ export function evaluateNeed(input: {
       NeedLead,
       ScoreSummary
     >;
+  const byLead = needLeads.map((lead, l) => [`${lead}h`, scores[l]] as const);
   return {
+    scores: Object.fromEntries(byLead) as Record<NeedLead, ScoredCount[]>,
     need: summarise(scores),
     needByArea: summarise(areaScores),
     shortfall: { brier: brierScore(chances, outcomes), reliability: reliability(chances, outcomes) },

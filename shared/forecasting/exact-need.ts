@@ -16,6 +16,8 @@ import type { FactorNode } from './factor-nodes.ts';
 export interface NeedStream {
   ratePerHour: ArrayLike<number>;
   hazardPerHour: ArrayLike<number>;
+  /** Where a stay has a second stage: the hazard of leaving from it, when `hazardPerHour` is that of passing into it. */
+  thenHazardPerHour?: ArrayLike<number>;
 }
 
 /** Patients counted at the start, each of them in stream s with chance `shares[s]`, on their own; what is missing to 1 is elsewhere. */
@@ -68,7 +70,7 @@ function check(input: ExactNeedInput): void {
 
 /**
  * The exact distribution of need at the end of every segment: M_t/M_t/∞ with several streams (Eick, Massey & Whitt
- * 1993). Those present survive as Binomial(n, Σ shares · e^{−∫μ}); newcomers are Poisson with mean m, m′ = λ − μ·m,
+ * 1993). Those present survive as Binomial(n, Σ shares · e^{−∫μ}), through a second stage where a stream has one; newcomers are Poisson with mean m, m′ = λ − μ·m,
  * in closed form within a segment, gamma–Poisson with a gamma arrival factor; the outflow factor is integrated out by
  * quadrature over the nodes given.
  * @returns one distribution a segment, at its end. @throws RangeError naming a bad rate, hazard, count or share.
@@ -87,14 +89,27 @@ export function exactNeed(input: ExactNeedInput): Pmf[] {
     streams.forEach((stream, s) => {
       let mean = startMeans?.[s] ?? 0;
       let alive = 1;
+      const then = stream.thenHazardPerHour;
+      let meanThen = 0;
+      let aliveThen = 0;
       for (let k = 0; k < count; k += 1) {
         const hazard = stream.hazardPerHour[k] * node.value;
         const stay = Math.exp(-hazard * hours[k]);
         const filled = hazard > 1e-9 ? -Math.expm1(-hazard * hours[k]) / hazard : hours[k];
+        if (then !== undefined) {
+          const leave = then[k] * node.value;
+          const stayThen = Math.exp(-leave * hours[k]);
+          // Second stage after a unit in the first at the segment's start, and after a unit an hour of arrivals.
+          const passed = passedOn(hazard, leave, hours[k]);
+          const filledThen = leave > 1e-9 ? -Math.expm1(-leave * hours[k]) / leave : hours[k];
+          const arrived = hazard > 1e-9 ? filledThen - passed / hazard : 0;
+          meanThen = meanThen * stayThen + mean * passed + stream.ratePerHour[k] * arrived;
+          aliveThen = aliveThen * stayThen + alive * passed;
+        }
         mean = stream.ratePerHour[k] * filled + mean * stay;
         alive *= stay;
-        means[o][k] += mean;
-        for (let g = 0; g < present.length; g += 1) survivals[o][g][k] += present[g].shares[s] * alive;
+        means[o][k] += mean + meanThen;
+        for (let g = 0; g < present.length; g += 1) survivals[o][g][k] += present[g].shares[s] * (alive + aliveThen);
       }
     });
   });
@@ -115,6 +130,13 @@ export function exactNeed(input: ExactNeedInput): Pmf[] {
     });
     return chances;
   });
+}
+
+/** Chance to be in the second stage after a time, from the first: a·(e^{−at} − e^{−bt}) / (b − a). @param a, b hazards of passing on and of leaving */
+function passedOn(a: number, b: number, t: number): number {
+  const difference = (b - a) * t;
+  const ratio = Math.abs(difference) > 1e-9 ? -Math.expm1(-difference) / difference : 1;
+  return a * t * Math.exp(-a * t) * ratio;
 }
 
 function lawRooms(count: number): LawRoom[] {

@@ -28,6 +28,7 @@ export interface ExactWireArea {
   startMeans: number[] | null;
   boarders: number;
   boarderStream: number;
+  staged: boolean;
   arrivalVariance: number;
   outflowNodes: FactorNode[];
   staffedBeds: BedStep[];
@@ -56,6 +57,7 @@ export function makeExactWire(model: OutlookModel, input: OutlookInput): ExactWi
       startMeans: area.startMeans,
       boarders: area.boarders,
       boarderStream: area.boarderStream,
+      staged: area.staged,
       arrivalVariance: area.arrivalVariance,
       outflowNodes: area.outflowNodes,
       staffedBeds: [...input.areas[a].staffedBeds],

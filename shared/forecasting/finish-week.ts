@@ -197,7 +197,7 @@ function department(prepared: PreparedWeek, part: WeekPart, areas: readonly Week
 export function finishWeek(
   prepared: PreparedWeek,
   part: WeekPart,
-): Omit<WeekOutlookResult, 'arrivals' | 'calendar' | 'ordinaryWeek'> {
+): Omit<WeekOutlookResult, 'arrivals' | 'calendar' | 'ordinaryWeek' | 'waits'> {
   const { input } = prepared;
   if (part.fromReplication !== 0 || part.toReplication !== input.replications) {
     throw new RangeError(`parts hold replications ${part.fromReplication}..${part.toReplication}`);

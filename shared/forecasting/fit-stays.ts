@@ -1,13 +1,13 @@
 import type { Zone } from '../domain/zoned-time.ts';
 import { collectStays, tallyStays } from './collect-stays.ts';
 import type { CollectedStays, StayTallies } from './collect-stays.ts';
-import { fitDecisionLaws } from './decision-law.ts';
 import { fitBedSpace } from './fit-bed-space.ts';
+import { fitDecisionStage, stagedAreas } from './fit-decision-stage.ts';
 import { reportHeaping } from './heaping.ts';
 import { fitStreams } from './fit-streams.ts';
 import { fitOutflowByDay } from './outflow-by-day.ts';
 import { cutBlocks, holidayNumbers } from './stay-clock.ts';
-import { boardingStream, streamsPerArea } from './stay-model.ts';
+import { admittedStream, boardingStream, streamsPerArea } from './stay-model.ts';
 import type { StayModel } from './stay-model.ts';
 import { compensateStays, operationalClock } from './stay-compensator.ts';
 import { fitStayShapes } from './stay-shape.ts';
@@ -74,9 +74,11 @@ export function fitStays(request: StayFitRequest): StayModel {
   spreadUnknown(stays, tallies, areas, capHours);
   onProgress?.(0.6);
   // Days with steady state only: the first cap fills up and the last one runs empty.
+  const staged = stagedAreas(stays, areas);
   const outflow = fitOutflowByDay(
     cells,
     { from: window.from, to },
+    staged,
     (factor) => fitStreams(tallies, factor, cells.block, blockHours),
     rounds,
     tallies,
@@ -110,7 +112,10 @@ export function fitStays(request: StayFitRequest): StayModel {
     shareBeforeDecision: Array.from(stays.decision.whole, (whole, area) =>
       whole > 0 ? stays.decision.before[area] / whole : null,
     ),
-    decisions: fitDecisionLaws(stays, areas, cells, blockHours, clock),
+    ...fitDecisionStage(stays, staged, cells, blockHours, {
+      others: factorByCell(0),
+      admitted: factorByCell(admittedStream),
+    }),
     shares: stays.arrivalsByBlock.map((counts, area) => ({ area, alpha: shrinkShares(counts, prior) })),
     outflow: { others: outflow.others, admitted: outflow.admitted },
     bedSpace: fitBedSpace(visits, areas, capHours, used),

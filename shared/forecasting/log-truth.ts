@@ -24,6 +24,8 @@ export interface LogTruth {
   atLocalHour(localHour: number): number[] | null;
   /** Arrivals by area on a local day (days since 1970-01-01); null where the log does not tell of all of it. */
   onLocalDay(localDay: number): number[] | null;
+  /** Arrivals by area in [from, to); null where the log does not tell of all of it. */
+  arrivalsIn(from: number, to: number): number[] | null;
   firstLocalHour: number;
   lastLocalHour: number;
 }
@@ -63,6 +65,7 @@ export function makeLogTruth(input: {
   const lastAt = known.at(-1)?.to ?? 0;
   const hours = new Map<number, number[] | null>();
   const days = countDays(visits, areas, zone);
+  let arrivals: Float64Array[] | undefined;
   return {
     tells,
     unrecorded: (from, to) => covered(from, to) && inGap(from, to, outageShadow),
@@ -102,6 +105,11 @@ export function makeLogTruth(input: {
       if (!spans.some((span) => span.from <= from && to <= span.to) || inGap(from, to - 1, 0)) return null;
       return days.get(localDay) ?? new Array<number>(areas).fill(0);
     },
+    arrivalsIn(from, to) {
+      if (!spans.some((span) => span.from <= from && to <= span.to) || inGap(from, to - 1, 0)) return null;
+      arrivals ??= sortedArrivals(visits, areas);
+      return arrivals.map((own) => firstAtOrAfter(own, to) - firstAtOrAfter(own, from));
+    },
     firstLocalHour: Math.ceil(zone.toLocal(firstAt) / 3600),
     lastLocalHour: Math.floor(zone.toLocal(lastAt) / 3600),
   };
@@ -116,4 +124,22 @@ function countDays(visits: VisitTable, areas: number, zone: Zone): Map<number, n
     days.set(day, counts);
   }
   return days;
+}
+
+/** Arrival times of each area, ascending. */
+function sortedArrivals(visits: VisitTable, areas: number): Float64Array[] {
+  const own = Array.from({ length: areas }, (): number[] => []);
+  for (let i = 0; i < visits.length; i += 1) own[visits.area[i]].push(visits.arrivalAt[i]);
+  return own.map((times) => Float64Array.from(times).sort());
+}
+
+function firstAtOrAfter(times: Float64Array, at: number): number {
+  let low = 0;
+  let high = times.length;
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if (times[middle] < at) low = middle + 1;
+    else high = middle;
+  }
+  return low;
 }

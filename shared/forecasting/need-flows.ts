@@ -1,4 +1,6 @@
 import type { ModelledPast } from './census-start.ts';
+import { withDecisions } from './decision-stage.ts';
+import type { StagedStays } from './decision-stage.ts';
 import type { StayDraw, StaySegments } from './stay-draw.ts';
 import { boardingStream, streamsPerArea } from './stay-model.ts';
 import type { StayModel } from './stay-model.ts';
@@ -43,7 +45,7 @@ function byStream(stay: StayModel, area: number, span: FlowSpan): ModelledPast {
 
 /** Splits an area's rates over its streams, and joins what lies between the plan's start and the area's own to its past. */
 export function areaFlows(
-  stay: StayModel,
+  stay: StagedStays,
   area: number,
   past: FlowSpan,
   ahead: FlowSpan,
@@ -63,7 +65,8 @@ export function areaFlows(
   let peakNewcomers = 0;
   let arrivals = 0;
   const total = new Float64Array(after.hours.length);
-  after.ratePerHour.forEach((rate, s) => {
+  const inside = stay.staged[area] ? withDecisions(after, null) : after;
+  inside.ratePerHour.forEach((rate, s) => {
     let mean = 0;
     for (let k = 0; k < rate.length; k += 1) {
       const hazard = after.hazardPerHour[s][k];
@@ -71,7 +74,7 @@ export function areaFlows(
       // m′ = λ − μ·m within a segment.
       mean = mean * Math.exp(-spent) + rate[k] * (hazard > 1e-9 ? -Math.expm1(-spent) / hazard : after.hours[k]);
       total[k] += mean;
-      arrivals += rate[k] * after.hours[k];
+      if (s !== boardingStream) arrivals += rate[k] * after.hours[k];
     }
   });
   for (const mean of total) peakNewcomers = Math.max(peakNewcomers, mean);

@@ -36,6 +36,10 @@ export interface AreaPlan {
   /** Patients up to whom a histogram can tell; more count as this many. */
   highest: number;
   boarders: number;
+  /** True where the admitted stream ends with the decision and goes on into the boarding stream. */
+  staged: boolean;
+  /** By stream which outflow factor moves it: 0 the others', 1 the admitted patients'. */
+  outflowPlaces: readonly (0 | 1)[];
   /** True where the chance of any shortfall within the hour is what is printed: remedies must end that. */
   wholeHour: boolean;
 }

@@ -15,21 +15,21 @@ import type { CalendarDay } from './visit-table.ts';
 import { withCalendar } from './with-calendar.ts';
 
 /** Leads at which an outlook of tonight is scored, hours. */
-export const outlookLeads = [1, 4, 12, 24] as const;
+export const outlookLeads = [1, 4, 8, 12, 24] as const;
 
 /** A distribution as it is kept: replications by count from `first` on, or the means of an equal mixture of Poisson counts. */
 export type KeptLaw = { first: number; counts: number[] } | { means: number[] };
 
 /**
  * One thing that an outlook said and that can be scored once it is known: need at a lead, the highest need of a shift, the
- * arrivals of a day. `areaId` null is the whole department.
+ * arrivals of a day or a shift. `areaId` null is the whole department.
  */
 export interface IssuedLaw {
-  measure: 'need' | 'peak' | 'arrivals';
+  measure: 'need' | 'peak' | 'arrivals' | 'shift arrivals';
   areaId: string | null;
-  /** Hours ahead for need, 0 for the others. */
+  /** Hours ahead for need, else 0; of a week outlook the group that it falls in, see record-lead. */
   leadHours: number;
-  /** The shift's name for a peak, else null. */
+  /** The shift's name for a shift's figure, else null. */
   shift: string | null;
   /** UTC seconds; for need both are the full hour. */
   from: number;
@@ -75,7 +75,8 @@ export function outlookLaws(
   ];
 }
 
-function keepHistogram(values: Int32Array): KeptLaw {
+/** A histogram of replications without its empty ends. */
+export function keepHistogram(values: Int32Array): KeptLaw {
   let first = 0;
   let last = values.length - 1;
   while (first < last && values[first] === 0) first += 1;
@@ -171,7 +172,7 @@ function arrivalLaws(
 }
 
 /** Equally likely groups of the sorted draws, each by its mean; to a thousandth. */
-function gather(draws: Float64Array): number[] {
+export function gather(draws: Float64Array): number[] {
   draws.sort();
   return Array.from({ length: arrivalNodes }, (_, g) => {
     const from = Math.round((g * draws.length) / arrivalNodes);

@@ -37,6 +37,8 @@ export interface OutlookInput {
   undecided: { takenAt: number; waiting: number } | null;
   /** The risk that beds are planned to, 0..1. */
   planningRisk: number;
+  /** The site's limit for a wait; null where it has stated none, absent in outlooks issued before it was read. */
+  waitLimitMinutes?: number | null;
   /** Shifts within the outlook, ascending by start; they may overlap at handover. */
   shifts: { name: string; from: number; to: number }[];
   /** Arrivals counted since `from` (live update), if known. */

@@ -21,8 +21,11 @@ const inArea = new Int32Array(most.atOnce);
 /** Layers of the ziggurat for exponentials: see `QuickStream`. */
 const layerWidth = exponentialLayers.width.slice();
 const layerInside = exponentialLayers.inside.slice();
-/** Stay as a cumulative hazard. */
+/** Stay as a cumulative hazard, and for the admitted of a plan with staged areas that of their boarding. */
 const stay = new Float64Array(most.atOnce);
+const boardingStay = new Float64Array(most.atOnce);
+/** Who of the batch is admitted. */
+const admittedAt = new Int32Array(most.atOnce);
 
 /** Ends of the stays, bins since the start; at least `bins` for one that outlasts the horizon. */
 const until = new Float64Array(most.atOnce);
@@ -103,7 +106,7 @@ export function takeLoopRoom({ areas, segments, bins, hours, shareBlocks, lawEnt
       tail: lawTail.subarray(0, 2 * all),
     },
     stayFactor: stayFactor.subarray(0, all),
-    batch: { segment, share, inArea, stay, until },
+    batch: { segment, share, inArea, stay, boardingStay, until },
   };
   room.spent.fill(0);
   return room;
@@ -178,9 +181,15 @@ function makeExponentials(stream: QuickStream, from: number, count: number): voi
 
 /**
  * Draws a batch of an area's arrivals: times by inversion of the cumulative rate, streams by the shares of the block, and
- * stays as cumulative hazards. @param total what `cumulateRates` returned.
+ * stays as cumulative hazards. @param total what `cumulateRates` returned. @param stages the admitted need a boarding stay too.
  */
-export function drawBatch(stream: QuickStream, count: number, total: number, firstShare: number): void {
+export function drawBatch(
+  stream: QuickStream,
+  count: number,
+  total: number,
+  firstShare: number,
+  stages: boolean,
+): void {
   const itsWords = words;
   const itsSegment = segment;
   const itsShare = share;
@@ -204,10 +213,28 @@ export function drawBatch(stream: QuickStream, count: number, total: number, fir
     itsInArea[i] = +(u >= itsSteps[steps]) + +(u >= itsSteps[steps + 1]) + +(u >= itsSteps[steps + 2]);
   }
   makeExponentials(stream, 2 * count, count);
+  if (stages) drawBoarding(stream, count);
+}
+
+/** Draws the boarding of a batch's admitted: with the arrival, so that no change of a plan moves a later draw. */
+function drawBoarding(stream: QuickStream, count: number): void {
+  let admitted = 0;
+  for (let i = 0; i < count; i += 1) {
+    admittedAt[admitted] = i;
+    admitted += +(inArea[i] === admittedStream);
+  }
+  makeWords(stream, admitted);
+  for (let n = 0; n < admitted; n += 1) boardingStay[admittedAt[n]] = stream.exponentialFrom(words[n]);
 }
 
 /** Draws a batch of those present in an area at its start: streams by their cumulative chances, what remains as cumulative hazards. */
-export function drawPresent(stream: QuickStream, count: number, steps: ArrayLike<number>, startSegment: number): void {
+export function drawPresent(
+  stream: QuickStream,
+  count: number,
+  steps: ArrayLike<number>,
+  startSegment: number,
+  stages: boolean,
+): void {
   const itsWords = words;
   const itsSegment = segment;
   const itsShare = share;
@@ -224,6 +251,7 @@ export function drawPresent(stream: QuickStream, count: number, steps: ArrayLike
     itsInArea[i] = +(u >= one) + +(u >= two) + +(u >= three) + +(u >= four);
   }
   makeExponentials(stream, count, count);
+  if (stages) drawBoarding(stream, count);
 }
 
 /**
@@ -271,6 +299,30 @@ export function endStays(count: number, firstStream: number, firstLaw: number, r
     const left = at - base;
     itsUntil[i] = itsBin[left] + ((target - before) / (itsSpent[at + 1] - before)) * itsBins[left];
   }
+}
+
+/**
+ * Lets those of the batch who are decided before the horizon ends go on into boarding. They are put first, as patients of
+ * the boarding stream whose stay begins at the decision: `endStays` for that many then finds when they leave. The order
+ * within a batch means nothing. @returns how many they are.
+ */
+export function passIntoBoarding(count: number, bins: number): number {
+  let passed = 0;
+  for (let i = 0; i < count; i += 1) {
+    const at = until[i];
+    if (inArea[i] !== admittedStream || at >= bins) continue;
+    let k = segment[i];
+    while (segmentBin[k + 1] <= at) k += 1;
+    const boards = boardingStay[i];
+    inArea[i] = inArea[passed];
+    until[i] = until[passed];
+    inArea[passed] = boardingStream;
+    segment[passed] = k;
+    share[passed] = (at - segmentBin[k]) / segmentBins[k];
+    stay[passed] = boards;
+    passed += 1;
+  }
+  return passed;
 }
 
 interface PostSizes {

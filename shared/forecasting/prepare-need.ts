@@ -2,8 +2,9 @@ import { makeZone } from '../domain/zoned-time.ts';
 import type { Zone } from '../domain/zoned-time.ts';
 import type { ArrivalModel, LiveArrivals, RateGrid } from './arrival-model.ts';
 import { expectedPresent } from './census-start.ts';
-import type { ExpectedPresent } from './census-start.ts';
-import { presentByDecision } from './decision-law.ts';
+import type { ExpectedPresent, ModelledPast } from './census-start.ts';
+import { outflowPlace, presentByStage, stagedStays, withDecisions } from './decision-stage.ts';
+import type { StagedStays } from './decision-stage.ts';
 import { checkOutlookInput } from './check-outlook-input.ts';
 import { binSeconds } from './need-plan.ts';
 import type { AreaPlan, NeedPlan } from './need-plan.ts';
@@ -37,13 +38,14 @@ export interface PreparedNeed {
   live: LiveArrivals | null;
   /** Expected flows and patients present, exponential stays: what the exact method starts from. */
   flows: AreaFlows[];
+  stay: StagedStays;
   expected: ExpectedPresent[];
 }
 
 const pastHours = 96;
 
 /** Cuts a grid at further instants; an instant within a stretch makes two stretches of one label. */
-function cutGrid(grid: RateGrid, instants: readonly number[]): RateGrid {
+export function cutGrid(grid: RateGrid, instants: readonly number[]): RateGrid {
   const localHour: number[] = [];
   const startAt: number[] = [];
   const hours: number[] = [];
@@ -88,7 +90,8 @@ function liveOf(input: OutlookInput, zone: Zone, startAt: number): LiveArrivals 
  * @throws RangeError naming a bad input. Cost: a few ms.
  */
 export function prepareNeed(model: OutlookModel, input: OutlookInput): PreparedNeed {
-  const { arrival, stay, calendar } = withCalendar(model, input);
+  const { arrival, stay: fitted, calendar } = withCalendar(model, input);
+  const stay = stagedStays(fitted);
   checkOutlookInput(input, stay.areas);
   if (arrival.areas.length !== stay.areas) {
     throw new RangeError(`arrival model has ${arrival.areas.length} areas, stay model ${stay.areas}`);
@@ -135,21 +138,15 @@ export function prepareNeed(model: OutlookModel, input: OutlookInput): PreparedN
   });
   const shapesOf = (a: number): (StayShape | null)[] =>
     stay.streams.slice(a * streamsPerArea, (a + 1) * streamsPerArea).map((stream) => stream.shape);
-  const plain = flows.map((flow) =>
-    expectedPresent(
-      flow.past,
-      flow.past.ratePerHour.map(() => null),
-    ),
-  );
-  const shaped = flows.map((flow, a) => {
-    const law = input.areas[a].census === null ? null : stay.decisions[a];
-    return law === null ? expectedPresent(flow.past, shapesOf(a)) : presentByDecision(flow.past, shapesOf(a), law);
-  });
+  const presentBy = (a: number, shapes: (StayShape | null)[]): ExpectedPresent =>
+    (stay.staged[a] ? presentByStage : expectedPresent)(flows[a].past, shapes);
+  const plain = flows.map((_, a) => presentBy(a, new Array<null>(streamsPerArea).fill(null)));
+  const shaped = flows.map((_, a) => presentBy(a, shapesOf(a)));
   const night = Math.min(endAt, endOfTonight(input.shifts, issuedAt, zone));
   const lengthOfStay = chooseStayLaw(stay, input, flows, plain, shaped, shapesOf, (night - startAt) / 3600);
   const empirical = lengthOfStay === 'empirical';
-  const lawOf = (a: number): StayShape | null =>
-    empirical ? (stay.decisions[a]?.before ?? shapesOf(a)[admittedStream]) : null;
+  const lawOf = (a: number): StayShape | null => (empirical ? shapesOf(a)[admittedStream] : null);
+  const pastOf = (a: number): ModelledPast => (stay.staged[a] ? withDecisions(flows[a].past, lawOf(a)) : flows[a].past);
 
   const areas = input.areas.map((area, a): AreaPlan => {
     const present = empirical ? shaped[a] : plain[a];
@@ -159,7 +156,7 @@ export function prepareNeed(model: OutlookModel, input: OutlookInput): PreparedN
       startHours: (starts[a] - startAt) / 3600,
       startSegment: flows[a].startSegment,
       groups,
-      startMeans: area.census === null ? meansByFactor(flows[a].past, empirical ? shapesOf(a) : null) : null,
+      startMeans: area.census === null ? meansByFactor(pastOf(a), empirical ? shapesOf(a) : null) : null,
       startFactors,
       expectedFirstRate,
       remaining: present.remaining,
@@ -167,6 +164,10 @@ export function prepareNeed(model: OutlookModel, input: OutlookInput): PreparedN
       beds: Int32Array.from({ length: bins }, (_, b) => bedsAt(area.staffedBeds, startAt + (b + 1) * binSeconds)),
       highest: highestNeed(flows[a], present, area.census?.present ?? 0, input.undecided?.waiting ?? 0),
       boarders: area.census?.boarding ?? 0,
+      staged: stay.staged[a],
+      outflowPlaces: Array.from({ length: streamsPerArea }, (_, s) =>
+        outflowPlace(stay, stay.streams[a * streamsPerArea + s].stream),
+      ),
       wholeHour: area.spaces <= smallAreaSpaces,
     };
   });
@@ -205,7 +206,7 @@ export function prepareNeed(model: OutlookModel, input: OutlookInput): PreparedN
     drawRates: makeRateDraw(arrival, grid, calendar, live ?? undefined),
     drawStays: makeSpentDraw(stay, staying, grid.hours),
   };
-  return { plan, lengthOfStay, live, flows, expected: plain };
+  return { plan, lengthOfStay, live, flows, stay, expected: plain };
 }
 
 function publicHolidays(calendar: readonly CalendarDay[]): string[] {

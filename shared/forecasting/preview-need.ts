@@ -2,7 +2,7 @@ import { exactNeed } from './exact-need.ts';
 import type { NeedStream, PresentGroup } from './exact-need.ts';
 import type { FactorNode } from './factor-nodes.ts';
 import type { NeedChange } from './need-plan.ts';
-import { streamsPerArea } from './stay-model.ts';
+import { admittedStream, boardingStream, streamsPerArea } from './stay-model.ts';
 import type { Pmf } from '../stochastic/convolve.ts';
 import { pmfExceedance, pmfMean, pmfQuantile } from '../stochastic/pmf.ts';
 
@@ -17,6 +17,8 @@ export interface ExactArea {
   startMeans: number[] | null;
   boarders: number;
   boarderStream: number;
+  /** Whether the admitted stream ends with the decision and goes on into the boarding stream. */
+  staged: boolean;
   arrivalVariance: number;
   outflowNodes: FactorNode[];
 }
@@ -91,13 +93,15 @@ export function previewNeed(exact: ExactOutlook, change: NeedChange = {}): NeedP
   });
   return areas.map((area, a) => {
     const { startSegment } = area.flows;
-    const streams = area.flows.ahead.hazardPerHour.map((hazard, s): NeedStream => {
+    const hazards = area.flows.ahead.hazardPerHour.map((hazard, s) => {
       const longer = Math.max(1e-6, change.stay?.[a * streamsPerArea + s] ?? 1);
-      return {
-        ratePerHour: rates[a][s].subarray(startSegment),
-        hazardPerHour: hazard.subarray(startSegment).map((value) => value / longer),
-      };
+      return hazard.subarray(startSegment).map((value) => value / longer);
     });
+    const streams = hazards.map((hazardPerHour, s): NeedStream => ({
+      ratePerHour: rates[a][s].subarray(startSegment),
+      hazardPerHour,
+      thenHazardPerHour: area.staged && s === admittedStream ? hazards[boardingStream] : undefined,
+    }));
     const nobody = new Float64Array(segments - startSegment);
     const present = area.present.map((group) => ({ ...group, shares: [...group.shares] }));
     let left = area.boarders;

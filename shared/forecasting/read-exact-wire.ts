@@ -27,6 +27,7 @@ export function readExactWire(wire: ExactWire): ExactOutlook {
       startMeans: area.startMeans,
       boarders: area.boarders,
       boarderStream: area.boarderStream,
+      staged: area.staged,
       arrivalVariance: area.arrivalVariance,
       outflowNodes: area.outflowNodes,
     })),

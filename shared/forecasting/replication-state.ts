@@ -4,7 +4,7 @@ import { takeLoopRoom } from './patient-loops.ts';
 import { QuickStream } from './quick-stream.ts';
 import type { ReplicationTrace } from './record-need.ts';
 import type { SpentDraw } from './stay-draw.ts';
-import { admittedStream, boardingStream } from './stay-model.ts';
+import { admittedStream, boardingStream, streamsPerArea } from './stay-model.ts';
 import type { StayShape } from './stay-model.ts';
 
 /** Bins an hour. */
@@ -35,6 +35,8 @@ export interface ReplicationState {
   segmentBin: Float64Array;
   segmentBins: Float64Array;
   trace: ReplicationTrace;
+  /** Whether any area is staged: the admitted then have a boarding stay drawn with them. */
+  stages: boolean;
   /** What the patients' loops must know of the plan. */
   sizes: { areas: number; segments: number; bins: number; hours: number };
   /** The stream of what is being drawn, and that of the uniforms for thinning. */
@@ -46,6 +48,7 @@ export interface ReplicationState {
     share: Float64Array;
     inArea: Int32Array;
     stay: Float64Array;
+    boardingStay: Float64Array;
     until: Float64Array;
   };
 }
@@ -102,6 +105,7 @@ export function makeReplicationState(plan: NeedPlan, change: NeedChange): Replic
     laws: room.laws,
     segmentBin: room.segmentBin,
     segmentBins: room.segmentBins,
+    stages: areas.some((area) => area.staged),
     sizes: { areas: areas.length, segments, bins, hours: plan.hourTo.length },
     trace: {
       patients: 0,
@@ -117,7 +121,7 @@ export function makeReplicationState(plan: NeedPlan, change: NeedChange): Replic
 }
 
 /** The stay, in means of stream s, at a cumulative hazard. */
-export function stayOf(tables: StayTables, s: number, hazard: number): number {
+function stayOf(tables: StayTables, s: number, hazard: number): number {
   const place = hazard * tables.perHazard[s];
   const last = tables.last[s];
   const from = tables.from[s];
@@ -131,7 +135,7 @@ export function stayOf(tables: StayTables, s: number, hazard: number): number {
  * When a stay of cumulative hazard x ends that begins a share of the way into segment k: bins since the start, at least
  * `bins` for one that outlasts the horizon.
  */
-export function departureOf(state: ReplicationState, s: number, k: number, share: number, x: number): number {
+function departureOf(state: ReplicationState, s: number, k: number, share: number, x: number): number {
   const { spent } = state.stays;
   const base = s * (state.plan.segments + 2);
   const before = spent[base + k];
@@ -140,6 +144,30 @@ export function departureOf(state: ReplicationState, s: number, k: number, share
   while (spent[base + at + 1] <= target) at += 1;
   const from = spent[base + at];
   return state.segmentBin[at] + ((target - from) / (spent[base + at + 1] - from)) * state.segmentBins[at];
+}
+
+/**
+ * When a patient of stream `inArea` of area a leaves who comes a share of the way into segment k: an admitted one of a
+ * staged area boards after the decision. @param stay, boarding drawn cumulative hazards.
+ */
+export function lastDeparture(
+  state: ReplicationState,
+  a: number,
+  inArea: number,
+  k: number,
+  share: number,
+  stay: number,
+  boarding: number,
+): number {
+  const first = a * streamsPerArea;
+  const stayIn = (s: number, hazard: number): number => stayOf(state.laws, s, hazard) * (state.change.stay?.[s] ?? 1);
+  const at = departureOf(state, first + inArea, k, share, stayIn(first + inArea, stay));
+  if (inArea !== admittedStream || !state.plan.areas[a].staged || at >= state.plan.bins) return at;
+  let decided = k;
+  while (state.segmentBin[decided + 1] <= at) decided += 1;
+  const gone = (at - state.segmentBin[decided]) / state.segmentBins[decided];
+  const boards = first + boardingStream;
+  return departureOf(state, boards, decided, gone, stayIn(boards, boarding));
 }
 
 /** Patients who come (or leave) in a bin, in the area's row and in the department's. */

@@ -1,9 +1,11 @@
 import { expectedPresent, sharesNotBoarding, streamOfBoarders, survivalOf } from './census-start.ts';
 import type { ExpectedPresent, ModelledPast } from './census-start.ts';
+import { outflowPlace } from './decision-stage.ts';
+import type { StagedStays } from './decision-stage.ts';
 import type { AreaFlows } from './need-flows.ts';
 import type { StartGroup } from './need-plan.ts';
 import { admittedStream, streamsPerArea } from './stay-model.ts';
-import type { StayModel, StayShape } from './stay-model.ts';
+import type { StayShape } from './stay-model.ts';
 
 /** Outflow factors at which the start of an area that nobody counted is tabulated. */
 export const startFactors = Float64Array.from([0.3, 0.5, 0.7, 0.85, 1, 1.2, 1.5, 2, 3]);
@@ -19,7 +21,7 @@ function cumulative(chances: readonly number[]): Float64Array {
  * @param past what the census came from. @param law of an admitted patient's time until the group is left, in means
  */
 export function startGroups(
-  stay: StayModel,
+  stay: StagedStays,
   area: number,
   census: { present: number; boarding: number },
   present: ExpectedPresent,
@@ -27,8 +29,11 @@ export function startGroups(
   law: StayShape | null,
 ): StartGroup[] {
   const boarder = streamOfBoarders(stay, area);
-  const usual = sharesNotBoarding(stay, area, present.means, present.undecidedAdmitted);
-  const more = admittedByFactor(past, law, stay.outflow.admitted.correlation);
+  const usual = sharesNotBoarding(stay, area, present.means);
+  const admitted = stay.streams[area * streamsPerArea + admittedStream].stream;
+  // Those being treated are as many as ever when it is only the wards that are slow.
+  const more =
+    outflowPlace(stay, admitted) === 1 ? admittedByFactor(past, law, stay.outflow.admitted.correlation) : null;
   return [
     {
       patients: census.boarding,
@@ -38,10 +43,13 @@ export function startGroups(
     {
       patients: census.present - census.boarding,
       steps: cumulative(usual),
-      stepsByFactor: Array.from(more, (ratio) => {
-        const total = 1 + usual[admittedStream] * (ratio - 1);
-        return cumulative(usual.map((share, s) => (share * (s === admittedStream ? ratio : 1)) / total));
-      }),
+      stepsByFactor:
+        more === null
+          ? undefined
+          : Array.from(more, (ratio) => {
+              const total = 1 + usual[admittedStream] * (ratio - 1);
+              return cumulative(usual.map((share, s) => (share * (s === admittedStream ? ratio : 1)) / total));
+            }),
       boarding: false,
     },
   ];
@@ -74,7 +82,7 @@ function admittedByFactor(past: ModelledPast, law: StayShape | null, correlation
   return means.map((mean) => (usual > 0 ? mean / usual : 1));
 }
 
-/** Mean present by stream when the outflow factor has been f for days: the start of an area that nobody counted. */
+/** Mean present by stream when the outflow factor has been f for days: the start of an area that nobody counted. @param past with the decisions where the area is staged */
 export function meansByFactor(past: ModelledPast, shapes: (StayShape | null)[] | null): Float64Array[] {
   const law = shapes ?? past.ratePerHour.map(() => null);
   const columns = Array.from(startFactors, (factor) => {

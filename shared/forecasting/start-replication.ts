@@ -1,10 +1,10 @@
 import { drawPoisson } from '../stochastic/poisson.ts';
 import { purposes } from './need-plan.ts';
 import type { StartGroup } from './need-plan.ts';
-import { drawPresent, endStays, patientsAtOnce, postLeaving } from './patient-loops.ts';
-import { binsPerHour, departureOf, leaveArea, move, stayOf } from './replication-state.ts';
+import { drawPresent, endStays, passIntoBoarding, patientsAtOnce, postLeaving } from './patient-loops.ts';
+import { binsPerHour, lastDeparture, leaveArea, move } from './replication-state.ts';
 import type { ReplicationState } from './replication-state.ts';
-import { admittedStream, boardingStream, streamsPerArea } from './stay-model.ts';
+import { admittedStream, streamsPerArea } from './stay-model.ts';
 
 /** Chances of the streams for somebody who is surely in one of them, cumulative. */
 const surely = Array.from({ length: streamsPerArea }, (_, only) =>
@@ -23,8 +23,8 @@ export function startArea(state: ReplicationState, a: number, replication: numbe
   if (area.startMeans === null) return;
   const expected = area.expectedFirstRate;
   const ratio = expected > 0 ? state.rates[a][area.startSegment] / expected : 1;
-  for (let inArea = 0; inArea < boardingStream; inArea += 1) {
-    const factor = stays.firstFactor[inArea === admittedStream ? 1 : 0];
+  for (let inArea = 0; inArea < streamsPerArea; inArea += 1) {
+    const factor = stays.firstFactor[area.outflowPlaces[inArea]];
     const patients = drawPoisson(stream, ratio * interpolate(area.startFactors, area.startMeans[inArea], factor));
     startGroup(state, a, { patients, steps: surely[inArea], boarding: false });
   }
@@ -33,14 +33,15 @@ export function startArea(state: ReplicationState, a: number, replication: numbe
 function startGroup(state: ReplicationState, a: number, group: StartGroup): void {
   const { plan, trace, stream, sizes, batch } = state;
   const { bins } = plan;
-  const { startHours, startSegment } = plan.areas[a];
+  const { startHours, startSegment, staged } = plan.areas[a];
   const { patients, steps, boarding } = group;
   const firstStream = a * streamsPerArea;
   const firstLaw = plan.areas.length * streamsPerArea + firstStream;
   for (let drawn = 0; drawn < patients; drawn += patientsAtOnce) {
     const count = Math.min(patientsAtOnce, patients - drawn);
-    drawPresent(stream, count, steps, startSegment);
+    drawPresent(stream, count, steps, startSegment, state.stages);
     endStays(count, firstStream, firstLaw, plan.segments + 2);
+    if (staged && !boarding) endStays(passIntoBoarding(count, bins), firstStream, firstStream, plan.segments + 2);
     if (boarding) {
       for (let i = 0; i < count; i += 1) {
         if (state.change.boardersOut !== undefined) batch.until[i] = movedOut(state, a, drawn + i, batch.until[i]);
@@ -77,10 +78,12 @@ export function startUndecided(state: ReplicationState, replication: number): vo
     const u = stream.uniform();
     let s = 0;
     while (s < undecided.steps.length - 1 && u >= undecided.steps[s]) s += 1;
-    const x = stayOf(state.laws, s, stream.exponential()) * (state.change.stay?.[s] ?? 1);
     const a = Math.floor(s / streamsPerArea);
+    const inArea = s % streamsPerArea;
+    const stay = stream.exponential();
+    const boards = state.stages && inArea === admittedStream ? stream.exponential() : 0;
     move(state, a, bin, 1);
-    leaveArea(state, a, s % streamsPerArea, departureOf(state, s, undecided.startSegment, 0, x));
+    leaveArea(state, a, inArea, lastDeparture(state, a, inArea, undecided.startSegment, 0, stay, boards));
   }
   trace.patients += undecided.patients;
 }

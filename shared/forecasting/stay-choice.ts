@@ -1,10 +1,13 @@
 import { newcomersUnderShape, sharesNotBoarding, streamOfBoarders, survivalOf } from './census-start.ts';
+import { decisionsPerHour } from './decision-stage.ts';
+import type { StagedStays } from './decision-stage.ts';
 import type { ExpectedPresent } from './census-start.ts';
 import { binomialLaw, gammaPoissonLaw, sumOfLaws } from './count-law.ts';
 import type { CountLaw } from './count-law.ts';
 import type { AreaFlows } from './need-flows.ts';
 import type { OutlookInput } from './outlook-types.ts';
-import type { StayModel, StayShape } from './stay-model.ts';
+import { admittedStream, boardingStream } from './stay-model.ts';
+import type { StayShape } from './stay-model.ts';
 
 /**
  * Which length of stay an outlook uses: the stays' own shape when it moves the 90th percentile of need by one bed (half a
@@ -13,7 +16,7 @@ import type { StayModel, StayShape } from './stay-model.ts';
  * Cost: areas × streams × segments².
  */
 export function chooseStayLaw(
-  stay: StayModel,
+  stay: StagedStays,
   input: OutlookInput,
   flows: readonly AreaFlows[],
   plain: readonly ExpectedPresent[],
@@ -33,7 +36,7 @@ export function chooseStayLaw(
 }
 
 function percentiles(
-  stay: StayModel,
+  stay: StagedStays,
   area: number,
   input: OutlookInput,
   flow: AreaFlows,
@@ -50,8 +53,21 @@ function percentiles(
       newcomers[k] += mean;
     });
   });
-  const others =
-    census === null ? present.means : sharesNotBoarding(stay, area, present.means, present.undecidedAdmitted);
+  const others = census === null ? present.means : sharesNotBoarding(stay, area, present.means);
+  // Boarding patients in the outlook who were not yet decided at its start: newcomers and those present.
+  const boards = (rate: ArrayLike<number>, here: number): Float64Array => {
+    const hazard = hazardPerHour[admittedStream];
+    const start = { mean: here, remaining: present.remaining[admittedStream] };
+    const decided = decisionsPerHour(hours, rate, hazard, shapes[admittedStream], start);
+    return newcomersUnderShape(hours, decided, hazardPerHour[boardingStream], shapes[boardingStream]);
+  };
+  const nobody = new Float64Array(count);
+  const presentBoards = stay.staged[area] ? boards(nobody, others[admittedStream]) : nobody;
+  if (stay.staged[area]) {
+    boards(ratePerHour[admittedStream], 0).forEach((mean, k) => {
+      newcomers[k] += mean;
+    });
+  }
   const boarder = streamOfBoarders(stay, area);
   const spent = new Float64Array(hazardPerHour.length);
   const found: number[] = [];
@@ -59,7 +75,7 @@ function percentiles(
   for (let k = 0; k < count && elapsed < untilHours; k += 1) {
     elapsed += hours[k];
     if (k < flow.startSegment) continue;
-    let alive = 0;
+    let alive = presentBoards[k];
     for (let s = 0; s < spent.length; s += 1) {
       spent[s] += hazardPerHour[s][k] * hours[k];
       if (others[s] > 0) alive += others[s] * survivalOf(present.remaining[s], spent[s]);

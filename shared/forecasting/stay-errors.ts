@@ -3,7 +3,8 @@ import type { RandomStream } from '../stochastic/random.ts';
 import { drawQuickGamma, drawQuickNormal } from './quick-normal.ts';
 import { takeWords } from './quick-stream.ts';
 import type { StayDraw, StaySegments } from './stay-draw.ts';
-import { admittedStream, boardingStream } from './stay-model.ts';
+import { outflowPlace } from './decision-stage.ts';
+import { boardingStream } from './stay-model.ts';
 import type { OutflowFactor, StayModel } from './stay-model.ts';
 
 /** Standard normal quantiles at the middles of 1,024 equal chances, scaled to variance 1: errors of estimates need no finer law. Single precision keeps them near. */
@@ -107,9 +108,7 @@ export function makeStayErrors(stay: StayModel, segments: StaySegments): StayErr
   const { areas } = stay;
   return {
     streams: Int32Array.from(drawn, ({ s }) => s),
-    group: Uint8Array.from(drawn, ({ stream }) =>
-      stream.stream === admittedStream || stream.stream === boardingStream ? 1 : 0,
-    ),
+    group: Uint8Array.from(drawn, ({ stream }) => outflowPlace(stay, stream.stream)),
     blockHazard,
     blocks,
     blockPlace: segments.block.map((block) => touched.indexOf(block)),

@@ -6,6 +6,8 @@ export const streamsPerArea = dispositions.length + 1;
 export const boardingStream = dispositions.length;
 /** Offset of the admitted stream within an area's streams. */
 export const admittedStream = 1;
+/** Code of the stage from arrival to the admission decision; where it is fitted it takes the admitted stream's place (`stagedStays`). */
+export const decisionStage = dispositions.length + 1;
 
 /** A gamma posterior: mean = shape / rate. */
 export interface GammaPosterior {
@@ -21,7 +23,7 @@ export interface GammaPosterior {
  */
 export interface StayStream {
   area: number;
-  /** Code of shared/domain/disposition, or `boardingStream`. */
+  /** Code of shared/domain/disposition, `boardingStream` or `decisionStage`. */
   stream: number;
   /** Visits that the fit used. */
   visits: number;
@@ -54,12 +56,6 @@ export interface StayShape {
   tail: number;
 }
 
-/** Laws of an admitted patient's time before the decision and of boarding, both in operational time of the whole stay, in its means. */
-export interface DecisionLaw {
-  before: StayShape;
-  boarding: StayShape;
-}
-
 /** A factor on the departure hazard that varies by day: lognormal with mean 1, AR(1) in its logarithm. */
 export interface OutflowFactor {
   /** Variance of the factor. */
@@ -73,6 +69,9 @@ export interface OutflowFactor {
   /** Days it was estimated from. */
   days: number;
 }
+
+/** The two groups of streams with an outflow factor each. */
+export type OutflowGroup = 'others' | 'admitted';
 
 /** Where disposition shares come from: Dirichlet parameters by block of the day of arrival, 4 dispositions each. */
 export interface DispositionShares {
@@ -123,8 +122,10 @@ export interface StayModel {
   streams: StayStream[];
   /** Of the time that admitted patients stay, the share before the admission decision; null where decisions are not loaded. */
   shareBeforeDecision: (number | null)[];
-  /** How the decision cuts the admitted stay, by area; null where too few decisions are loaded. */
-  decisions: (DecisionLaw | null)[];
+  /** The admitted's time to the decision as a stage of its own, by area; null where too few decisions are loaded. Absent in models fitted before it was. */
+  toDecision?: (StayStream | null)[];
+  /** Whose outflow factor the time to the decision goes with, whichever explains the decisions better. */
+  decisionFollows?: OutflowGroup;
   shares: DispositionShares[];
   outflow: { others: OutflowFactor; admitted: OutflowFactor };
   bedSpace: (BedSpaceStays | null)[];

@@ -1,30 +1,40 @@
 import { makeZone } from '../domain/zoned-time.ts';
 import { makeStream } from '../stochastic/random.ts';
 import { checkOutlookInput } from './check-outlook-input.ts';
+import type { RateGrid } from './arrival-model.ts';
 import { sharesNotBoarding } from './census-start.ts';
-import { chanceOf, percentilesOf } from './need-histogram.ts';
 import { purposes } from './need-plan.ts';
-import type { Chance, OutlookInput, PercentilesByHour } from './outlook-types.ts';
+import type { OutlookInput } from './outlook-types.ts';
+import { cutGrid } from './prepare-need.ts';
 import type { OutlookModel } from './prepare-need.ts';
 import { expectedRates, makeRateDraw } from './rate-draws.ts';
 import { makeRateGrid } from './rate-grid.ts';
 import { blockOf, holidayNumbers } from './stay-clock.ts';
 import { expectedStays, makeStayBuffers, makeStayDraw, staySegments } from './stay-draw.ts';
 import { admittedStream, streamsPerArea } from './stay-model.ts';
+import type { StayModel } from './stay-model.ts';
 import type { WaitingPart, WaitingPlan } from './waiting-simulation.ts';
+import { withCalendar } from './with-calendar.ts';
 
 /** Streams that take a bed space: home, admitted, transferred. */
 const bedStreams = 3;
 
-/** Waiting by the hour of arrival; an hour without arrivals in any replication has null. */
-export interface WaitingByHour {
-  hours: number[];
-  waiting: PercentilesByHour;
-  meanWaitMinutes: (number | null)[];
-  overLimit: (Chance | null)[];
-  leftBeforeTreatment: (Chance | null)[];
-  /** Said wherever these figures stand. */
-  caution: string;
+/** Waits for a bed space in one area by shift of arrival. */
+export interface ShiftWaits {
+  /** Arrivals of the shift, on average. */
+  arrivals: number;
+  /** Minutes from arrival to a bed space, or to leaving without one; null where nobody arrives. */
+  meanMinutes: number | null;
+  /** Share of the shift's arrivals who wait longer than the limit; null where nobody arrives. */
+  overLimit: number | null;
+}
+
+/** What a plan changes about waits in one area, by segment of the waiting plan. */
+export interface WaitingChange {
+  /** Arrivals an hour, from every area's. */
+  rate: (rates: readonly Float64Array[], segment: number) => number;
+  /** What a departure hazard is divided by, home, admitted, transferred: the factor on stays. */
+  stay: readonly number[];
 }
 
 function roundShares(total: number, shares: readonly number[]): number[] {
@@ -40,49 +50,102 @@ function roundShares(total: number, shares: readonly number[]): number[] {
   return whole;
 }
 
+/** What the waiting plans of a site's areas share: made once, drawn once a replication. */
+export interface WaitingGround {
+  input: OutlookInput;
+  stay: StayModel;
+  grid: RateGrid;
+  /** Arrivals an hour by area, as expected and as last drawn. */
+  rates: Float64Array[];
+  drawnRates: Float64Array[];
+  /** Departure hazards an hour, [stream · segments + segment], as expected and as last drawn. */
+  hazard: Float64Array;
+  drawnHazard: Float64Array;
+  draw: (replication: number) => void;
+}
+
+/**
+ * Prepares what waits are simulated on. Segments end where any area's beds change.
+ * @param cuts further instants at which segments are to end, UTC seconds: plans of the same cuts and steps share their
+ *   random numbers
+ */
+export function prepareWaitingGround(
+  model: OutlookModel,
+  input: OutlookInput,
+  cuts: readonly number[] = [],
+): WaitingGround {
+  const { arrival, stay, calendar } = withCalendar(model, input);
+  checkOutlookInput(input, stay.areas);
+  const { issuedAt, hours, seed } = input;
+  const steps = input.areas.flatMap(({ staffedBeds }) => staffedBeds.map(({ at }) => at));
+  const whole = makeRateGrid(makeZone(input.timeZone), issuedAt, hours[hours.length - 1]);
+  const grid = cutGrid(whole, [...steps, ...cuts]);
+  const holidays = holidayNumbers(stay.holidays);
+  const staying = staySegments(stay, grid.localHour, (hour) => blockOf(hour, stay.blockHours, holidays));
+  const rates = expectedRates(arrival, grid, calendar);
+  const drawnRates = rates.map((rate) => rate.slice());
+  const buffers = makeStayBuffers(stay, grid.hours.length);
+  const drawRates = makeRateDraw(arrival, grid, calendar);
+  const drawStays = makeStayDraw(stay, staying);
+  const joint = makeStream(seed);
+  const path = makeStream(seed);
+  let drawn = -1;
+  return {
+    input,
+    stay,
+    grid,
+    rates,
+    drawnRates,
+    hazard: expectedStays(stay, staying).hazard,
+    drawnHazard: buffers.hazard,
+    draw: (replication) => {
+      if (replication === drawn) return;
+      drawn = replication;
+      joint.reseed(seed, purposes.rates, replication);
+      drawRates(joint, drawnRates);
+      joint.reseed(seed, purposes.parameters, replication);
+      path.reseed(seed, purposes.outflow, replication);
+      drawStays(joint, path, buffers);
+    },
+  };
+}
+
 /**
  * Makes the plan for simulating waits in one area whose bed-space times are loaded; null where they are not. Bed-space
  * stays have the hazard fitted to them, with the departures' pattern by block, the outflow factor and the errors of
- * estimation of the whole stays. Impatience is a competing risk.
+ * estimation of the whole stays. Impatience is a competing risk. Beds are those of the input, at their own half hours.
+ * @param change what a plan changes of arrivals and stays; null leaves them
  */
 export function prepareWaiting(
-  model: OutlookModel,
-  input: OutlookInput,
+  ground: WaitingGround,
   area: number,
   waitLimitHours: number,
+  change: WaitingChange | null = null,
 ): WaitingPlan | null {
-  const { arrival, stay, calendar } = model;
-  checkOutlookInput(input, stay.areas);
+  const { input, stay, grid, rates, drawnRates } = ground;
   const bedSpace = stay.bedSpace[area] ?? null;
   const inBeds = bedSpace?.departures.slice(0, bedStreams).reduce((a, b) => a + b, 0) ?? 0;
   if (bedSpace === null || inBeds === 0) return null;
-  const zone = makeZone(input.timeZone);
-  const { issuedAt, hours } = input;
-  const grid = makeRateGrid(zone, issuedAt, hours[hours.length - 1]);
-  const holidays = holidayNumbers(stay.holidays);
-  const staying = staySegments(stay, grid.localHour, (hour) => blockOf(hour, stay.blockHours, holidays));
+  const { issuedAt, hours, seed } = input;
   const segments = grid.hours.length;
-  const rates = expectedRates(arrival, grid, calendar);
-  const buffers = makeStayBuffers(stay, segments);
-  const rateBuffers = rates.map((rate) => rate.slice());
-  const drawRates = makeRateDraw(arrival, grid, calendar);
-  const drawStays = makeStayDraw(stay, staying);
-  const joint = makeStream(input.seed);
-  const path = makeStream(input.seed);
   // Bed-space stays are shorter than whole stays; everything else about their hazard is the whole stay's.
   const ratios = Array.from({ length: bedStreams }, (_, s) => {
     const whole = stay.streams[area * streamsPerArea + s];
     const own = bedSpace.departures[s] / bedSpace.hoursInBedSpace[s];
-    return own > 0 && own < Infinity && whole.departuresPerHour !== null ? own / whole.departuresPerHour : 1;
+    const ratio = own > 0 && own < Infinity && whole.departuresPerHour !== null ? own / whole.departuresPerHour : 1;
+    return ratio / (change?.stay[s] ?? 1);
   });
   const hazardPerHour = ratios.map(() => new Float64Array(segments));
-  const setHazards = (hazard: Float64Array): void => {
+  const ratePerHour = new Float64Array(segments);
+  const setTo = (from: readonly Float64Array[], hazard: Float64Array): void => {
     ratios.forEach((ratio, s) => {
-      const from = (area * streamsPerArea + s) * segments;
-      for (let k = 0; k < segments; k += 1) hazardPerHour[s][k] = hazard[from + k] * ratio;
+      const first = (area * streamsPerArea + s) * segments;
+      for (let k = 0; k < segments; k += 1) hazardPerHour[s][k] = hazard[first + k] * ratio;
     });
+    if (change === null) ratePerHour.set(from[area]);
+    else for (let k = 0; k < segments; k += 1) ratePerHour[k] = change.rate(from, k);
   };
-  setHazards(expectedStays(stay, staying).hazard);
+  setTo(rates, ground.hazard);
   const { census, staffedBeds } = input.areas[area];
   const present = census?.present ?? 0;
   const waiting = census?.waiting ?? 0;
@@ -98,8 +161,9 @@ export function prepareWaiting(
   const used = bedSpace.departures.slice(0, bedStreams);
   let sum = 0;
   return {
-    seed: input.seed,
+    seed,
     segmentAt: Float64Array.from([...grid.startAt, hours[hours.length - 1]], (at) => (at - issuedAt) / 3600),
+    ratePerHour,
     beds: Int32Array.from(grid.startAt, (at) => staffedBeds.findLast((step) => step.at <= at)?.beds ?? 0),
     steps: Float64Array.from(used, (count) => (sum += count / inBeds)),
     hazardPerHour,
@@ -107,49 +171,39 @@ export function prepareWaiting(
     inBedSpaces: others,
     waiting,
     waitLimitHours,
+    redraw: (replication) => {
+      ground.draw(replication);
+      setTo(drawnRates, ground.drawnHazard);
+    },
     highest: Math.min(2000, 4 * (present + 40) + Math.ceil(Math.max(...rates[area]) * 24)),
-    ...drawing(),
   };
-
-  function drawing(): Pick<WaitingPlan, 'ratePerHour' | 'redraw'> {
-    const ratePerHour = rates[area].slice();
-    return {
-      ratePerHour,
-      redraw: (replication) => {
-        joint.reseed(input.seed, purposes.rates, replication);
-        drawRates(joint, rateBuffers);
-        ratePerHour.set(rateBuffers[area]);
-        joint.reseed(input.seed, purposes.parameters, replication);
-        path.reseed(input.seed, purposes.outflow, replication);
-        drawStays(joint, path, buffers);
-        setHazards(buffers.hazard);
-      },
-    };
-  }
 }
 
-/** Waits by hour of arrival from the parts of a simulation. @param hours full hours at the segments' ends, UTC seconds. */
-export function finishWaiting(parts: readonly WaitingPart[], hours: readonly number[]): WaitingByHour {
-  if (parts.length === 0) throw new RangeError('no parts to finish');
-  const total = (key: 'waiting' | 'arrivals' | 'secondsWaited' | 'overLimit' | 'left'): Float64Array => {
-    const all = new Float64Array(parts[0][key].length);
-    for (const part of parts) for (let i = 0; i < all.length; i += 1) all[i] += part[key][i];
-    return all;
-  };
-  const { size } = parts[0];
-  const arrivals = total('arrivals');
-  const seconds = total('secondsWaited');
-  const over = total('overLimit');
-  const left = total('left');
-  const waiting = total('waiting');
-  const of = (counts: Float64Array): (Chance | null)[] =>
-    Array.from(counts, (count, k) => (arrivals[k] > 0 ? chanceOf(count, arrivals[k]) : null));
+/** Segments of a waiting plan whose arrivals fall in a span. @param from, to hours since the outlook was issued */
+export function segmentsWithin({ segmentAt }: Pick<WaitingPlan, 'segmentAt'>, from: number, to: number): number[] {
+  const within: number[] = [];
+  for (let k = 0; k + 1 < segmentAt.length; k += 1) {
+    const middle = (segmentAt[k] + segmentAt[k + 1]) / 2;
+    if (middle >= from && middle < to) within.push(k);
+  }
+  return within;
+}
+
+/** Waits of those who arrive in some segments. @param parts of one plan, which together hold every replication once */
+export function shiftWaits(parts: readonly WaitingPart[], segments: readonly number[]): ShiftWaits {
+  let [replications, arrivals, seconds, over] = [0, 0, 0, 0];
+  for (const part of parts) {
+    replications += part.toReplication - part.fromReplication;
+    for (const k of segments) {
+      arrivals += part.arrivals[k];
+      seconds += part.secondsWaited[k];
+      over += part.overLimit[k];
+    }
+  }
+  if (replications === 0) throw new RangeError('no parts to finish');
   return {
-    hours: [...hours],
-    waiting: percentilesOf(Array.from(arrivals, (_, k) => waiting.subarray(k * size, (k + 1) * size))),
-    meanWaitMinutes: Array.from(seconds, (value, k) => (arrivals[k] > 0 ? value / arrivals[k] / 60 : null)),
-    overLimit: of(over),
-    leftBeforeTreatment: of(left),
-    caution: 'Patients are served in order of arrival here; in truth less urgent patients wait longer.',
+    arrivals: arrivals / replications,
+    meanMinutes: arrivals > 0 ? seconds / arrivals / 60 : null,
+    overLimit: arrivals > 0 ? over / arrivals : null,
   };
 }

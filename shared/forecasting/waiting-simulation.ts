@@ -78,11 +78,21 @@ export function simulateWaitingPart(plan: WaitingPlan, from: number, to: number)
   const streams = hazardPerHour.length;
   const row = segments + 1;
   const spent = new Float64Array(streams * row);
+  // Where to look for a sum of hazard: the segment that holds the start of each of so many equal parts of all of it.
+  const parts = 2 * segments;
+  const holds = new Int32Array(streams * (parts + 1));
+  const partsPerHazard = new Float64Array(streams);
   const cumulate = (): void => {
     for (let s = 0; s < streams; s += 1) {
       for (let k = 0; k < segments; k += 1) {
         const more = hazardPerHour[s][k] * (segmentAt[k + 1] - segmentAt[k]);
         spent[s * row + k + 1] = spent[s * row + k] + more;
+      }
+      const all = spent[s * row + segments];
+      partsPerHazard[s] = all > 0 ? parts / all : 0;
+      for (let i = 0, k = 0; i <= parts; i += 1) {
+        while (k < segments - 1 && spent[s * row + k + 1] * parts <= i * all) k += 1;
+        holds[s * (parts + 1) + i] = k;
       }
     }
   };
@@ -122,7 +132,10 @@ export function simulateWaitingPart(plan: WaitingPlan, from: number, to: number)
       presentMoves[segments] -= 1;
       return Infinity;
     }
-    let found = k;
+    const from = holds[s * (parts + 1) + Math.floor(target * partsPerHazard[s])];
+    let found = from > k ? from : k;
+    // Rounding may have looked one part too late.
+    while (found > k && spent[base + found] > target) found -= 1;
     while (spent[base + found + 1] <= target) found += 1;
     presentMoves[found] -= 1;
     return segmentAt[found] + (target - spent[base + found]) / hazardPerHour[s][found];

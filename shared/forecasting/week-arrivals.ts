@@ -64,7 +64,7 @@ export function weekArrivals(
     shifts: [...shifts, ...weeks],
     ...(live ? { live } : {}),
     ambulance: input.ambulance,
-    draws,
+    draws: input.arrivalDraws ?? draws,
     seed: input.seed,
   });
   const areas = input.areas.length;

@@ -1,4 +1,5 @@
 import type { OutlookInput } from './outlook-types.ts';
+import type { ShiftWaits } from './waiting-outlook.ts';
 
 /** A stretch of time with its name: a shift's, or a day's local date (YYYY-MM-DD); hours have none. UTC seconds. */
 export interface WeekSpan {
@@ -52,11 +53,11 @@ export interface WeekNeedByHour {
   shortfallWithin: number[];
 }
 
-/** One area in one shift, aligned with `shifts`; for the shift under way, what is left of it. */
+/** One area in one shift while it is in charge (a handover belongs to the incoming shift), aligned with `shifts`; for the shift under way, what is left of it. */
 export interface WeekShiftNeed {
   /** Highest need of the shift. */
   peak: { [P in keyof NeedColumns]: number };
-  /** Staffed beds planned: fewest and most within the shift. */
+  /** Staffed beds planned: fewest and most within the shift's own half hours, until the next one begins. */
   staffedLeast: number;
   staffedMost: number;
   /** Chance of any shortfall during the shift. */
@@ -124,6 +125,22 @@ export interface WeekCalendarDay {
   pastDays: number;
 }
 
+/** Waits for a bed space in one shift, against the site's limit. */
+export interface WeekShiftWaits extends ShiftWaits {
+  /** Beds to add to the plan throughout the shift, in whole steps, with which at most the stated share wait longer than the limit; null where not even every bed space that exists is enough. */
+  bedsToAdd: number | null;
+}
+
+/** Waits by area and shift, where the site has stated a limit. */
+export interface WeekWaits {
+  limitMinutes: number;
+  /** The share of arrivals that may wait longer: the planning risk. */
+  share: number;
+  replications: number;
+  /** In the input's order; null where the logs hold no bed-space times, so that waits cannot be known. */
+  areas: (WeekShiftWaits[] | null)[];
+}
+
 /** Everything a week outlook is computed from; stored with it, so that it can be run again to the same digit. */
 export interface WeekOutlookInput extends OutlookInput {
   areas: (OutlookInput['areas'][number] & { noticeHours: number; bedsPerNurse: number | null })[];
@@ -133,6 +150,8 @@ export interface WeekOutlookInput extends OutlookInput {
   calendar: NonNullable<OutlookInput['calendar']>;
   /** Local midnight that ends the last whole day; hours after it only complete the last night. */
   daysUntil: number;
+  /** Joint draws behind the arrivals; 2,000 if left out. */
+  arrivalDraws?: number;
   /** Ambulance arrivals counted in the logs' last year by area and 4 h block of the day: known ones, and those by ambulance; null where too few tell. */
   ambulance: { known: number[][]; byAmbulance: number[][] } | null;
 }
@@ -161,5 +180,7 @@ export interface WeekOutlookResult {
   calendar: WeekCalendarDay[];
   /** Arrivals an hour that an ordinary week of these dates brings, Monday 00:00 first, by area. */
   ordinaryWeek: number[][];
+  /** Null where the site has stated no limit; absent in outlooks issued before waits were told. */
+  waits?: WeekWaits | null;
   lengthOfStay: 'exponential' | 'empirical';
 }

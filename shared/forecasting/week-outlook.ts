@@ -1,4 +1,5 @@
 import { hoursOfWeek } from '../domain/hour-of-week.ts';
+import { withOwnEnds } from '../domain/in-charge-spans.ts';
 import { localDate, makeZone, type Zone } from '../domain/zoned-time.ts';
 import { calendarDays } from './calendar-days.ts';
 import { finishWeek } from './finish-week.ts';
@@ -9,6 +10,7 @@ import { gridOfLocalHours } from './rate-grid.ts';
 import { makeWeekPart, makeWeekRecorder, mergeWeekParts, type WeekDays, type WeekPart } from './record-week.ts';
 import { makeReplication } from './simulate-need.ts';
 import { weekArrivals } from './week-arrivals.ts';
+import { weekWaits } from './week-waits.ts';
 import type { WeekOutlookInput, WeekOutlookResult, WeekSpan } from './week-outlook-types.ts';
 import { withCalendar } from './with-calendar.ts';
 
@@ -43,7 +45,8 @@ export function prepareWeek(model: OutlookModel, input: WeekOutlookInput): Prepa
     throw new RangeError('under eight weeks of history arrivals are forecast for 24 hours at most');
   }
   const zone = makeZone(input.timeZone);
-  const prepared = prepareNeed(model, input);
+  // A shift's need and beds are those of its own half hours: at handover the incoming shift's beds are staffed.
+  const prepared = prepareNeed(model, { ...input, shifts: withOwnEnds(input.shifts, input.issuedAt) });
   const { days, dayOfHour } = daysOf(input, zone);
   // Admissions are arrivals of some days: three times an even share of all patients is out of reach.
   const present = prepared.plan.areas.reduce((sum, area) => sum + area.highest, 0);
@@ -85,6 +88,7 @@ export function weekFromParts(prepared: PreparedWeek, parts: readonly WeekPart[]
     arrivals: weekArrivals(model, input, days, live, zone),
     calendar: calendarDays(model.arrival, model.calendar, zone, input.issuedAt, last),
     ordinaryWeek: ordinaryWeek(prepared),
+    waits: weekWaits(model, input),
   };
 }
 

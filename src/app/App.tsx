@@ -3,6 +3,7 @@ import { useState } from 'react';
 import { RouterProvider } from 'react-router-dom';
 import { makeQueryClient } from './query-client.ts';
 import { makeRouter } from './router.tsx';
+import { Announcements } from './Announcements.tsx';
 
 /** The client: query cache and pages. */
 export function App() {
@@ -11,6 +12,7 @@ export function App() {
   return (
     <QueryClientProvider client={queryClient}>
       <RouterProvider router={router} />
+      <Announcements />
     </QueryClientProvider>
   );
 }

@@ -123,7 +123,7 @@ export function Shell() {
         <SiteSwitcher site={site} sites={session.sites} />
         <nav
           aria-label="Places along time"
-          className="flex flex-1 items-center gap-x-6 whitespace-nowrap max-sm:order-last max-sm:w-full max-sm:flex-none max-sm:justify-between max-sm:gap-x-3 sm:flex-wrap"
+          className="flex flex-1 items-center gap-x-6 whitespace-nowrap max-sm:order-last max-sm:w-full max-sm:flex-none max-sm:justify-between max-sm:gap-x-2 sm:flex-wrap"
         >
           {places
             .filter(({ key }) => alongTime.has(key))
@@ -133,7 +133,7 @@ export function Shell() {
                 to={to}
                 className={({ isActive }) =>
                   classNames(
-                    'inline-flex min-h-11 items-center border-b-[3px] text-body',
+                    'inline-flex min-h-11 items-center border-b-[3px] text-body max-[24rem]:font-stretch-[78%]',
                     isActive
                       ? 'border-act font-extrabold text-ink'
                       : 'border-transparent font-bold text-ink2 hover:text-ink',
@@ -157,6 +157,9 @@ export function Shell() {
             {keysButton}
             <p className="mt-2 border-t border-hair pt-3 font-bold">{session.person.name}</p>
             <p className="text-quiet text-ink2">{session.person.email}</p>
+            <NavLink to={paths.ownSessions()} className={sideLink}>
+              Where you are signed in
+            </NavLink>
             <LockButton className="mt-3 w-full" />
             <SignOutButton className="mt-3 w-full" />
             <SignOutEverywhere />

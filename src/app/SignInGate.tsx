@@ -5,6 +5,7 @@ import { ProblemNotice } from '../components/Notice.tsx';
 import { Skeleton } from '../components/Skeleton.tsx';
 import { SessionProvider, sessionKey, useSessionQuery } from '../features/sign-in/session.ts';
 import type { SignedInSession } from '../features/sign-in/session.ts';
+import { followSession } from '../features/sign-in/kept-session.ts';
 import type { Session } from '../../shared/api/session.ts';
 import { onSignedOut } from '../lib/api-client.ts';
 import { claimTab } from '../lib/tab-owner.ts';
@@ -44,6 +45,17 @@ export function SignInGate() {
     }
     seenBy.current = personId;
   }, [personId, queryClient]);
+  // As soon as the server answers again, everything is asked for anew.
+  const known = query.data;
+  const wasKept = useRef(false);
+  useLayoutEffect(() => {
+    if (!known) return;
+    followSession(known, Date.now());
+    if (wasKept.current && known.person && known.keptAt === undefined) {
+      void queryClient.invalidateQueries({ predicate: ({ queryKey }) => queryKey[0] !== sessionKey[0] });
+    }
+    wasKept.current = known.keptAt !== undefined;
+  }, [known, queryClient]);
   const here = location.pathname + location.search + location.hash;
 
   if (!query.data) {

@@ -16,9 +16,10 @@ export function SiteSwitcher({ site, sites }: { site: SessionSite | undefined; s
         {site && sites.length > 1 ? (
           <select
             aria-label="Site"
+            name="site"
             value={site.id}
             onChange={(event) => void navigate(paths.tonight(event.target.value))}
-            className="-ml-1 max-w-32 cursor-pointer sm:max-w-48 rounded-field bg-transparent text-label font-semibold text-ink2 hover:text-ink"
+            className="-ml-1 min-h-6 max-w-52 cursor-pointer sm:max-w-48 rounded-field bg-transparent text-label font-semibold text-ink2 hover:text-ink"
           >
             {sites.map((candidate) => (
               <option key={candidate.id} value={candidate.id} className="bg-paper text-ink">

@@ -49,6 +49,10 @@ export function makeRouter() {
                   lazy: async () => ({ Component: (await import('../pages/WeekAheadPage.tsx')).WeekAheadPage }),
                 },
                 {
+                  path: 'week/:weekOutlookId',
+                  lazy: async () => ({ Component: (await import('../pages/WeekThenPage.tsx')).WeekThenPage }),
+                },
+                {
                   path: 'what-if',
                   lazy: async () => ({ Component: (await import('../pages/WhatIfPage.tsx')).WhatIfPage }),
                 },
@@ -134,6 +138,10 @@ export function makeRouter() {
             {
               path: '/status',
               lazy: async () => ({ Component: (await import('../pages/ServerStatusPage.tsx')).ServerStatusPage }),
+            },
+            {
+              path: '/sessions',
+              lazy: async () => ({ Component: (await import('../pages/OwnSessionsPage.tsx')).OwnSessionsPage }),
             },
             {
               path: '/people',

@@ -1,9 +1,9 @@
-import { useVirtualizer } from '@tanstack/react-virtual';
-import { useRef } from 'react';
+import { lazy, Suspense, useRef } from 'react';
 import type { ReactNode } from 'react';
 import { classNames } from '../lib/class-names.ts';
-import { TableTools, type TableFile } from './TableTools.tsx';
-import { columnName, useTableView, type Column } from './use-table-view.ts';
+import { TableFinder, TableSaver, type TableFile } from './TableTools.tsx';
+import { useFits } from './use-fits.ts';
+import { columnName, useTableView, type Column, type KnownColumn } from './use-table-view.ts';
 
 export type { Column } from './use-table-view.ts';
 
@@ -11,11 +11,18 @@ export type { Column } from './use-table-view.ts';
 const virtualFrom = 150;
 /** From here on a reader may search. */
 const searchFrom = 12;
-const rowHeight = 44;
+/** From here on a table is worth copying and saving. */
+const saveFrom = 4;
+/** More columns than this may be left out. */
+const chooseBeyond = 6;
+
+// Few tables are long: the others do without its script.
+const RowsInView = lazy(async () => ({ default: (await import('./RowsInView.tsx')).RowsInView }));
 
 /**
- * A table with a caption, scrollable sideways by touch and keyboard where it is wider than the page. Columns with a `value`
- * can be sorted; with a `file` it can be searched, copied and saved, and columns left out. Long ones scroll under their head.
+ * A table with a caption, scrollable sideways by touch and keyboard where it is wider than the page. It is sorted by its
+ * headers, searched, copied and saved by the words of its cells or, better, a column's `value`. The head stays in view;
+ * long ones scroll under it.
  */
 export function DataTable<Row>({
   caption,
@@ -33,51 +40,65 @@ export function DataTable<Row>({
   rowKey: (row: Row) => string;
   /** What stands in place of rows: what it means and what to do. */
   empty?: ReactNode;
-  file?: TableFile;
+  /** Name and head of what is saved; false where the table is a form and there is nothing to save. */
+  file?: TableFile | false;
 }) {
   const view = useTableView(givenRows, given);
   const { columns, rows } = view;
   const ref = useRef<HTMLDivElement>(null);
+  const fits = useFits(ref);
   const long = rows.length > virtualFrom;
-  // eslint-disable-next-line react-hooks/incompatible-library -- the rule guards the React compiler, which this build does not use
-  const virtual = useVirtualizer({
-    count: rows.length,
-    enabled: long,
-    getScrollElement: () => ref.current,
-    estimateSize: () => rowHeight,
-    overscan: 12,
-  });
-  const items = virtual.getVirtualItems();
-  const shown = long
-    ? items.map(({ index }) => ({ index, row: rows[index] }))
-    : rows.map((row, index) => ({ index, row }));
-  const before = long ? (items.at(0)?.start ?? 0) : 0;
-  const after = long ? virtual.getTotalSize() - (items.at(-1)?.end ?? 0) : 0;
   const none = view.sought.trim() !== '' && rows.length === 0 ? 'No row holds that.' : empty;
+
+  const tableRow = (row: Row, index: number) => (
+    <tr key={rowKey(row)} className="border-b border-hair" {...(long ? { 'aria-rowindex': index + 2 } : {})}>
+      {columns.map((column) => {
+        const look = classNames(
+          'px-2 py-2.5 align-top first:pl-0',
+          // On a phone the table scrolls rather than squeeze words into letters.
+          column.figure ? 'text-right' : 'min-w-28',
+          columns.length > 4 && (column.figure ? 'max-sm:min-w-24' : 'max-sm:min-w-36'),
+        );
+        return column.rowHeader ? (
+          <th key={column.key} scope="row" className={classNames(look, 'font-bold text-ink')}>
+            {column.cell(row)}
+          </th>
+        ) : (
+          <td key={column.key} className={look}>
+            {column.cell(row)}
+          </td>
+        );
+      })}
+    </tr>
+  );
 
   return (
     <div>
-      {file ? (
-        <TableTools
-          {...{ caption, rows, file }}
-          columns={given}
+      {file === false ||
+      (file === undefined && givenRows.length < searchFrom && given.length <= chooseBeyond) ? null : (
+        <TableFinder
+          {...{ caption, rows }}
+          columns={view.all}
           hidden={view.hidden}
           sought={view.sought}
           onSeek={view.setSought}
           onToggle={view.toggleColumn}
           searchable={givenRows.length >= searchFrom}
+          choosable={givenRows.length > 0 && (file !== undefined || given.length > chooseBeyond)}
         />
-      ) : null}
+      )}
       <div
         ref={ref}
-        className={classNames('relative overflow-x-auto', long && 'max-h-[70vh] overflow-y-auto')}
-        role="region"
-        aria-label={caption}
-        tabIndex={0}
+        className={classNames(
+          'relative',
+          // Without a scroll area of its own, the head keeps to the top of the window.
+          long ? 'max-h-[70vh] overflow-auto' : fits ? null : 'overflow-x-auto',
+        )}
+        {...(fits && !long ? {} : { role: 'region', 'aria-label': caption, tabIndex: 0 })}
       >
         <table className="w-full border-collapse text-left" {...(long ? { 'aria-rowcount': rows.length + 1 } : {})}>
           <caption className={captionHidden ? 'sr-only' : 'pb-2 text-left font-bold text-ink'}>{caption}</caption>
-          <thead className={long ? 'sticky top-0 z-10 bg-water' : undefined}>
+          <thead className="sticky top-0 z-10 bg-water print:static [dialog_&]:bg-paper">
             <tr className="border-b-2 border-edge">
               {columns.map((column) => (
                 <HeaderCell key={column.key} column={column} sorting={view.sorting} onSort={view.sortBy} />
@@ -85,28 +106,18 @@ export function DataTable<Row>({
             </tr>
           </thead>
           <tbody>
-            {before > 0 ? <Spacer height={before} width={columns.length} /> : null}
-            {shown.map(({ index, row }) => (
-              <tr key={rowKey(row)} className="border-b border-hair" {...(long ? { 'aria-rowindex': index + 2 } : {})}>
-                {columns.map((column) => {
-                  const look = classNames(
-                    'px-2 py-2.5 align-top first:pl-0',
-                    // On a phone the table scrolls rather than squeeze words into letters.
-                    column.figure ? 'text-right' : 'min-w-28',
-                  );
-                  return column.rowHeader ? (
-                    <th key={column.key} scope="row" className={classNames(look, 'font-bold text-ink')}>
-                      {column.cell(row)}
-                    </th>
-                  ) : (
-                    <td key={column.key} className={look}>
-                      {column.cell(row)}
-                    </td>
-                  );
-                })}
-              </tr>
-            ))}
-            {after > 0 ? <Spacer height={after} width={columns.length} /> : null}
+            {long ? (
+              <Suspense fallback={rows.slice(0, 20).map(tableRow)}>
+                <RowsInView
+                  count={rows.length}
+                  scroller={ref}
+                  columns={columns.length}
+                  row={(index) => tableRow(rows[index], index)}
+                />
+              </Suspense>
+            ) : (
+              rows.map(tableRow)
+            )}
             {rows.length === 0 && none ? (
               <tr>
                 <td colSpan={columns.length} className="py-4 text-ink2">
@@ -117,6 +128,9 @@ export function DataTable<Row>({
           </tbody>
         </table>
       </div>
+      {file !== false && (file !== undefined || givenRows.length >= saveFrom) ? (
+        <TableSaver {...{ caption, rows, columns, file }} />
+      ) : null}
     </div>
   );
 }
@@ -126,7 +140,7 @@ function HeaderCell<Row>({
   sorting,
   onSort,
 }: {
-  column: Column<Row>;
+  column: KnownColumn<Row>;
   sorting: { key: string; descending: boolean } | null;
   onSort: (key: string) => void;
 }) {
@@ -135,10 +149,10 @@ function HeaderCell<Row>({
     'px-2 py-2 align-bottom text-quiet font-bold text-ink2 first:pl-0',
     column.figure && 'text-right',
   );
-  if (!column.value) {
+  if (!column.sortable) {
     return (
       <th scope="col" className={look}>
-        {column.header}
+        <span className="inline-flex min-h-6 items-center">{column.header}</span>
       </th>
     );
   }
@@ -157,14 +171,5 @@ function HeaderCell<Row>({
         </svg>
       </button>
     </th>
-  );
-}
-
-/** Stands for the rows above or below those in view. */
-function Spacer({ height, width }: { height: number; width: number }) {
-  return (
-    <tr aria-hidden="true">
-      <td colSpan={width} style={{ height }} className="p-0" />
-    </tr>
   );
 }

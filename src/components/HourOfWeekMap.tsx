@@ -1,6 +1,9 @@
 import { useRef, useState } from 'react';
 import type { KeyboardEvent } from 'react';
+import { csvText } from '../lib/csv-text.ts';
+import { fileCautions, fileNameOf } from '../lib/file-cautions.ts';
 import { formatNumber } from '../lib/format.ts';
+import { PictureTools } from './PictureTools.tsx';
 
 const days = ['Monday', 'Tuesday', 'Wednesday', 'Thursday', 'Friday', 'Saturday', 'Sunday'];
 const hours = Array.from({ length: 24 }, (_, hour) => hour);
@@ -31,6 +34,16 @@ export function HourOfWeekMap({
 }) {
   const [chosen, setChosen] = useState(0);
   const tableRef = useRef<HTMLTableElement>(null);
+  const file = () =>
+    csvText(
+      [`${caption} (${document.title})`, ...fileCautions],
+      ['Day', 'Hour', 'Arrivals an hour'],
+      ratePerHour.map((rate, index) => [
+        days[Math.floor(index / 24)],
+        `${two(index % 24)}:00`,
+        Number(rate.toFixed(4)),
+      ]),
+    );
   const most = Math.max(...ratePerHour, 1e-9);
   const decimals = most < 20 ? 1 : 0;
   const look = (rate: number) => looks[Math.min(4, Math.floor((rate / most) * 5))];
@@ -101,7 +114,8 @@ export function HourOfWeekMap({
           </tbody>
         </table>
       </div>
-      <p className="mt-2 text-quiet text-ink2">{say(chosen)}.</p>
+      <p className="mt-2 mb-1 text-quiet text-ink2">{say(chosen)}.</p>
+      <PictureTools of={tableRef} title={name} csv={[{ fileName: `${fileNameOf(name)}.csv`, text: file }]} />
     </div>
   );
 }

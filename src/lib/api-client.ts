@@ -1,7 +1,7 @@
 import type { z } from 'zod';
 import { problem } from '../../shared/api/common.ts';
 import type { BodyInputOf, Contract, ParamsOf, ReplyOf } from '../../shared/api/contract.ts';
-import { ApiError } from './api-error.ts';
+import { ApiError, isOutage } from './api-error.ts';
 import { isInUse } from './last-use.ts';
 
 // The widest contract there is; a contract's own schemas are read through the types below.
@@ -33,11 +33,17 @@ interface LooseOptions extends Common {
 }
 
 let csrfToken = '';
+let fetchCsrfToken: (() => Promise<string>) | null = null;
 const signedOutListeners = new Set<() => void>();
 
 /** Keeps the anti-forgery token that the session reply carries; every writing request sends it. */
 export function rememberCsrfToken(token: string): void {
   csrfToken = token;
+}
+
+/** How to come by the token for a page that was opened without the server: it is asked for before the first writing request. */
+export function fetchCsrfTokenWith(fetchToken: () => Promise<string>): void {
+  fetchCsrfToken = fetchToken;
 }
 
 /** Headers that a writing request needs when it cannot go through `call` (an upload that reports its progress). */
@@ -139,6 +145,12 @@ export async function call<C extends AnyContract>(contract: C, ...[given]: Optio
   let response: Response;
   let text: string;
   try {
+    if (writing && csrfToken === '' && fetchCsrfToken) {
+      csrfToken = await fetchCsrfToken().catch((error: unknown) => {
+        throw isOutage(error) ? unreachable(options, writing) : error;
+      });
+      Object.assign(headers, writingHeaders());
+    }
     response = await fetch(addressOf(contract.path, options.params, options.query), request);
     if (!response.ok) throw await readProblem(response, options.kept);
     text = await response.text();

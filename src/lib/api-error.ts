@@ -46,3 +46,8 @@ export function asApiError(error: unknown): ApiError {
     next: 'Try again. If it happens again, reload the page and tell your administrator.',
   });
 }
+
+/** True where nobody answered, or only what stands before the server: nothing was refused, and it may pass. */
+export function isOutage(error: unknown): boolean {
+  return error instanceof ApiError && [0, 502, 503, 504].includes(error.status);
+}

@@ -20,15 +20,20 @@ for (const kind of ['pointerdown', 'keydown', 'wheel', 'touchstart'] as const) {
   if (typeof window !== 'undefined') window.addEventListener(kind, noteUse, { passive: true, capture: true });
 }
 
+/** When this product was last used on this device as the tabs tell each other, milliseconds; 0 if they never did. */
+export function sharedLastUse(): number {
+  try {
+    return Number(localStorage.getItem(key)) || 0;
+  } catch {
+    return 0;
+  }
+}
+
 /** When a key or a pointer was last used in any tab of this product, milliseconds of this device's clock. */
 export function lastUse(): number {
-  try {
-    const other = Number(localStorage.getItem(key));
-    // A clock that was set back must not keep a screen open.
-    return other <= Date.now() ? Math.max(here, other) : here;
-  } catch {
-    return here;
-  }
+  const other = sharedLastUse();
+  // A clock that was set back must not keep a screen open.
+  return other <= Date.now() ? Math.max(here, other) : here;
 }
 
 /** True if somebody was here within the last minute: what is asked now is asked by a person, not by the page. */

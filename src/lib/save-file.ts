@@ -1,5 +1,5 @@
 /** Hands the person a file made here; nothing is sent. */
-export function saveFile(name: string, type: string, pieces: readonly string[]): void {
+export function saveFile(name: string, type: string, pieces: readonly BlobPart[]): void {
   const address = URL.createObjectURL(new Blob([...pieces], { type }));
   const link = document.createElement('a');
   link.href = address;

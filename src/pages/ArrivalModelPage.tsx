@@ -4,6 +4,8 @@ import { Notice, ProblemNotice } from '../components/Notice.tsx';
 import { PageHead } from '../components/PageHead.tsx';
 import { SkeletonLines } from '../components/Skeleton.tsx';
 import { JudgeModel } from '../features/arrival-models/JudgeModel.tsx';
+import { ComparisonVerdict } from '../features/arrival-models/ComparisonVerdict.tsx';
+import { ModelComparison } from '../features/arrival-models/ModelComparison.tsx';
 import { ModelReport } from '../features/arrival-models/ModelReport.tsx';
 import { groundsInWords, modelHeadline, sinceFitInWords } from '../features/arrival-models/model-words.ts';
 import { useModel } from '../features/arrival-models/queries.ts';
@@ -85,7 +87,17 @@ export function ArrivalModelPage() {
           </Notice>
         ) : null}
         {model.status === 'fitting' || model.status === 'failed' ? null : <ModelReport model={model} />}
-        {may('arrival-model:approve') ? <JudgeModel siteId={siteId} model={model} /> : null}
+        {model.fittedAt === null ? null : (
+          <ModelComparison
+            siteId={siteId}
+            modelId={modelId}
+            timeZone={site.timeZone}
+            progressOf={(jobId) => <JobProgress siteId={siteId} jobId={jobId} mayCancel={may('arrival-model:fit')} />}
+          />
+        )}
+        {may('arrival-model:approve') ? (
+          <JudgeModel siteId={siteId} model={model} beside={<ComparisonVerdict siteId={siteId} modelId={modelId} />} />
+        ) : null}
         <p className="text-quiet text-ink2">
           What these figures are and how they are made:{' '}
           <Link to={paths.howNumbersAreMade('arrivals')} className="link font-semibold">

@@ -11,6 +11,7 @@ import {
   useAddRecipient,
   useBriefs,
   useComposeBrief,
+  useConfirmAddress,
   useRecipients,
   useRemoveRecipient,
   useSaveSettings,
@@ -131,6 +132,7 @@ function Sending({
   const recipients = useRecipients(siteId, true);
   const add = useAddRecipient(siteId);
   const remove = useRemoveRecipient(siteId);
+  const confirm = useConfirmAddress(siteId);
   const { nextDueAt, mayCoverGroup, groupName, ...schedule } = settings;
   return (
     <>
@@ -165,6 +167,9 @@ function Sending({
               removing={remove.isPending}
               error={remove.error}
               onRemove={(recipientId, done) => remove.mutate(recipientId, { onSuccess: done })}
+              confirming={confirm.isPending}
+              confirmError={confirm.error}
+              onConfirm={(recipientId) => confirm.mutate(recipientId)}
             />
             <h3 className="text-h2">Add a recipient</h3>
             <AddRecipient

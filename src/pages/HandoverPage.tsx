@@ -1,3 +1,4 @@
+import { useState } from 'react';
 import { useParams } from 'react-router-dom';
 import { paths } from '../app/paths.ts';
 import { Button, ButtonLink } from '../components/Button.tsx';
@@ -5,16 +6,19 @@ import { Notice, ProblemNotice } from '../components/Notice.tsx';
 import { useDocumentTitle } from '../components/PageHead.tsx';
 import { Skeleton } from '../components/Skeleton.tsx';
 import { HandoverSheet } from '../features/outlook/HandoverSheet.tsx';
-import { useNightLog, useSite, useTonight } from '../features/outlook/queries.ts';
+import { useNightLog } from '../features/outlook/queries.ts';
+import { StaleNote } from '../features/outlook/StaleNote.tsx';
+import { useTonightParts } from '../features/outlook/use-tonight-parts.ts';
 import { useSession } from '../features/sign-in/session.ts';
 
 /** /sites/:siteId/handover */
 export function HandoverPage() {
   const { siteId = '' } = useParams();
+  const [openedAt] = useState(() => Date.now());
   useDocumentTitle('Handover sheet');
-  const permissions = useSession().sites.find((candidate) => candidate.id === siteId)?.permissions ?? [];
-  const site = useSite(siteId);
-  const tonight = useTonight(siteId);
+  const session = useSession();
+  const permissions = session.sites.find((candidate) => candidate.id === siteId)?.permissions ?? [];
+  const loading = useTonightParts(session.person.id, siteId, session.keptAt !== undefined);
   const log = useNightLog(siteId);
 
   if (!permissions.includes('risk:acknowledge')) {
@@ -26,23 +30,22 @@ export function HandoverPage() {
       </div>
     );
   }
-  const failed = [site, tonight].find((query) => query.error && !query.data);
-  if (failed) {
+  const { parts } = loading;
+  if (loading.error) {
     return (
       <div className="page-pad max-w-3xl py-8">
         <ProblemNotice
-          error={failed.error}
-          retrying={failed.isFetching}
+          error={loading.error}
+          retrying={loading.fetching}
           onRetry={() => {
-            void site.refetch();
-            void tonight.refetch();
+            loading.refetch();
             void log.refetch();
           }}
         />
       </div>
     );
   }
-  if (!site.data || !tonight.data || (!log.data && !log.error)) {
+  if (!parts || (!log.data && !log.error && !loading.fromDevice)) {
     return (
       <div className="page-pad min-h-dvh pt-4">
         <Skeleton className="h-11 w-3/5" label="Loading the handover sheet" />
@@ -50,7 +53,12 @@ export function HandoverPage() {
       </div>
     );
   }
-  const { outlook, missing } = tonight.data;
+  const { outlook, missing } = parts.tonight;
+  // Ages on the sheet grow on: an older state must not print as if it were of this minute.
+  const tonight = {
+    ...parts.tonight,
+    now: parts.tonight.now + Math.max(0, Math.floor((openedAt - loading.loadedAt) / 1000)),
+  };
   return (
     <div className="page-pad pt-3">
       <div className="mb-4 flex flex-wrap items-center gap-4 print:hidden">
@@ -59,13 +67,18 @@ export function HandoverPage() {
           Back to Tonight
         </ButtonLink>
       </div>
-      {tonight.error ? (
-        <Notice kind="caution" className="mb-4 print:hidden" title="The newest figures could not be loaded." live>
-          <p>This sheet shows what was loaded last.</p>
-        </Notice>
+      {outlook && (loading.fromDevice || loading.refreshError) ? (
+        <StaleNote
+          className="mb-4"
+          issuedAt={outlook.issuedAt}
+          now={tonight.now}
+          timeZone={parts.site.timeZone}
+          error={loading.refreshError}
+          fromDevice={loading.fromDevice}
+        />
       ) : null}
       {outlook ? (
-        <HandoverSheet tonight={tonight.data} outlook={outlook} site={site.data} log={log.data ?? null} />
+        <HandoverSheet tonight={tonight} outlook={outlook} site={parts.site} log={log.data ?? null} />
       ) : (
         <Notice kind="caution" title="There is no outlook to hand over.">
           <p>{missing?.next}</p>

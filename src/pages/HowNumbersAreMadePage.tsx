@@ -106,20 +106,34 @@ export function HowNumbersAreMadePage() {
               the arrivals do, so it is estimated on its own.
             </p>
             <p>
+              Where nearly all admitted patients have an admission decision in the log, their stay is two stages: the
+              time to the decision, then boarding. Each has its own pace by hour, so that wards that take nobody at
+              night hold those already decided, not those still being treated.
+            </p>
+            <p>
               Stays are taken from nights with today’s doctors, tests and ward beds. If the stays in the log are far
               enough from the exponential law to move tonight’s P90 by a bed or more, Tonight uses the stays as they
               were.
             </p>
+            <p>
+              A site that may not share the times of visits loads hourly counts. Arrivals are then forecast as from
+              visits. Counts do not tell how long patients stay, so the mean stay of each area is as the site states it:
+              taken as right within 20 % (an assumption). Where departures are counted too, departures over
+              patient-hours present, at the level that the stated mean implies by Little’s law, give the pace of leaving
+              through the day and how days differ; otherwise the pace is even and days differ by 10 % (assumptions).
+              Dispositions, admissions and boarding are not known then and not forecast; every page that rests on such a
+              model says so.
+            </p>
           </Part>
           <Part id="need">
             <p>
-              Tonight starts from the census, each area from its own count and its time. Boarding patients leave as
-              admitted ones do; the others are shared over the streams as the model expects at that hour. How many of
-              those are admitted but still waiting for the decision follows from the times from arrival to decision in
-              the log, where it has them, and from how fast patients have left so far. Patients whose area is not
-              decided are shared over the areas as arrivals are. Then the night is run 10,000 times or more, with
-              arrivals, stays, day factors and the uncertainty of the fit itself drawn anew each time, and all areas
-              together, so that a busy night is busy everywhere.
+              Tonight starts from the census, each area from its own count and its time. Boarding patients leave as the
+              wards have taken them in the log; the others are shared over the streams as the model expects at that
+              hour. Those of them who will be admitted still have their decision and all of their boarding ahead, where
+              the log tells when decisions fall. Patients whose area is not decided are shared over the areas as
+              arrivals are. Then the night is run 10,000 times or more, with arrivals, stays, day factors and the
+              uncertainty of the fit itself drawn anew each time, and all areas together, so that a busy night is busy
+              everywhere.
             </p>
             <p>
               What the page shows are the percentiles of those nights. Totals are counted from the same nights; they are
@@ -213,6 +227,13 @@ export function HowNumbersAreMadePage() {
               compared pair. Need does not wait for a bed: more beds alone do not shorten a stay here.
             </p>
             <p>
+              Where the logs hold bed-space times and your site has stated a wait limit, waits for a bed space are
+              simulated too, on Week ahead and for a confirmed plan: the planned beds, patients taken in order of
+              arrival, a bed closed once its patient has left, and those who lose patience leaving. The beds for the
+              limit are the fewest steps, added to one shift alone, with which no larger share of its arrivals than the
+              planning risk waits longer. Without bed-space times such waits cannot be known, and the page says so.
+            </p>
+            <p>
               “Smallest change” takes, for each area and each shift while it is in charge, the fewest whole steps of
               beds that bring every full hour to the risk you choose; areas and shifts do not touch each other, so the
               sum is the least there is. With fewer bed-hours to give it lowers the worst hour first. It never takes a
@@ -250,10 +271,11 @@ export function HowNumbersAreMadePage() {
           <Part id="track-record">
             <p>
               Every outlook is kept as it was issued, with the distributions behind it. When an accepted log tells what
-              came, need is scored 1, 4, 12 and 24 hours ahead for outlooks issued by the clock, and each shift’s
-              highest need and each day’s arrivals for the last outlook before it began. A chance is held against the
-              staffed beds that it was issued with; acknowledged hours are told apart. A withdrawn log takes its scores
-              with it.
+              came, need is scored 1, 4, 8, 12 and 24 hours ahead for outlooks issued by the clock, and each shift’s
+              highest need and each day’s arrivals for the last outlook before it began. What the daily week ahead said
+              is scored too: need at every fourth hour from 25 to 72 hours ahead, shifts that begin within 72 hours, and
+              the arrivals of each of the next seven days. A chance is held against the staffed beds that it was issued
+              with; acknowledged hours are told apart. A withdrawn log takes its scores with it.
             </p>
             <p>
               Coverage is compared with what each interval really holds, since counts are whole. Pinball loss and the
@@ -262,10 +284,17 @@ export function HowNumbersAreMadePage() {
             </p>
             <p>
               Once a week the scores of the model in use are checked for what chance does not explain, by cumulative
-              sums. On simulated site-years of 260 visits a day with nightly logs it spoke up wrongly 0.9 times a year,
-              saw a change of level by 10 % within three weeks in 92 of 100 runs, and ranges 20 % too narrow within
-              twelve in 98. At 70 visits a day: 0.9 times, 63 and 98. With weekly logs it speaks up wrongly 1.1 times a
-              year.
+              sums. On simulated site-years of 260 visits a day with nightly logs it spoke up wrongly 0.8 times a year,
+              saw a change of level by 10 % within three weeks in 91 of 100 runs, and ranges 20 % too narrow within
+              twelve in 99; with weekly logs 0.95 times, 93 and 98. At 70 visits a day with nightly logs: 0.8 times, 61
+              and 98.
+            </p>
+            <p>
+              Before a candidate is approved it can be tried beside the model in use on past weeks. Each forecasts a
+              week from what it would have known before it: a model fitted earlier is itself, its level moved on; before
+              the end of its own visits it is the fit that its method would have made then. The same weeks, counts and
+              random numbers serve both, and a difference is called one only past two standard errors, those of
+              resampled weeks and of the simulation together.
             </p>
           </Part>
           <Part id="briefs">

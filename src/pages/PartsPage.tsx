@@ -1,14 +1,19 @@
-import { useState } from 'react';
+import { useRef, useState } from 'react';
 import type { ReactNode } from 'react';
+import { NeedStrip } from '../../shared/charts/NeedStrip.tsx';
+import type { NeedColumn } from '../../shared/charts/need-columns.ts';
 import { Button } from '../components/Button.tsx';
 import { DataTable } from '../components/DataTable.tsx';
 import { Dialog } from '../components/Dialog.tsx';
 import { SelectField, TextField } from '../components/Field.tsx';
 import { Mark } from '../components/Mark.tsx';
 import { Notice } from '../components/Notice.tsx';
+import { PictureTools } from '../components/PictureTools.tsx';
+import { ReadNeed } from '../components/ReadNeed.tsx';
 import { PageHead } from '../components/PageHead.tsx';
 import { RiskKey } from '../components/RiskKey.tsx';
 import { Skeleton } from '../components/Skeleton.tsx';
+import { announce } from '../lib/announce.ts';
 
 const colours = {
   'Grounds and ink': ['water', 'paper', 'ink', 'ink2', 'ink3', 'hair', 'edge'],
@@ -37,6 +42,22 @@ const example = Array.from({ length: 400 }, (_, index) => ({
   beds: (index * 37) % 60,
 }));
 
+const hours = Array.from({ length: 12 }, (_, index) => `${String(12 + index)}:00`);
+const need = hours.map((_, index): NeedColumn => {
+  const middle = 16 + 6 * Math.sin(index / 3);
+  return {
+    kind: 'forecast',
+    at: index * 3600,
+    staffed: 20,
+    p5: middle - 4,
+    p25: middle - 2,
+    p50: middle,
+    p75: middle + 2,
+    p90: middle + 4,
+    p95: middle + 5,
+  };
+});
+
 function Part({ title, children }: { title: string; children: ReactNode }) {
   return (
     <section className="grid gap-3 border-t border-hair pt-4">
@@ -49,6 +70,7 @@ function Part({ title, children }: { title: string; children: ReactNode }) {
 /** /parts, in development only: every part the pages are made of, in the theme that is set. */
 export function PartsPage() {
   const [open, setOpen] = useState(false);
+  const drawing = useRef<HTMLDivElement>(null);
   return (
     <>
       <PageHead tab="Parts" title="Parts" lede={<p>What the pages are made of, as the configuration has it.</p>} />
@@ -111,6 +133,35 @@ export function PartsPage() {
             Enter a new one before you act.
           </Notice>
           <Skeleton className="h-10 w-2/3" label="Loading" />
+        </Part>
+        <Part title="A drawing that is read, and saved">
+          <div ref={drawing} className="w-max max-w-full overflow-x-auto">
+            <ReadNeed label="Need by hour, an example" columns={need} names={hours} columnWidth={40}>
+              <NeedStrip
+                id="parts-need"
+                columns={need}
+                staffed={[{ at: 0, beds: 20 }]}
+                columnWidth={40}
+                height={104}
+                tall
+                counted
+              />
+            </ReadNeed>
+          </div>
+          <PictureTools of={drawing} title="Need by hour, an example" />
+        </Part>
+        <Part title="Results told in passing">
+          <div className="flex flex-wrap gap-4">
+            <Button look="second" onClick={() => announce('The exception was added.')}>
+              Tell a result
+            </Button>
+            <Button
+              look="second"
+              onClick={() => announce('The day was taken out.', () => announce('It was put back.'))}
+            >
+              One that can be undone
+            </Button>
+          </div>
         </Part>
         <Part title="Table">
           <DataTable

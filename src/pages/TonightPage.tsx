@@ -6,54 +6,47 @@ import { useDocumentTitle } from '../components/PageHead.tsx';
 import { PanelBoundary } from '../components/PanelBoundary.tsx';
 import { Skeleton } from '../components/Skeleton.tsx';
 import { NightLogPanel } from '../features/outlook/NightLogPanel.tsx';
-import { useCensus, useSite, useTonight } from '../features/outlook/queries.ts';
 import { TonightView } from '../features/outlook/TonightView.tsx';
+import { useTonightParts } from '../features/outlook/use-tonight-parts.ts';
 import { useSession } from '../features/sign-in/session.ts';
 
 /** /sites/:siteId/tonight */
 export function TonightPage() {
   const { siteId = '' } = useParams();
   useDocumentTitle('Tonight');
-  const permissions = useSession().sites.find((candidate) => candidate.id === siteId)?.permissions ?? [];
-  const site = useSite(siteId);
-  const tonight = useTonight(siteId);
-  const census = useCensus(siteId);
+  const session = useSession();
+  const permissions = session.sites.find((candidate) => candidate.id === siteId)?.permissions ?? [];
+  const loading = useTonightParts(session.person.id, siteId, session.keptAt !== undefined);
+  const { parts } = loading;
 
-  if (!site.data || !tonight.data || (!census.data && !census.error)) {
-    const failed = [site, tonight].find((query) => query.error && !query.data);
-    if (failed) {
-      return (
-        <div className="page-pad max-w-3xl py-8">
-          <ProblemNotice
-            error={failed.error}
-            retrying={failed.isFetching}
-            onRetry={() => {
-              void site.refetch();
-              void tonight.refetch();
-              void census.refetch();
-            }}
-          />
-        </div>
-      );
-    }
-    return <TonightSkeleton />;
+  if (!parts) {
+    if (!loading.error) return <TonightSkeleton />;
+    return (
+      <div className="page-pad max-w-3xl py-8">
+        <ProblemNotice error={loading.error} retrying={loading.fetching} onRetry={loading.refetch} />
+      </div>
+    );
   }
   return (
     <TonightView
-      tonight={tonight.data}
-      loadedAt={tonight.dataUpdatedAt}
-      site={site.data}
-      census={census.data}
+      tonight={parts.tonight}
+      loadedAt={loading.loadedAt}
+      site={parts.site}
+      census={parts.census ?? undefined}
       rights={{
         enterCensus: permissions.includes('census:enter'),
         changeBeds: permissions.includes('staffed-beds:change-now'),
         acknowledge: permissions.includes('risk:acknowledge'),
       }}
-      refreshError={tonight.error}
+      stale={
+        loading.fromDevice || loading.refreshError
+          ? { error: loading.refreshError, fromDevice: loading.fromDevice }
+          : null
+      }
       howHref={paths.howNumbersAreMade()}
       nightLog={
         <PanelBoundary>
-          <NightLogPanel site={site.data} />
+          <NightLogPanel site={parts.site} />
         </PanelBoundary>
       }
       emptyActions={

@@ -38,7 +38,7 @@ export function VisitLogPage() {
     );
   }
   const state = stateWord(log);
-  const visits = formatCount(log.rows, 'visit');
+  const visits = log.kind === 'hourly counts' ? formatCount(log.rows, 'hourly count') : formatCount(log.rows, 'visit');
   const title =
     log.status === 'loading'
       ? `Loading ${visits}.`

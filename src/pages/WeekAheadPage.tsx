@@ -70,6 +70,17 @@ export function WeekAheadPage() {
           </>
         ) : null
       }
+      setLimit={
+        permissions.includes('site-settings:edit') ? (
+          <>
+            The limit is kept in{' '}
+            <Link to={paths.siteSettings(siteId)} className="link font-semibold text-ink">
+              Site settings
+            </Link>
+            .
+          </>
+        ) : null
+      }
       how={
         <Link to={paths.howNumbersAreMade('week-ahead')} className="link text-quiet font-semibold print:hidden">
           How the numbers are made

@@ -1,13 +1,18 @@
 import { mkdirSync } from 'node:fs';
 import { fileURLToPath } from 'node:url';
+import { parseArgs } from 'node:util';
 import type { Browser, BrowserContextOptions, Page } from 'playwright-core';
 import { openBrowser, openPage, signIn, startBuiltDemo } from '../support/journey.ts';
+import { hardTimes } from './hard-times.ts';
 import { axeFindings, layoutShift, scriptMeter, shiftCounter, sidewaysOverflow } from './measure.ts';
 import { auditedPages, type AuditedPage } from './pages.ts';
 
 /**
- * `npm run audit [-- --only NAME]`, after a build: every page in three widths and two themes. Pictures go to
- * test-output/audit; findings are printed and end the run with 1.
+ * `npm run audit`, after a build: every page in three widths and two themes. Pictures go to test-output/audit; findings
+ * are printed and end the run with 1. `-- --only NAME` looks at the pages whose names hold NAME (several: commas between);
+ * `--url ADDRESS` at a demo that is running already, whatever it was built from; `--to FOLDER` puts the pictures
+ * elsewhere; `--pictures` takes pictures and measures nothing; `--hard` tries only a failing and a slow server and a slow
+ * device (timings are worth something only with nothing else running).
  */
 const widths = [390, 820, 1440] as const;
 const themes = ['light', 'dark'] as const;
@@ -15,26 +20,36 @@ const themes = ['light', 'dark'] as const;
 const mostShift = 0.02;
 /** Scripts of a first load, compressed, bytes. */
 const mostScript = 220_000;
-const pictures = fileURLToPath(new URL('../../test-output/audit', import.meta.url));
+const { values: asked } = parseArgs({
+  options: {
+    only: { type: 'string' },
+    url: { type: 'string' },
+    to: { type: 'string' },
+    pictures: { type: 'boolean' },
+    hard: { type: 'boolean' },
+  },
+});
+const pictures = asked.to ?? fileURLToPath(new URL('../../test-output/audit', import.meta.url));
 
 type StorageState = NonNullable<BrowserContextOptions['storageState']>;
 
-const at = process.argv.indexOf('--only');
-const only = at < 0 ? undefined : process.argv[at + 1];
-const chosen = auditedPages.filter(({ name }) => only === undefined || name.includes(only));
+const only = asked.only?.split(',');
+const chosen = auditedPages.filter(({ name }) => only?.some((part) => name.includes(part)) ?? true);
 const print = (text: string) => process.stdout.write(`${text}\n`);
 const findings: string[] = [];
 
-const sessions = new Map<string, StorageState>();
+/** An idle session locks itself after a quarter of an hour: a person signs in anew before that. */
+const sessionAge = 8 * 60_000;
+const sessions = new Map<string, { state: StorageState; since: number }>();
 async function sessionOf(browser: Browser, url: string, username: string | null): Promise<StorageState | undefined> {
   if (username === null) return undefined;
   const known = sessions.get(username);
-  if (known) return known;
+  if (known && Date.now() - known.since < sessionAge) return known.state;
   const { page } = await openPage(browser);
   await signIn(page, url, username);
   const state = await page.context().storageState();
   await page.context().close();
-  sessions.set(username, state);
+  sessions.set(username, { state, since: Date.now() });
   return state;
 }
 
@@ -76,7 +91,7 @@ async function look(browser: Browser, url: string, audited: AuditedPage): Promis
     broken += found.length;
     for (const finding of found) findings.push(`${audited.name}, ${where}: ${finding}`);
   };
-  for (const width of widths) {
+  for (const width of asked.hard ? [] : widths) {
     for (const theme of themes) {
       const { page, noise } = await openPage(browser, {
         viewport: { width, height: width === 390 ? 844 : width === 820 ? 1180 : 1000 },
@@ -94,7 +109,7 @@ async function look(browser: Browser, url: string, audited: AuditedPage): Promis
       if (shift >= mostShift) report(where, [`layout shift ${shift.toFixed(3)}, limit ${String(mostShift)}`]);
       scripts = Math.max(scripts, await measureScripts());
       await audited.prepare?.(page);
-      report(where, await axeFindings(page));
+      if (!asked.pictures) report(where, await axeFindings(page));
       report(where, await sidewaysOverflow(page));
       await page.screenshot({ path: `${pictures}/${audited.name}-${String(width)}-${theme}.png`, fullPage: true });
       report(where, noise);
@@ -102,10 +117,11 @@ async function look(browser: Browser, url: string, audited: AuditedPage): Promis
     }
   }
   // 320 px is a window of 1,280 at 400 %; 640 is one at 200 %.
-  for (const [name, width, height] of [
+  const narrow = [
     ['320 px', 320, 720],
     ['200 % zoom', 640, 400],
-  ] as const) {
+  ] as const;
+  for (const [name, width, height] of asked.hard ? [] : narrow) {
     const { page } = await openPage(browser, {
       viewport: { width, height },
       deviceScaleFactor: name === '320 px' ? 1 : 2,
@@ -119,6 +135,8 @@ async function look(browser: Browser, url: string, audited: AuditedPage): Promis
     await page.screenshot({ path: `${pictures}/${audited.name}-${String(width)}.png`, fullPage: true });
     await page.context().close();
   }
+  if (!asked.pictures)
+    report('hard times', await hardTimes(browser, address, audited, state ? { storageState: state } : {}));
   if (scripts > mostScript) report('first load', [`scripts ${String(scripts)} bytes, limit ${String(mostScript)}`]);
   row.push(
     audited.name.padEnd(22),
@@ -132,14 +150,15 @@ async function look(browser: Browser, url: string, audited: AuditedPage): Promis
 }
 
 mkdirSync(pictures, { recursive: true });
-const running = await startBuiltDemo();
+const running = asked.url === undefined ? await startBuiltDemo() : null;
+const url = running?.url ?? asked.url ?? '';
 const browser = await openBrowser();
 try {
   print(
     ['page'.padEnd(22), 'as'.padEnd(12), 'scripts'.padStart(9), 'shift'.padStart(9), 'findings'.padStart(9)].join('  '),
   );
   for (const audited of chosen) {
-    await look(browser, running.url, audited).catch((error: unknown) => {
+    await look(browser, url, audited).catch((error: unknown) => {
       const why = error instanceof Error ? error.message : String(error);
       findings.push(`${audited.name}: could not be looked at: ${why}`);
       print(`    ${findings.at(-1) ?? ''}`);
@@ -147,7 +166,7 @@ try {
   }
 } finally {
   await browser.close();
-  await running.stop();
+  await running?.stop();
 }
 print(findings.length === 0 ? 'Nothing found.' : `${String(findings.length)} findings.`);
 process.exitCode = findings.length === 0 ? 0 : 1;

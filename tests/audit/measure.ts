@@ -1,4 +1,3 @@
-import { gzipSync } from 'node:zlib';
 import { AxeBuilder } from '@axe-core/playwright';
 import type { Page, Response } from 'playwright-core';
 
@@ -12,6 +11,25 @@ export const shiftCounter = `
     for (const entry of list.getEntries()) if (!entry.hadRecentInput) window.layoutShift += entry.value;
   }).observe({ type: 'layout-shift', buffered: true });
 `;
+
+/** Keeps the slowest interaction, press to next paint; goes into the page before its own scripts. */
+export const interactionCounter = `
+  window.slowest = { name: '', duration: 0 };
+  new PerformanceObserver((list) => {
+    for (const entry of list.getEntries()) {
+      if (entry.interactionId && entry.duration > window.slowest.duration) {
+        const at = entry.target;
+        const what = at ? at.tagName.toLowerCase() + ' ' + (at.getAttribute('aria-label') ?? at.textContent ?? '').trim().slice(0, 40) : '';
+        window.slowest = { name: entry.name + ' on ' + what, duration: entry.duration };
+      }
+    }
+  }).observe({ type: 'event', durationThreshold: 16, buffered: true });
+`;
+
+/** The slowest interaction so far: what it was, and its milliseconds to the next paint. */
+export function worstInteraction(page: Page): Promise<{ name: string; duration: number }> {
+  return page.evaluate<{ name: string; duration: number }>('window.slowest');
+}
 
 /** The page's own failings against WCAG 2.2 AA, one line each. */
 export async function axeFindings(page: Page): Promise<string[]> {
@@ -53,7 +71,7 @@ export function sidewaysOverflow(page: Page): Promise<string[]> {
   })()`);
 }
 
-/** Counts the scripts of one page load, compressed as a proxy would. */
+/** Counts the scripts of one page load, bytes as the server sends them. */
 export function scriptMeter(page: Page): () => Promise<number> {
   const scripts: Response[] = [];
   page.on('response', (response) => {
@@ -61,7 +79,7 @@ export function scriptMeter(page: Page): () => Promise<number> {
   });
   return async () => {
     let bytes = 0;
-    for (const script of scripts) bytes += gzipSync(await script.body()).length;
+    for (const script of scripts) bytes += (await script.request().sizes()).responseBodySize;
     return bytes;
   };
 }

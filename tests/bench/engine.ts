@@ -1,90 +1,12 @@
 import { once } from 'node:events';
 import { Worker } from 'node:worker_threads';
-import { makeVisitLog } from '../../demo/make-visit-log.ts';
-import { demoSeed, demoSites } from '../../demo/farrowmere.ts';
-import { calendarDays, outages } from '../../demo/farrowmere-calendar.ts';
-import { dispositionCode } from '../../shared/domain/disposition.ts';
-import { localDate, makeZone } from '../../shared/domain/zoned-time.ts';
-import { countHourly } from '../../shared/forecasting/count-hourly.ts';
-import { evaluateArrivals } from '../../shared/forecasting/evaluate-arrivals.ts';
-import { exactNeed } from '../../shared/forecasting/exact-need.ts';
-import { lognormalNodes } from '../../shared/forecasting/factor-nodes.ts';
-import { finiteBeds } from '../../shared/forecasting/finite-beds.ts';
-import { fitArrivals } from '../../shared/forecasting/fit-arrivals.ts';
-import { fitStays } from '../../shared/forecasting/fit-stays.ts';
-import { issueOutlook } from '../../shared/forecasting/issue-outlook.ts';
-import type { OutlookInput } from '../../shared/forecasting/outlook-types.ts';
-import type { OutlookModel } from '../../shared/forecasting/prepare-need.ts';
-import type { CalendarDay, ExposureGap, VisitTable } from '../../shared/forecasting/visit-table.ts';
-import { simulateWaitingPart, type WaitingPlan } from '../../shared/forecasting/waiting-simulation.ts';
+import type * as ExactNeed from '../../shared/forecasting/exact-need.ts';
+import type * as FactorNodes from '../../shared/forecasting/factor-nodes.ts';
+import type * as FiniteBeds from '../../shared/forecasting/finite-beds.ts';
+import type * as IssueOutlook from '../../shared/forecasting/issue-outlook.ts';
+import { built } from './built.ts';
 import { measure, milliseconds, summarise, type Bench } from './measure.ts';
-import { whatIfBenches } from './what-if.ts';
-
-const hour = 3600;
-const day = 86_400;
-const site = demoSites[0];
-const zone = makeZone(site.timeZone);
-/** The bench's own now: a fixed Tuesday evening, so that every run does the same work. */
-const now = Date.UTC(2026, 10, 24, 19) / 1000;
-
-interface SiteLog {
-  visits: VisitTable;
-  from: number;
-  calendar: CalendarDay[];
-  gaps: ExposureGap[];
-}
-
-/** Visits of the larger demo site over some years, in columns. Three years hold about 285,000; `times` copies them to more. */
-function siteLog(years: number, times = 1): SiteLog {
-  const from = Date.UTC(2026 - years, 10, 24) / 1000;
-  const rows = makeVisitLog({ site, from, to: now, seed: demoSeed });
-  const place = new Map(site.areas.map((area, index) => [area.id, index]));
-  const length = Math.round(rows.length * times);
-  const pick = (index: number) => rows[index % rows.length];
-  const column = (value: (row: (typeof rows)[number]) => number | null) =>
-    Float64Array.from({ length }, (_, index) => value(pick(index)) ?? NaN);
-  return {
-    from,
-    visits: {
-      length,
-      area: Uint8Array.from({ length }, (_, index) => place.get(pick(index).areaId) ?? 0),
-      arrivalAt: column((row) => row.arrivalAt),
-      bedSpaceAt: column((row) => row.bedSpaceAt),
-      admissionDecisionAt: column((row) => row.admissionDecisionAt),
-      departureAt: column((row) => row.departureAt),
-      disposition: Uint8Array.from({ length }, (_, index) => {
-        const { disposition } = pick(index);
-        return disposition === null ? 255 : dispositionCode[disposition];
-      }),
-      byAmbulance: Uint8Array.from({ length }, (_, index) => (pick(index).byAmbulance ? 1 : 0)),
-    },
-    calendar: calendarDays(site.id, localDate(from), localDate(now + 366 * day)),
-    gaps: outages(site.id, zone, from, now).map((gap) => ({ area: null, ...gap })),
-  };
-}
-
-function fitSite({ visits, from, calendar, gaps }: SiteLog): OutlookModel {
-  const counts = countHourly(visits, site.areas.length, zone, from, now, gaps);
-  return {
-    arrival: fitArrivals({ counts, calendar: calendar.filter((entry) => entry.date <= localDate(now)) }),
-    stay: fitStays({
-      visits,
-      areas: site.areas.length,
-      zone,
-      window: { from, to: now },
-      facts: { selectedBy: 'arrived', takenAt: now, missingDeparture: 'still present' },
-      gaps,
-      calendar,
-    }),
-    calendar,
-  };
-}
-
-let fitted: OutlookModel | null = null;
-function demoModel(): OutlookModel {
-  fitted ??= fitSite(siteLog(1.5));
-  return fitted;
-}
+import { demoModel, outlookInput } from './site-log.ts';
 
 interface NeedSpeed {
   /** Million patients a second, by the clock and by processor time. */
@@ -111,12 +33,11 @@ const inThread = `
 `;
 
 /**
- * Speeds of the need simulation as it is shipped: the built files in a thread of their own, as the server has them. Run
- * through tsx, whose output V8 compiles worse, the same code is a seventh slower.
+ * Speeds of the need simulation as it is shipped: the built files in a thread of their own, as the server has them.
  */
 async function needSpeeds(runs: number): Promise<NeedSpeed[]> {
   const from = new URL('../../dist/shared/forecasting/', import.meta.url).href;
-  const workerData = { from, model: demoModel(), input: outlookInput(10_000) };
+  const workerData = { from, model: await demoModel(), input: outlookInput(10_000) };
   const thread = new Worker(inThread, { eval: true, execArgv: [], workerData });
   const speeds: NeedSpeed[] = [];
   for (let run = 0; run < runs; run += 1) {
@@ -129,62 +50,13 @@ async function needSpeeds(runs: number): Promise<NeedSpeed[]> {
   return speeds.slice(1);
 }
 
-function outlookInput(replications: number): OutlookInput {
-  return {
-    issuedAt: now,
-    timeZone: site.timeZone,
-    hours: Array.from({ length: 36 }, (_, index) => now + (index + 1) * hour),
-    areas: site.areas.map((area, index) => ({
-      areaId: area.id,
-      census: {
-        takenAt: now - 1200,
-        present: [3, 24, 12, 6, 8][index],
-        waiting: index === 1 ? 4 : 0,
-        boarding: [1, 7, 0, 0, 2][index],
-      },
-      staffedBeds: [{ at: now, beds: site.plan[index].halfHours[38] }],
-      spaces: area.spaces,
-      safeMinimum: area.safeMinimum,
-      bedStep: area.bedStep,
-      alertLimit: area.alertLimit,
-    })),
-    undecided: { takenAt: now - 1200, waiting: 3 },
-    planningRisk: 0.1,
-    shifts: [
-      { name: 'Late', from: now - 5 * hour, to: now + 2.5 * hour },
-      { name: 'Night', from: now + 2 * hour, to: now + 12.5 * hour },
-      { name: 'Early', from: now + 12 * hour, to: now + 19.5 * hour },
-    ],
-    arrivalsSince: null,
-    seed: 7,
-    replications,
-  };
-}
-
-/** A week of one department with sixty beds, 11 arrivals an hour on average, stays of 4.5 h in a bed space. */
-function waitingPlan(): WaitingPlan {
-  const segments = 168;
-  return {
-    seed: 3,
-    segmentAt: Float64Array.from({ length: segments + 1 }, (_, k) => k),
-    ratePerHour: Float64Array.from({ length: segments }, (_, k) => 11 + 5 * Math.sin(((k - 9) * Math.PI) / 12)),
-    beds: new Int32Array(segments).fill(60),
-    steps: Float64Array.of(1),
-    hazardPerHour: [new Float64Array(segments).fill(1 / 4.5)],
-    impatiencePerHour: 0,
-    redraw: null,
-    inBedSpaces: [40],
-    waiting: 0,
-    highest: 400,
-    waitLimitHours: 1,
-  };
-}
-
 export const engineBenches: Bench[] = [
   {
     name: 'need simulation',
     run: async () => {
       const speeds = await needSpeeds(8);
+      const { issueOutlook } = await built<typeof IssueOutlook>('forecasting/issue-outlook');
+      const model = await demoModel();
       const figure = { unit: 'million patients/s', better: 'higher', goal: 8 } as const;
       return [
         summarise(
@@ -198,32 +70,17 @@ export const engineBenches: Bench[] = [
           0.5,
         ),
         await measure({ name: 'whole outlook, 10,000 replications, one core', unit: 'ms', better: 'lower' }, () =>
-          milliseconds(() => issueOutlook(demoModel(), outlookInput(10_000))),
+          milliseconds(() => issueOutlook(model, outlookInput(10_000))),
         ),
       ];
     },
   },
   {
-    name: 'waiting simulation',
-    run: async () => [
-      await measure(
-        {
-          name: 'waiting simulation, M_t/M/60 over a week, one core',
-          unit: 'million patients/s',
-          better: 'higher',
-          goal: 5.5,
-        },
-        () => {
-          const startedAt = performance.now();
-          const part = simulateWaitingPart(waitingPlan(), 0, 1000);
-          return part.patients / (performance.now() - startedAt) / 1000;
-        },
-      ),
-    ],
-  },
-  {
     name: 'exact methods',
     run: async () => {
+      const { exactNeed } = await built<typeof ExactNeed>('forecasting/exact-need');
+      const { lognormalNodes } = await built<typeof FactorNodes>('forecasting/factor-nodes');
+      const { finiteBeds } = await built<typeof FiniteBeds>('forecasting/finite-beds');
       const hours = new Float64Array(168).fill(1);
       const rate = Float64Array.from({ length: 168 }, (_, k) => 0.5 + 0.4 * Math.sin(((k - 9) * Math.PI) / 12));
       const hazard = Float64Array.from({ length: 168 }, (_, k) => 0.22 + 0.05 * Math.sin(((k - 14) * Math.PI) / 12));
@@ -265,39 +122,6 @@ export const engineBenches: Bench[] = [
             for (const { value } of nodes)
               finiteBeds({ ...beds, ratePerHour: beds.ratePerHour.map((each) => each * value) });
           }),
-        ),
-      ];
-    },
-  },
-  {
-    name: 'fit',
-    run: async () => {
-      const log = siteLog(3, 450_000 / 285_000);
-      return [
-        await measure(
-          {
-            name: `fit of three years, ${String(log.visits.length)} visits, 5 areas, 20 streams`,
-            unit: 's',
-            better: 'lower',
-            goal: 5,
-          },
-          async () => (await milliseconds(() => fitSite(log))) / 1000,
-          3,
-        ),
-      ];
-    },
-  },
-  ...whatIfBenches(demoModel, now),
-  {
-    name: 'backtest',
-    run: async () => {
-      const log = siteLog(3, 450_000 / 285_000);
-      const counts = countHourly(log.visits, site.areas.length, zone, log.from, now, log.gaps);
-      return [
-        await measure(
-          { name: 'backtest of 52 weeks, arrivals at every level', unit: 's', better: 'lower', goal: 60 },
-          async () => (await milliseconds(() => evaluateArrivals(counts, log.calendar))) / 1000,
-          1,
         ),
       ];
     },

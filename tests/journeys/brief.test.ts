@@ -68,6 +68,16 @@ async function walkBrief(browser: Browser, url: string, mailbox: string): Promis
   await reader.page.getByRole('button', { name: 'Yes, send it to me' }).click();
   await reader.page.getByRole('heading', { name: 'Confirmed' }).waitFor();
 
+  // So does one that the mail server will find no mailbox for.
+  const nowhere = `bounce-${String(Date.now())}@trust.example`;
+  await page.getByLabel('Name').fill('Former board office');
+  await page.getByLabel('E-mail address').fill(nowhere);
+  await page.getByRole('button', { name: 'Ask the address' }).click();
+  const second = await mailTo(nowhere, /do you want it/);
+  await reader.page.goto(/http\S+\/mail\/confirm\/\S+/.exec(second.text ?? '')?.[0] ?? '');
+  await reader.page.getByRole('button', { name: 'Yes, send it to me' }).click();
+  await reader.page.getByRole('heading', { name: 'Confirmed' }).waitFor();
+
   // A draft is composed, looked at as a mail program shows it, approved and sent.
   await page.getByRole('button', { name: 'Compose a draft now' }).click();
   await page.waitForURL(/\/briefs\/[\w-]+$/);
@@ -81,6 +91,20 @@ async function walkBrief(browser: Browser, url: string, mailbox: string): Promis
     .getByRole('row', { name: new RegExp(outside) })
     .getByText('Sent,')
     .waitFor();
+
+  // What comes back stands beside its recipient, and stops what is sent there.
+  const returned = page.getByRole('row', { name: new RegExp(nowhere) });
+  await returned.getByText('Sent,').waitFor();
+  await expect
+    .poll(
+      async () => {
+        await page.reload();
+        await returned.getByText('Sent,').waitFor();
+        return returned.innerText();
+      },
+      { timeout: 30_000 },
+    )
+    .toMatch(/Came back, .*Returned: 5\.1\.1: 550/s);
 
   // The mail: readable on a phone, nothing wider than it, pictures in place.
   const sent = await mailTo(outside, /weekly brief: /);
@@ -112,5 +136,8 @@ async function walkBrief(browser: Browser, url: string, mailbox: string): Promis
     .getByRole('row', { name: new RegExp(outside) })
     .getByText('Unsubscribed')
     .waitFor();
+  await page.getByText('Mail to it came back').waitFor();
+  await page.getByRole('button', { name: 'The address of Former board office is right: send to it again' }).click();
+  await page.getByText('Mail to it came back').waitFor({ state: 'detached' });
   expect([...operations.noise, ...executive.noise]).toEqual([]);
 }

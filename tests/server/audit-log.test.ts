@@ -13,6 +13,7 @@ import { migrations } from '../../server/database/migrations/index.ts';
 import { AuditEvent } from '../../server/entities/AuditEvent.ts';
 import { AuditNote } from '../../server/entities/AuditNote.ts';
 import { BedChange } from '../../server/entities/BedChange.ts';
+import { StaffedBedPlan } from '../../server/entities/StaffedBedPlan.ts';
 import { recordAudit, recordOwnAudit, type AuditSource } from '../../server/http/audit.ts';
 import { buildPerson, buildSite, type BuiltSite } from '../support/build-site.ts';
 import { openTestServer, type SignedIn, type TestServer } from '../support/test-server.ts';
@@ -281,6 +282,55 @@ describe('a note that should not have been typed', () => {
     expect(await newest()).toMatchObject({ event: 'audit-note.taken-out', subject: String(id), siteId: built.site.id });
     expect(await verifyAuditChain(database.read)).toMatchObject({ whole: true });
     expect((await operations.send('post', path, { reason: 'It named a patient' })).status).toBe(409);
+  });
+
+  test('that one press left at several places is taken out of each; the same words of another time stay', async () => {
+    const { database } = server.deps;
+    const { site, areas } = built;
+    const reason = 'Beds for Mr Example';
+    const change = (id: string, madeAt: number) => ({
+      ...{ id, siteId: site.id, areaId: areas[0].id, kind: 'dated exception' as const, fromAt: 1, untilAt: 2 },
+      ...{ beds: 3, blocked: 0, reason, madeBy: 'x', madeAt },
+    });
+    const context = { ...source, requestId: 'adoption' };
+    await database.write(async (manager) => {
+      await manager.insert(BedChange, [
+        change('adopted 1', source.now),
+        change('adopted 2', source.now),
+        change('earlier', 1),
+      ]);
+      const plan = { id: 'adopted plan', siteId: site.id, version: 1, savedAt: source.now, savedBy: 'x', reason };
+      await manager.insert(StaffedBedPlan, plan);
+      await recordAudit(manager, context, 'staffed-beds.plan-saved', plan.id, {}, reason);
+      await recordAudit(manager, context, 'scenario.adopted', 'scenario', {}, reason);
+    });
+    const { id } = await newest();
+    const path = `${sitePath()}/${String(id)}/redaction`;
+    expect((await operations.send('post', path, { reason: 'It named a patient' })).status).toBe(204);
+    expect(await database.read.countBy(AuditNote, { text: reason })).toBe(0);
+    const changes = await database.read.find(BedChange, { where: { kind: 'dated exception' }, order: { id: 'ASC' } });
+    expect(changes.map((each) => [each.id, each.reason])).toEqual([
+      ['adopted 1', 'Text taken out'],
+      ['adopted 2', 'Text taken out'],
+      ['earlier', reason],
+    ]);
+    expect((await database.read.findOneByOrFail(StaffedBedPlan, { id: 'adopted plan' })).reason).toBe('Text taken out');
+    expect(await verifyAuditChain(database.read)).toMatchObject({ whole: true });
+  });
+
+  test('of an exception of the plan is taken out of it', async () => {
+    const { database } = server.deps;
+    const change = {
+      ...{ id: 'exception', siteId: built.site.id, areaId: built.areas[0].id, kind: 'dated exception' as const },
+      ...{ fromAt: 1, untilAt: 2, beds: 3, blocked: 0, reason: 'About Ms Example', madeBy: 'x', madeAt: 2 },
+    };
+    await database.write(async (manager) => {
+      await manager.insert(BedChange, change);
+      await recordAudit(manager, source, 'staffed-beds.exception-added', change.id, {}, change.reason);
+    });
+    const path = `${sitePath()}/${String((await newest()).id)}/redaction`;
+    expect((await operations.send('post', path, { reason: 'It named a patient' })).status).toBe(204);
+    expect((await database.read.findOneByOrFail(BedChange, { id: change.id })).reason).toBe('Text taken out');
   });
 
   test('of another site is not found; an event without a note has none to take out', async () => {

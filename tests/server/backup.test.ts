@@ -1,14 +1,4 @@
-import {
-  appendFileSync,
-  copyFileSync,
-  mkdtempSync,
-  readdirSync,
-  readFileSync,
-  rmSync,
-  statSync,
-  writeFileSync,
-} from 'node:fs';
-import { tmpdir } from 'node:os';
+import { appendFileSync, copyFileSync, readdirSync, readFileSync, statSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { setImmediate as nextTurn } from 'node:timers/promises';
 import Database from 'better-sqlite3';
@@ -24,6 +14,7 @@ import { Job } from '../../server/entities/Job.ts';
 import { SessionRow } from '../../server/entities/SessionRow.ts';
 import { askForBackup, backupJobKind } from '../../server/features/server-status/make-backup.job.ts';
 import { recordOwnAudit } from '../../server/http/audit.ts';
+import { makeTempFolder, removeTempFolder } from '../support/temp-folder.ts';
 import { openTestServer } from '../support/test-server.ts';
 
 let folder: string;
@@ -33,14 +24,14 @@ const data = () => join(folder, 'data');
 const source = () => databaseFile(data());
 
 beforeEach(async () => {
-  folder = mkdtempSync(join(tmpdir(), 'shoalmark-backup-'));
+  folder = makeTempFolder('backup');
   dir = join(folder, 'backups');
   database = await openDatabase(data());
   for (let i = 0; i < 50; i += 1) await write(i);
 });
 afterEach(async () => {
   await database.close().catch(() => undefined);
-  rmSync(folder, { recursive: true });
+  removeTempFolder(folder);
 });
 
 /** One change with its audit row, in one transaction: a copy that splits it would be told by the counts. */

@@ -1,6 +1,7 @@
 import { afterAll, beforeAll, beforeEach, describe, expect, test } from 'vitest';
 import type { BodyOf, ReplyOf } from '../../shared/api/contract.ts';
-import type { getBrief, listBriefs, listRecipients, saveBriefSettings } from '../../shared/api/briefs.ts';
+import type { listRecipients } from '../../shared/api/brief-recipients.ts';
+import type { getBrief, listBriefs, saveBriefSettings } from '../../shared/api/briefs.ts';
 import { AuditEvent } from '../../server/entities/AuditEvent.ts';
 import { Brief } from '../../server/entities/Brief.ts';
 import { BriefDelivery } from '../../server/entities/BriefDelivery.ts';

@@ -50,6 +50,7 @@ describe('settings', () => {
       idleMinutes: 15,
       sessionHours: 12,
       requestsPerMinute: 1200,
+      deliveryReportToken: null,
       metricsToken: null,
       backupDir: null,
       backupEveryHours: 24,

@@ -1,3 +1,4 @@
+import { rmSync } from 'node:fs';
 import { afterAll, beforeAll, beforeEach, expect, test } from 'vitest';
 import supertest from 'supertest';
 import { startMailbox, type Mailbox } from '../../demo/mailbox.ts';
@@ -6,6 +7,8 @@ import type { VisitLogCheck } from '../../shared/api/visit-logs.ts';
 import { newId } from '../../server/database/new-id.ts';
 import { GroupRole } from '../../server/entities/GroupRole.ts';
 import { Job } from '../../server/entities/Job.ts';
+import { VisitLog } from '../../server/entities/VisitLog.ts';
+import { checkedTextFile, forgetChecked } from '../../server/features/visit-logs/checked-file.ts';
 import { Person } from '../../server/entities/Person.ts';
 import { buildPerson, buildSite, type BuiltSite } from '../support/build-site.ts';
 import { buildVisitCsv, visitLine } from '../support/build-visit-csv.ts';
@@ -136,4 +139,46 @@ test('what a person uploads by hand is told on the page only, and a good file by
   expect(byHand.status).toBe(422);
   expect((await send(good())).status).toBe(201);
   expect(await server.deps.database.read.countBy(Job, { siteId: built.site.id })).toBe(0);
+});
+
+const acceptSent = async (csv: string) => {
+  const checked = await send(csv);
+  const { checkId } = checked.body as VisitLogCheck;
+  const accepted = await supertest(server.app.express)
+    .post(logsPath)
+    .set('authorization', `Bearer ${secret}`)
+    .send({
+      checkId,
+      goodRowsOnly: false,
+      facts: { selectedBy: 'arrived', takenAt: now, missingDeparture: 'unknown' },
+    });
+  expect(accepted.status, accepted.text).toBe(202);
+  return { checkId, ...(accepted.body as { logId: string; jobId: string }) };
+};
+
+test('a file that was accepted and then cannot be loaded is told of: its sender had heard that all was well', async () => {
+  await server.deps.jobs.stop();
+  const { checkId, logId } = await acceptSent(good());
+  // The checked file is lost before it is loaded, as after a disk was cleared.
+  rmSync(checkedTextFile(server.deps.config.dataDir, checkId));
+  await forgetChecked(server.deps.config.dataDir, checkId);
+  await server.restartJobs();
+  await server.workJobs();
+  const [{ subject, text }] = mails();
+  expect(subject).toBe('Saltby Bay: visits not loaded');
+  expect(text).toContain('Saltby Bay: a file of visits was accepted but could not be loaded.');
+  expect(text).toContain('The checked file is no longer there. Send it again.');
+  expect(text).toContain('Nothing of it was kept; everything loaded before is unchanged.');
+  expect(text).toContain(`/sites/${built.site.id}/logs/${logId}`);
+  expect(mails().length).toBe(2);
+});
+
+test('a load that a person cancels is told to nobody', async () => {
+  await server.deps.jobs.stop();
+  const { jobId, logId } = await acceptSent(good());
+  expect(await server.deps.jobs.cancel(jobId)).toBe(true);
+  await server.restartJobs();
+  await server.workJobs();
+  expect(await server.deps.database.read.findOneByOrFail(VisitLog, { id: logId })).toMatchObject({ status: 'failed' });
+  expect(mails()).toEqual([]);
 });

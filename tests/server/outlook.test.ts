@@ -11,7 +11,7 @@ import { OutlookRow } from '../../server/entities/OutlookRow.ts';
 import { computeOutlook } from '../../server/features/outlook/compute-outlook.ts';
 import { digestOf, OutlookIssuer } from '../../server/features/outlook/issuer.ts';
 import { readOutlook } from '../../server/features/outlook/present.ts';
-import { makeSimulationPool } from '../../server/simulation/pool.ts';
+import { makeSimulationPool, type SimulationPool } from '../../server/simulation/pool.ts';
 import { softwareVersion } from '../../server/software-version.ts';
 import { fitModel, giveModel } from '../support/build-model.ts';
 import { flatPlan } from '../support/build-plan.ts';
@@ -395,6 +395,46 @@ describe('the hours just past', () => {
 });
 
 describe('Tonight', () => {
+  test('that is asked for again and again while one computes brings one further, which sees all that was saved', async () => {
+    await readied();
+    const { deps } = server;
+    // A pool that computes only once it is told to.
+    let release: () => void = () => undefined;
+    const told = new Promise<void>((resolve) => (release = resolve));
+    let runs = 0;
+    const held: SimulationPool = {
+      threads: deps.simulation.threads,
+      close: () => Promise.resolve(),
+      async run(...task) {
+        runs += 1;
+        await told;
+        return deps.simulation.run(...task);
+      },
+    };
+    const issuer = new OutlookIssuer({ ...deps, simulation: held }, 400);
+    const first = issuer.issue(built.site.id, 'census saved');
+    await expect.poll(() => runs).toBeGreaterThan(0);
+
+    const further: ReturnType<OutlookIssuer['issue']>[] = [];
+    for (const present of [5, 6, 7]) {
+      await enter({ areas: [count(acute, present)] });
+      further.push(issuer.issue(built.site.id, 'census saved'));
+    }
+    await enter({ areas: [count(resuscitation, 2)] });
+    further.push(issuer.issue(built.site.id, 'staffed beds changed'));
+    release();
+    const one = await first;
+    const others = new Set((await Promise.all(further)).map(({ outlookId }) => outlookId));
+    await issuer.settle();
+    expect(others.size).toBe(1);
+    const [other] = others;
+    expect(other).not.toBe(one.outlookId);
+    expect(issuer.computing(built.site.id)).toBe(false);
+    const present = async (id: string | null) => (await getOutlook(id!)).census.map((entry) => entry.present);
+    expect(await present(one.outlookId)).toEqual([null, null]);
+    expect(await present(other)).toEqual([7, 2]);
+  });
+
   test('warns by the age of the census, until it is dropped', async () => {
     await readied();
     await enter({ areas: [count(acute, 9), count(resuscitation, 1)] });

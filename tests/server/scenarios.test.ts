@@ -8,7 +8,7 @@ import type { OutlookInput } from '../../shared/forecasting/outlook-types.ts';
 import { previewNeed } from '../../shared/forecasting/preview-need.ts';
 import { readExactWire } from '../../shared/forecasting/read-exact-wire.ts';
 import { needChangeOf } from '../../shared/forecasting/scenario.ts';
-import { readStaffedBedSteps } from '../../server/database/read-staffed-beds.ts';
+import { readPlan, readStaffedBedSteps } from '../../server/database/read-staffed-beds.ts';
 import type { ArrivalModelRow } from '../../server/entities/ArrivalModelRow.ts';
 import { AuditEvent } from '../../server/entities/AuditEvent.ts';
 import { BedChange } from '../../server/entities/BedChange.ts';
@@ -303,8 +303,8 @@ describe('a confirmation', () => {
 });
 
 describe('adopting', () => {
-  const adopt = (id: string, reason = 'Agreed at the bed meeting') =>
-    operations.send('post', `${path}/scenarios/${id}/adoption`, { reason });
+  const adopt = (id: string, reason = 'Agreed at the bed meeting', as?: 'every week') =>
+    operations.send('post', `${path}/scenarios/${id}/adoption`, { reason, ...(as ? { as } : {}) });
   const inForce = async (at: number) => {
     const { database } = server.deps;
     const zone = makeZone(built.site.timeZone);
@@ -358,6 +358,44 @@ describe('adopting', () => {
       409,
       'The staffed beds of Acute have changed since this plan was saved.',
     ]);
+  });
+
+  test('for every week saves a new version of the weekly plan, with its own half hours alone changed', async () => {
+    const plan = await confirmed([bedsMore(2), bedsMore(-1, nine + 30 * hour, nine + 32 * hour)]);
+    // Two hours of it have passed: they come again with the week.
+    server.time.now = nine + 2 * hour;
+    const reply = await adopt(plan.id, 'Agreed for the winter', 'every week');
+    expect(reply.status, reply.text).toBe(200);
+    expect(reply.body).toMatchObject({ exceptions: 0, planVersion: 2, scenario: { adoptedAs: 'every week' } });
+    const { read } = server.deps.database;
+    const saved = await readPlan(read, built.site.id);
+    expect(saved!.plan).toMatchObject({ version: 2, savedBy: 'Ola Manager', reason: 'Agreed for the winter' });
+    const halfHours = saved!.areas.find(({ areaId }) => areaId === acute.id)!.halfHours;
+    // Monday 21:00 is half hour 42: ten hours of two beds more; Wednesday 03:00 is half hour 102: two hours of one fewer.
+    const expected = Array.from({ length: 336 }, (_, i) => (i >= 42 && i < 62 ? 14 : i >= 102 && i < 106 ? 11 : 12));
+    expect(halfHours).toEqual(expected);
+    expect(saved!.areas.find(({ areaId }) => areaId === resuscitation.id)!.halfHours).toEqual(new Array(336).fill(3));
+    expect(await read.countBy(BedChange, { siteId: built.site.id })).toBe(0);
+    expect((await eventsOf(plan.id)).at(-1)).toBe('scenario.adopted');
+    expect(await eventsOf(saved!.plan.id)).toEqual(['staffed-beds.plan-saved']);
+  });
+
+  test('for every week is refused where an exception stood in place of the weekly plan, or below the safe minimum', async () => {
+    const exception = { areaId: acute.id, fromAt: nine, untilAt: nine + hour, beds: 13, reason: 'Fair' };
+    expect((await operations.send('post', `${path}/staffed-bed-exceptions`, exception)).status).toBe(201);
+    const plan = await confirmed([bedsMore(1)]);
+    const reply = await adopt(plan.id, 'Agreed', 'every week');
+    expect(reply.status).toBe(400);
+    expect(faultsOf(reply.text)).toEqual([
+      expect.stringMatching(
+        /^Acute, Mon 21:00: An exception of that date stands in place of the weekly plan \(13 for 12\)/,
+      ),
+      expect.stringMatching(/^Acute, Mon 21:30: /),
+    ]);
+    const low = await confirmed([bedsMore(-5, nine + 24 * hour, nine + 25 * hour)]);
+    expect(faultsOf((await adopt(low.id, 'Agreed', 'every week')).text)[0]).toContain('below the safe minimum of 8');
+    expect((await readPlan(server.deps.database.read, built.site.id))!.plan.version).toBe(1);
+    expect((await adopt(plan.id)).body).toMatchObject({ exceptions: 2, planVersion: null });
   });
 
   test('leaves out what has passed by then', async () => {

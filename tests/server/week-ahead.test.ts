@@ -21,6 +21,7 @@ import {
   makeWeekOutlookKind,
   weekOutlookJobKind,
 } from '../../server/features/week-ahead/issue-week-outlook.job.ts';
+import { lookBacksDue } from '../../server/features/week-ahead/look-backs-due.ts';
 import { lastDailyTime, weekOutlookDue } from '../../server/features/week-ahead/week-outlook-due.ts';
 import { fitModel, giveModel } from '../support/build-model.ts';
 import { flatPlan } from '../support/build-plan.ts';
@@ -349,4 +350,42 @@ describe('countAmbulances', () => {
     expect(count(Array.from({ length: 2000 }, (_, i) => (i % 2 === 0 ? 255 : i % 4 === 1 ? 1 : 0)))).toBeNull();
     expect(count(new Array<number>(2000).fill(0))).toBeNull();
   });
+});
+
+describe('a week that nobody forecast when it began', () => {
+  it('is made afterwards from a model that knew nothing later, shown as such against what came, and never taken for the newest', async () => {
+    server.time.now = start + 100;
+    const before = await latest();
+    expect(before.lastWeek).toBeNull();
+    expect(await lookBacksDue(server.deps.database.read, built.site, server.time.now)).toEqual([]);
+    // Trained to the fifteenth day before: eight days on it counts as too old.
+    const known = { id: newId(), status: 'retired' as const, trainedTo: start - 15 * day + 3600 };
+    await giveModel(server.deps.database, fitted, built, known);
+    const asked = await lookBacksDue(server.deps.database.read, built.site, server.time.now);
+    const times = ['2026-09-13T04:00:00Z', '2026-09-14T04:00:00Z'].map((text) => Date.parse(text) / 1000);
+    expect(asked).toEqual(times.map((at) => ({ at, modelId: known.id })));
+    await issue();
+    await issue();
+    expect(await lookBacksDue(server.deps.database.read, built.site, server.time.now)).toEqual([]);
+    const made = (await rows()).filter(({ trigger }) => trigger === 'recomputed');
+    expect(made.map(({ issuedAt }) => issuedAt)).toEqual(times);
+    const after = await latest();
+    expect(after.outlook?.id).toBe(before.outlook?.id);
+    expect(after.lastWeek).toMatchObject({ recomputed: true, issuedAt: times[1] });
+    // The log speaks of those days: Tuesday 15 to Sunday 20 September, and Monday is not over.
+    expect(after.lastWeek?.days.map(({ count }) => count !== null)).toEqual([
+      true,
+      true,
+      true,
+      true,
+      true,
+      true,
+      false,
+    ]);
+    const { days } = after.lastWeek ?? { days: [] };
+    for (const { count, p2_5, p97_5 } of days.slice(0, 6)) {
+      expect(count).toBeGreaterThan(0.5 * p2_5);
+      expect(count).toBeLessThan(1.5 * p97_5);
+    }
+  }, 60_000);
 });

@@ -10,9 +10,10 @@ const sites = [
 ];
 
 /**
- * Site-years of known truth: how often the watch is wrong, and how soon it is right. Demanded of nightly logs at 260 visits a day:
- * at most one false flag a year, a 10 % change of level seen within three weeks in 90 % of runs, intervals 20 % too narrow within
- * twelve. Other sites are reported. (The truth is the simulation's own.)
+ * Site-years of known truth, of other seeds than those that the limits were chosen on: how often the watch is wrong, and how soon
+ * it is right. Demanded of nightly and of weekly logs: at most one false flag a year; at 260 visits a day a 10 % change of level
+ * seen within three weeks in 90 % of runs, intervals 20 % too narrow within twelve. What a smaller site sees of a change of level
+ * is reported. (The truth is the simulation's own.)
  */
 export const driftWatch: Soak = {
   name: 'drift-watch',
@@ -25,10 +26,9 @@ export const driftWatch: Soak = {
           `${rates.falsePerYear.toFixed(2)} false flags a year; 10 % level within three weeks ${percent(rates.shiftWithinThree)}; ` +
           `20 % too narrow within twelve ${percent(rates.narrowWithinTwelve)} (${String(runs)} runs)`,
       );
-      if (rates.falsePerYear > 1.15) throw new Error('more than one false flag a year');
+      if (rates.falsePerYear > 1) throw new Error('more than one false flag a year');
       if (rates.narrowWithinTwelve < 0.9) throw new Error('too narrow intervals are seen too late');
       if (site.visitsPerDay !== 260) continue;
-      if (site.daysPerLog === 1 && rates.falsePerYear > 1) throw new Error('more than one false flag a year');
       if (rates.shiftWithinThree < 0.9) throw new Error('a change of level is seen too late');
     }
   },

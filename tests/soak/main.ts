@@ -1,5 +1,6 @@
 import { badRequests } from './bad-requests.ts';
 import { cleanFiles } from './clean-files.ts';
+import { load } from './load.ts';
 import { killImport } from './kill-import.ts';
 import { killServer } from './kill-server.ts';
 import { plantedIdentifiers } from './planted-identifiers.ts';
@@ -11,6 +12,7 @@ import type { Soak } from './soak.ts';
 const soaks: Soak[] = [
   badRequests,
   killServer,
+  load,
   killBrief,
   recoverArrivals,
   plantedIdentifiers,

@@ -62,7 +62,7 @@ export const plantedIdentifiers: Soak = {
 /** What the server's reader says of an identifier; null if it found none. */
 async function byServer(file: string, text: string): Promise<string | null> {
   writeFileSync(file, text);
-  const outcome = await readVisitLog({ file, now, areas, port: null, study: null });
+  const outcome = await readVisitLog({ file, now, areas, timeZone: 'Europe/London', port: null, study: null });
   return outcome.refused !== null && outcome.identifying ? JSON.stringify(outcome.refused) : null;
 }
 

@@ -86,12 +86,30 @@ describe.each(Object.entries(themes))('the %s theme', (_, theme) => {
   });
 
   const views: [string, (hex: string) => number][] = [
-    ['full colour', (hex) => luminance(linear(hex))],
+    // What a grey print keeps of a colour is its luminance.
+    ['full colour, and printed in grey', (hex) => luminance(linear(hex))],
     ...Object.entries(deficiencies).map(([name, matrix]): [string, (hex: string) => number] => [
       name,
       (hex) => luminance(seenAs(hex, matrix)),
     ]),
   ];
+  it.each(views)('keeps the figures of the risk scale and of the heat map at 4.5 or more, in %s', (_name, view) => {
+    const contrastSeen = (one: string, other: string) => {
+      const [high, low] = [view(one), view(other)].sort((a, b) => b - a);
+      return (high + 0.05) / (low + 0.05);
+    };
+    steps.forEach((step, index) => {
+      expect(contrastSeen(theme[step], theme[inks[index]]), step).toBeGreaterThanOrEqual(4.5);
+    });
+    for (const tone of ['1', '2', '3', '4', '5'] as const) {
+      expect(contrastSeen(theme[`q${tone}`], theme[`q${tone}i`]), `heat map ${tone}`).toBeGreaterThanOrEqual(4.5);
+    }
+  });
+  it.each(views)('tells the tones of the heat map apart by lightness, in %s', (_name, view) => {
+    const tones = (['q1', 'q2', 'q3', 'q4', 'q5'] as const).map((tone) => lightness(view(theme[tone])));
+    const gaps = tones.slice(1).map((tone, index) => tone - tones[index]);
+    expect(new Set(gaps.map(Math.sign)).size, tones.join(' ')).toBe(1);
+  });
   it.each(views)('runs one way in lightness, neighbours at least 8 apart, in %s', (_name, view) => {
     const tones = steps.map((step) => lightness(view(theme[step])));
     const gaps = tones.slice(1).map((tone, index) => tone - tones[index]);

@@ -4,7 +4,18 @@ import { afterEach } from 'vitest';
 
 afterEach(cleanup);
 
-// jsdom has neither; the pages ask for them.
+// jsdom has none of them; the pages ask for them.
+const missing = {
+  scrollIntoView: () => undefined,
+  hasPointerCapture: () => false,
+  setPointerCapture: () => undefined,
+  releasePointerCapture: () => undefined,
+};
+for (const [name, value] of Object.entries(missing)) {
+  // Tests of workers run without a document.
+  if (typeof Element !== 'undefined' && !(name in Element.prototype))
+    Object.defineProperty(Element.prototype, name, { value, writable: true });
+}
 class NoResizeObserver implements ResizeObserver {
   observe(): void {}
   unobserve(): void {}

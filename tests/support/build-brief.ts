@@ -50,6 +50,7 @@ export async function buildRecipients(
         confirmedAt: 1001,
         unsubscribedAt: null,
         removedAt: null,
+        returnedAt: null,
         ...more,
       }),
     );

@@ -18,6 +18,8 @@ export interface KnownArea {
   /** True for an area that prints the chance within the hour. */
   wholeHour?: boolean;
   shape?: StayShape | null;
+  /** The admitted stream's hazard is that of the decision, and boarding follows it. */
+  staged?: boolean;
 }
 
 /** A plan whose parameters are all known, so that a simulation can be held against exact methods. */
@@ -55,6 +57,8 @@ export function buildNeedPlan(areas: KnownArea[], seed: number, shifts: [from: n
         beds: new Int32Array(bins).fill(area.beds),
         highest: 400,
         boarders: area.boarding ?? 0,
+        staged: area.staged ?? false,
+        outflowPlaces: [0, 1, 0, 0, 1],
         wholeHour: area.wholeHour ?? false,
       };
     }),

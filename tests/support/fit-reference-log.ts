@@ -117,6 +117,8 @@ export function modelWithParameters(
       alpha: known.shares[a].map((block) => block.map((share) => share * certain)),
     })),
     shareBeforeDecision: known.shareBeforeDecision,
+    // The reference follows whole admitted stays.
+    toDecision: undefined,
     outflow: { others: still, admitted: still },
   };
   return { arrival, stay, calendar: [] };

@@ -1,10 +1,8 @@
 import { spawn, type ChildProcess } from 'node:child_process';
-import { mkdtempSync, rmSync } from 'node:fs';
 import { createServer } from 'node:net';
-import { tmpdir } from 'node:os';
-import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { chromium, type Browser, type BrowserContextOptions, type Page } from 'playwright-core';
+import { makeTempFolder, removeTempFolder } from './temp-folder.ts';
 
 const root = fileURLToPath(new URL('../..', import.meta.url));
 
@@ -14,6 +12,10 @@ export interface RunningDemo {
   dataDir: string;
   pid: number;
   output(): string;
+  /** Ends the process as an outage does; what it stored stays. */
+  pause(): Promise<void>;
+  /** Starts it again at the same address on what it stored. */
+  resume(): Promise<void>;
   stop(): Promise<void>;
 }
 
@@ -40,44 +42,66 @@ async function freePorts(): Promise<number> {
 
 /** Starts `npm run demo`'s second half (the build is there) and waits for its address. */
 export async function startBuiltDemo(env: Record<string, string> = {}): Promise<RunningDemo> {
-  const dataDir = mkdtempSync(join(tmpdir(), 'shoalmark-journey-'));
+  const dataDir = makeTempFolder('journey');
   const port = await freePorts();
-  const child: ChildProcess = spawn(process.execPath, ['dist/demo/main.js'], {
-    cwd: root,
-    // The test runner has a BASE_URL of its own in its environment; an empty one is as if unset.
-    env: { ...process.env, BASE_URL: '', LOG_LEVEL: 'warn', PORT: String(port), DATA_DIR: dataDir, ...env },
-    stdio: ['ignore', 'pipe', 'pipe'],
-  });
   let output = '';
-  const ready = new Promise<void>((resolve, reject) => {
-    const read = (chunk: Buffer) => {
-      output += chunk.toString();
-      if (output.includes('Stop with Ctrl+C')) resolve();
-    };
-    child.stdout?.on('data', read);
-    child.stderr?.on('data', read);
-    child.once('exit', (code) => {
-      reject(new Error(`the demo ended with code ${String(code)}:\n${output}`));
+  const start = async (): Promise<ChildProcess> => {
+    const begun = output.length;
+    const child: ChildProcess = spawn(process.execPath, ['dist/demo/main.js'], {
+      cwd: root,
+      // The test runner has a BASE_URL of its own in its environment; an empty one is as if unset.
+      env: { ...process.env, BASE_URL: '', LOG_LEVEL: 'warn', PORT: String(port), DATA_DIR: dataDir, ...env },
+      stdio: ['ignore', 'pipe', 'pipe'],
     });
-  });
-  await ready;
+    await new Promise<void>((resolve, reject) => {
+      const read = (chunk: Buffer) => {
+        output += chunk.toString();
+        if (output.includes('Stop with Ctrl+C', begun)) resolve();
+      };
+      child.stdout?.on('data', read);
+      child.stderr?.on('data', read);
+      child.once('exit', (code) => {
+        reject(new Error(`the demo ended with code ${String(code)}:\n${output}`));
+      });
+    });
+    child.removeAllListeners('exit');
+    return child;
+  };
+  const end = async (running: ChildProcess) => {
+    const ended = new Promise((resolve) => running.once('exit', resolve));
+    running.kill('SIGTERM');
+    await ended;
+  };
+  let child: ChildProcess | null = null;
+  // A runner that ends before its demo was stopped leaves no process behind.
+  const kill = () => child?.kill('SIGKILL');
+  process.once('exit', kill);
+  child = await start();
   return {
     url: `http://127.0.0.1:${String(port)}`,
     dataDir,
-    pid: child.pid ?? 0,
+    get pid() {
+      return child?.pid ?? 0;
+    },
     output: () => output,
+    async pause() {
+      if (child) await end(child);
+      child = null;
+    },
+    async resume() {
+      child = await start();
+    },
     async stop() {
-      child.removeAllListeners('exit');
-      const ended = new Promise((resolve) => child.once('exit', resolve));
-      child.kill('SIGTERM');
-      await ended;
-      rmSync(dataDir, { recursive: true, force: true });
+      if (child) await end(child);
+      child = null;
+      process.removeListener('exit', kill);
+      removeTempFolder(dataDir);
     },
   };
 }
 
 /** The system's Chromium, headless. */
-export function openBrowser(): Promise<Browser> {
+export function openBrowser(more: readonly string[] = []): Promise<Browser> {
   return chromium.launch({
     executablePath: process.env.CHROMIUM_PATH ?? '/usr/bin/chromium',
     args: [
@@ -88,6 +112,7 @@ export function openBrowser(): Promise<Browser> {
       '--disable-background-networking',
       '--disable-component-update',
       '--disable-sync',
+      ...more,
     ],
   });
 }

@@ -1,6 +1,5 @@
 import { spawn } from 'node:child_process';
-import { cpSync, mkdtempSync, readdirSync, rmSync } from 'node:fs';
-import { tmpdir } from 'node:os';
+import { cpSync, readdirSync } from 'node:fs';
 import { join } from 'node:path';
 import { setTimeout as wait } from 'node:timers/promises';
 import type { VisitLogCheck } from '../../shared/api/visit-logs.ts';
@@ -11,6 +10,7 @@ import { Visit } from '../../server/entities/Visit.ts';
 import { VisitLog } from '../../server/entities/VisitLog.ts';
 import { buildPerson, buildSite } from './build-site.ts';
 import { buildVisitCsv } from './build-visit-csv.ts';
+import { makeTempFolder, removeTempFolder } from './temp-folder.ts';
 import { openTestServer } from './test-server.ts';
 
 const now = 1_790_000_000;
@@ -35,7 +35,7 @@ export interface KilledImport {
 /** Makes a data folder with an accepted file whose rows are still to be loaded. */
 async function prepare(rows: number): Promise<{ folder: string; siteId: string }> {
   const server = await openTestServer({ now });
-  const folder = mkdtempSync(join(tmpdir(), 'shoalmark-kill-'));
+  const folder = makeTempFolder('kill');
   try {
     const { site } = await buildSite(server.deps.database);
     const person = await buildPerson(server.deps.database, [{ role: 'steward', siteId: site.id }]);
@@ -110,7 +110,7 @@ export async function killImports(
   const { folder, siteId } = await prepare(rows);
   const folders = [folder];
   const copy = () => {
-    const made = mkdtempSync(join(tmpdir(), 'shoalmark-kill-'));
+    const made = makeTempFolder('kill');
     folders.push(made);
     cpSync(folder, made, { recursive: true });
     return made;
@@ -138,6 +138,6 @@ export async function killImports(
       });
     }
   } finally {
-    for (const made of folders) rmSync(made, { recursive: true, force: true });
+    for (const made of folders) removeTempFolder(made);
   }
 }

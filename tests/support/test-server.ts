@@ -35,6 +35,7 @@ export const testConfig: Config = {
   sessionHours: 12,
   // A test asks faster than any person.
   requestsPerMinute: 1_000_000,
+  deliveryReportToken: null,
   metricsToken: null,
   backupDir: null,
   backupEveryHours: 0,
@@ -57,7 +58,8 @@ export interface TestServer {
   /** A client that carries a signed-in person's cookie and anti-forgery token. */
   signedInAs(personId: string): Promise<SignedIn>;
   nobody(): ReturnType<typeof supertest>;
-  close(): Promise<void>;
+  /** @param options.keepData leaves the data folder to whoever named it */
+  close(options?: { keepData?: boolean }): Promise<void>;
 }
 
 export interface SignedIn {
@@ -72,12 +74,19 @@ export async function openTestServer({
   now = 1_790_000_000,
   config = {},
   replications = 400,
-}: { now?: number; config?: Partial<Config>; replications?: number } = {}): Promise<TestServer> {
-  const dataDir = mkdtempSync(join(tmpdir(), 'shoalmark-test-'));
+  log,
+}: {
+  now?: number;
+  config?: Partial<Config>;
+  replications?: number;
+  /** Is given each line of the log. */
+  log?: (line: string) => void;
+} = {}): Promise<TestServer> {
+  const dataDir = config.dataDir ?? mkdtempSync(join(tmpdir(), 'shoalmark-test-'));
   const time = { now };
   const full: Config = { ...testConfig, dataDir, ...config };
   const database = await openDatabase(dataDir);
-  const logger = makeLogger(full.logLevel);
+  const logger = makeLogger(full.logLevel, log && { write: log });
   const clock = () => time.now;
   const pool = makeSimulationPool(1);
   const simulation = makeSimulationPool(full.threads);
@@ -139,13 +148,13 @@ export async function openTestServer({
       };
     },
     nobody: () => supertest(app.express),
-    async close() {
+    async close({ keepData = false } = {}) {
       if (working) await jobs.stop();
       await issuer.settle();
       await pool.close();
       await simulation.close();
       await database.close();
-      rmSync(dataDir, { recursive: true, force: true });
+      if (!keepData) rmSync(dataDir, { recursive: true, force: true });
     },
   };
 }

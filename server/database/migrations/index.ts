@@ -10,6 +10,10 @@ import { Briefs1796115000004 } from './1796115000004-Briefs.ts';
 import { TrackRecord1796115000005 } from './1796115000005-TrackRecord.ts';
 import { Administration1796115000006 } from './1796115000006-Administration.ts';
 import { LogFormats1796115000007 } from './1796115000007-LogFormats.ts';
+import { HourlyCounts1796116000001 } from './1796116000001-HourlyCounts.ts';
+import { ReturnedBriefs1796116000002 } from './1796116000002-ReturnedBriefs.ts';
+import { AdoptedAs1796116000003 } from './1796116000003-AdoptedAs.ts';
+import { TrackRecordAhead1796116000004 } from './1796116000004-TrackRecordAhead.ts';
 
 /** In order of their dates. */
 export const migrations = [
@@ -25,4 +29,8 @@ export const migrations = [
   TrackRecord1796115000005,
   Administration1796115000006,
   LogFormats1796115000007,
+  HourlyCounts1796116000001,
+  ReturnedBriefs1796116000002,
+  AdoptedAs1796116000003,
+  TrackRecordAhead1796116000004,
 ];

@@ -1,4 +1,5 @@
 import type { CalendarDay } from '../../../shared/forecasting/visit-table.ts';
+import type { StaySource } from '../../../shared/forecasting/fit-hourly-stays.ts';
 import type { ModelParameters } from '../../database/read-model.ts';
 import type { VisitLineage } from '../../database/read-visits.ts';
 import type { ModelDetail } from '../../../shared/api/arrival-models.ts';
@@ -34,6 +35,8 @@ export type FitReply =
       parameters: ModelParameters;
       detail: FittedDetail;
       lineage: VisitLineage[];
+      /** Null where stays come from visits. */
+      staysFrom: StaySource | null;
       trainedFrom: number;
       trainedTo: number;
       visits: number;

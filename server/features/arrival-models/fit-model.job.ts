@@ -67,6 +67,7 @@ export function makeFitKind(deps: Dependencies): JobKind {
           trainedFrom: fitted.trainedFrom,
           trainedTo: fitted.trainedTo,
           visits: fitted.visits,
+          staysFrom: fitted.staysFrom,
           lineage: JSON.stringify(
             fitted.lineage.map(({ logId, fileName, sha256, rows }) => ({ logId, fileName, sha256, rows })),
           ),

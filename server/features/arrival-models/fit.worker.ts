@@ -1,12 +1,15 @@
 import { localDate, makeZone } from '../../../shared/domain/zoned-time.ts';
+import { withCountedArrivals } from '../../../shared/forecasting/counted-hours.ts';
 import { countHourly } from '../../../shared/forecasting/count-hourly.ts';
 import { fitArrivals } from '../../../shared/forecasting/fit-arrivals.ts';
 import { arrivalDiagnostics } from '../../../shared/forecasting/arrival-diagnostics.ts';
+import { fitHourlyStays, type StaySource } from '../../../shared/forecasting/fit-hourly-stays.ts';
 import { fitStays } from '../../../shared/forecasting/fit-stays.ts';
+import type { StayModel } from '../../../shared/forecasting/stay-model.ts';
 import { weeklyRates } from '../../../shared/forecasting/weekly-rates.ts';
 import type { CalendarDay, ExposureGap } from '../../../shared/forecasting/visit-table.ts';
 import { coveredSpans, gapsBetween } from '../../database/covered-spans.ts';
-import { readSiteVisits } from '../../database/read-visits.ts';
+import { readSiteVisits, type SiteVisits } from '../../database/read-visits.ts';
 import type { FitReply, FitRequest } from './fit-input.ts';
 import { blockNames, stayFindings, streamsOf } from './fitted-detail.ts';
 
@@ -28,12 +31,14 @@ export default function fit(request: FitRequest): FitReply {
 function fitSite(request: FitRequest, tell: (share: number, text: string) => void): FitReply {
   const { databaseFile, siteId, timeZone, calendar, now } = request;
   tell(0.02, 'Reading visits');
-  const { table, areaIds, lineage, facts } = readSiteVisits(databaseFile, siteId, -Infinity, request.logIds);
-  if (!facts || table.length === 0) return { refused: 'No accepted visit log holds a visit that counts.' };
+  const { table, areaIds, lineage, facts, hourly } = readSiteVisits(databaseFile, siteId, -Infinity, request.logIds);
   const zone = makeZone(timeZone);
+  const arrivals = withCountedArrivals(table, hourly.counted, zone);
+  if (arrivals.length === 0) return { refused: 'No accepted visit log holds a visit that counts.' };
   const capSeconds = request.stayCapHours * 3600;
   // A log speaks until it was taken; one selected by departures has not seen the last long stayers yet.
-  const covered = coveredSpans(lineage, now, capSeconds);
+  const logs = [...lineage, ...hourly.lineage];
+  const covered = coveredSpans(logs, now, capSeconds);
   if (covered.length === 0) return { refused: 'The accepted logs cover no time that can be used yet.' };
   const from = covered[0].from;
   const to = covered[covered.length - 1].to;
@@ -47,7 +52,7 @@ function fitSite(request: FitRequest, tell: (share: number, text: string) => voi
       }),
   ];
   tell(0.1, 'Counting arrivals by hour');
-  const counts = countHourly(table, areaIds.length, zone, from, to, gaps);
+  const counts = countHourly(arrivals, areaIds.length, zone, from, to, gaps);
   const known = daysUntil(calendar, localDate(zone.toLocal(to)));
   const arrival = fitArrivals({
     counts,
@@ -56,28 +61,19 @@ function fitSite(request: FitRequest, tell: (share: number, text: string) => voi
       tell(0.12 + 0.5 * share, 'Fitting arrivals');
     },
   });
-  const stay = fitStays({
-    visits: table,
-    areas: areaIds.length,
-    zone,
-    window: { from, to },
-    facts: { ...facts, takenAt: Math.min(facts.takenAt, to) },
-    capHours: request.stayCapHours,
-    gaps,
-    calendar,
-    onProgress: (share) => {
-      tell(0.62 + 0.33 * share, 'Fitting length of stay');
-    },
+  const { stay, source } = fitStaysOf(request, { table, areaIds, lineage, facts, hourly }, gaps, (share) => {
+    tell(0.62 + 0.33 * share, 'Fitting length of stay');
   });
   tell(0.97, 'Writing down what was found');
   const areaName = (index: number) => request.areaNames[areaIds[index]] ?? areaIds[index];
   return {
     refused: null,
     parameters: { areaIds, arrival, stay, calendar },
-    lineage,
+    lineage: logs,
+    staysFrom: source,
     trainedFrom: from,
     trainedTo: to,
-    visits: table.length,
+    visits: arrivals.length,
     detail: {
       settings: {
         'weekly profile, half-life in weeks': finite(arrival.settings.profileHalfLifeWeeks),
@@ -107,11 +103,53 @@ function fitSite(request: FitRequest, tell: (share: number, text: string) => voi
           meaning: nameAreas(text, areaName),
           concern: true,
         })),
-        ...arrivalDiagnostics(arrival, counts, table.arrivalAt).findings,
-        ...stayFindings(stay, table.length),
+        ...arrivalDiagnostics(arrival, counts, table.length > 0 ? table.arrivalAt : undefined).findings,
+        ...(source === null ? stayFindings(stay, table.length) : []),
       ],
     },
   };
+}
+
+/** Stays from visits where there are any that can be used, else from hourly counts; the source is null for visits. */
+function fitStaysOf(
+  request: FitRequest,
+  visits: SiteVisits,
+  gaps: readonly ExposureGap[],
+  onProgress: (share: number) => void,
+): { stay: StayModel; source: StaySource | null } {
+  const { table, areaIds, lineage, facts, hourly } = visits;
+  const zone = makeZone(request.timeZone);
+  const shared = { areas: areaIds.length, zone, capHours: request.stayCapHours, calendar: request.calendar };
+  const told = coveredSpans(lineage, request.now, request.stayCapHours * 3600);
+  if (facts && table.length > 0 && told.length > 0) {
+    const window = { from: told[0].from, to: told[told.length - 1].to };
+    const unspoken = gapsBetween(told).map((gap) => ({ area: null, ...gap }));
+    try {
+      const stay = fitStays({
+        ...shared,
+        visits: table,
+        window,
+        facts: { ...facts, takenAt: Math.min(facts.takenAt, window.to) },
+        gaps: [...gaps, ...unspoken],
+        onProgress,
+      });
+      return { stay, source: null };
+    } catch (error) {
+      // Too few visits to learn stays from: counts may do.
+      if (!(error instanceof RangeError) || hourly.counted.length === 0) throw error;
+    }
+  }
+  const counted = coveredSpans(hourly.lineage, request.now, 0);
+  const window = { from: counted[0].from, to: counted[counted.length - 1].to };
+  const { stay, source } = fitHourlyStays({
+    ...shared,
+    counted: hourly.counted,
+    window,
+    gaps,
+    stated: hourly.stated,
+  });
+  onProgress(1);
+  return { stay, source };
 }
 
 /** The engine numbers areas from 1; a page calls them by name. */

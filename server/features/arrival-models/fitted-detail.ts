@@ -84,6 +84,20 @@ export function stayFindings(stay: StayModel, visits: number): FittedDetail['fin
       concern: false,
     },
   ];
+  const stages = (stay.toDecision ?? []).flatMap((stage) => stage ?? []);
+  if (stages.length > 0) {
+    const decided = stages.reduce((sum, stage) => sum + stage.departures, 0);
+    const hours = stages.reduce((sum, stage) => sum + stage.hoursAtRisk, 0) / decided;
+    findings.push({
+      name: 'Time to the admission decision',
+      size: `${hours.toFixed(1)} h on average, in ${String(stages.length)} of ${String(stay.areas)} areas a stage of its own`,
+      meaning:
+        stay.decisionFollows === 'admitted'
+          ? 'Admitted patients first wait for the decision, then board; slow days of the wards hold up both.'
+          : 'Admitted patients first wait for the decision, then board; slow days of the wards hold up boarding alone.',
+      concern: false,
+    });
+  }
   const unusable = leftOut.endsBeforeStart + leftOut.over30Days + leftOut.departureUnknown;
   if (unusable > 0) {
     findings.push({

@@ -19,6 +19,7 @@ export function presentModel(row: ArrivalModelRow, caller: Caller, changed: Mode
     trainedFrom,
     trainedTo,
     visits: row.visits,
+    staysFrom: row.staysFrom,
     weeksOfHistory: trainedFrom !== null && trainedTo !== null ? (trainedTo - trainedFrom) / (7 * 86_400) : 0,
     refreshedAt: row.refreshedAt,
     error: row.error,

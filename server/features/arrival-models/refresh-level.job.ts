@@ -3,6 +3,7 @@ import { id } from '../../../shared/api/common.ts';
 import { newId } from '../../database/new-id.ts';
 import { readModelInUse, readModelParameters } from '../../database/read-model.ts';
 import type { Dependencies } from '../../dependencies.ts';
+import type { EntityManager } from 'typeorm';
 import { ArrivalModelRow } from '../../entities/ArrivalModelRow.ts';
 import { ExposureGapRow } from '../../entities/ExposureGapRow.ts';
 import { Site } from '../../entities/Site.ts';
@@ -11,12 +12,12 @@ import type { JobKind } from '../../jobs/queue.ts';
 import { workerUrl } from '../../simulation/pool.ts';
 import type { RefreshRequest } from './refresh.worker.ts';
 
-export const refreshJobKind = 'arrival-model.refresh-level';
 const payloadSchema = z.object({ siteId: id });
 
 /**
- * Moves the level of the model in use on by newly accepted visits. Structure, profile and stays stay as
- * approved; issued outlooks keep the parameters that they were computed with, so the moved model is a row
+ * Works the level of the model in use out anew: from the model as it was fitted, on by every arrival since then that still
+ * counts. So a log that was withdrawn, or an outage that was declared, leaves no trace in the level. Structure, profile and
+ * stays stay as approved; issued outlooks keep the parameters that they were computed with, so the moved model is a row
  * of its own.
  */
 export function makeRefreshKind(deps: Dependencies, onRefreshed: (siteId: string) => Promise<void>): JobKind {
@@ -29,6 +30,8 @@ export function makeRefreshKind(deps: Dependencies, onRefreshed: (siteId: string
       if (!model || model.trainedTo === null) return;
       const site = await database.read.findOneByOrFail(Site, { id: siteId });
       const parameters = await readModelParameters(database.read, model.id);
+      const base = await baseOf(database.read, model, clock() - site.visitRetentionDays * 86_400);
+      const { arrival } = await readModelParameters(database.read, base.id);
       const gaps = await database.read.findBy(ExposureGapRow, { siteId });
       const request: RefreshRequest = {
         databaseFile: database.file,
@@ -37,8 +40,8 @@ export function makeRefreshKind(deps: Dependencies, onRefreshed: (siteId: string
         stayCapHours: site.stayCapHours,
         gaps: gaps.map((gap) => ({ areaId: gap.areaId, from: gap.fromAt, to: gap.untilAt })),
         areaIds: parameters.areaIds,
-        arrival: parameters.arrival,
-        trainedTo: model.trainedTo,
+        arrival,
+        trainedTo: base.trainedTo ?? model.trainedTo,
         now: clock(),
       };
       const moved = await pool.run<{ arrival: typeof parameters.arrival; trainedTo: number } | null>(
@@ -46,7 +49,7 @@ export function makeRefreshKind(deps: Dependencies, onRefreshed: (siteId: string
         request,
         { signal },
       );
-      if (!moved) return;
+      if (!moved || JSON.stringify(moved.arrival) === JSON.stringify(parameters.arrival)) return;
       const now = clock();
       const movedId = newId();
       const replaced = await database.write(async (manager) => {
@@ -83,4 +86,19 @@ export function makeRefreshKind(deps: Dependencies, onRefreshed: (siteId: string
       if (replaced) await onRefreshed(siteId);
     },
   };
+}
+
+/**
+ * The model that a level is worked out from: the one that was fitted. Where arrivals since then were deleted after the
+ * retention time, the level that they led to is all that is left of them, and it is moved on from there.
+ * @param keptFrom arrivals before it are deleted, UTC seconds
+ */
+async function baseOf(read: EntityManager, model: ArrivalModelRow, keptFrom: number): Promise<ArrivalModelRow> {
+  let base = model;
+  while (base.refreshedFromId !== null) {
+    const before = await read.findOneBy(ArrivalModelRow, { id: base.refreshedFromId });
+    if (!before || (before.trainedTo ?? 0) < keptFrom) return base;
+    base = before;
+  }
+  return base;
 }

@@ -1,4 +1,5 @@
 import { makeZone } from '../../../shared/domain/zoned-time.ts';
+import { withCountedArrivals } from '../../../shared/forecasting/counted-hours.ts';
 import { countHourly } from '../../../shared/forecasting/count-hourly.ts';
 import { refreshLevel } from '../../../shared/forecasting/refresh-level.ts';
 import type { ArrivalModel } from '../../../shared/forecasting/arrival-model.ts';
@@ -21,16 +22,18 @@ export interface RefreshRequest {
 
 const hour = 3600;
 
-/** Moves the level of a model on by the visits since its training; null where there is nothing newer. */
+/** Moves the level of a model on by the arrivals since its training: as it was where nothing newer counts, null where it knows an area too few. */
 export default function refresh(request: RefreshRequest): { arrival: ArrivalModel; trainedTo: number } | null {
   const { databaseFile, siteId, trainedTo, areaIds, now } = request;
   const from = trainedTo - 24 * hour;
-  const { table, areaIds: siteAreaIds, lineage } = readSiteVisits(databaseFile, siteId, from);
-  const covered = coveredSpans(lineage, now, request.stayCapHours * hour)
+  const zone = makeZone(request.timeZone);
+  const { table: visits, areaIds: siteAreaIds, lineage, hourly } = readSiteVisits(databaseFile, siteId, from);
+  const table = withCountedArrivals(visits, hourly.counted, zone);
+  const covered = coveredSpans([...lineage, ...hourly.lineage], now, request.stayCapHours * hour)
     .map((span) => ({ from: Math.max(span.from, from), to: span.to }))
     .filter((span) => span.to > span.from);
   const last = covered.at(-1);
-  if (!last || last.to <= trainedTo + hour) return null;
+  if (!last || last.to <= trainedTo + hour) return { arrival: request.arrival, trainedTo };
   // An area that the model has never seen has no level to move.
   const place = siteAreaIds.map((id) => areaIds.indexOf(id));
   if (place.some((index) => index < 0)) return null;
@@ -45,6 +48,6 @@ export default function refresh(request: RefreshRequest): { arrival: ArrivalMode
         to: Math.min(gap.to, last.to),
       })),
   ];
-  const counts = countHourly(table, areaIds.length, makeZone(request.timeZone), covered[0].from, last.to, gaps);
+  const counts = countHourly(table, areaIds.length, zone, covered[0].from, last.to, gaps);
   return { arrival: refreshLevel(request.arrival, counts), trainedTo: last.to };
 }

@@ -1,3 +1,4 @@
+import { In, type EntityTarget, type ObjectLiteral } from 'typeorm';
 import { withArticle } from '../../../shared/domain/identifier-kind.ts';
 import { screenNote } from '../../../shared/domain/screen-note.ts';
 import type { Dependencies } from '../../dependencies.ts';
@@ -16,16 +17,28 @@ import { recordAudit, type AuditSource } from '../../http/audit.ts';
 /** What stands at the record in place of the text. */
 export const takenOut = 'Text taken out';
 
+/** A record that keeps a copy of a note: the event's subject, or (with a column of time) every row written with the event. */
+interface Holder {
+  entity: EntityTarget<ObjectLiteral>;
+  column: string;
+  writtenAt?: string;
+}
+
 /** The records that keep a copy of the note typed with an event, by the event's name. */
-const holders = {
-  'risk.acknowledged': [Acknowledgement, 'note'],
-  'staffed-beds.changed-now': [BedChange, 'reason'],
-  'staffed-beds.plan-saved': [StaffedBedPlan, 'reason'],
-  'visit-log.withdrawn': [VisitLog, 'reason'],
-  'exposure-gap.declared': [ExposureGapRow, 'reason'],
-  'arrival-model.approved': [ArrivalModelRow, 'reason'],
-  'arrival-model.retired': [ArrivalModelRow, 'reason'],
-} as const;
+const holders: Partial<Record<string, Holder[]>> = {
+  'risk.acknowledged': [{ entity: Acknowledgement, column: 'note' }],
+  'staffed-beds.changed-now': [{ entity: BedChange, column: 'reason' }],
+  'staffed-beds.exception-added': [{ entity: BedChange, column: 'reason' }],
+  'staffed-beds.plan-saved': [{ entity: StaffedBedPlan, column: 'reason' }],
+  'scenario.adopted': [
+    { entity: BedChange, column: 'reason', writtenAt: 'madeAt' },
+    { entity: StaffedBedPlan, column: 'reason', writtenAt: 'savedAt' },
+  ],
+  'visit-log.withdrawn': [{ entity: VisitLog, column: 'reason' }],
+  'exposure-gap.declared': [{ entity: ExposureGapRow, column: 'reason' }],
+  'arrival-model.approved': [{ entity: ArrivalModelRow, column: 'reason' }],
+  'arrival-model.retired': [{ entity: ArrivalModelRow, column: 'reason' }],
+};
 
 /**
  * Takes a note's text out of the trail and of the record that it was typed for. The event stays, and its
@@ -52,15 +65,27 @@ export async function redactNote(
     if (!note) throw conflict('No note was typed with this event.', 'Nothing more to do.');
     if (note.redactedAt !== null) throw conflict('The text was taken out before.', 'Nothing more to do.');
     const by = context.caller?.person.name ?? '';
-    await manager.update(AuditNote, { eventId }, { salt: null, text: null, redactedAt: context.now, redactedBy: by });
-    if (event.event in holders) {
-      const [entity, column] = holders[event.event as keyof typeof holders];
+    const gone = { salt: null, text: null, redactedAt: context.now, redactedBy: by };
+    await manager.update(AuditNote, { eventId }, gone);
+    // What one press did may stand as several events, each with the note.
+    const { siteId: at, requestId } = event;
+    const siblings =
+      requestId === null || at === null
+        ? []
+        : await manager.findBy(AuditEvent, { siteId: at, requestId, at: event.at });
+    if (note.text !== null && siblings.length > 0) {
+      await manager.update(AuditNote, { eventId: In(siblings.map(({ id }) => id)), text: note.text }, gone);
+    }
+    for (const { entity, column, writtenAt } of holders[event.event] ?? []) {
       // A note typed later at the same record stays.
+      const of = writtenAt === undefined ? 'id = :subject' : `"siteId" = :siteId AND "${writtenAt}" = :at`;
       await manager
         .createQueryBuilder()
         .update(entity)
         .set({ [column]: takenOut })
-        .where(`id = :id AND "${column}" = :text`, { id: event.subject, text: note.text })
+        .where(`${of} AND "${column}" = :text`, {
+          ...{ subject: event.subject, siteId: event.siteId, at: event.at, text: note.text },
+        })
         .execute();
     }
     const site = event.siteId === null ? null : await manager.findOneBy(Site, { id: event.siteId });

@@ -25,6 +25,7 @@ export async function whyLeftOut(
   if (!recipient || recipient.removedAt !== null) return 'Removed from the recipients before it was sent.';
   if (recipient.unsubscribedAt !== null) return 'Unsubscribed before it was sent.';
   if (recipient.confirmedAt === null) return 'The address has not confirmed.';
+  if (recipient.returnedAt !== null) return 'Mail to this address came back, and nobody has confirmed it since.';
   if (recipient.personId === null) return null;
   const caller = await readCaller(manager, recipient.personId, now);
   const mayRead = siteIds.every((siteId) => isGranted(caller?.rolesAt.get(siteId) ?? [], 'brief:read'));

@@ -2,9 +2,10 @@ import { domainToASCII } from 'node:url';
 import type { BodyOf } from '../../../shared/api/contract.ts';
 import type {
   addRecipient as addContract,
+  confirmAddress as confirmContract,
   removeRecipient as removeContract,
   setSubscription as subscriptionContract,
-} from '../../../shared/api/briefs.ts';
+} from '../../../shared/api/brief-recipients.ts';
 import { readMailAddress } from '../../../shared/domain/mail-address.ts';
 import { isGranted } from '../../../shared/domain/permission.ts';
 import { newId } from '../../database/new-id.ts';
@@ -50,6 +51,7 @@ export async function addRecipient(
       confirmedAt: person === null ? null : now,
       unsubscribedAt: null,
       removedAt: null,
+      returnedAt: null,
     });
     await manager.save(recipient);
     if (person === null) await ask(deps, manager, context, recipient);
@@ -132,6 +134,22 @@ export async function removeRecipient(
   });
 }
 
+/** Takes an address whose mail came back into use again. */
+export function confirmAddress(
+  { database }: Dependencies,
+  context: SiteContext<typeof confirmContract>,
+): Promise<BriefRecipient> {
+  const { recipientId } = context.params;
+  return database.write(async (manager) => {
+    const recipient = await manager.findOneBy(BriefRecipient, { id: recipientId, siteId: context.site.id });
+    if (!recipient || recipient.removedAt !== null) throw notFound('This recipient');
+    if (recipient.returnedAt === null) throw conflict('No mail to this address has come back.', 'Nothing more to do.');
+    await manager.update(BriefRecipient, { id: recipientId }, { returnedAt: null });
+    await recordAudit(manager, context, 'brief.address-confirmed', recipientId);
+    return Object.assign(recipient, { returnedAt: null });
+  });
+}
+
 /** Own subscription of whoever asks. */
 export async function setSubscription(
   { database }: Dependencies,
@@ -163,6 +181,7 @@ export async function setSubscription(
           ...fresh,
           unsubscribedAt: null,
           removedAt: null,
+          returnedAt: null,
         }),
       );
     }

@@ -1,6 +1,6 @@
 import type { Express, Response } from 'express';
 import rateLimit from 'express-rate-limit';
-import * as api from '../../../shared/api/briefs.ts';
+import * as api from '../../../shared/api/mail-links.ts';
 import type { Dependencies } from '../../dependencies.ts';
 import { BriefRecipient } from '../../entities/BriefRecipient.ts';
 import { HttpError } from '../../errors.ts';

@@ -1,4 +1,5 @@
 import type { EntityManager } from 'typeorm';
+import type { Recipient } from '../../../shared/api/brief-recipients.ts';
 import type * as api from '../../../shared/api/briefs.ts';
 import type { Brief } from '../../entities/Brief.ts';
 import type { BriefDelivery } from '../../entities/BriefDelivery.ts';
@@ -14,8 +15,8 @@ export async function tallyOf(
   read: EntityManager,
   briefIds: readonly string[],
 ): Promise<(briefId: string) => api.BriefTally> {
-  const rows = await read.query<{ briefId: string; state: BriefDelivery['state']; count: number }[]>(
-    `SELECT briefId, state, count(*) AS count FROM brief_delivery
+  const rows = await read.query<{ briefId: string; state: BriefDelivery['state']; count: number; returned: number }[]>(
+    `SELECT briefId, state, count(*) AS count, count(returnedAt) AS returned FROM brief_delivery
      WHERE briefId IN (SELECT value FROM json_each(?)) AND recipientId IS NOT NULL GROUP BY briefId, state`,
     [JSON.stringify(briefIds)],
   );
@@ -30,18 +31,22 @@ export async function tallyOf(
       refused: count('refused', 'given up'),
       notKnown: count('not known'),
       leftOut: count('left out'),
+      returned: rows.filter((row) => row.briefId === briefId).reduce((sum, row) => sum + row.returned, 0),
     };
   };
 }
 
 export function presentDelivery(row: BriefDelivery): api.Delivery {
-  const { id, name, address, recipientId, state, attempts, attemptedAt, sentAt, lastAnswer } = row;
-  return { id, name, address, test: recipientId === null, state, attempts, attemptedAt, sentAt, lastAnswer };
+  const { recipientId, id, name, address, state, attempts, attemptedAt, sentAt, lastAnswer } = row;
+  const { returnedAt, returnedBecause } = row;
+  const sent = { state, attempts, attemptedAt, sentAt, lastAnswer, returnedAt, returnedBecause };
+  return { id, name, address, test: recipientId === null, ...sent };
 }
 
-export function presentRecipient(row: BriefRecipient): api.Recipient {
-  const { id, name, address, personId, addedBy, addedAt, askedAt, confirmedAt, unsubscribedAt } = row;
-  const state = unsubscribedAt !== null ? 'unsubscribed' : confirmedAt !== null ? 'receives' : 'asked';
+export function presentRecipient(row: BriefRecipient): Recipient {
+  const { id, name, address, personId, addedBy, addedAt, askedAt, confirmedAt, unsubscribedAt, returnedAt } = row;
+  const confirmed = confirmedAt === null ? 'asked' : returnedAt === null ? 'receives' : 'returned';
+  const state = unsubscribedAt !== null ? 'unsubscribed' : confirmed;
   const kind = personId === null ? 'outside' : 'person';
-  return { id, name, address, kind, state, addedBy, addedAt, askedAt, confirmedAt, unsubscribedAt };
+  return { id, name, address, kind, state, addedBy, addedAt, askedAt, confirmedAt, unsubscribedAt, returnedAt };
 }

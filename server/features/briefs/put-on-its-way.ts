@@ -31,6 +31,8 @@ export function newDelivery(
     attemptedAt: null,
     sentAt: null,
     lastAnswer: null,
+    returnedAt: null,
+    returnedBecause: null,
   });
 }
 

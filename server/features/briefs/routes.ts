@@ -10,11 +10,9 @@ import { Job } from '../../entities/Job.ts';
 import { conflict, notAllowed, notFound } from '../../errors.ts';
 import { recordAudit } from '../../http/audit.ts';
 import { addSiteRoute, type RouteTable, type SiteContext } from '../../http/route.ts';
-import { addRecipient, removeRecipient, setSubscription } from './change-recipients.ts';
 import { composeJobKind } from './compose-brief.job.ts';
 import { BriefRefused, composeBrief } from './compose-brief.ts';
-import { presentBrief, presentDelivery, presentRecipient, tallyOf } from './present.ts';
-import { readPeopleToAdd } from './read-people.ts';
+import { presentBrief, presentDelivery, tallyOf } from './present.ts';
 import { enqueueSending, newDelivery, putOnItsWay } from './put-on-its-way.ts';
 import { presentSettings, readSettings, saveSettings } from './settings.ts';
 import { showHtml } from './show-html.ts';
@@ -23,7 +21,7 @@ import { showHtml } from './show-html.ts';
 const draftsKept = 5;
 const listed = 60;
 
-/** Weekly briefs of a site: archive, drafts, sending, schedule, recipients. */
+/** Weekly briefs of a site: archive, drafts, sending, schedule. */
 export function addBriefRoutes(app: Express, table: RouteTable, deps: Dependencies): void {
   const { read, write } = deps.database;
 
@@ -141,26 +139,6 @@ export function addBriefRoutes(app: Express, table: RouteTable, deps: Dependenci
   });
 
   addSiteRoute(app, table, deps, api.saveBriefSettings, (context) => saveSettings(deps, context));
-
-  addSiteRoute(app, table, deps, api.listRecipients, async ({ site, now }) => {
-    const recipients = await read.find(BriefRecipient, {
-      where: { siteId: site.id },
-      order: { addedAt: 'ASC', id: 'ASC' },
-    });
-    const shown = recipients.filter(({ removedAt }) => removedAt === null);
-    return { recipients: shown.map(presentRecipient), people: await readPeopleToAdd(read, site, shown, now) };
-  });
-
-  addSiteRoute(app, table, deps, api.addRecipient, async (context) =>
-    presentRecipient(await addRecipient(deps, context)),
-  );
-
-  addSiteRoute(app, table, deps, api.removeRecipient, async (context) => {
-    await removeRecipient(deps, context);
-    return undefined;
-  });
-
-  addSiteRoute(app, table, deps, api.setSubscription, (context) => setSubscription(deps, context));
 }
 
 type Asking = Pick<SiteContext<{ params: { briefId: string } }>, 'site' | 'caller' | 'deps'> & {

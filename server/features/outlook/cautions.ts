@@ -1,6 +1,6 @@
 import type { Caution, Outlook } from '../../../shared/api/outlooks.ts';
 import type { Span } from '../../database/counting-spans.ts';
-import { groundCautions } from '../../database/ground-cautions.ts';
+import { countCautions, groundCautions } from '../../database/ground-cautions.ts';
 import type { NewestCensus } from '../../database/read-census.ts';
 
 const hour = 3600;
@@ -62,7 +62,7 @@ export function cautionsNow(facts: CautionFacts): Caution[] {
       text: 'Less than a year of visits: not every season has been seen yet.',
     });
   }
-  cautions.push(...groundCautions(now, model.fittedAt, covered));
+  cautions.push(...countCautions(model.staysFrom), ...groundCautions(now, model.fittedAt, covered));
   for (const { date, name } of unusualDays) {
     cautions.push({ kind: 'unusual day', text: `${name} on ${date}: an unusual day, its range is wider.` });
   }

@@ -86,7 +86,8 @@ async function presentInLogs(
   now: number,
 ): Promise<Map<number, Map<number, number>>> {
   const reach = site.stayCapHours * hour;
-  const logs = await read.find(VisitLog, { where: { siteId: site.id, status: 'ready' } });
+  // Hourly counts tell of arrivals, and not of who was there.
+  const logs = await read.find(VisitLog, { where: { siteId: site.id, status: 'ready', kind: 'visits' } });
   const spans = countingSpans(logs);
   const found = new Map<number, Map<number, number>>();
   // Before the longest stay has passed since a log's start, who came earlier is missing from it.

@@ -26,12 +26,20 @@ export function readOutlook(read: EntityManager, siteId: string, outlookId: stri
   return read.findOne(OutlookRow, { where: { siteId, id: outlookId }, select: columns });
 }
 
-/** The newest outlooks of a site, newest first. */
-export function readNewestOutlooks(read: EntityManager, siteId: string, count: number): Promise<OutlookRow[]> {
+/** A clock that is set back by more than this leaves outlooks of a time that has yet to come: they are not read before it. */
+const clockSlackSeconds = 60;
+
+/** The newest outlooks of a site as of now, newest first. */
+export function readNewestOutlooks(
+  read: EntityManager,
+  siteId: string,
+  count: number,
+  now: number,
+): Promise<OutlookRow[]> {
   return read
     .createQueryBuilder(OutlookRow, 'outlook')
     .select(Object.keys(columns).map((column) => `outlook.${column}`))
-    .where('outlook.siteId = :siteId', { siteId })
+    .where('outlook.siteId = :siteId AND outlook.issuedAt <= :until', { siteId, until: now + clockSlackSeconds })
     .orderBy('outlook.issuedAt', 'DESC')
     .addOrderBy('outlook.rowid', 'DESC')
     .limit(count)
@@ -61,6 +69,7 @@ export async function presentOutlook(read: EntityManager, row: OutlookRow): Prom
       fittedAt: model.fittedAt ?? 0,
       approvedAt: model.approvedAt,
       trainedTo: model.trainedTo ?? 0,
+      staysFrom: model.staysFrom,
       weeksOfHistory: ((model.trainedTo ?? 0) - (model.trainedFrom ?? 0)) / (7 * 86_400),
     },
     planningRisk: input.planningRisk,

@@ -42,7 +42,7 @@ export async function presentTonight(
     return { now, outlook: null, computing, missing, past, cautions: [], moved: null, acknowledgements, lastNight };
   }
 
-  const [newest, before] = await readNewestOutlooks(read, site.id, 2);
+  const [newest, before] = await readNewestOutlooks(read, site.id, 2, now);
   const outlook = await presentOutlook(read, newest);
   const older = before as typeof before | undefined;
   const names = new Map(areas.map((area) => [area.id, area.name]));
@@ -92,7 +92,7 @@ async function whyMissing(deps: Dependencies, site: Site, now: number): Promise<
   if (!(await readPlan(read, site.id))) {
     return { reason: 'no staffed-bed plan', next: 'An operations manager saves the staffed-bed plan of this site.' };
   }
-  const newest = (await readNewestOutlooks(read, site.id, 1)).at(0);
+  const newest = (await readNewestOutlooks(read, site.id, 1, now)).at(0);
   if (!newest || newest.issuedAt < now - (36 - leastHoursAhead) * 3600) {
     return { reason: 'not computed yet', next: 'The outlook is being computed. It appears here by itself.' };
   }

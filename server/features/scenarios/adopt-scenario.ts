@@ -8,12 +8,14 @@ import type { OutlookInput } from '../../../shared/forecasting/outlook-types.ts'
 import { newId } from '../../database/new-id.ts';
 import { readAreas } from '../../database/read-site.ts';
 import { readStaffedBedSteps } from '../../database/read-staffed-beds.ts';
+import { savePlan } from '../../database/save-plan.ts';
 import { BedChange } from '../../entities/BedChange.ts';
 import { Scenario } from '../../entities/Scenario.ts';
 import { badInput, conflict, type Fault } from '../../errors.ts';
 import { recordAudit } from '../../http/audit.ts';
 import type { SiteContext } from '../../http/route.ts';
 import { readScenario } from './present.ts';
+import { weeklyPlan } from './weekly-plan.ts';
 
 /** Staffed beds that differ from what is in force, between two instants. */
 interface Run {
@@ -24,18 +26,24 @@ interface Run {
 
 const saveAgain = 'Open the plan, save it again on today’s figures, confirm it and adopt that.';
 
+/** What an adoption made. */
+export interface Adopted {
+  exceptions: number;
+  planVersion: number | null;
+}
+
 /**
- * Puts a confirmed plan's staffed beds into force as dated exceptions, within the caller's transaction. Refused whole, with
- * every stretch named, where it would go below an area's safe minimum or beyond its bed spaces; and where the staffed beds
- * have changed since the plan was saved.
- * @returns how many exceptions were made
+ * Puts a confirmed plan's staffed beds into force, within the caller's transaction: as dated exceptions, or as a new version of
+ * the weekly plan. Refused whole, with every stretch named, where it would go below an area's safe minimum or beyond its bed
+ * spaces; where the staffed beds have changed since the plan was saved; and for every week where what it was tried against is
+ * not the weekly plan.
  */
 export async function adoptScenario(
   manager: EntityManager,
   context: Pick<SiteContext<unknown>, 'site' | 'caller' | 'now' | 'requestId' | 'address'>,
   scenarioId: string,
-  reason: string,
-): Promise<number> {
+  { reason, as }: { reason: string; as: NonNullable<Scenario['adoptedAs']> },
+): Promise<Adopted> {
   const { site, caller, now } = context;
   const zone = makeZone(site.timeZone);
   const row = await readScenario(manager, site.id, scenarioId);
@@ -58,7 +66,9 @@ export async function adoptScenario(
     const stored = input.areas.find(({ areaId }) => areaId === area.id)?.staffedBeds;
     const windows = bedWindows(row.changes, area.id);
     if (!stored || windows.length === 0) continue;
-    const from = Math.max(now, Math.min(...windows.map((one) => one.from)));
+    const first = Math.min(...windows.map((one) => one.from));
+    // What has passed of a stretch comes again with the week.
+    const from = as === 'every week' ? first : Math.max(now, first);
     const to = Math.max(...windows.map((one) => one.to));
     if (to <= from) continue;
     const inForce = (await readStaffedBedSteps(manager, site.id, zone, [area.id], from, to))?.get(area.id);
@@ -76,6 +86,21 @@ export async function adoptScenario(
       }
       exceptions.push({ ...run, areaId: area.id });
     }
+  }
+  if (faults.length === 0 && as === 'every week' && exceptions.length > 0) {
+    const weekly = await weeklyPlan(manager, row, input, zone, exceptions);
+    if ('areas' in weekly) {
+      const plan = { areas: weekly.areas, reason, basedOnVersion: weekly.version };
+      const saved = await savePlan(manager, site.id, plan, caller.person.name, now);
+      const { version } = saved;
+      await manager.update(Scenario, { id: row.id }, { adoptedAt: now, adoptedBy: caller.person.name, adoptedAs: as });
+      const origin = { version, scenarioId: row.id };
+      await recordAudit(manager, context, 'staffed-beds.plan-saved', saved.id, origin, reason);
+      const detail = { as, version, resultDigest: row.resultDigest };
+      await recordAudit(manager, context, 'scenario.adopted', row.id, detail, reason);
+      return { exceptions: 0, planVersion: version };
+    }
+    faults.push(...weekly.faults);
   }
   if (faults.length > 0) throw badInput('The plan cannot be adopted.', faults);
   if (exceptions.length === 0) {
@@ -97,10 +122,10 @@ export async function adoptScenario(
       madeAt: now,
     })),
   );
-  await manager.update(Scenario, { id: row.id }, { adoptedAt: now, adoptedBy: caller.person.name });
-  const detail = { exceptions: exceptions.length, resultDigest: row.resultDigest };
+  await manager.update(Scenario, { id: row.id }, { adoptedAt: now, adoptedBy: caller.person.name, adoptedAs: as });
+  const detail = { as, exceptions: exceptions.length, resultDigest: row.resultDigest };
   await recordAudit(manager, context, 'scenario.adopted', row.id, detail, reason);
-  return exceptions.length;
+  return { exceptions: exceptions.length, planVersion: null };
 }
 
 /** The stretches of [from, to) where `changed` differs from `before`. */

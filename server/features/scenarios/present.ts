@@ -22,7 +22,7 @@ export async function readScenario(read: EntityManager, siteId: string, id: stri
 export async function presentLine(read: EntityManager, row: Scenario, personId: string): Promise<ScenarioLine> {
   const job = row.state === 'confirming' && row.jobId ? await read.findOneBy(Job, { id: row.jobId }) : null;
   const { id, name, state, changes, savedAt, savedBy, basisDigest, basisIssuedAt } = row;
-  const { confirmedAt, adoptedAt, adoptedBy, error } = row;
+  const { confirmedAt, adoptedAt, adoptedBy, adoptedAs, error } = row;
   return {
     id,
     name,
@@ -36,6 +36,7 @@ export async function presentLine(read: EntityManager, row: Scenario, personId: 
     confirmedAt,
     adoptedAt,
     adoptedBy,
+    adoptedAs,
     progress: job ? { share: job.progress, text: job.progressText } : null,
     error,
   };

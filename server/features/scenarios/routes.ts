@@ -121,9 +121,9 @@ export function addScenarioRoutes(
 
   addSiteRoute(app, table, deps, api.adoptScenario, async (context) => {
     const { site, caller, params, body } = context;
-    const exceptions = await write((manager) => adoptScenario(manager, context, params.scenarioId, body.reason));
+    const adopted = await write((manager) => adoptScenario(manager, context, params.scenarioId, body));
     await onBedsChanged(site.id);
     const row = await readScenario(read, site.id, params.scenarioId);
-    return { scenario: await presentLine(read, row, caller.person.id), exceptions };
+    return { scenario: await presentLine(read, row, caller.person.id), ...adopted };
   });
 }

@@ -63,6 +63,7 @@ export async function saveScenario(
       resultDigest: null,
       adoptedAt: null,
       adoptedBy: null,
+      adoptedAs: null,
     });
     await recordAudit(manager, context, 'scenario.saved', id, { changes: changes.length });
   });

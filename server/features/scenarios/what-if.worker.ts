@@ -30,5 +30,5 @@ export default function work(task: WhatIfTask): ComparedPart | string {
   const { prepared } = latest;
   return task.kind === 'part'
     ? compareScenarioPart(prepared, task.from, task.to)
-    : JSON.stringify(scenarioFromParts(input, prepared.lengthOfStay, task.parts));
+    : JSON.stringify(scenarioFromParts(input, prepared, task.parts));
 }

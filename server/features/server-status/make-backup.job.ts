@@ -1,5 +1,5 @@
 import type { EntityManager } from 'typeorm';
-import { In } from 'typeorm';
+import { In, LessThanOrEqual } from 'typeorm';
 import { backupDirIn, type Config } from '../../config.ts';
 import { listBackups, pruneBackups } from '../../database/backup-files.ts';
 import type { DatabaseFacts } from '../../database/check-database.ts';
@@ -71,9 +71,13 @@ export async function askForBackup(deps: Dependencies): Promise<void> {
   const { backupEveryHours } = deps.config;
   if (backupEveryHours === 0) return;
   const now = deps.clock();
-  const last = await deps.database.read.findOne(Job, { where: { kind: backupJobKind }, order: { createdAt: 'DESC' } });
+  const last = await deps.database.read.findOne(Job, {
+    where: { kind: backupJobKind, createdAt: LessThanOrEqual(now) },
+    order: { createdAt: 'DESC' },
+  });
   if (last && last.createdAt > now - Math.min(3600, backupEveryHours * 3600)) return;
-  const newest = (await listBackups(backupDirOf(deps.config))).at(0);
+  // What bears a time to come is from before the clock was set back.
+  const newest = (await listBackups(backupDirOf(deps.config))).find(({ manifest }) => manifest.madeAt <= now);
   if (newest && newest.manifest.madeAt > now - backupEveryHours * 3600) return;
   await deps.database.write((manager) => enqueueBackup(deps, manager, 'the timetable'));
 }

@@ -14,6 +14,8 @@ import { addRoute, type RouteContext, type RouteTable } from '../../http/route.t
 import type { SessionStore } from '../../http/session-store.ts';
 import { sessionCookie } from '../../http/session-cookie.ts';
 import { isLocked } from '../../http/session-use.ts';
+import { addOwnSessionRoutes } from './own-sessions.ts';
+import { nameDevice } from './name-device.ts';
 import { presentSession } from './present.ts';
 import { makeProvider } from './provider.ts';
 import { readGroups, recognisePerson } from './recognise-person.ts';
@@ -119,6 +121,8 @@ export function addSignInRoutes(app: Express, table: RouteTable, deps: Dependenc
     req.session.signedInAt = now;
     req.session.usedAt = now;
     req.session.idToken = tokens.id_token ?? '';
+    req.session.device = nameDevice(req.get('user-agent'));
+    req.session.address = context.address;
     await saveSession(req);
     res.redirect(underWay.returnTo);
     return undefined;
@@ -162,6 +166,8 @@ export function addSignInRoutes(app: Express, table: RouteTable, deps: Dependenc
     );
     return leave(context);
   });
+
+  addOwnSessionRoutes(app, table, deps, sessions);
 
   addRoute(app, table, deps, lockSession, async ({ req }) => {
     req.session.usedAt = 0;

@@ -10,6 +10,7 @@ import {
   savePlan as saveContract,
 } from '../../../shared/api/staffed-beds.ts';
 import { readBedChanges, readPlan } from '../../database/read-staffed-beds.ts';
+import { savePlan } from '../../database/save-plan.ts';
 import type { Dependencies } from '../../dependencies.ts';
 import { StaffedBedPlan } from '../../entities/StaffedBedPlan.ts';
 import { StaffedBedPlanArea } from '../../entities/StaffedBedPlanArea.ts';
@@ -19,7 +20,6 @@ import { addSiteRoute, type RouteTable } from '../../http/route.ts';
 import { addBedException, removeBedException } from './bed-exceptions.ts';
 import { changeBedsNow } from './change-beds-now.ts';
 import { readRequiredBeds } from './required-beds.ts';
-import { savePlan } from './save-plan.ts';
 
 /** Told when something that an outlook depends on has changed; answers with the outlook's id, or null where there is none. */
 export type OnBedsChanged = (siteId: string) => Promise<string | null>;

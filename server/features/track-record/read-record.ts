@@ -4,12 +4,14 @@ import { instantOfLocal } from '../../../shared/domain/shift-times.ts';
 import { makeZone } from '../../../shared/domain/zoned-time.ts';
 import { addSums, emptySums, summariseSums, type ScoreSums } from '../../../shared/forecasting/score-sums.ts';
 import { trackVerdict, type VerdictSubject } from '../../../shared/forecasting/track-verdict.ts';
+import { leadInWords } from '../../../shared/domain/record-lead.ts';
 import { readAreas, readShifts } from '../../database/read-site.ts';
 import type { Dependencies } from '../../dependencies.ts';
 import { ArrivalModelRow } from '../../entities/ArrivalModelRow.ts';
 import { Job } from '../../entities/Job.ts';
 import type { Site } from '../../entities/Site.ts';
 import { In } from 'typeorm';
+import { countOutlooks, countWeekOutlooks } from './count-outlooks.ts';
 import { presentDriftOfModelInUse } from './present-drift.ts';
 import { readPoints } from './read-points.ts';
 import { recomputeJobKind } from './recompute-record.job.ts';
@@ -48,7 +50,8 @@ export async function presentRecord(
   const areas = await readAreas(read, site.id);
   const shifts = (await readShifts(read, site.id)).map(({ name }) => name);
   const models = await readScoredModels(read, site.id);
-  const lead = filter.measure === 'need' ? filter.lead : 0;
+  const leads = await readLeads(read, site.id, filter.measure);
+  const lead = nearestLead(leads, filter);
   const chosen = { ...filter, lead };
   const rows = await readSums(read, site.id, chosen, thisWeek - filter.weeks);
   const matches = (row: SumRow | ReadSums, without: 'lead' | 'area' | 'shift' | 'model' | null): boolean =>
@@ -68,7 +71,7 @@ export async function presentRecord(
   // The chances of acknowledged hours are told apart: what was done about them may have changed what came.
   const summary = withOpenChances(summariseSums([...weeks.values()]), summariseSums([...byWeek(open).values()]));
   const acknowledged = summariseSums([...byWeek(seen).values()], 2).calledFor;
-  const nameOf = namesOf(areas, models);
+  const nameOf = namesOf(filter.measure, areas, models);
   const parts = Object.fromEntries(
     dimensions.map((dimension) => [
       dimension,
@@ -86,12 +89,13 @@ export async function presentRecord(
     filter: { ...chosen },
     areas: areas.map(({ id, name }) => ({ id, name })),
     shifts,
-    leads: [...new Set(rows.filter((row) => row.measure === 'need').map((row) => row.leadHours))].sort((a, b) => a - b),
+    leads,
     models,
     outlooks: await countOutlooks(read, site.id),
+    weekOutlooks: await countWeekOutlooks(read, site.id),
     summary,
     acknowledged: { n: acknowledged.n, meanChance: acknowledged.meanChance, share: acknowledged.share },
-    verdict: trackVerdict(summary, subjectOf(filter), verdictParts),
+    verdict: trackVerdict(summary, subjectOf(chosen), verdictParts),
     byWeek: [...weeks.entries()]
       .sort(([a], [b]) => a - b)
       .map(([number, sums]) => presentWeek(number, mondayOf(number), sums)),
@@ -106,6 +110,24 @@ export async function presentRecord(
         })
       )?.id ?? null,
   };
+}
+
+/** Hours ahead at which a measure is scored, ascending. */
+export async function readLeads(
+  read: EntityManager,
+  siteId: string,
+  measure: TrackFilter['measure'],
+): Promise<number[]> {
+  const rows = await read.query<{ leadHours: number }[]>(
+    'SELECT DISTINCT leadHours FROM score_week WHERE siteId = ? AND measure = ? ORDER BY leadHours',
+    [siteId, measure],
+  );
+  return rows.map(({ leadHours }) => leadHours);
+}
+
+/** The lead that a filter means: its own, or where a measure other than need has none such, the nearest to the event. */
+export function nearestLead(leads: readonly number[], { measure, lead }: TrackFilter): number {
+  return measure === 'need' || leads.includes(lead) ? lead : (leads.at(0) ?? 0);
 }
 
 /** What some part of the page shows: at most one part of the filter is left open at a time. */
@@ -160,12 +182,13 @@ type Dimension = keyof TrackRecord['parts'];
 type NameOf = (dimension: Dimension, key: string) => string;
 
 function namesOf(
+  measure: TrackFilter['measure'],
   areas: readonly { id: string; name: string }[],
   models: readonly { id: string; name: string }[],
 ): NameOf {
   const known = new Map([...areas, ...models].map(({ id, name }) => [id, name]));
   return (dimension, key) => {
-    if (dimension === 'lead') return `${key} h ahead`;
+    if (dimension === 'lead') return leadInWords(measure, Number(key));
     if (dimension === 'area') return key === '' ? 'Whole department' : (known.get(key) ?? 'An area taken away since');
     if (dimension === 'shift') return key === '' ? 'No shift in charge' : key;
     return known.get(key) ?? 'A model of before';
@@ -208,9 +231,11 @@ function partsOf(rows: readonly ReadSums[], dimension: Dimension, nameOf: NameOf
 }
 
 function subjectOf({ measure, lead }: TrackFilter): VerdictSubject {
-  if (measure === 'arrivals') return { many: 'daily arrivals', chanceOf: null };
-  if (measure === 'peak') return { many: 'highest needs of a shift', chanceOf: 'shifts' };
-  return { many: `needs ${String(lead)} h ahead`, chanceOf: 'hours' };
+  const ahead = lead === 0 ? '' : ` ${leadInWords(measure, lead).toLowerCase()}`;
+  if (measure === 'arrivals') return { many: `daily arrivals${ahead}`, chanceOf: null };
+  if (measure === 'shift arrivals') return { many: `arrivals of a shift${ahead}`, chanceOf: null };
+  if (measure === 'peak') return { many: `highest needs of a shift${ahead}`, chanceOf: 'shifts' };
+  return { many: `needs${ahead}`, chanceOf: 'hours' };
 }
 
 /** Models that scored outlooks were issued with, newest first. */
@@ -227,56 +252,4 @@ async function readScoredModels(read: EntityManager, siteId: string): Promise<Tr
     id,
     name: `${fittedBy}, ${new Date((fittedAt ?? 0) * 1000).toISOString().slice(0, 10)}`,
   }));
-}
-
-async function countOutlooks(read: EntityManager, siteId: string): Promise<TrackRecord['outlooks']> {
-  const [all] = await read.query<{ issued: number; firstAt: number | null }[]>(
-    'SELECT count(*) AS issued, min(issuedAt) AS firstAt FROM outlook WHERE siteId = ?',
-    [siteId],
-  );
-  const recomputed = await countRecomputed(read, siteId, all.issued);
-  const states = await read.query<{ state: string; n: number }[]>(
-    'SELECT state, count(*) AS n FROM outlook_laws WHERE siteId = ? GROUP BY state',
-    [siteId],
-  );
-  const of = (state: string): number => states.find((row) => row.state === state)?.n ?? 0;
-  const withLaws = states.reduce((sum, { n }) => sum + n, 0);
-  return {
-    issued: all.issued,
-    scored: of('scored'),
-    waiting: of('waiting'),
-    withdrawn: of('withdrawn'),
-    notRecorded: of('not recorded'),
-    overtaken: of('overtaken'),
-    withoutLaws: all.issued - withLaws,
-    recomputed: recomputed.n,
-    replicationsRecomputed: recomputed.replications,
-    firstAt: all.firstAt,
-  };
-}
-
-/**
- * How many outlooks were recomputed. All of them lie before the first that was issued at its time, so the border is sought along
- * the index: counting by trigger would read every outlook.
- */
-async function countRecomputed(
-  read: EntityManager,
-  siteId: string,
-  issued: number,
-): Promise<{ n: number; replications: number | null }> {
-  const at = async (place: number) => {
-    const rows = await read.query<{ trigger: string; replications: number }[]>(
-      'SELECT "trigger", replications FROM outlook WHERE siteId = ? ORDER BY issuedAt LIMIT 1 OFFSET ?',
-      [siteId, place],
-    );
-    return rows.at(0);
-  };
-  let low = 0;
-  let high = issued;
-  while (low < high) {
-    const middle = (low + high) >> 1;
-    if ((await at(middle))?.trigger === 'recomputed') low = middle + 1;
-    else high = middle;
-  }
-  return { n: low, replications: low > 0 ? ((await at(0))?.replications ?? null) : null };
 }

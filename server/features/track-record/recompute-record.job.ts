@@ -1,13 +1,16 @@
 import { setTimeout as pause } from 'node:timers/promises';
+import type { EntityManager } from 'typeorm';
 import { z } from 'zod';
 import { id, instant } from '../../../shared/api/common.ts';
 import { instantOfLocal, type ShiftPattern } from '../../../shared/domain/shift-times.ts';
 import { makeZone, type Zone } from '../../../shared/domain/zoned-time.ts';
 import { engineVersion } from '../../../shared/forecasting/engine-version.ts';
+import type { WeekOutlookInput } from '../../../shared/forecasting/week-outlook-types.ts';
 import type { OutlookInput } from '../../../shared/forecasting/outlook-types.ts';
 import { newId } from '../../database/new-id.ts';
 import { readCalendar } from '../../database/read-calendar.ts';
 import { fullHoursAfter, readNeedInput } from '../../database/read-need-input.ts';
+import { readPlan } from '../../database/read-staffed-beds.ts';
 import { readAreas, readShifts } from '../../database/read-site.ts';
 import type { Dependencies } from '../../dependencies.ts';
 import { ArrivalModelRow } from '../../entities/ArrivalModelRow.ts';
@@ -15,6 +18,8 @@ import { ExposureGapRow } from '../../entities/ExposureGapRow.ts';
 import { OutlookLawsRow } from '../../entities/OutlookLawsRow.ts';
 import { OutlookRow } from '../../entities/OutlookRow.ts';
 import { Site } from '../../entities/Site.ts';
+import { WeekOutlookLawsRow } from '../../entities/WeekOutlookLawsRow.ts';
+import { WeekOutlookRow } from '../../entities/WeekOutlookRow.ts';
 import { recordOwnAudit } from '../../http/audit.ts';
 import { PermanentJobError, type JobKind } from '../../jobs/queue.ts';
 import { workerUrl } from '../../simulation/pool.ts';
@@ -30,24 +35,40 @@ const day = 86_400;
 const week = 7 * day;
 /** A recomputed outlook has fewer replications than one of tonight, and says so. */
 const replications = 500;
+const weekReplications = 300;
+const weekArrivalDraws = 400;
+/** The week ahead is recomputed for the newest weeks alone: each takes a quarter of a megabyte. */
+const weeksOfWeekAhead = 13;
+/** The local time at which the week ahead is issued each day. */
+const dailyAtSeconds = 5 * 3600;
 const weeksPerFit = 13;
 const weeksPerScore = 4;
 const outlookHours = 36;
 const longestHistory = 12 * 366 * day;
 
+/** Gathers what a week outlook is computed from, as of an instant; null without a staffed-bed plan for every area. */
+type GatherWeekInput = (
+  read: EntityManager,
+  site: Site,
+  areaIds: readonly string[],
+  at: number,
+  replications: number,
+) => Promise<Omit<WeekOutlookInput, 'ambulance'> | null>;
+
 /**
  * Recomputes the record of past weeks: before every quarter the model is fitted anew, every Monday its level is moved on, and an
- * hour before each shift an outlook is issued; all by the product's own code from the visits of before, the counts that the log
+ * hour before each shift an outlook is issued, and of the newest 13 weeks the week ahead each day at 05:00; all by the product's own code from the visits of before, the counts that the log
  * shows at that moment, and today's plan, areas and limits. Each outlook is stored with its inputs like any other. It stands
  * back behind everything else, goes on after a restart where it was, and is scored as it goes.
  * @param isBusy true while somebody's outlook is being computed
+ * @param weekInput gathers what a week outlook is computed from
  */
-export function makeRecomputeKind(deps: Dependencies, isBusy: () => boolean): JobKind {
+export function makeRecomputeKind(deps: Dependencies, isBusy: () => boolean, weekInput: GatherWeekInput): JobKind {
   return {
     oneAtATime: true,
     async run({ job, payload, signal, progress }) {
       const { siteId, from, to } = recomputePayload.parse(payload);
-      const record = await openRecord(deps, siteId, job.id);
+      const record = await openRecord(deps, siteId, job.id, weekInput);
       const { zone } = record;
       const mondays: number[] = [];
       for (let at = mondayAfter(zone, from); at < to; at = mondayAfter(zone, at)) mondays.push(at);
@@ -60,7 +81,7 @@ export function makeRecomputeKind(deps: Dependencies, isBusy: () => boolean): Jo
           progress(index / mondays.length, said);
           const modelId = await record.modelFor(monday, index % weeksPerFit === 0, signal);
           await standBack(isBusy, signal);
-          await record.issueWeek(modelId, monday, until, signal);
+          await record.issueWeek(modelId, monday, until, index >= mondays.length - weeksOfWeekAhead, signal);
         }
         if ((index + 1) % weeksPerScore === 0 || index === mondays.length - 1) {
           await scoreOutlooks(deps, siteId, scoredTo, until, signal, () => undefined);
@@ -107,7 +128,16 @@ export function timesOfOutlooks(zone: Zone, shifts: readonly ShiftPattern[], fro
   return [...times].sort((a, b) => a - b);
 }
 
-async function openRecord(deps: Dependencies, siteId: string, jobId: string) {
+/** Every day's local time of the week ahead in [from, to), ascending. */
+function dailyTimes(zone: Zone, from: number, to: number): number[] {
+  const first = Math.floor(zone.toLocal(from) / day);
+  const days = Math.ceil((to - from) / day) + 1;
+  return Array.from({ length: days }, (_, i) => instantOfLocal(zone, (first + i) * day + dailyAtSeconds)).filter(
+    (at) => at >= from && at < to,
+  );
+}
+
+async function openRecord(deps: Dependencies, siteId: string, jobId: string, weekInput: GatherWeekInput) {
   const { database, clock, pool } = deps;
   const { read } = database;
   const site = await read.findOneByOrFail(Site, { id: siteId });
@@ -115,6 +145,7 @@ async function openRecord(deps: Dependencies, siteId: string, jobId: string) {
   const shifts = await readShifts(read, siteId);
   const areaIds = (await readAreas(read, siteId)).map((area) => area.id);
   const gaps = await read.findBy(ExposureGapRow, { siteId });
+  const planVersion = (await readPlan(read, siteId))?.plan.version ?? 0;
   const common = (): RecomputeSite => ({
     databaseFile: database.file,
     siteId,
@@ -162,7 +193,7 @@ async function openRecord(deps: Dependencies, siteId: string, jobId: string) {
       await database.write((manager) => manager.insert(ArrivalModelRow, row));
       return row.id ?? '';
     },
-    async issueWeek(modelId: string, from: number, to: number, signal: AbortSignal): Promise<void> {
+    async issueWeek(modelId: string, from: number, to: number, withWeek: boolean, signal: AbortSignal): Promise<void> {
       const inputs: OutlookInput[] = [];
       for (const at of timesOfOutlooks(zone, shifts, from, to)) {
         // What a stop left of the week stays as it was issued.
@@ -179,10 +210,36 @@ async function openRecord(deps: Dependencies, siteId: string, jobId: string) {
         // A seed of its time, so that a week computed again after a restart has the same digits.
         inputs.push({ ...input, seed: at % 2 ** 31 });
       }
-      const task: RecomputeTask = { ...common(), kind: 'week', modelId, until: from, inputs };
+      const weekInputs: WeekOutlookInput[] = [];
+      for (const at of withWeek ? dailyTimes(zone, from, to) : []) {
+        if (await read.existsBy(WeekOutlookRow, { siteId, trigger: 'recomputed', issuedAt: at })) continue;
+        const input = await weekInput(read, site, areaIds, at, weekReplications);
+        if (input) weekInputs.push({ ...input, ambulance: null, arrivalDraws: weekArrivalDraws, seed: at % 2 ** 31 });
+      }
+      const task: RecomputeTask = { ...common(), kind: 'week', modelId, until: from, inputs, weekInputs };
       const issued = await runOrRefuse(() => pool.run<RecomputedWeek>(worker, task, { signal }));
       const row = modelRow(issued.model, modelId, from);
       await database.write((manager) => manager.insert(ArrivalModelRow, row));
+      // First, because a week counts as done once its last outlook of tonight is stored.
+      for (const outlook of issued.weekOutlooks) {
+        signal.throwIfAborted();
+        await database.write(async (manager) => {
+          const { laws, ...stored } = outlook;
+          const weekOutlookId = newId();
+          await manager.insert(WeekOutlookRow, {
+            ...stored,
+            id: weekOutlookId,
+            siteId,
+            trigger: 'recomputed',
+            modelId: row.id ?? '',
+            planVersion,
+            engineVersion,
+            softwareVersion,
+            standsOn: '',
+          });
+          await manager.insert(WeekOutlookLawsRow, { weekOutlookId, siteId, issuedAt: outlook.issuedAt, laws });
+        });
+      }
       for (const outlook of issued.outlooks) {
         signal.throwIfAborted();
         await database.write(async (manager) => {

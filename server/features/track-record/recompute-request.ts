@@ -1,3 +1,4 @@
+import type { WeekOutlookInput } from '../../../shared/forecasting/week-outlook-types.ts';
 import type { OutlookInput } from '../../../shared/forecasting/outlook-types.ts';
 import type { CalendarDay } from '../../../shared/forecasting/visit-table.ts';
 
@@ -22,6 +23,8 @@ export type RecomputeTask = RecomputeSite &
         until: number;
         /** Inputs as the issuer makes them, without the counts of their time: those are taken from the logs. */
         inputs: OutlookInput[];
+        /** The same of the week ahead, one a day; none for weeks long past. */
+        weekInputs: WeekOutlookInput[];
       }
   );
 
@@ -40,6 +43,17 @@ export interface RecomputedWeek {
     seed: number;
     replications: number;
     computeMilliseconds: number;
+    input: string;
+    result: string;
+    laws: string;
+    digest: string;
+  }[];
+  weekOutlooks: {
+    issuedAt: number;
+    seed: number;
+    replications: number;
+    computeMilliseconds: number;
+    calendar: string;
     input: string;
     result: string;
     laws: string;

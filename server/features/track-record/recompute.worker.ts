@@ -10,6 +10,9 @@ import { outlookLaws } from '../../../shared/forecasting/outlook-laws.ts';
 import type { OutlookInput } from '../../../shared/forecasting/outlook-types.ts';
 import { presentByHour, type PresentByHour } from '../../../shared/forecasting/present-by-hour.ts';
 import { refreshLevel } from '../../../shared/forecasting/refresh-level.ts';
+import { weekLaws } from '../../../shared/forecasting/week-laws.ts';
+import { prepareWeek, simulateWeekPart, weekFromParts } from '../../../shared/forecasting/week-outlook.ts';
+import type { WeekOutlookInput } from '../../../shared/forecasting/week-outlook-types.ts';
 import type { ExposureGap, VisitTable } from '../../../shared/forecasting/visit-table.ts';
 import { coveredSpans, gapsBetween } from '../../database/covered-spans.ts';
 import type { ModelParameters } from '../../database/read-model.ts';
@@ -90,6 +93,10 @@ function issueWeek(task: RecomputeTask & { kind: 'week' }): RecomputedWeek {
       visits: before.visits,
     },
     outlooks: task.inputs.map((input) => issueOne(model, withCounts(input, table, present, zone))),
+    // Fewer than eight weeks give no week ahead.
+    weekOutlooks: model.arrival.coarse
+      ? []
+      : task.weekInputs.map((input) => issueOneWeek(model, withCounts(input, table, present, zone))),
   };
 }
 
@@ -124,7 +131,12 @@ function moveOn(
 }
 
 /** The counts that a census would have found, and the arrivals since midnight, from the log. */
-function withCounts(input: OutlookInput, table: VisitTable, present: PresentByHour, zone: Zone): OutlookInput {
+function withCounts<Input extends OutlookInput>(
+  input: Input,
+  table: VisitTable,
+  present: PresentByHour,
+  zone: Zone,
+): Input {
   const at = input.issuedAt;
   const local = zone.toLocal(at);
   const midnight = zone.fromLocal(local - (local % day)).at(0) ?? at;
@@ -153,6 +165,25 @@ function issueOne(model: ModelParameters, input: OutlookInput): RecomputedWeek['
     input: JSON.stringify(input),
     result,
     laws: JSON.stringify(outlookLaws(prepared, parts, outlook, model)),
+    digest: createHash('sha256').update(result).digest('hex'),
+  };
+}
+
+function issueOneWeek(model: ModelParameters, input: WeekOutlookInput): RecomputedWeek['weekOutlooks'][number] {
+  const startedAt = performance.now();
+  const prepared = prepareWeek(model, input);
+  const parts = [simulateWeekPart(prepared, 0, input.replications)];
+  const outlook = weekFromParts(prepared, parts);
+  const result = JSON.stringify(outlook);
+  return {
+    issuedAt: input.issuedAt,
+    seed: input.seed,
+    replications: input.replications,
+    computeMilliseconds: performance.now() - startedAt,
+    calendar: JSON.stringify(input.calendar),
+    input: JSON.stringify(input),
+    result,
+    laws: JSON.stringify(weekLaws(prepared, parts, outlook)),
     digest: createHash('sha256').update(result).digest('hex'),
   };
 }

@@ -4,11 +4,12 @@ import { readShifts } from '../../database/read-site.ts';
 import type { Dependencies } from '../../dependencies.ts';
 import { ExposureGapRow } from '../../entities/ExposureGapRow.ts';
 import { OutlookLawsRow } from '../../entities/OutlookLawsRow.ts';
+import { WeekOutlookLawsRow } from '../../entities/WeekOutlookLawsRow.ts';
 import { Site } from '../../entities/Site.ts';
 import { recordOwnAudit } from '../../http/audit.ts';
 import type { JobKind, JobSpec } from '../../jobs/queue.ts';
 import { workerUrl } from '../../simulation/pool.ts';
-import { readApprovedAs } from './approved-as.ts';
+import { readApprovedAs } from '../../database/read-approved-as.ts';
 import { scoreColumns, sumColumns, type ScoredOutlook, type ScoreTask, type ScoreValues } from './score-request.ts';
 import { watchModelInUse } from './watch-model.ts';
 
@@ -20,8 +21,11 @@ const day = 86_400;
 /** Issued outlooks scored by one task of a thread, and stored in one write. */
 const chunkSeconds = 28 * day;
 const outlooksPerWrite = 25;
-/** An outlook speaks of up to this long after it was issued. */
+/** An outlook of tonight speaks of up to this long after it was issued, one of the week ahead of so much longer. */
 const reachSeconds = 4 * day;
+const weekReachSeconds = 5 * day;
+/** One of the week ahead holds some hundred scores. */
+const weekOutlooksPerWrite = 4;
 
 /**
  * The job that scores what was said about the time of a log: when it lands, or is withdrawn (then what it told is un-scored).
@@ -80,10 +84,17 @@ export async function scoreOutlooks(
   const approvedAs = await readApprovedAs(read, siteId);
   const weeks = new Set<number>();
   let unscored = 0;
-  for (let at = from; at < to; at += chunkSeconds) {
+  const first = Math.max(0, from - weekReachSeconds);
+  const chunks = (['tonight', 'week'] as const).flatMap((of) => {
+    const start = of === 'week' ? first : from;
+    const count = Math.max(0, Math.ceil((to - start) / chunkSeconds));
+    return Array.from({ length: count }, (_, i) => ({ of, at: start + i * chunkSeconds }));
+  });
+  for (const [index, { of, at }] of chunks.entries()) {
     signal.throwIfAborted();
     const task: ScoreTask = {
       kind: 'score',
+      of,
       databaseFile: database.file,
       siteId,
       timeZone: site.timeZone,
@@ -96,13 +107,13 @@ export async function scoreOutlooks(
       now: clock(),
     };
     const scored = await pool.run<ScoredOutlook[]>(worker, task, { signal });
-    for (let i = 0; i < scored.length; i += outlooksPerWrite) {
-      const batch = scored.slice(i, i + outlooksPerWrite);
-      const stored = await storeScores(deps, batch);
+    const perWrite = of === 'week' ? weekOutlooksPerWrite : outlooksPerWrite;
+    for (let i = 0; i < scored.length; i += perWrite) {
+      const stored = await storeScores(deps, of, scored.slice(i, i + perWrite));
       stored.weeks.forEach((week) => weeks.add(week));
       unscored += stored.unscored;
     }
-    onProgress((0.95 * (Math.min(to, at + chunkSeconds) - from)) / (to - from));
+    onProgress((0.95 * (index + 1)) / chunks.length);
   }
   await storeSums(deps, siteId, [...weeks], signal);
   if (unscored > 0) {
@@ -123,24 +134,26 @@ export async function scoreOutlooks(
 /** Puts the scores of some outlooks in place of those they had. @returns the weeks concerned, and how many lost scores to a withdrawal. */
 async function storeScores(
   deps: Dependencies,
+  of: 'tonight' | 'week',
   outlooks: readonly ScoredOutlook[],
 ): Promise<{ weeks: number[]; unscored: number }> {
   const ids = JSON.stringify(outlooks.map(({ outlookId }) => outlookId));
   const rows = outlooks.flatMap(({ scores }) => scores);
+  const key = of === 'week' ? 'weekOutlookId' : 'outlookId';
   return deps.database.write(async (manager) => {
     const before = await manager.query<{ week: number; outlookId: string }[]>(
-      `SELECT DISTINCT week, outlookId FROM forecast_score WHERE outlookId IN (SELECT value FROM json_each(?))`,
+      `SELECT DISTINCT week, ${key} AS outlookId FROM forecast_score WHERE ${key} IN (SELECT value FROM json_each(?))`,
       [ids],
     );
-    await manager.query(`DELETE FROM forecast_score WHERE outlookId IN (SELECT value FROM json_each(?))`, [ids]);
+    await manager.query(`DELETE FROM forecast_score WHERE ${key} IN (SELECT value FROM json_each(?))`, [ids]);
     if (rows.length > 0) await manager.query(insertFrom('forecast_score', scoreColumns), [JSON.stringify(rows)]);
     for (const state of new Set(outlooks.map((outlook) => outlook.state))) {
       const own = outlooks.filter((outlook) => outlook.state === state).map(({ outlookId }) => outlookId);
       await manager
         .createQueryBuilder()
-        .update(OutlookLawsRow)
+        .update<OutlookLawsRow | WeekOutlookLawsRow>(of === 'week' ? WeekOutlookLawsRow : OutlookLawsRow)
         .set({ state })
-        .where('outlookId IN (:...own) AND state <> :state', { own, state })
+        .where(`${key} IN (:...own) AND state <> :state`, { own, state })
         .execute();
     }
     const had = new Set(before.map(({ outlookId }) => outlookId));

@@ -6,6 +6,8 @@ import type { OutlookLawsRow } from '../../entities/OutlookLawsRow.ts';
 export type ScoreTask =
   | {
       kind: 'score';
+      /** Outlooks of tonight, or of the week ahead. */
+      of: 'tonight' | 'week';
       databaseFile: string;
       siteId: string;
       timeZone: string;
@@ -15,7 +17,7 @@ export type ScoreTask =
       gaps: Span[];
       /** Model as approved, by the id of every row that its level was moved on to. */
       approvedAs: Record<string, string>;
-      /** Outlooks issued in [issuedFrom, issuedTo). */
+      /** Outlooks issued in [issuedFrom, issuedTo) are scored. */
       issuedFrom: number;
       issuedTo: number;
       now: number;

@@ -1,5 +1,5 @@
 import { bedsAt } from '../../../shared/domain/bed-schedule.ts';
-import { shiftInCharge, shiftsBetween } from '../../../shared/domain/shift-times.ts';
+import { instantOfLocal, shiftInCharge, shiftsBetween } from '../../../shared/domain/shift-times.ts';
 import { makeZone } from '../../../shared/domain/zoned-time.ts';
 import { makeLogTruth } from '../../../shared/forecasting/log-truth.ts';
 import { forecastOfLaw, type IssuedLaw } from '../../../shared/forecasting/outlook-laws.ts';
@@ -37,7 +37,8 @@ interface Found {
 /**
  * Makes the function that scores one stored outlook against the logs. Scored are need at the fixed leads, of outlooks issued by
  * the clock (one on saving is no fair sample); and a shift's highest need or a day's arrivals, of the last outlook before it
- * starts. The chance is held against the staffed beds that the outlook was issued with.
+ * starts. Of week outlooks all is scored that those of the daily timetable said, by how far ahead it lay. The chance is held
+ * against the staffed beds that the outlook was issued with.
  */
 export function makeOutlookScorer(
   task: ScoreTask & { kind: 'score' },
@@ -80,6 +81,10 @@ export function makeOutlookScorer(
 
   function observe(law: IssuedLaw, input: OutlookInput, area: number | null): Found | null {
     const beds = areaIds.map((id) => input.areas.find((each) => each.areaId === id)?.staffedBeds ?? []);
+    if (law.measure === 'shift arrivals') {
+      const counts = truth.arrivalsIn(law.from, law.to);
+      return counts && { observed: total(counts, area), short: null };
+    }
     if (law.measure === 'arrivals') {
       const counts = truth.onLocalDay(Math.round(zone.toLocal(law.from) / day));
       return counts && { observed: total(counts, area), short: null };
@@ -104,6 +109,10 @@ export function makeOutlookScorer(
 
   function baselinesOf(law: IssuedLaw, area: number | null, observed: number) {
     if (law.measure === 'peak') return { naiveError: null, baselines: null };
+    if (law.measure === 'shift arrivals') {
+      const before = truth.arrivalsIn(weekBefore(law.from), weekBefore(law.to));
+      return { naiveError: before && Math.abs(observed - total(before, area)), baselines: null };
+    }
     const [make, step, period] =
       law.measure === 'need'
         ? [hourly.get(area), Math.floor(zone.toLocal(law.from) / 3600), 168]
@@ -124,12 +133,14 @@ export function makeOutlookScorer(
     };
   }
 
+  const weekBefore = (at: number): number => instantOfLocal(zone, zone.toLocal(at) - 7 * day);
+
   function scoreLaw(law: IssuedLaw, outlook: StoredOutlook, input: OutlookInput, index: number): ScoreValues | null {
     const area = law.areaId === null ? null : areaIds.indexOf(law.areaId);
     if (area === -1) return null;
     const found = observe(law, input, area);
     if (found === null) return null;
-    const v = makeStream(outlook.seed, 17, index).uniform();
+    const v = makeStream(outlook.seed, task.of === 'week' ? 18 : 17, index).uniform();
     const scored =
       law.law === null
         ? null
@@ -137,7 +148,7 @@ export function makeOutlookScorer(
             forecastOfLaw(law.law),
             found.observed,
             v,
-            law.measure === 'arrivals' ? 'known rates' : 'its own law',
+            law.measure === 'arrivals' || law.measure === 'shift arrivals' ? 'known rates' : 'its own law',
           );
     const past = scored === null ? { naiveError: null, baselines: null } : baselinesOf(law, area, found.observed);
     const shift =
@@ -147,8 +158,8 @@ export function makeOutlookScorer(
         : '');
     return [
       task.siteId,
-      outlook.id,
-      null,
+      task.of === 'week' ? null : outlook.id,
+      task.of === 'week' ? outlook.id : null,
       task.approvedAs[outlook.modelId] ?? outlook.modelId,
       law.areaId ?? '',
       law.measure,
@@ -177,7 +188,7 @@ export function makeOutlookScorer(
     ];
   }
 
-  const byClock = new Set(['timetable', 'recomputed']);
+  const byClock = new Set(task.of === 'week' ? ['daily', 'recomputed'] : ['timetable', 'recomputed']);
   return (outlook, nextIssuedAt) => {
     const input = JSON.parse(outlook.input) as OutlookInput;
     const laws = JSON.parse(outlook.laws) as IssuedLaw[];
@@ -186,7 +197,9 @@ export function makeOutlookScorer(
     let due = 0;
     laws.forEach((law, index) => {
       const isDue =
-        law.measure === 'need' ? byClock.has(outlook.trigger) : nextIssuedAt === null || nextIssuedAt > law.from;
+        task.of === 'week' || law.measure === 'need'
+          ? byClock.has(outlook.trigger)
+          : nextIssuedAt === null || nextIssuedAt > law.from;
       if (!isDue) return;
       due += 1;
       // The last before its start is known only once it has started.

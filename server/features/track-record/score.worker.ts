@@ -13,14 +13,17 @@ export default function work(task: ScoreTask): ScoredOutlook[] | ScoreValues[] {
   }
 }
 
+const storedOf = {
+  tonight: `SELECT l.outlookId AS id, l.issuedAt, l.laws, o.trigger, o.modelId, o.seed, o.input
+    FROM outlook_laws l JOIN outlook o ON o.id = l.outlookId
+    WHERE l.siteId = ? AND l.issuedAt >= ? AND l.issuedAt < ? ORDER BY l.issuedAt, o.rowid`,
+  week: `SELECT l.weekOutlookId AS id, l.issuedAt, l.laws, o.trigger, o.modelId, o.seed, o.input
+    FROM week_outlook_laws l JOIN week_outlook o ON o.id = l.weekOutlookId
+    WHERE l.siteId = ? AND l.issuedAt >= ? AND l.issuedAt < ? ORDER BY l.issuedAt, o.rowid`,
+};
+
 function scoreOutlooks(db: SqliteDatabase.Database, task: ScoreTask & { kind: 'score' }): ScoredOutlook[] {
-  const outlooks = db
-    .prepare(
-      `SELECT l.outlookId AS id, l.issuedAt, l.laws, o.trigger, o.modelId, o.seed, o.input
-       FROM outlook_laws l JOIN outlook o ON o.id = l.outlookId
-       WHERE l.siteId = ? AND l.issuedAt >= ? AND l.issuedAt < ? ORDER BY l.issuedAt, o.rowid`,
-    )
-    .all(task.siteId, task.issuedFrom, task.issuedTo) as StoredOutlook[];
+  const outlooks = db.prepare(storedOf[task.of]).all(task.siteId, task.issuedFrom, task.issuedTo) as StoredOutlook[];
   if (outlooks.length === 0) return [];
   const { after } = db
     .prepare('SELECT min(issuedAt) AS after FROM outlook_laws WHERE siteId = ? AND issuedAt >= ?')

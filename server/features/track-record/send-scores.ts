@@ -4,9 +4,11 @@ import Papa from 'papaparse';
 import type { EntityManager } from 'typeorm';
 import type { getTrackRecordCsv as contract, TrackFilter } from '../../../shared/api/track-record.ts';
 import { localDate, localParts, makeZone, type Zone } from '../../../shared/domain/zoned-time.ts';
+import { leadInWords, type RecordMeasure } from '../../../shared/domain/record-lead.ts';
 import { meanPinball } from '../../../shared/forecasting/score-issued.ts';
 import { readAreas } from '../../database/read-site.ts';
 import type { SiteContext } from '../../http/route.ts';
+import { nearestLead, readLeads } from './read-record.ts';
 import { filterCondition } from './read-points.ts';
 
 const rowsPerRead = 500;
@@ -19,7 +21,7 @@ const columns = [
   'outlook',
   'measure',
   'area',
-  'hours ahead',
+  'how far ahead',
   'shift',
   'from',
   'to',
@@ -44,7 +46,7 @@ interface Row {
   id: number;
   outlookId: string | null;
   weekOutlookId: string | null;
-  measure: string;
+  measure: RecordMeasure;
   areaId: string;
   leadHours: number;
   shift: string;
@@ -95,7 +97,7 @@ async function* linesOf(
   names: ReadonlyMap<string, string>,
 ): AsyncGenerator<string> {
   yield head;
-  const lead = query.measure === 'need' ? query.lead : 0;
+  const lead = nearestLead(await readLeads(read, siteId, query.measure), query);
   const { where, values } = filterCondition(siteId, { ...query, lead });
   let after = { at: now - query.weeks * 7 * 86_400, id: 0 };
   for (;;) {
@@ -118,7 +120,7 @@ function fieldsOf(row: Row, zone: Zone, names: ReadonlyMap<string, string>): (st
     row.outlookId ?? row.weekOutlookId,
     row.measure,
     row.areaId === '' ? 'Whole department' : (names.get(row.areaId) ?? row.areaId),
-    row.leadHours === 0 ? null : row.leadHours,
+    leadInWords(row.measure, row.leadHours),
     row.shift,
     localTime(zone, row.fromAt),
     localTime(zone, row.toAt),

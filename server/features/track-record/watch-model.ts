@@ -6,7 +6,7 @@ import type { Dependencies } from '../../dependencies.ts';
 import { ArrivalModelRow } from '../../entities/ArrivalModelRow.ts';
 import { Site } from '../../entities/Site.ts';
 import { recordOwnAudit } from '../../http/audit.ts';
-import { readApprovedAs } from './approved-as.ts';
+import { readApprovedAs } from '../../database/read-approved-as.ts';
 
 /** The lead at which need is watched, hours. */
 const watchedLead = 12;

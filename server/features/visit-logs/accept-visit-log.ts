@@ -5,6 +5,7 @@ import { VisitLog } from '../../entities/VisitLog.ts';
 import { badInput, HttpError } from '../../errors.ts';
 import { recordAudit } from '../../http/audit.ts';
 import type { ActorContext } from '../../http/route.ts';
+import { checkStatedStays } from './check-stated-stays.ts';
 import { findChecked } from './checked-file.ts';
 import { fileRefused, problemFaults } from './check-visit-log.ts';
 import { importJobKind, type ImportPayload } from './import-payload.ts';
@@ -59,10 +60,13 @@ export async function acceptVisitLog({
       { at: 'facts.takenAt', message: 'Enter a time that is not before the last arrival or departure in the file.' },
     ]);
   }
-  const period = periodOf(report, site.timeZone, facts.takenAt);
+  const period = checked.counted
+    ? { from: report.firstArrivalAt ?? 0, to: report.lastTimeAt ?? 0 }
+    : periodOf(report, site.timeZone, facts.takenAt);
   if (!period) throw fileRefused(problemFaults(report), false, 'No row of the file can be read as a visit.');
 
   const areas = await deps.database.read.findBy(CareArea, { siteId: site.id });
+  const stays = checkStatedStays(checked, areas, body.statedStays);
   const mapping = body.mapping ? screenMapping(body.mapping, areas, now) : null;
 
   const problems = new Map<string, number>();
@@ -75,7 +79,7 @@ export async function acceptVisitLog({
     const [{ last }] = await manager.query<{ last: number | null }[]>(
       'SELECT MAX("number") AS "last" FROM "visit_log"',
     );
-    const payload: ImportPayload = { logId, checkId: checked.checkId };
+    const payload: ImportPayload = { logId, checkId: checked.checkId, byToken: request.token !== null };
     const job = await deps.jobs.enqueue(manager, {
       kind: importJobKind,
       title: `Load ${checked.fileName}`,
@@ -85,6 +89,8 @@ export async function acceptVisitLog({
     });
     await manager.insert(VisitLog, {
       id: logId,
+      kind: checked.counted === null ? 'visits' : 'hourly counts',
+      statedStays: stays,
       number: (last ?? 0) + 1,
       siteId: site.id,
       status: 'loading',
@@ -95,6 +101,8 @@ export async function acceptVisitLog({
       periodTo: period.to,
       statedFrom: null,
       ...facts,
+      // Hourly counts say who came in each hour, and of nobody when that visit ended.
+      ...(checked.counted === null ? {} : { selectedBy: 'arrived' as const, missingDeparture: 'unknown' as const }),
       problems: {
         rows: report.problemRows + body.leftOutBeforeSending.rows,
         kinds: [...problems].map(([kind, rows]) => ({ kind, rows })),

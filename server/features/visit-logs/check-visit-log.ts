@@ -36,16 +36,16 @@ export async function checkVisitLog(context: ActorContext<typeof contract>): Pro
       file,
       now,
       areas: areas.map(({ id, name, code }) => ({ id, name, code })),
+      timeZone: site.timeZone,
       port: null,
       study: {
-        timeZone: site.timeZone,
         shiftEnds: (await readShifts(deps.database.read, site.id)).map(({ endMinute }) => endMinute),
         covered: logs.flatMap(({ counts }) => counts),
       },
     };
     const outcome = await deps.pool.run<FileOutcome>(workerUrl(import.meta.url, 'read-visit-log.worker'), input);
     if (outcome.refused !== null) throw fileRefused(outcome.refused, outcome.identifying);
-    const { report, problemRows, study } = outcome;
+    const { report, problemRows, study, counted } = outcome;
     if (report.goodRows === 0) {
       throw fileRefused(problemFaults(report), false, 'No row of the file can be read as a visit.');
     }
@@ -57,6 +57,7 @@ export async function checkVisitLog(context: ActorContext<typeof contract>): Pro
       ...received,
       checkedAt: now,
       report,
+      counted,
     };
     await keepChecked(dataDir, checked, problemRows);
     return presentCheck(checked, study, logs, areas, site.timeZone, now);

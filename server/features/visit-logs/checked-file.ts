@@ -1,6 +1,7 @@
 import { mkdir, readdir, readFile, rm, stat, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
 import { problemRowsCsv, type ProblemRows } from '../../../shared/domain/problem-rows.ts';
+import type { CountedFile } from '../../../shared/domain/hourly-count.ts';
 import type { VisitReport } from '../../../shared/domain/visit-report.ts';
 import { visitLogLimits } from '../../../shared/api/visit-logs.ts';
 
@@ -14,6 +15,8 @@ export interface CheckedFile {
   bytes: number;
   checkedAt: number;
   report: VisitReport;
+  /** What a file of hourly counts holds; null for visits. */
+  counted: CountedFile | null;
 }
 
 const prefix = 'visit-log-';

@@ -1,3 +1,4 @@
+import type { EntityManager } from 'typeorm';
 import type { declareExposureGap, ExposureGap, removeExposureGap } from '../../../shared/api/exposure-gaps.ts';
 import { withArticle } from '../../../shared/domain/identifier-kind.ts';
 import { screenNote } from '../../../shared/domain/screen-note.ts';
@@ -19,15 +20,14 @@ export async function listGaps(deps: Dependencies, siteId: string): Promise<Expo
   return rows.map(presentGap);
 }
 
+/** Told, in the same transaction, that a site's logs speak for other hours than before. */
+export type OnGapsChanged = (manager: EntityManager, siteId: string) => Promise<void>;
+
 /** Declares an outage or a diversion; every fault at once. */
-export async function declareGap({
-  deps,
-  site,
-  caller,
-  now,
-  body,
-  ...request
-}: SiteContext<typeof declareExposureGap>): Promise<ExposureGap> {
+export async function declareGap(
+  { deps, site, caller, now, body, ...request }: SiteContext<typeof declareExposureGap>,
+  onChanged: OnGapsChanged,
+): Promise<ExposureGap> {
   const faults: Fault[] = [];
   if (body.from < year2000) faults.push({ at: 'from', message: 'Not before the year 2000.' });
   if (body.until <= body.from) faults.push({ at: 'until', message: 'The end must lie after the start.' });
@@ -56,6 +56,7 @@ export async function declareGap({
     if (same.some((gap) => gap.areaId === areaId))
       throw conflict('The same hours of the same area are declared already.', 'There is nothing to do.');
     await manager.insert(ExposureGapRow, row);
+    if (row.fromAt < now) await onChanged(manager, site.id);
     const { from, until } = body;
     const detail = { kind: body.kind, areaId, from, until };
     const source = { ...request, caller, site, now };
@@ -65,18 +66,15 @@ export async function declareGap({
 }
 
 /** Removes what was declared; the audit trail keeps what it was. */
-export async function removeGap({
-  deps,
-  site,
-  caller,
-  now,
-  params,
-  ...request
-}: SiteContext<typeof removeExposureGap>): Promise<null> {
+export async function removeGap(
+  { deps, site, caller, now, params, ...request }: SiteContext<typeof removeExposureGap>,
+  onChanged: OnGapsChanged,
+): Promise<null> {
   await deps.database.write(async (manager) => {
     const row = await manager.findOneBy(ExposureGapRow, { id: params.gapId, siteId: site.id });
     if (!row) throw notFound('This outage or diversion');
     await manager.delete(ExposureGapRow, { id: row.id });
+    if (row.fromAt < now) await onChanged(manager, site.id);
     const detail = { kind: row.kind, areaId: row.areaId, from: row.fromAt, until: row.untilAt };
     await recordAudit(manager, { ...request, caller, site, now }, 'exposure-gap.removed', row.id, detail);
   });

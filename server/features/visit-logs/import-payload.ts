@@ -2,6 +2,8 @@
 export interface ImportPayload {
   logId: string;
   checkId: string;
+  /** Sent by a site's own system with its token. */
+  byToken?: boolean;
 }
 
 export const importJobKind = 'visit-log.import';

@@ -1,6 +1,8 @@
 import type { EntityManager } from 'typeorm';
 import type { Dependencies } from '../../dependencies.ts';
 import { CareArea } from '../../entities/CareArea.ts';
+import { Job } from '../../entities/Job.ts';
+import { Site } from '../../entities/Site.ts';
 import { VisitLog } from '../../entities/VisitLog.ts';
 import { recordOwnAudit } from '../../http/audit.ts';
 import { PermanentJobError, type JobKind } from '../../jobs/queue.ts';
@@ -8,6 +10,7 @@ import { checkedTextFile, findChecked, forgetChecked } from './checked-file.ts';
 import { deleteRowsJob } from './delete-visits.job.ts';
 import type { ImportPayload } from './import-payload.ts';
 import { deleteRows, loadRows } from './load-rows.ts';
+import { tellLoadFailed } from './tell-stewards.ts';
 
 /** Told, in the last write's own transaction, that a log of a site counts from now on. */
 export type OnLogReady = (manager: EntityManager, siteId: string) => Promise<void>;
@@ -29,7 +32,8 @@ export function makeImportVisitLog(deps: Dependencies, onReady: OnLogReady): Job
       if (!checked) throw new PermanentJobError('The checked file is no longer there. Send it again.');
       const areas = await database.read.findBy(CareArea, { siteId: log.siteId });
       const file = checkedTextFile(config.dataDir, checkId);
-      const task = { file, now: checked.checkedAt, areas, logNumber: log.number };
+      const { timeZone } = await database.read.findOneByOrFail(Site, { id: log.siteId });
+      const task = { file, now: checked.checkedAt, areas, timeZone, logNumber: log.number, kind: log.kind };
       const outcome = await loadRows(deps, task, signal, (rows) => {
         progress(rows / log.rows, `${rows.toLocaleString('en')} of ${log.rows.toLocaleString('en')} rows`);
       });
@@ -57,7 +61,7 @@ export function makeImportVisitLog(deps: Dependencies, onReady: OnLogReady): Job
       await forgetChecked(config.dataDir, checkId);
     },
     async settle(manager, job, error) {
-      const { logId, checkId } = JSON.parse(job.payload) as ImportPayload;
+      const { logId, checkId, byToken = false } = JSON.parse(job.payload) as ImportPayload;
       const failed = await manager.update(
         VisitLog,
         { id: logId, status: 'loading' },
@@ -73,6 +77,10 @@ export function makeImportVisitLog(deps: Dependencies, onReady: OnLogReady): Job
         event: 'visit-log.failed',
         subject: logId,
       });
+      const { status } = await manager.findOneByOrFail(Job, { id: job.id });
+      if (status !== 'failed') return;
+      const site = await manager.findOneByOrFail(Site, { id: log.siteId });
+      await tellLoadFailed(deps, manager, { log, site, error, byToken });
     },
   };
 }

@@ -3,11 +3,15 @@ import { MessageChannel } from 'node:worker_threads';
 import type { FileOutcome } from '../../../shared/domain/visit-file.ts';
 import type { Dependencies } from '../../dependencies.ts';
 import type { CareArea } from '../../entities/CareArea.ts';
+import type { VisitLog } from '../../entities/VisitLog.ts';
 import { workerUrl } from '../../simulation/pool.ts';
 import type { ReadVisitLogInput, RowsMessage } from './read-visit-log.worker.ts';
 
-const insert = `INSERT INTO "visit" ("logNumber", "rowNumber", "areaCode", "arrivalAt", "bedSpaceAt", "admissionDecisionAt", "departureAt", "disposition", "byAmbulance")
+const insertVisits = `INSERT INTO "visit" ("logNumber", "rowNumber", "areaCode", "arrivalAt", "bedSpaceAt", "admissionDecisionAt", "departureAt", "disposition", "byAmbulance")
 SELECT ?, value ->> 0, value ->> 1, value ->> 2, value ->> 3, value ->> 4, value ->> 5, value ->> 6, value ->> 7 FROM json_each(?)
+WHERE EXISTS (SELECT 1 FROM "visit_log" WHERE "number" = ? AND "status" = 'loading')`;
+const insertCounts = `INSERT INTO "hourly_count" ("logNumber", "rowNumber", "areaCode", "localHour", "arrivals", "departures")
+SELECT ?, value ->> 0, value ->> 1, value ->> 2, value ->> 3, value ->> 4 FROM json_each(?)
 WHERE EXISTS (SELECT 1 FROM "visit_log" WHERE "number" = ? AND "status" = 'loading')`;
 
 /**
@@ -19,10 +23,18 @@ WHERE EXISTS (SELECT 1 FROM "visit_log" WHERE "number" = ? AND "status" = 'loadi
  */
 export async function loadRows(
   deps: Dependencies,
-  task: { file: string; now: number; areas: readonly CareArea[]; logNumber: number },
+  task: {
+    file: string;
+    now: number;
+    areas: readonly CareArea[];
+    timeZone: string;
+    logNumber: number;
+    kind: VisitLog['kind'];
+  },
   signal: AbortSignal,
   onRows: (rows: number) => void,
 ): Promise<FileOutcome> {
+  const insert = task.kind === 'visits' ? insertVisits : insertCounts;
   const { port1: near, port2: far } = new MessageChannel();
   const stop = new AbortController();
   let failure: { error: unknown } | null = null;
@@ -47,6 +59,7 @@ export async function loadRows(
       file: task.file,
       now: task.now,
       areas: task.areas.map(({ id, name, code }) => ({ id, name, code })),
+      timeZone: task.timeZone,
       port: far,
       study: null,
     };
@@ -68,7 +81,7 @@ export async function loadRows(
 
 const rowsADelete = 2000;
 
-/** Deletes the visits of a log in short writes, so that other work goes on between them. */
+/** Deletes the visits or counts of a log in short writes, so that other work goes on between them. */
 export async function deleteRows(
   deps: Dependencies,
   logNumber: number,
@@ -77,11 +90,14 @@ export async function deleteRows(
   let deleted = 0;
   for (;;) {
     const rows = await deps.database.write(async (manager) => {
-      const gone = await manager.query<{ rowNumber: number }[]>(
-        'DELETE FROM "visit" WHERE "logNumber" = ? AND "rowNumber" <= (SELECT MAX("rowNumber") FROM (SELECT "rowNumber" FROM "visit" WHERE "logNumber" = ? ORDER BY "rowNumber" LIMIT ?)) RETURNING "rowNumber"',
-        [logNumber, logNumber, rowsADelete],
-      );
-      return gone.length;
+      for (const table of ['visit', 'hourly_count']) {
+        const gone = await manager.query<{ rowNumber: number }[]>(
+          `DELETE FROM "${table}" WHERE "logNumber" = ? AND "rowNumber" <= (SELECT MAX("rowNumber") FROM (SELECT "rowNumber" FROM "${table}" WHERE "logNumber" = ? ORDER BY "rowNumber" LIMIT ?)) RETURNING "rowNumber"`,
+          [logNumber, logNumber, rowsADelete],
+        );
+        if (gone.length > 0) return gone.length;
+      }
+      return 0;
     });
     if (rows === 0) return;
     deleted += rows;

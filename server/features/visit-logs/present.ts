@@ -12,6 +12,7 @@ import { periodOf } from '../../../shared/domain/log-period.ts';
 export function presentVisitLog(log: VisitLog, counts: readonly Span[]): VisitLogSummary {
   return {
     id: log.id,
+    kind: log.kind,
     status: log.status,
     fileName: log.fileName,
     rows: log.rows,
@@ -45,6 +46,13 @@ export function presentVisitLogDetail(
       arrivalMeaning: log.arrivalMeaning,
       areaMeaning: log.areaMeaning,
     },
+    statedStays: log.statedStays && {
+      source: log.statedStays.source,
+      areas: log.statedStays.areas.flatMap(({ areaCode, meanHours }) => {
+        const area = areas.find(({ code }) => code === areaCode);
+        return area ? [{ areaId: area.id, name: area.name, meanHours }] : [];
+      }),
+    },
     leftOut: log.problems.kinds.map(({ kind, rows }) => ({ problem: kind, rows })),
     visitsByArea: presentAreas(
       log.visitsByArea.map(({ areaCode, visits }) => ({ area: areaCode, visits })),
@@ -57,7 +65,7 @@ export function presentVisitLogDetail(
 export function presentCheck(
   checked: CheckedFile,
   study: FileStudy | null,
-  logs: readonly { id: string; counts: readonly Span[] }[],
+  logs: readonly { id: string; kind: VisitLog['kind']; counts: readonly Span[] }[],
   areas: readonly CareArea[],
   timeZone: string,
   now: number,
@@ -66,6 +74,8 @@ export function presentCheck(
   const period = periodOf(report, timeZone, now);
   return {
     checkId: checked.checkId,
+    kind: checked.counted === null ? 'visits' : 'hourly counts',
+    needsMean: presentNeedsMean(checked, areas),
     keptUntil: checked.checkedAt + visitLogLimits.checkKeptFor,
     fileName: checked.fileName,
     sha256: checked.sha256,
@@ -77,11 +87,23 @@ export function presentCheck(
     identicalRows: report.identicalRows,
     period,
     study: study ? presentStudy(study, areas) : null,
-    accepting: period && study ? { newRows: study.newRows, ...acceptingChange(period, logs) } : null,
+    accepting:
+      period && study
+        ? {
+            newRows: study.newRows,
+            ...acceptingChange(period, logs, checked.counted === null ? 'visits' : 'hourly counts'),
+          }
+        : null,
     lastTimeAt: report.lastTimeAt,
     visitsByArea: presentAreas(report.visitsByArea, areas),
     recorded: report.recorded,
   };
+}
+
+/** Areas of hourly counts: their mean stays have to be stated. */
+export function presentNeedsMean({ counted }: CheckedFile, areas: readonly CareArea[]): string[] {
+  const codes = (counted?.areas ?? []).filter(({ arrivals }) => arrivals > 0).map(({ area }) => area);
+  return areas.filter(({ code }) => codes.includes(code)).map(({ id }) => id);
 }
 
 function presentStudy({ gaps, levelShifts, heaps }: FileStudy, areas: readonly CareArea[]) {

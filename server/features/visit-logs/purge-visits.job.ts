@@ -2,7 +2,7 @@ import { In, LessThan } from 'typeorm';
 import { z } from 'zod';
 import { makeZone } from '../../../shared/domain/zoned-time.ts';
 import type { Dependencies } from '../../dependencies.ts';
-import type { Site } from '../../entities/Site.ts';
+import { Site } from '../../entities/Site.ts';
 import { VisitLog } from '../../entities/VisitLog.ts';
 import { recordOwnAudit } from '../../http/audit.ts';
 import type { JobKind } from '../../jobs/queue.ts';
@@ -74,6 +74,8 @@ export function makePurgeVisits(deps: Dependencies): JobKind {
   return {
     async run({ payload, signal, progress }) {
       const { siteId } = payloadSchema.parse(payload);
+      const { timeZone } = await database.read.findOneByOrFail(Site, { id: siteId });
+      const zone = makeZone(timeZone);
       const logs = await database.read.findBy(VisitLog, { siteId, status: In(['ready', 'purged']) });
       const shortened = logs.filter(({ statedFrom }) => statedFrom !== null);
       let deleted = 0;
@@ -92,6 +94,14 @@ export function makePurgeVisits(deps: Dependencies): JobKind {
         }
         for (;;) {
           const rows = await database.write(async (manager) => {
+            if (log.kind === 'hourly counts') {
+              const before = Math.floor(zone.toLocal(log.periodFrom) / 3600);
+              const gone = await manager.query<unknown[]>(
+                'DELETE FROM "hourly_count" WHERE "logNumber" = ? AND "rowNumber" IN (SELECT "rowNumber" FROM "hourly_count" WHERE "logNumber" = ? AND "localHour" < ? LIMIT ?) RETURNING 1',
+                [log.number, log.number, before, rowsADelete],
+              );
+              return gone.length;
+            }
             const gone = await manager.query<unknown[]>(
               'DELETE FROM "visit" WHERE "logNumber" = ? AND "rowNumber" IN (SELECT "rowNumber" FROM "visit" WHERE "logNumber" = ? AND "arrivalAt" < ? LIMIT ?) RETURNING 1',
               [log.number, log.number, log.periodFrom, rowsADelete],

@@ -1,5 +1,6 @@
 import { closeSync, openSync, readSync } from 'node:fs';
 import type { MessagePort } from 'node:worker_threads';
+import { canonicalCountPlaces, canonicalCountReading, isCountHeader } from '../../../shared/domain/canonical-count.ts';
 import { canonicalPlaces, canonicalReading } from '../../../shared/domain/canonical-visit.ts';
 import type { TimeSpan } from '../../../shared/domain/file-study.ts';
 import { notText, notUtf8 } from '../../../shared/domain/sniff-file.ts';
@@ -14,13 +15,14 @@ export interface ReadVisitLogInput {
   /** UTC seconds. */
   now: number;
   areas: { id: string; name: string; code: number }[];
+  timeZone: string;
   /** Gets good rows as JSON arrays, some thousands at a time, and answers each with anything; null to check only. */
   port: MessagePort | null;
   /** What a study of the times needs; null for none. */
-  study: { timeZone: string; shiftEnds: number[]; covered: TimeSpan[] } | null;
+  study: { shiftEnds: number[]; covered: TimeSpan[] } | null;
 }
 
-/** One piece of good rows: [rowNumber, areaCode, arrival, bed space, admission decision, departure, disposition, byAmbulance]. */
+/** One piece of good rows: [rowNumber, areaCode, arrival, bed space, admission decision, departure, disposition, byAmbulance]; of hourly counts [rowNumber, areaCode, localHour, arrivals, departures]. */
 export interface RowsMessage {
   json: string;
   rows: number;
@@ -32,17 +34,37 @@ const rowsAMessage = 1000;
 const mostUnanswered = 3;
 
 /** Reads a file that stands on the disk, checks every row, and hands on the good ones. */
-export default async function readVisitLog({ file, now, areas, port, study }: ReadVisitLogInput): Promise<FileOutcome> {
+export default async function readVisitLog({
+  file,
+  now,
+  areas,
+  timeZone,
+  port,
+  study,
+}: ReadVisitLogInput): Promise<FileOutcome> {
   const codes = new Map<string, number>();
   for (const area of areas) codes.set(area.name, area.code);
   for (const area of areas) codes.set(area.id, area.code);
   const out = port ? new RowsOut(port) : null;
+  const zone = makeZone(timeZone);
+  let counts = 0;
   const reader = new VisitFileReader({
     parse: makeRecordParser(),
-    places: (header) => canonicalPlaces(header, now),
+    places: (header) => (isCountHeader(header) ? canonicalCountPlaces(header, now) : canonicalPlaces(header, now)),
     reading: canonicalReading(codes),
     now,
-    ...(study ? { study: { ...study, zone: makeZone(study.timeZone) } } : {}),
+    ...(study ? { study: { ...study, zone } } : {}),
+    counts: {
+      reading: canonicalCountReading(codes),
+      zone,
+      // A system that leaves hours out may have lost them: it has to say 0.
+      missingIsNone: false,
+      areaName: (code) => areas.find((area) => area.code === code)?.name ?? '',
+      onCount: ({ area, localHour, arrivals, departures }) => {
+        counts += 1;
+        out?.add(`[${[counts, area, localHour, arrivals, departures ?? 'null'].join(',')}]`);
+      },
+    },
     ...(out
       ? {
           onVisit: (visit, rowNumber) => {

@@ -17,7 +17,7 @@ import { findChecked, forgetChecked } from './checked-file.ts';
 import { checkVisitLog } from './check-visit-log.ts';
 import { comparePresence } from './compare-presence.ts';
 import { deleteRowsJobKind, makeDeleteVisits } from './delete-visits.job.ts';
-import { declareGap, listGaps, removeGap } from './exposure-gaps.ts';
+import { declareGap, listGaps, removeGap, type OnGapsChanged } from './exposure-gaps.ts';
 import { importJobKind } from './import-payload.ts';
 import { makeImportVisitLog, type OnLogReady } from './import-visit-log.job.ts';
 import { presentVisitLog, presentVisitLogDetail } from './present.ts';
@@ -34,7 +34,7 @@ export function addVisitLogRoutes(
   app: Express,
   routes: RouteTable,
   deps: Dependencies,
-  onWithdrawn: OnLogWithdrawn,
+  on: { withdrawn: OnLogWithdrawn; gapsChanged: OnGapsChanged },
 ): void {
   addSiteRoute(app, routes, deps, api.listVisitLogs, async ({ site }) => {
     const { logs, spans } = await readLogs(deps, site);
@@ -68,16 +68,16 @@ export function addVisitLogRoutes(
 
   addSiteRoute(app, routes, deps, listExposureGaps, async ({ site }) => ({ gaps: await listGaps(deps, site.id) }));
 
-  addSiteRoute(app, routes, deps, declareExposureGap, (context) => declareGap(context));
+  addSiteRoute(app, routes, deps, declareExposureGap, (context) => declareGap(context, on.gapsChanged));
 
-  addSiteRoute(app, routes, deps, removeExposureGap, (context) => removeGap(context));
+  addSiteRoute(app, routes, deps, removeExposureGap, (context) => removeGap(context, on.gapsChanged));
 
   addSiteRoute(app, routes, deps, getVisitRetention, ({ site, now }) => readRetention(deps, site.id, now));
 
   addSiteRoute(app, routes, deps, setVisitRetention, (context) => saveRetention(context));
 
   addSiteRoute(app, routes, deps, api.withdrawVisitLog, async (context) => {
-    await withdrawVisitLog(context, onWithdrawn);
+    await withdrawVisitLog(context, on.withdrawn);
     return readDetail(deps, context.site, context.params.logId);
   });
 }

@@ -1,6 +1,8 @@
-import { MoreThan } from 'typeorm';
+import { MoreThan, type EntityManager } from 'typeorm';
 import { screenFileName } from '../../../shared/domain/screen-file-name.ts';
 import type { Dependencies } from '../../dependencies.ts';
+import type { Site } from '../../entities/Site.ts';
+import type { VisitLog } from '../../entities/VisitLog.ts';
 import { Job } from '../../entities/Job.ts';
 import { HttpError } from '../../errors.ts';
 import type { ActorContext } from '../../http/route.ts';
@@ -33,7 +35,7 @@ export async function tellIfRefused<Reply>(context: Refused, work: () => Promise
 }
 
 async function tellStewards({ deps, site, actor, now, requestId, req }: Refused, refusal: HttpError): Promise<void> {
-  const addresses = await stewardAddresses(deps, site, now);
+  const addresses = await stewardAddresses(deps.database.read, site, now);
   if (addresses.length === 0) return;
   const title = `Upload refused: ${refusal.title}`;
   const given = req.query.fileName;
@@ -86,13 +88,50 @@ async function tellStewards({ deps, site, actor, now, requestId, req }: Refused,
   });
 }
 
+/**
+ * Tells the site's stewards by mail, within the caller's transaction, that a file which had been accepted could not be
+ * loaded: whoever sent it, person or system, was told that all was well.
+ */
+export async function tellLoadFailed(
+  deps: Dependencies,
+  manager: EntityManager,
+  { log, site, error, byToken }: { log: VisitLog; site: Site; error: string; byToken: boolean },
+): Promise<void> {
+  const { text, html } = layOutMail({
+    title: `${site.name}: a file of visits was accepted but could not be loaded.`,
+    blocks: [
+      {
+        heading: log.fileName,
+        lines: [
+          `Sent by ${log.uploadedBy}${byToken ? ' (the nightly upload)' : ''}.`,
+          error,
+          'Nothing of it was kept; everything loaded before is unchanged.',
+          'Send the file again; if it fails again, tell your administrator, who sees under jobs why.',
+        ],
+      },
+    ],
+    link: {
+      text: 'Open this log',
+      url: `${deps.config.baseUrl}/sites/${encodeURIComponent(site.id)}/logs/${encodeURIComponent(log.id)}`,
+    },
+    footer: [
+      'Until a file is loaded, forecasts go by the visits loaded before; their age is shown with every outlook.',
+    ],
+  });
+  for (const to of await stewardAddresses(manager, site, deps.clock())) {
+    const subject = `${site.name}: visits not loaded`.slice(0, 250);
+    const title = `Load failed: ${log.fileName}`;
+    await enqueueMail(deps, manager, { mail: { to, subject, text, html }, title, siteId: site.id, createdBy: sender });
+  }
+}
+
 /** Addresses of those who hold the steward's role at a site now, by name or by a group of the identity provider. */
 async function stewardAddresses(
-  { database }: Dependencies,
+  read: EntityManager,
   site: { id: string; groupId: string },
   now: number,
 ): Promise<string[]> {
-  const rows = await database.read.query<{ email: string }[]>(
+  const rows = await read.query<{ email: string }[]>(
     `SELECT DISTINCT person.email FROM person
      WHERE person.email <> '' AND (
        EXISTS (SELECT 1 FROM membership held WHERE held.personId = person.id AND held.role = 'steward'

@@ -12,12 +12,14 @@ const leastShareKnown = 0.8;
 /**
  * Ambulance arrivals of the last year by area and block of the local day.
  * @param areaIds areas in the order wanted
+ * @param until visits that arrived later were not known, UTC seconds
  * @returns null where the logs do not tell ambulances apart: few visits say how they came, or all say the same.
  */
 export function countAmbulances(
   { table, areaIds: logAreas }: Pick<SiteVisits, 'table' | 'areaIds'>,
   areaIds: readonly string[],
   timeZone: string,
+  until = Number.MAX_SAFE_INTEGER,
 ): WeekOutlookInput['ambulance'] {
   const zone = makeZone(timeZone);
   const zeros = (): number[][] => areaIds.map(() => new Array<number>(ambulanceBlocks).fill(0));
@@ -29,7 +31,7 @@ export function countAmbulances(
   let carried = 0;
   for (let i = 0; i < table.length; i += 1) {
     const area = placeOf[table.area[i]];
-    if (area < 0) continue;
+    if (area < 0 || table.arrivalAt[i] >= until) continue;
     all += 1;
     const way = table.byAmbulance[i];
     if (way > 1) continue;

@@ -37,6 +37,7 @@ export async function presentWeekOutlook(
       id: model.id,
       fittedAt: model.fittedAt ?? 0,
       trainedTo: model.trainedTo ?? 0,
+      staysFrom: model.staysFrom,
       weeksOfHistory: ((model.trainedTo ?? 0) - (model.trainedFrom ?? 0)) / (7 * day),
     },
     seed: row.seed,
@@ -100,9 +101,9 @@ function pastHours(site: Site, now: number): { from: number; to: number }[] {
   });
 }
 
-/** The week outlook that stood a week ago, against what came; null where none had been issued by then. */
+/** The week outlook that stood a week ago, against what came; null where there is none of then, not even one made afterwards. */
 async function readLastWeek(read: EntityManager, site: Site, now: number): Promise<LastWeek | null> {
-  const then = await readNewestWeekOutlook(read, site.id, now - 7 * day);
+  const then = await readNewestWeekOutlook(read, site.id, now - 7 * day, true);
   if (!then || then.row.issuedAt < now - 9 * day) return null;
   const { spans, total } = then.result.arrivals.days;
   const whole = spans.flatMap((span, index) => (index > 0 && index <= 7 ? [{ ...span, index }] : []));
@@ -110,6 +111,7 @@ async function readLastWeek(read: EntityManager, site: Site, now: number): Promi
   return {
     outlookId: then.row.id,
     issuedAt: then.row.issuedAt,
+    recomputed: then.row.trigger === 'recomputed',
     days: whole.map(({ name, from, to, index }, place) => ({
       date: name,
       from,

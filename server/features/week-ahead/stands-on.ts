@@ -12,7 +12,7 @@ const calendarAfter = 23 * day;
 
 /**
  * SHA-256 of what a week outlook issued at `at` stands on, census and time apart: the model, the plan with its dated
- * exceptions, the calendar, areas, shifts and the planning risk. Changes made to tonight's beds leave it as it is.
+ * exceptions, the calendar, areas, shifts, the planning risk and the wait limit. Changes made to tonight's beds leave it as it is.
  */
 export async function standsOn(read: EntityManager, site: Site, modelId: string, at: number): Promise<string> {
   const plan = await readPlan(read, site.id);
@@ -39,6 +39,7 @@ export async function standsOn(read: EntityManager, site: Site, modelId: string,
       leadTimeHours,
     ]),
     planningRisk: site.planningRisk,
+    waitLimitMinutes: site.waitLimitMinutes,
     timeZone: site.timeZone,
   };
   return createHash('sha256').update(JSON.stringify(facts)).digest('hex');

@@ -1,7 +1,7 @@
 import type { Caution } from '../../../shared/api/outlooks.ts';
 import type { WeekOutlook } from '../../../shared/api/week-outlooks.ts';
 import type { Span } from '../../database/counting-spans.ts';
-import { groundCautions } from '../../database/ground-cautions.ts';
+import { countCautions, groundCautions } from '../../database/ground-cautions.ts';
 
 const hour = 3600;
 
@@ -52,7 +52,7 @@ export function weekCautions({ now, outlook, areas, covered, drift = [] }: WeekC
       text: 'Less than a year of visits: not every season has been seen yet.',
     });
   }
-  cautions.push(...groundCautions(now, model.fittedAt, covered));
+  cautions.push(...countCautions(model.staysFrom), ...groundCautions(now, model.fittedAt, covered));
   for (const { name, date, basis, to } of result.calendar) {
     if (basis === 'learned' || to <= now) continue;
     const known = basis === 'stated' ? 'its range is the one your site stated' : 'its range is a guess';

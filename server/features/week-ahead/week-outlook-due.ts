@@ -1,4 +1,4 @@
-import type { EntityManager } from 'typeorm';
+import { LessThanOrEqual, Not, type EntityManager } from 'typeorm';
 import type { z } from 'zod';
 import type { WeekAhead, weekOutlookTrigger } from '../../../shared/api/week-outlooks.ts';
 import { instantOfLocal } from '../../../shared/domain/shift-times.ts';
@@ -53,7 +53,8 @@ export async function weekOutlookDue(read: EntityManager, site: Site, now: numbe
   const model = await readModelInUse(read, site.id);
   if (!model || (await whyNoWeekOutlook(read, site))) return null;
   const newest = await read.findOne(WeekOutlookRow, {
-    where: { siteId: site.id },
+    // One from before the clock was set back, by an hour or more, does not stand in the way of today's.
+    where: { siteId: site.id, trigger: Not('recomputed'), issuedAt: LessThanOrEqual(now + 3600) },
     order: { issuedAt: 'DESC' },
     select: { id: true, issuedAt: true, standsOn: true },
   });

@@ -1,4 +1,5 @@
 import type { MessagePort } from 'node:worker_threads';
+import { weekLaws } from '../../../shared/forecasting/week-laws.ts';
 import { prepareWeek, simulateWeekPart, weekFromParts } from '../../../shared/forecasting/week-outlook.ts';
 import type { WeekPart } from '../../../shared/forecasting/record-week.ts';
 import type { WeekOutlookInput } from '../../../shared/forecasting/week-outlook-types.ts';
@@ -17,10 +18,11 @@ export interface WeekRequest {
   progress: MessagePort;
 }
 
-/** The whole input and the result, as JSON: the main thread only stores them. */
+/** The whole input, the result and the distributions behind it, as JSON: the main thread only stores them. */
 export interface WeekReply {
   input: string;
   result: string;
+  laws: string;
 }
 
 const steps = 8;
@@ -35,7 +37,7 @@ export default function computeWeek(request: WeekRequest): WeekReply {
     const visits = readSiteVisits(databaseFile, siteId, request.input.issuedAt - ambulanceHistorySeconds);
     const input: WeekOutlookInput = {
       ...request.input,
-      ambulance: countAmbulances(visits, parameters.areaIds, request.input.timeZone),
+      ambulance: countAmbulances(visits, parameters.areaIds, request.input.timeZone, request.input.issuedAt),
     };
     const prepared = prepareWeek(parameters, input);
     const parts: WeekPart[] = [];
@@ -45,7 +47,12 @@ export default function computeWeek(request: WeekRequest): WeekReply {
       if (bound(step + 1) > bound(step)) parts.push(simulateWeekPart(prepared, bound(step), bound(step + 1)));
     }
     tell(0.8, 'Forecasting arrivals');
-    return { input: JSON.stringify(input), result: JSON.stringify(weekFromParts(prepared, parts)) };
+    const result = weekFromParts(prepared, parts);
+    return {
+      input: JSON.stringify(input),
+      result: JSON.stringify(result),
+      laws: JSON.stringify(weekLaws(prepared, parts, result)),
+    };
   } finally {
     progress.close();
   }

@@ -1,5 +1,5 @@
 import { zodResolver } from '@hookform/resolvers/zod';
-import { useId, useState } from 'react';
+import { useId, useState, type ReactNode } from 'react';
 import { useForm } from 'react-hook-form';
 import { approveModel } from '../../../shared/api/arrival-models.ts';
 import type { ModelSummary } from '../../../shared/api/arrival-models.ts';
@@ -25,7 +25,16 @@ const reasonForm = approvalBody.superRefine(({ reason }, context) => {
 type ReasonForm = z.input<typeof reasonForm>;
 
 /** Approve or retire, always with a reason; the person who fitted a candidate is told why they may not approve it. */
-export function JudgeModel({ siteId, model }: { siteId: string; model: ModelSummary }) {
+export function JudgeModel({
+  siteId,
+  model,
+  beside,
+}: {
+  siteId: string;
+  model: ModelSummary;
+  /** What the comparison with the model in use says, read before approving. */
+  beside?: ReactNode;
+}) {
   const judging = useJudgeModel(siteId, model.id);
   const [verdict, setVerdict] = useState<'approve' | 'retire'>('approve');
   const formId = useId();
@@ -53,6 +62,7 @@ export function JudgeModel({ siteId, model }: { siteId: string; model: ModelSumm
             </p>
           </Notice>
         ) : null}
+        {model.status === 'candidate' ? beside : null}
         {model.status === 'in use' ? (
           <p className="text-ink2">Without a model in use Tonight has no outlook, until another one is approved.</p>
         ) : null}

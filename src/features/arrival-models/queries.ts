@@ -1,5 +1,13 @@
 import { useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
-import { approveModel, fitModel, getModel, listModels, retireModel } from '../../../shared/api/arrival-models.ts';
+import {
+  approveModel,
+  compareModel,
+  fitModel,
+  getModel,
+  getModelComparison,
+  listModels,
+  retireModel,
+} from '../../../shared/api/arrival-models.ts';
 import { call } from '../../lib/api-client.ts';
 
 const modelsKey = (siteId: string) => ['arrival-models', siteId] as const;
@@ -18,6 +26,24 @@ export function useModel(siteId: string, modelId: string) {
     queryKey: [...modelsKey(siteId), modelId],
     queryFn: ({ signal }) => call(getModel, { params: { siteId, modelId }, signal }),
     refetchInterval: (query) => (query.state.data?.status === 'fitting' ? 2000 : false),
+  });
+}
+
+/** The newest backtest beside the model in use; asked every two seconds while it runs. */
+export function useComparison(siteId: string, modelId: string) {
+  return useQuery({
+    queryKey: [...modelsKey(siteId), modelId, 'comparison'],
+    queryFn: ({ signal }) => call(getModelComparison, { params: { siteId, modelId }, signal }),
+    refetchInterval: (query) => (query.state.data?.comparison?.status === 'running' ? 2000 : false),
+  });
+}
+
+export function useCompare(siteId: string, modelId: string) {
+  const refresh = useRefresh(siteId);
+  return useMutation({
+    mutationFn: () =>
+      call(compareModel, { params: { siteId, modelId }, body: {}, kept: 'The candidate stays as it is.' }),
+    onSuccess: refresh,
   });
 }
 

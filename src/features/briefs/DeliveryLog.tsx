@@ -45,10 +45,17 @@ export function DeliveryLog({
             key: 'state',
             header: 'State',
             cell: (delivery) => (
-              <span className={delivery.state === 'sent' ? undefined : 'font-bold text-ink'}>
-                {deliveryWords[delivery.state]}
-                {delivery.sentAt === null ? '' : `, ${formatDateTime(delivery.sentAt, timeZone)}`}
-              </span>
+              <>
+                <span className={delivery.state === 'sent' ? undefined : 'font-bold text-ink'}>
+                  {deliveryWords[delivery.state]}
+                  {delivery.sentAt === null ? '' : `, ${formatDateTime(delivery.sentAt, timeZone)}`}
+                </span>
+                {delivery.returnedAt === null ? null : (
+                  <span className="block font-bold text-ink">
+                    Came back, {formatDateTime(delivery.returnedAt, timeZone)}
+                  </span>
+                )}
+              </>
             ),
           },
           { key: 'attempts', header: 'Attempts', figure: true, cell: (delivery) => delivery.attempts },
@@ -58,6 +65,9 @@ export function DeliveryLog({
             cell: (delivery) => (
               <div className="grid justify-items-start gap-1 text-ink2">
                 {delivery.lastAnswer ?? '–'}
+                {delivery.returnedBecause === null ? null : (
+                  <span className="text-ink">Returned: {delivery.returnedBecause}</span>
+                )}
                 {mayBeSentAgain.includes(delivery.state) && !delivery.test ? (
                   <Button
                     look="quiet"
@@ -74,8 +84,8 @@ export function DeliveryLog({
         ]}
       />
       <p className="text-quiet text-ink2">
-        A message that is returned later goes to the address that the mail is sent from, not to this page. A message
-        sent again carries the same Message-ID.
+        What comes back later is shown here where the mail server passes its delivery reports on; the administrator can
+        set that up. A message sent again carries the same Message-ID.
       </p>
     </div>
   );

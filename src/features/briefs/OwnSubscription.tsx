@@ -1,4 +1,4 @@
-import type { Subscription } from '../../../shared/api/briefs.ts';
+import type { Subscription } from '../../../shared/api/brief-recipients.ts';
 import { Button } from '../../components/Button.tsx';
 import { ProblemNotice } from '../../components/Notice.tsx';
 

@@ -1,5 +1,5 @@
 import { useState } from 'react';
-import type { Recipient } from '../../../shared/api/briefs.ts';
+import type { Recipient } from '../../../shared/api/brief-recipients.ts';
 import { readMailAddress } from '../../../shared/domain/mail-address.ts';
 import { Button } from '../../components/Button.tsx';
 import { DataTable } from '../../components/DataTable.tsx';
@@ -15,6 +15,9 @@ export function RecipientList({
   removing,
   error,
   onRemove,
+  confirming,
+  confirmError,
+  onConfirm,
 }: {
   recipients: readonly Recipient[];
   timeZone: string;
@@ -22,10 +25,15 @@ export function RecipientList({
   error: unknown;
   /** Calls `done` once the recipient is removed. */
   onRemove: (recipientId: string, done: () => void) => void;
+  confirming: boolean;
+  confirmError: unknown;
+  /** Takes an address whose mail came back into use again. */
+  onConfirm: (recipientId: string) => void;
 }) {
   const [asked, setAsked] = useState<Recipient | null>(null);
   return (
     <>
+      {confirmError ? <ProblemNotice error={confirmError} /> : null}
       <DataTable
         caption="Recipients"
         captionHidden
@@ -44,14 +52,35 @@ export function RecipientList({
               </>
             ),
           },
-          { key: 'state', header: 'State', cell: (recipient) => sayRecipientState(recipient, timeZone) },
+          {
+            key: 'state',
+            header: 'State',
+            cell: (recipient) => (
+              <span className={recipient.state === 'returned' ? 'font-bold text-ink' : undefined}>
+                {sayRecipientState(recipient, timeZone)}
+              </span>
+            ),
+          },
           {
             key: 'remove',
             header: 'Change',
             cell: (recipient) => (
-              <Button look="quiet" aria-label={`Remove ${recipient.name}`} onClick={() => setAsked(recipient)}>
-                Remove
-              </Button>
+              <div className="grid justify-items-start gap-1">
+                {recipient.state === 'returned' ? (
+                  <Button
+                    look="quiet"
+                    className="whitespace-nowrap"
+                    busy={confirming}
+                    aria-label={`The address of ${recipient.name} is right: send to it again`}
+                    onClick={() => onConfirm(recipient.id)}
+                  >
+                    The address is right
+                  </Button>
+                ) : null}
+                <Button look="quiet" aria-label={`Remove ${recipient.name}`} onClick={() => setAsked(recipient)}>
+                  Remove
+                </Button>
+              </div>
             ),
           },
         ]}

@@ -1,4 +1,5 @@
-import type { Brief, BriefTally, Delivery, Recipient } from '../../../shared/api/briefs.ts';
+import type { Recipient } from '../../../shared/api/brief-recipients.ts';
+import type { Brief, BriefTally, Delivery } from '../../../shared/api/briefs.ts';
 import { formatCount, formatDateTime } from '../../lib/format.ts';
 
 /** What became of a brief, in a few words. */
@@ -9,6 +10,7 @@ export function sayBriefState(brief: Brief & { tally: BriefTally }, timeZone: st
   const faults = [
     ...(tally.refused > 0 ? [`${formatCount(tally.refused, 'delivery', 'deliveries')} failed`] : []),
     ...(tally.notKnown > 0 ? [`${String(tally.notKnown)} not known`] : []),
+    ...(tally.returned > 0 ? [`${String(tally.returned)} came back`] : []),
     ...(tally.leftOut > 0 ? [`${String(tally.leftOut)} left out`] : []),
   ];
   const to = formatCount(tally.sent, 'recipient');
@@ -33,12 +35,14 @@ export const deliveryWords: Record<Delivery['state'], string> = {
 export const mayBeSentAgain: readonly Delivery['state'][] = ['refused', 'given up', 'not known'];
 
 export function sayRecipientState(
-  { state, confirmedAt, askedAt, unsubscribedAt, kind }: Recipient,
+  { state, confirmedAt, askedAt, unsubscribedAt, returnedAt, kind }: Recipient,
   timeZone: string,
 ): string {
   if (state === 'unsubscribed' && unsubscribedAt !== null)
     return `Unsubscribed ${formatDateTime(unsubscribedAt, timeZone)}`;
   if (state === 'asked' && askedAt !== null) return `Asked ${formatDateTime(askedAt, timeZone)}, not confirmed yet`;
+  if (state === 'returned' && returnedAt !== null)
+    return `Mail to it came back ${formatDateTime(returnedAt, timeZone)}: it gets nothing until somebody confirms the address`;
   if (kind === 'person') return 'Receives it; person of the site';
   return confirmedAt === null ? 'Receives it' : `Receives it; confirmed ${formatDateTime(confirmedAt, timeZone)}`;
 }

@@ -20,33 +20,42 @@ export function usePlaceChoices() {
   });
 }
 
-function useInstallationMutation<Wish, Reply>(mutationFn: (wish: Wish) => Promise<Reply>) {
+function useInstallationMutation<Wish, Reply>(done: string, mutationFn: (wish: Wish) => Promise<Reply>) {
   const queryClient = useQueryClient();
-  return useMutation({ mutationFn, onSuccess: () => queryClient.invalidateQueries({ queryKey: [...key, 'sites'] }) });
+  return useMutation({
+    meta: { done },
+    mutationFn,
+    onSuccess: () => queryClient.invalidateQueries({ queryKey: [...key, 'sites'] }),
+  });
 }
 
 export const useMakeGroup = () =>
-  useInstallationMutation((name: string) => call(api.makeGroup, { body: { name }, kept }));
+  useInstallationMutation('The health group was made.', (name: string) =>
+    call(api.makeGroup, { body: { name }, kept }),
+  );
 
 export const useRenameGroup = () =>
-  useInstallationMutation(({ groupId, name }: { groupId: string; name: string }) =>
+  useInstallationMutation('The name was changed.', ({ groupId, name }: { groupId: string; name: string }) =>
     call(api.renameGroup, { params: { groupId }, body: { name }, kept }),
   );
 
-export const useMakeSite = () => useInstallationMutation((body: api.SiteBody) => call(api.makeSite, { body, kept }));
+export const useMakeSite = () =>
+  useInstallationMutation('The site was made.', (body: api.SiteBody) => call(api.makeSite, { body, kept }));
 
 export const useChangeSite = (id: string) =>
-  useInstallationMutation((body: Omit<api.SiteBody, 'areas'>) => call(api.changeSite, { params: { id }, body, kept }));
+  useInstallationMutation('The site was changed.', (body: Omit<api.SiteBody, 'areas'>) =>
+    call(api.changeSite, { params: { id }, body, kept }),
+  );
 
 /** Adds an area where none is named, else changes it. */
 export const useSaveArea = (id: string) =>
-  useInstallationMutation(({ areaId, body }: { areaId: string | null; body: api.AreaBody }) =>
+  useInstallationMutation('The area was saved.', ({ areaId, body }: { areaId: string | null; body: api.AreaBody }) =>
     areaId === null
       ? call(api.addArea, { params: { id }, body, kept })
       : call(api.changeArea, { params: { id, areaId }, body, kept }),
   );
 
 export const useRemoveArea = (id: string) =>
-  useInstallationMutation((areaId: string) =>
+  useInstallationMutation('The area was removed.', (areaId: string) =>
     call(api.removeArea, { params: { id, areaId }, kept: 'The area stays.' }),
   );

@@ -3,7 +3,7 @@ import type { CareArea } from '../../../shared/api/sites.ts';
 import { RiskMark } from '../../../shared/charts/RiskMark.tsx';
 import { bedsAt } from '../../../shared/domain/bed-schedule.ts';
 import { chanceInNights, formatChance, riskStep, riskWord } from '../../../shared/domain/risk-word.ts';
-import { formatAge, formatCount, formatTime } from '../../lib/format.ts';
+import { formatAge, formatCount, formatNumber, formatTime } from '../../lib/format.ts';
 import { CensusFields, CensusSave } from './CensusFields.tsx';
 import { StaffedTonight } from './StaffedTonight.tsx';
 import type { BoardArea, SomeTime } from './tonight-board.ts';
@@ -138,6 +138,9 @@ export function AreaGutter({
       {counted && now - counted.takenAt > 2 * 3600 ? (
         <p className="text-label font-extrabold text-ink">Counted {formatAge(now - counted.takenAt)} ago</p>
       ) : null}
+      {row && (!row.counted || !counted || now - counted.takenAt > 2 * 3600) ? (
+        <Expected row={row} timeZone={timeZone} />
+      ) : null}
       <div className="mt-1.5 grid grid-cols-4 gap-1.5">
         {rights.enterCensus ? (
           <CensusFields index={index} areaName={area.name} formId={formId} />
@@ -155,6 +158,18 @@ export function AreaGutter({
       {open ? <FigureCaptions staffed={row !== null} /> : null}
       {rights.enterCensus ? <CensusSave index={index} timeZone={timeZone} /> : null}
     </div>
+  );
+}
+
+/** What the model carries forward where no fresh count stands: marked as expected, beside the fields and never in them. */
+function Expected({ row, timeZone }: { row: BoardArea; timeZone: string }) {
+  const next = row.columns.find((column) => column.kind === 'forecast');
+  if (!next) return null;
+  return (
+    <p className="text-label text-ink2 italic tight">
+      Expected at {formatTime(next.at, timeZone)}: {formatNumber(next.p50)} present, up to {formatNumber(next.p90)} at
+      P90 (not counted)
+    </p>
   );
 }
 

@@ -6,6 +6,7 @@ import { AreaGutter } from './AreaGutter.tsx';
 import type { Rights } from './AreaGutter.tsx';
 import { BoardRow } from '../../components/BoardRow.tsx';
 import { ChanceTable } from '../../components/ChanceTable.tsx';
+import { ReadNeed } from '../../components/ReadNeed.tsx';
 import type { StripRow } from '../../components/ChanceTable.tsx';
 import { LimitPanel } from './LimitPanel.tsx';
 import { pastHours } from './tonight-board.ts';
@@ -109,16 +110,25 @@ export function AreaRow({
       strip={
         <div className={open ? 'pt-5' : 'pt-2'}>
           <p className="sr-only">{summariseArea(row, hourNames)}</p>
-          <NeedStrip
-            id={id}
+          <ReadNeed
+            label={`${row.area.name}, need by hour`}
             columns={row.columns}
-            staffed={row.staffed}
-            unit={row.area.spaceKind === 'chair' ? 'chairs' : 'staffed'}
+            names={hourNames}
             columnWidth={columnWidth}
-            height={open ? 104 : 52}
-            tall={open}
-            counted={row.counted}
-          />
+            timeZone={timeZone}
+            unit={row.area.spaceKind === 'chair' ? 'chairs' : 'staffed'}
+          >
+            <NeedStrip
+              id={id}
+              columns={row.columns}
+              staffed={row.staffed}
+              unit={row.area.spaceKind === 'chair' ? 'chairs' : 'staffed'}
+              columnWidth={columnWidth}
+              height={open ? 104 : 52}
+              tall={open}
+              counted={row.counted}
+            />
+          </ReadNeed>
           <ChanceTable
             caption={`${row.area.name}, hour by hour`}
             hourNames={hourNames}

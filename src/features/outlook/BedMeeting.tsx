@@ -55,6 +55,7 @@ export function BedMeeting({
     name: 'Whole department',
     present: total('present'),
     boarding: total('boarding'),
+    countedAt: null,
     need: hours.map(({ place }) => (place >= 0 && board.department.counted ? ahead[place] : null)),
     ask: null,
   };
@@ -102,6 +103,11 @@ export function BedMeeting({
                 <tr className="border-t border-hair align-top">
                   <th scope="row" className="py-2 text-left font-bold">
                     {row.name}
+                    {row.countedAt !== null ? (
+                      <span className="block text-small font-semibold text-ink2">counted {timeOf(row.countedAt)}</span>
+                    ) : area ? (
+                      <span className="block text-small font-bold text-ink2">not counted</span>
+                    ) : null}
                   </th>
                   <td className="px-1 py-2 sm:px-2">{row.present ?? '–'}</td>
                   <td className="px-1 py-2 sm:px-2">{row.boarding ?? '–'}</td>

@@ -9,6 +9,7 @@ import { FigureCaptions, SomeTimeLine } from './AreaGutter.tsx';
 import type { Rights } from './AreaGutter.tsx';
 import { BoardRow } from '../../components/BoardRow.tsx';
 import { ChanceTable } from '../../components/ChanceTable.tsx';
+import { ReadNeed } from '../../components/ReadNeed.tsx';
 import { DepartmentFields } from './DepartmentFields.tsx';
 import { pastHours } from './tonight-board.ts';
 import type { Board } from './tonight-board.ts';
@@ -58,6 +59,7 @@ export function DepartmentRow({
   const id = useId();
   const counts = census?.areas ?? [];
   const total = (field: 'present' | 'waiting' | 'boarding') => counts.reduce((sum, area) => sum + area[field], 0);
+  const uncounted = board.areas.filter((row) => !row.counted).map((row) => row.area.name);
   const staffedNow = department.staffed.length > 0 ? bedsAt(department.staffed, tonight.now) : 0;
   const peak = Math.max(0, ...department.someAreaShort.map((cell) => cell.chance));
   const peakAt = department.someAreaShort.findIndex((cell) => cell.chance === peak);
@@ -89,6 +91,12 @@ export function DepartmentRow({
                 subject="that some area is short "
                 inNights
               />
+            ) : null}
+            {uncounted.length > 0 && counts.length > 0 ? (
+              <p className="text-label font-bold text-ink2 tight">
+                Not counted: {uncounted.join(', ')}. Expected in the drawing as the model has it; not in the figures
+                below.
+              </p>
             ) : null}
             {soFar ? <p className="text-label text-ink2 tight">{arrivalsInWords(soFar)}</p> : null}
           </div>
@@ -127,18 +135,26 @@ export function DepartmentRow({
       strip={
         <div className="pt-5">
           <p className="sr-only">{summary}</p>
-          <NeedStrip
-            id={id}
+          <ReadNeed
+            label="Whole department, need by hour"
             columns={department.columns}
-            staffed={department.staffed}
+            names={hourNames}
             columnWidth={columnWidth}
-            height={128}
-            tall
-            counted={counts.length > 0}
-            presentNow={counts.length > 0 ? total('present') : null}
-            then={then}
-            namePercentiles
-          />
+            timeZone={site.timeZone}
+          >
+            <NeedStrip
+              id={id}
+              columns={department.columns}
+              staffed={department.staffed}
+              columnWidth={columnWidth}
+              height={128}
+              tall
+              counted={counts.length > 0}
+              presentNow={counts.length > 0 ? total('present') : null}
+              then={then}
+              namePercentiles
+            />
+          </ReadNeed>
           <ChanceTable
             caption="Whole department, hour by hour"
             hourNames={hourNames}
@@ -174,18 +190,23 @@ export function DepartmentRow({
                   strong: beds < 0,
                 })),
               },
-              figures(
-                'Admitted, leaving',
-                'Leaving',
-                department.admittedLeaving,
-                'admitted patients expected to leave',
-              ),
-              figures(
-                'Arrivals to admit',
-                'To admit',
-                department.arrivalsToAdmit,
-                'arrivals expected to need admission',
-              ),
+              // Hourly counts say nothing of dispositions: no admissions are better than noughts.
+              ...(tonight.outlook?.model.staysFrom
+                ? []
+                : [
+                    figures(
+                      'Admitted, leaving',
+                      'Leaving',
+                      department.admittedLeaving,
+                      'admitted patients expected to leave',
+                    ),
+                    figures(
+                      'Arrivals to admit',
+                      'To admit',
+                      department.arrivalsToAdmit,
+                      'arrivals expected to need admission',
+                    ),
+                  ]),
             ]}
           />
           {tonight.outlook ? (

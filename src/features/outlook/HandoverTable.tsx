@@ -119,10 +119,19 @@ function AreaLines({
         {figure(census?.boarding)}
         <td className="text-area">{row.staffed.length > 0 ? bedsAt(row.staffed, outlook.issuedAt) : '–'}</td>
         <th scope="row" className="pr-1 text-right text-small font-semibold whitespace-nowrap tighter">
-          Need, P90
+          {row.counted ? 'Need, P90' : 'Expected, P90'}
         </th>
         {places.map((place) => (
-          <td key={place} className={columns[place].p90 > columns[place].staffed ? 'font-extrabold' : undefined}>
+          <td
+            key={place}
+            className={
+              !row.counted
+                ? 'italic text-ink2'
+                : columns[place].p90 > columns[place].staffed
+                  ? 'font-extrabold'
+                  : undefined
+            }
+          >
             {columns[place].p90}
           </td>
         ))}
@@ -130,7 +139,7 @@ function AreaLines({
       <tr>
         <td rowSpan={2} colSpan={5} className="pb-1 text-left align-top text-small">
           {!row.counted ? (
-            <b>Not counted: nothing is said of it.</b>
+            <b>Not counted: the figures are what the model expects on such a night.</b>
           ) : past === null ? (
             `Not past its ${limit} limit`
           ) : (

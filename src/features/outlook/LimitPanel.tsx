@@ -10,8 +10,8 @@ import type { BoardArea } from './tonight-board.ts';
 
 /**
  * Hung by a stem from the first hour past the limit: from when to when, what would help, the site's own
- * escalation text, and where to say what was done. Acknowledged, it folds to who, when and what, until
- * an hour passes the limit that nobody has acknowledged.
+ * escalation text, and where to say what was done. Acknowledged, it folds to who, when and what, until an hour
+ * passes the limit that nobody has acknowledged, or the next shift comes in.
  */
 export function LimitPanel({
   row,
@@ -70,7 +70,10 @@ export function LimitPanel({
             <PastLimit row={row} firstPast={firstPast} hourNames={hourNames} timeZone={timeZone} />
             {row.acknowledgements.length > 0 && asked.length > 0 ? (
               <p className="mt-1 font-extrabold">
-                Not acknowledged yet: {asked.map((hour) => formatTime(hour, timeZone)).join(', ')}.
+                {row.acknowledgements.some((made) => made.at >= row.since)
+                  ? 'Not acknowledged yet'
+                  : 'Acknowledged by the shift before; not by this one yet'}
+                : {asked.map((hour) => formatTime(hour, timeZone)).join(', ')}.
               </p>
             ) : null}
             {area.escalationNote ? (

@@ -1,4 +1,4 @@
-import { useState } from 'react';
+import { lazy, Suspense, useState } from 'react';
 import { Link } from 'react-router-dom';
 import type { Outlook, Tonight } from '../../../shared/api/outlooks.ts';
 import type { Site } from '../../../shared/api/sites.ts';
@@ -6,19 +6,23 @@ import { paths } from '../../app/paths.ts';
 import { localDate } from '../../../shared/domain/zoned-time.ts';
 import { Dialog } from '../../components/Dialog.tsx';
 import { PanelBoundary } from '../../components/PanelBoundary.tsx';
+import { PictureTools } from '../../components/PictureTools.tsx';
 import { formatTime, formatWeekday, zoneOf } from '../../lib/format.ts';
 import { useMediaQuery } from '../../lib/use-media-query.ts';
 import type { Rights } from './AreaGutter.tsx';
 import { AreaRow } from './AreaRow.tsx';
 import { BedMeeting } from './BedMeeting.tsx';
 import { DepartmentRow } from './DepartmentRow.tsx';
-import { OutlookTables } from './OutlookTables.tsx';
 import { RibbonRow } from './RibbonRow.tsx';
 import { RiskKey } from '../../components/RiskKey.tsx';
+import { SkeletonLines } from '../../components/Skeleton.tsx';
 import { buildBoard, pastHours } from './tonight-board.ts';
 import { UndecidedRow } from './UndecidedRow.tsx';
 import type { BoardRows } from './use-board-rows.ts';
 import { useRibbon } from '../../lib/use-ribbon.ts';
+
+// The proof behind the drawing is asked for now and then: its script comes when it is.
+const OutlookTables = lazy(async () => ({ default: (await import('./OutlookTables.tsx')).OutlookTables }));
 
 /** The night board: ribbon, department, areas in the site's own order, area not decided, key. */
 export function TonightBoard({
@@ -117,9 +121,12 @@ export function TonightBoard({
         <Link to={howHref} className="link text-quiet font-semibold print:hidden">
           How the numbers are made
         </Link>
+        <PictureTools of={ref} title={`${then ? 'As it stood' : 'Tonight'}, ${site.name}`} />
       </div>
       <Dialog title={`The hours ahead, ${site.name}`} open={tableOpen} onClose={() => setTableOpen(false)}>
-        <OutlookTables {...{ board, site, hourNames }} />
+        <Suspense fallback={<SkeletonLines lines={8} label="Loading the tables" />}>
+          <OutlookTables {...{ board, site, hourNames }} />
+        </Suspense>
       </Dialog>
       {meeting ? <BedMeeting {...{ board, outlook, site, ...meeting }} now={tonight.now} /> : null}
     </>

@@ -9,15 +9,14 @@ import type { OutlookSentence } from '../../../shared/forecasting/outlook-senten
 import { hoursPastLimit } from '../../../shared/forecasting/hours-past-limit.ts';
 import { paths } from '../../app/paths.ts';
 import { Button, ButtonLink } from '../../components/Button.tsx';
-import { Notice } from '../../components/Notice.tsx';
-import { asApiError } from '../../lib/api-error.ts';
 import { formatTime, zoneOf } from '../../lib/format.ts';
 import type { Rights } from './AreaGutter.tsx';
 import { NoOutlook } from './NoOutlook.tsx';
 import { OutlookHead } from './OutlookHead.tsx';
+import { StaleNote } from './StaleNote.tsx';
 import { TonightBoard } from './TonightBoard.tsx';
 import { noteFieldId } from './AcknowledgeForm.tsx';
-import { askedHours } from './asked-hours.ts';
+import { askedHours, inChargeSince } from './asked-hours.ts';
 import { useBoardRows } from './use-board-rows.ts';
 import { CensusEntryProvider, useCensusEntry } from './use-census-entry.ts';
 import type { CensusEntry } from './use-census-entry.ts';
@@ -48,7 +47,7 @@ export function TonightView({
   site,
   census,
   rights,
-  refreshError,
+  stale,
   emptyActions,
   howHref,
   nightLog,
@@ -59,8 +58,8 @@ export function TonightView({
   site: Site;
   census: Census | undefined;
   rights: Rights;
-  /** Why the newest refresh failed, if it did. */
-  refreshError: unknown;
+  /** Said where the outlook is not the newest there may be: why, and whether it comes from this device. */
+  stale: { error: unknown; fromDevice: boolean } | null;
   emptyActions: ReactNode;
   howHref: string;
   /** What was done so far, under the board. */
@@ -90,13 +89,8 @@ export function TonightView({
             mayPrintHandover={rights.acknowledge}
             onMeeting={() => setMeetingOpen(true)}
             staleNote={
-              refreshError ? (
-                <Notice kind="caution" className="mt-2" title={`${asApiError(refreshError).title}.`} live>
-                  <p>
-                    This is the outlook of {formatTime(outlook.issuedAt, site.timeZone)}, as it was last loaded. The
-                    page tries again by itself.
-                  </p>
-                </Notice>
+              stale ? (
+                <StaleNote className="mt-2" issuedAt={outlook.issuedAt} now={now} timeZone={site.timeZone} {...stale} />
               ) : null
             }
           />
@@ -137,11 +131,12 @@ export function TonightView({
 /** The area that asks to be acknowledged: the worst, or else the first in the site's order. */
 function asksAbout(tonight: Tonight, outlook: Outlook, site: Site, worstAreaId: string | null): string | null {
   const zone = zoneOf(site.timeZone);
+  const since = inChargeSince(zone, site.shifts, tonight.now);
   const asking = site.areas
     .filter((area) => {
       const pastTonight = hoursPastLimit(outlook.result, area.id, area, tonight.now, zone);
       const acknowledgements = tonight.acknowledgements.filter((made) => made.areaId === area.id);
-      return askedHours({ pastTonight, acknowledgements }).length > 0;
+      return askedHours({ pastTonight, acknowledgements, since }).length > 0;
     })
     .map((area) => area.id);
   return asking.find((areaId) => areaId === worstAreaId) ?? asking.at(0) ?? null;

@@ -14,6 +14,8 @@ export interface MeetingRow {
   name: string;
   present: number | null;
   boarding: number | null;
+  /** When that was counted, UTC seconds; null where nothing was. */
+  countedAt: number | null;
   /** At the first full hour four, then eight hours from now; null where the outlook does not reach or nothing is counted. */
   need: (MeetingNeed | null)[];
   /** Null where nothing was counted. */
@@ -56,6 +58,7 @@ export function meetingRows(board: Board, outlook: Outlook, now: number): Meetin
       name: row.area.name,
       present: row.counted ? (census?.present ?? null) : null,
       boarding: row.counted ? (census?.boarding ?? null) : null,
+      countedAt: row.counted ? (census?.takenAt ?? null) : null,
       need: hours.map(({ place }) => (row.counted ? needAt(row, place) : null)),
       ask: row.counted
         ? {

@@ -76,6 +76,7 @@ function useRefreshTonight(siteId: string) {
 export function useAcknowledge(siteId: string) {
   const refresh = useRefreshTonight(siteId);
   return useMutation({
+    meta: { done: 'Acknowledged.' },
     mutationFn: (body: AcknowledgeBody) =>
       call(acknowledgeRisk, { params: { siteId }, body, kept: 'Your note is still in its field.' }),
     onSuccess: refresh,
@@ -96,6 +97,7 @@ export function useEnterCensus(siteId: string) {
 export function useChangeBeds(siteId: string) {
   const refresh = useRefreshTonight(siteId);
   return useMutation({
+    meta: { done: 'The staffed beds were changed.' },
     mutationFn: (body: ChangeBedsBody) =>
       call(changeBedsNow, { params: { siteId }, body, kept: 'Your entry is still in the fields.' }),
     onSuccess: refresh,

@@ -7,6 +7,7 @@ import type { NeedColumn, StaffedStep } from '../../../shared/charts/need-column
 import type { Chance, NeedByHour } from '../../../shared/forecasting/outlook-types.ts';
 import { hoursPastLimit } from '../../../shared/forecasting/hours-past-limit.ts';
 import { isNight, nightIsOverBefore } from '../../../shared/forecasting/tonight-span.ts';
+import { inChargeSince } from './asked-hours.ts';
 import { printedShortfall } from '../../../shared/forecasting/printed-shortfall.ts';
 
 type AreaOutlook = Outlook['result']['areas'][number];
@@ -44,6 +45,8 @@ export interface BoardArea {
   pastTonight: number[];
   /** Acknowledgements that speak of any of these hours, oldest first. */
   acknowledgements: Acknowledgement[];
+  /** When the shift in charge came in, UTC seconds: an acknowledgement of before is not its own. */
+  since: number;
   someTime: SomeTime | null;
 }
 
@@ -149,6 +152,7 @@ export function buildBoard(tonight: Tonight, outlook: Outlook, site: Site, zone:
   const pastAt = new Map(tonight.past.map((hour) => [hour.at, hour]));
   const pick = <T>(figures: readonly T[]) => ahead.map((index) => figures[index]);
 
+  const since = inChargeSince(zone, site.shifts, tonight.now);
   const areas = site.areas.flatMap((area): BoardArea[] => {
     const found = result.areas.find((candidate) => candidate.areaId === area.id);
     if (!found) return [];
@@ -182,6 +186,7 @@ export function buildBoard(tonight: Tonight, outlook: Outlook, site: Site, zone:
         acknowledgements: tonight.acknowledgements.filter(
           (made) => made.areaId === area.id && made.hours.some((hour) => pastTonight.includes(hour)),
         ),
+        since,
         someTime: found.counted ? someTimeOf(found.shifts, tonight.now, zone) : null,
       },
     ];

@@ -22,9 +22,13 @@ export function usePerson(personId: string) {
 }
 
 /** A mutation after which every list of people is asked again. */
-function usePeopleMutation<Wish, Reply>(mutationFn: (wish: Wish) => Promise<Reply>) {
+function usePeopleMutation<Wish, Reply>(done: string, mutationFn: (wish: Wish) => Promise<Reply>) {
   const queryClient = useQueryClient();
-  return useMutation({ mutationFn, onSuccess: () => queryClient.invalidateQueries({ queryKey: peopleKey }) });
+  return useMutation({
+    meta: { done },
+    mutationFn,
+    onSuccess: () => queryClient.invalidateQueries({ queryKey: peopleKey }),
+  });
 }
 
 export interface PlaceWish {
@@ -34,29 +38,39 @@ export interface PlaceWish {
 }
 
 export const useInvite = () =>
-  usePeopleMutation((body: { email: string; name: string }) => call(api.invitePerson, { body }));
+  usePeopleMutation('Invited.', (body: { email: string; name: string }) => call(api.invitePerson, { body }));
 
 export const useWithdrawInvitation = () =>
-  usePeopleMutation((personId: string) => call(api.withdrawInvitation, { params: { personId }, kept }));
+  usePeopleMutation('The invitation was withdrawn.', (personId: string) =>
+    call(api.withdrawInvitation, { params: { personId }, kept }),
+  );
 
 export const useGiveRole = (personId: string) =>
-  usePeopleMutation((body: PlaceWish & { endsAt: number | null }) =>
+  usePeopleMutation('The role was given.', (body: PlaceWish & { endsAt: number | null }) =>
     call(api.giveRole, { params: { personId }, body, kept }),
   );
 
 export const useChangeRoleEnd = (personId: string) =>
-  usePeopleMutation(({ roleId, endsAt }: { roleId: string; endsAt: number | null }) =>
-    call(api.changeRoleEnd, { params: { personId, roleId }, body: { endsAt }, kept }),
+  usePeopleMutation(
+    'The end of the role was changed.',
+    ({ roleId, endsAt }: { roleId: string; endsAt: number | null }) =>
+      call(api.changeRoleEnd, { params: { personId, roleId }, body: { endsAt }, kept }),
   );
 
 export const useRemoveRole = (personId: string) =>
-  usePeopleMutation((roleId: string) => call(api.removeRole, { params: { personId, roleId }, kept }));
+  usePeopleMutation('The role was taken away.', (roleId: string) =>
+    call(api.removeRole, { params: { personId, roleId }, kept }),
+  );
 
 export const useEndSessions = (personId: string) =>
-  usePeopleMutation(() => call(api.endSessions, { params: { personId } }));
+  usePeopleMutation('All sessions were ended.', () => call(api.endSessions, { params: { personId } }));
 
 export const useMakeGroupRole = () =>
-  usePeopleMutation((body: PlaceWish & { claim: string }) => call(api.makeGroupRole, { body, kept }));
+  usePeopleMutation('The group now has the role.', (body: PlaceWish & { claim: string }) =>
+    call(api.makeGroupRole, { body, kept }),
+  );
 
 export const useRemoveGroupRole = () =>
-  usePeopleMutation((groupRoleId: string) => call(api.removeGroupRole, { params: { groupRoleId }, kept }));
+  usePeopleMutation('The group no longer has the role.', (groupRoleId: string) =>
+    call(api.removeGroupRole, { params: { groupRoleId }, kept }),
+  );

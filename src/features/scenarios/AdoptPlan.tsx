@@ -1,11 +1,11 @@
 import { useState } from 'react';
-import type { ScenarioLine, WhatIfBasis } from '../../../shared/api/scenarios.ts';
+import type { adoptions, ScenarioLine, WhatIfBasis } from '../../../shared/api/scenarios.ts';
 import { withArticle } from '../../../shared/domain/identifier-kind.ts';
 import { screenNote } from '../../../shared/domain/screen-note.ts';
 import { Button } from '../../components/Button.tsx';
 import { TextArea } from '../../components/Field.tsx';
 import { Notice, ProblemNotice } from '../../components/Notice.tsx';
-import { formatCount, formatDateTime } from '../../lib/format.ts';
+import { formatCount, formatDateTime, formatNumber } from '../../lib/format.ts';
 import { changeInWords } from './plan-words.ts';
 import { useAdoptScenario } from './queries.ts';
 
@@ -22,13 +22,20 @@ export function AdoptPlan({
   timeZone: string;
 }) {
   const [reason, setReason] = useState('');
+  const [as, setAs] = useState<(typeof adoptions)[number]>('these dates');
   const [asked, setAsked] = useState(false);
   const adopt = useAdoptScenario(siteId, plan.id);
   const beds = plan.changes.filter(({ kind }) => kind === 'beds');
   if (plan.adoptedAt !== null) {
     return (
       <Notice title={`Adopted ${formatDateTime(plan.adoptedAt, timeZone)}, ${plan.adoptedBy ?? ''}.`}>
-        {adopt.data ? (
+        {plan.adoptedAs === 'every week' ? (
+          <p>
+            Its beds stand in the weekly plan
+            {adopt.data?.planVersion ? `, version ${formatNumber(adopt.data.planVersion)}` : ''}; earlier versions are
+            kept under Staffed beds.
+          </p>
+        ) : adopt.data ? (
           <p>
             {formatCount(adopt.data.exceptions, 'dated exception')} made in the staffed-bed plan; a new outlook follows.
           </p>
@@ -54,7 +61,7 @@ export function AdoptPlan({
       onSubmit={(event) => {
         event.preventDefault();
         setAsked(true);
-        if (!fault) adopt.mutate(reason.trim());
+        if (!fault) adopt.mutate({ reason: reason.trim(), as });
       }}
     >
       <div className="grid content-start gap-3">
@@ -67,6 +74,15 @@ export function AdoptPlan({
         {plan.changes.length > beds.length ? (
           <p className="text-ink2">Only its beds are adopted; what it says of arrivals and stays is a supposition.</p>
         ) : null}
+        <fieldset className="grid gap-1">
+          <legend className="font-bold text-ink">When they hold</legend>
+          <Choice checked={as === 'these dates'} onChoose={() => setAs('these dates')}>
+            On these dates only, as dated exceptions
+          </Choice>
+          <Choice checked={as === 'every week'} onChoose={() => setAs('every week')}>
+            Every week from now on, as a new version of the weekly plan
+          </Choice>
+        </fieldset>
         <TextArea
           label="Reason"
           hint="Kept with the staffed-bed plan. Nothing that identifies a person."
@@ -94,9 +110,24 @@ export function AdoptPlan({
             Stays are taken from nights with today’s doctors, tests and ward beds; more beds alone may not shorten them.
             Patients keep one area.
           </li>
+          {as === 'every week' ? (
+            <li>
+              It was tried on the coming seven days alone: other weeks, seasons and holidays may need other beds. Look
+              at Week ahead again after it is adopted.
+            </li>
+          ) : null}
           <li>It does not foresee a major incident or a sudden closure: use your incident plan.</li>
         </ul>
       </Notice>
     </form>
+  );
+}
+
+function Choice({ checked, onChoose, children }: { checked: boolean; onChoose: () => void; children: string }) {
+  return (
+    <label className="flex min-h-11 cursor-pointer items-center gap-3">
+      <input type="radio" name="adopt-as" className="size-5 accent-act" checked={checked} onChange={onChoose} />
+      {children}
+    </label>
   );
 }

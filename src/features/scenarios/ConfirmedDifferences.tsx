@@ -1,12 +1,12 @@
 import { useState } from 'react';
-import type { ComparedFigure, Scenario, WhatIfBasis } from '../../../shared/api/scenarios.ts';
+import type { ComparedFigure, Scenario, ScenarioResult, WhatIfBasis } from '../../../shared/api/scenarios.ts';
 import { dayAndTime } from '../../../shared/domain/plan-change.ts';
 import { formatChance } from '../../../shared/domain/risk-word.ts';
 import type { Zone } from '../../../shared/domain/zoned-time.ts';
 import { Button } from '../../components/Button.tsx';
 import { DataTable } from '../../components/DataTable.tsx';
 import { SelectField } from '../../components/Field.tsx';
-import { formatDateTime, formatNumber } from '../../lib/format.ts';
+import { formatCount, formatDateTime, formatNumber } from '../../lib/format.ts';
 import { saveFile } from '../../lib/save-file.ts';
 import { differencesCsv } from './differences-csv.ts';
 import { previewGap } from './preview-gap.ts';
@@ -123,7 +123,72 @@ export function ConfirmedDifferences({
           },
         ]}
       />
+      <WaitDifferences row={row} result={result} name={nameOf(row.areaId)} zone={zone} />
     </div>
+  );
+}
+
+/** Who waits past the site's limit, by shift; or why it cannot be told. */
+function WaitDifferences({
+  row,
+  result,
+  name,
+  zone,
+}: {
+  row: ScenarioResult['rows'][number];
+  result: ScenarioResult;
+  name: string;
+  zone: Zone;
+}) {
+  const limit = result.waitLimitMinutes;
+  if (limit === undefined || limit === null) {
+    return <p className="text-quiet text-ink2">Your site has stated no wait limit, so waits are not compared.</p>;
+  }
+  if (!row.waits) {
+    return (
+      <p className="text-quiet text-ink2">
+        {name}: waits over {formatCount(limit, 'minute')} cannot be compared
+        {row.areaId === null
+          ? ' for the areas together: not every area’s logs hold bed-space times.'
+          : ': its logs hold no bed-space times.'}
+      </p>
+    );
+  }
+  return (
+    <>
+      <DataTable
+        caption={`Patients who wait longer than ${formatCount(limit, 'minute')} for a bed space, on average by shift of arrival`}
+        rows={row.waits.map((figure, s) => ({ figure, shift: result.shifts[s] }))}
+        rowKey={({ shift }) => String(shift.from)}
+        columns={[
+          {
+            key: 'shift',
+            header: 'Shift',
+            rowHeader: true,
+            cell: ({ shift }) => `${dayAndTime(zone, shift.from)}, ${shift.name}`,
+          },
+          { key: 'as-is', header: 'As is', figure: true, cell: ({ figure }) => formatNumber(figure.asIs, 1) },
+          { key: 'plan', header: 'With the plan', figure: true, cell: ({ figure }) => formatNumber(figure.plan, 1) },
+          {
+            key: 'difference',
+            header: 'Difference',
+            figure: true,
+            cell: ({ figure }) => <b>{signed(figure.difference)}</b>,
+          },
+          {
+            key: 'interval',
+            header: '95 % interval',
+            figure: true,
+            cell: ({ figure }) => `${signed(figure.low)} to ${signed(figure.high)}`,
+          },
+        ]}
+      />
+      <p className="max-w-[58rem] text-quiet text-ink2">
+        Averages over at most 2,000 of the pairs. Waits for want of a bed space alone, in order of arrival: in truth
+        less urgent patients wait longer. Boarding patients seen out earlier by the plan are not taken out of these
+        waits.
+      </p>
+    </>
   );
 }
 

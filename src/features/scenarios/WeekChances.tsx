@@ -1,11 +1,13 @@
-import { memo, useMemo, useState } from 'react';
+import { memo, useMemo, useRef, useState } from 'react';
 import type { WhatIfBasis } from '../../../shared/api/scenarios.ts';
 import { ChanceWeek } from '../../../shared/charts/ChanceWeek.tsx';
 import { dayAndTime } from '../../../shared/domain/plan-change.ts';
 import { formatChance } from '../../../shared/domain/risk-word.ts';
 import type { ShiftTime } from '../../../shared/domain/shift-times.ts';
 import type { Zone } from '../../../shared/domain/zoned-time.ts';
+import { ChartReader } from '../../components/ChartReader.tsx';
 import { DataTable } from '../../components/DataTable.tsx';
+import { PictureTools } from '../../components/PictureTools.tsx';
 import { formatDay } from '../../lib/format.ts';
 import type { PlanPreview } from './preview-plan.ts';
 
@@ -31,9 +33,11 @@ export const WeekChances = memo(function WeekChances({
   planName: string;
 }) {
   const { hours } = basis.exact;
+  const ref = useRef<HTMLDivElement>(null);
   // Over a hundred rows: made when they are looked at.
   const [opened, setOpened] = useState(false);
   const days = useMemo(() => hours.flatMap((at, h) => (zone.toLocal(at) % 86_400 === 0 ? [h] : [])), [hours, zone]);
+  const hourNames = useMemo(() => hours.map((at) => dayAndTime(zone, at)), [hours, zone]);
   const names = [0, ...days].map((h, i, all) => ({ h, room: (all[i + 1] ?? hours.length) - h }));
   return (
     <section className="grid grid-cols-[minmax(0,1fr)] gap-2" aria-labelledby="week-chances">
@@ -45,7 +49,7 @@ export const WeekChances = memo(function WeekChances({
         {plan ? `Filled: with ${planName}. Dotted blue line: as it is.` : 'As it is.'} Dashes: the area’s limit.
       </p>
       <div className="overflow-x-auto" role="region" aria-label="Chances hour by hour, drawn" tabIndex={0}>
-        <div className="grid w-max grid-cols-[auto_auto]">
+        <div ref={ref} className="grid w-max grid-cols-[auto_auto]">
           <div className="sticky left-0 z-[2] w-32 bg-water sm:w-52" />
           <div className="flex" aria-hidden="true">
             {names.map(({ h, room }) => (
@@ -65,11 +69,16 @@ export const WeekChances = memo(function WeekChances({
               asIs={asIs.areas[a]}
               plan={plan?.areas[a] ?? null}
               days={days}
+              hourNames={hourNames}
               worstAt={dayAndTime(zone, hours[(plan ?? asIs).areas[a].worstAt])}
             />
           ))}
         </div>
       </div>
+      <PictureTools
+        of={ref}
+        title={plan ? `Chance of shortfall hour by hour, ${planName}` : 'Chance of shortfall hour by hour'}
+      />
       <details className="text-ink2" onToggle={(event) => setOpened(event.currentTarget.open)}>
         <summary className="min-h-11 cursor-pointer py-2 font-bold text-ink">Table of every shift</summary>
         {opened ? (
@@ -113,12 +122,14 @@ const AreaWeek = memo(function AreaWeek({
   asIs,
   plan,
   days,
+  hourNames,
   worstAt,
 }: {
   area: WhatIfBasis['areas'][number];
   asIs: PlanPreview['areas'][number];
   plan: PlanPreview['areas'][number] | null;
   days: readonly number[];
+  hourNames: readonly string[];
   worstAt: string;
 }) {
   const shown = plan ?? asIs;
@@ -134,13 +145,22 @@ const AreaWeek = memo(function AreaWeek({
         </div>
       </div>
       <div className="border-t border-hair">
-        <ChanceWeek
-          asIs={asIs.shortfall}
-          plan={plan?.shortfall ?? null}
-          limit={area.alertLimit}
-          days={days}
-          hourWidth={hourWidth}
-        />
+        <ChartReader
+          label={`${area.name}, chance of shortfall hour by hour`}
+          columnWidth={hourWidth}
+          readings={hourNames.map((name, h) => ({
+            name,
+            text: `${formatChance(shown.shortfall[h])}${plan ? `, ${formatChance(asIs.shortfall[h])} as it is` : ''}; limit ${formatChance(area.alertLimit)}`,
+          }))}
+        >
+          <ChanceWeek
+            asIs={asIs.shortfall}
+            plan={plan?.shortfall ?? null}
+            limit={area.alertLimit}
+            days={days}
+            hourWidth={hourWidth}
+          />
+        </ChartReader>
       </div>
     </>
   );

@@ -13,7 +13,7 @@ export function differencesCsv(
 ): string {
   const { result } = plan;
   if (!result) throw new RangeError('a plan that is not confirmed has no differences');
-  const rows = result.rows.flatMap(({ areaId, shifts, bedHoursShort }) => {
+  const rows = result.rows.flatMap(({ areaId, shifts, bedHoursShort, waits }) => {
     const name =
       areaId === null
         ? 'Whole department'
@@ -24,6 +24,11 @@ export function differencesCsv(
       ...shifts.map((figure, s) => {
         const { name: shift, from, to } = result.shifts[s];
         return [name, measure, shift, formatDateTime(from, timeZone), formatDateTime(to, timeZone), ...numbers(figure)];
+      }),
+      ...(waits ?? []).map((figure, s) => {
+        const { name: shift, from, to } = result.shifts[s];
+        const over = `patients who wait longer than ${String(result.waitLimitMinutes)} min for a bed space, on average`;
+        return [name, over, shift, formatDateTime(from, timeZone), formatDateTime(to, timeZone), ...numbers(figure)];
       }),
       [name, 'bed-hours short in the week, on average', '', '', '', ...numbers(bedHoursShort)],
     ];

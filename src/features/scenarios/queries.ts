@@ -67,10 +67,10 @@ export function usePlanAction(siteId: string, action: 'confirm' | 'cancel' | 'wi
 export function useAdoptScenario(siteId: string, scenarioId: string) {
   const queryClient = useQueryClient();
   return useMutation({
-    mutationFn: (reason: string) =>
+    mutationFn: (body: { reason: string; as: (typeof api.adoptions)[number] }) =>
       call(api.adoptScenario, {
         params: { siteId, scenarioId },
-        body: { reason },
+        body,
         kept: 'The staffed beds are unchanged.',
       }),
     onSuccess: async () => {

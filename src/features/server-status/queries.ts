@@ -16,6 +16,7 @@ export function useServerStatus() {
 export function useAskBackup() {
   const queryClient = useQueryClient();
   return useMutation({
+    meta: { done: 'A backup is being made.' },
     mutationFn: () => call(api.askBackup, { kept: 'The backups that are there stay.' }),
     onSuccess: () => queryClient.invalidateQueries({ queryKey: key }),
   });
@@ -24,6 +25,7 @@ export function useAskBackup() {
 export function useRetryJob() {
   const queryClient = useQueryClient();
   return useMutation({
+    meta: { done: 'The job is tried again.' },
     mutationFn: (jobId: string) => call(api.retryJob, { params: { jobId }, kept: 'The job stays failed.' }),
     onSuccess: () => queryClient.invalidateQueries({ queryKey: key }),
   });

@@ -2,28 +2,41 @@ import { useQuery } from '@tanstack/react-query';
 import { createContext, use } from 'react';
 import { getSession } from '../../../shared/api/session.ts';
 import type { Session } from '../../../shared/api/session.ts';
-import type { ReplyOf } from '../../../shared/api/contract.ts';
-import { call, rememberCsrfToken } from '../../lib/api-client.ts';
+import { call, fetchCsrfTokenWith, rememberCsrfToken } from '../../lib/api-client.ts';
+import { isOutage } from '../../lib/api-error.ts';
+import { readKeptSession } from './kept-session.ts';
+import type { DeviceSession } from './kept-session.ts';
 
 export const sessionKey = ['session'] as const;
 
-async function fetchSession(signal: AbortSignal): Promise<ReplyOf<typeof getSession>> {
-  const session = await call(getSession, { signal });
-  rememberCsrfToken(session.csrfToken);
-  return session;
+const lookForServerEveryMilliseconds = 5000;
+
+/** Who is signed in; if the server cannot say so to a page that was just opened, what this device last knew of it. */
+async function fetchSession(signal: AbortSignal, known: boolean): Promise<DeviceSession> {
+  try {
+    const session = await call(getSession, { signal });
+    rememberCsrfToken(session.csrfToken);
+    return session;
+  } catch (error) {
+    const kept = known || !isOutage(error) ? null : readKeptSession(Date.now());
+    if (!kept) throw error;
+    fetchCsrfTokenWith(async () => (await call(getSession)).csrfToken);
+    return kept;
+  }
 }
 
 /** Who is signed in; asked once, and again whenever the window is looked at: another tab may have signed out, or in. */
 export function useSessionQuery() {
   return useQuery({
     queryKey: sessionKey,
-    queryFn: ({ signal }) => fetchSession(signal),
+    queryFn: ({ signal, client }) => fetchSession(signal, client.getQueryData(sessionKey) !== undefined),
     staleTime: 60_000,
+    refetchInterval: ({ state }) => (state.data?.keptAt === undefined ? false : lookForServerEveryMilliseconds),
     refetchOnWindowFocus: 'always',
   });
 }
 
-export type SignedInSession = Session & { person: NonNullable<Session['person']> };
+export type SignedInSession = DeviceSession & { person: NonNullable<Session['person']> };
 export type SessionSite = Session['sites'][number];
 
 const SessionContext = createContext<SignedInSession | null>(null);

@@ -1,5 +1,6 @@
 import { signOut as signOutRoute, signOutEverywhere as everywhereRoute } from '../../../shared/api/session.ts';
 import { call } from '../../lib/api-client.ts';
+import { forgetKept } from '../../lib/kept-on-device.ts';
 
 /** Ends the session at both ends. By fetch, since a form post that is sent on elsewhere is refused by the content policy. */
 export async function signOut(): Promise<void> {
@@ -12,7 +13,8 @@ export async function signOutEverywhere(): Promise<void> {
 }
 
 function leaveFor(redirectTo: string): void {
-  // What was typed belongs to this person: at a shared workstation the next one must not find it in the fields.
+  // What was typed and read belongs to this person: at a shared workstation the next one must not find it.
+  forgetKept();
   try {
     sessionStorage.clear();
   } catch {

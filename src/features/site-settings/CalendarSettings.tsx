@@ -6,6 +6,7 @@ import { Button } from '../../components/Button.tsx';
 import { DataTable } from '../../components/DataTable.tsx';
 import { SelectField, TextField } from '../../components/Field.tsx';
 import { ProblemNotice } from '../../components/Notice.tsx';
+import { announce } from '../../lib/announce.ts';
 import { formatDate, formatWeekday } from '../../lib/format.ts';
 import { useUnsavedWork } from '../../lib/unsaved-work.ts';
 import { useAddCalendarDays, useRemoveCalendarDay } from './queries.ts';
@@ -129,6 +130,7 @@ function AddDays({ siteId }: { siteId: string }) {
 export function CalendarSettings({ settings, mayEdit }: { settings: SiteSettings; mayEdit: boolean }) {
   const { site, ownDays, publicHolidays } = settings;
   const remove = useRemoveCalendarDay(site.id);
+  const putBack = useAddCalendarDays(site.id);
   const [removing, setRemoving] = useState<string | null>(null);
   const rows: Row[] = [
     ...ownDays.map((own) => ({
@@ -188,7 +190,13 @@ export function CalendarSettings({ settings, mayEdit }: { settings: SiteSettings
                         aria-label={`Take out ${own.name}, ${dayInWords(own.date)}`}
                         onClick={() => {
                           setRemoving(own.id);
-                          remove.mutate(own.id);
+                          remove.mutate(own.id, {
+                            onSuccess: () =>
+                              announce(`${own.name}, ${dayInWords(own.date)}, was taken out.`, () => {
+                                const { date, name, kind, statedEffect } = own;
+                                putBack.mutate({ from: date, until: date, name, kind, statedEffect });
+                              }),
+                          });
                         }}
                       >
                         Take out
@@ -200,6 +208,7 @@ export function CalendarSettings({ settings, mayEdit }: { settings: SiteSettings
         ]}
       />
       {remove.error ? <ProblemNotice error={remove.error} /> : null}
+      {putBack.error ? <ProblemNotice error={putBack.error} /> : null}
       {mayEdit ? <AddDays siteId={site.id} /> : null}
     </section>
   );

@@ -95,6 +95,7 @@ export function useSaveAreas(siteId: string) {
 export function useAddCalendarDays(siteId: string) {
   const refresh = useRefresh(siteId);
   return useMutation({
+    meta: { done: 'Added to the calendar.' },
     mutationFn: (body: CalendarBody) => call(addCalendarDays, { params: { siteId }, body, kept }),
     onSuccess: refresh,
   });

@@ -6,9 +6,10 @@ import { Button } from '../../components/Button.tsx';
 import { DataTable } from '../../components/DataTable.tsx';
 import { Dialog } from '../../components/Dialog.tsx';
 import { ProblemNotice } from '../../components/Notice.tsx';
+import { announce } from '../../lib/announce.ts';
 import { formatDateTime, formatNumber } from '../../lib/format.ts';
 import { ExceptionFields } from './ExceptionFields.tsx';
-import { useRemoveException } from './queries.ts';
+import { useAddException, useRemoveException } from './queries.ts';
 
 type BedChange = z.infer<typeof bedChange>;
 
@@ -26,6 +27,17 @@ export function Exceptions({
 }) {
   const [asked, setAsked] = useState<BedChange | null>(null);
   const remove = useRemoveException(site.id);
+  const putBack = useAddException(site.id);
+  function takeBack({ id, areaId, fromAt, untilAt, beds, reason }: BedChange) {
+    remove.mutate(id, {
+      onSuccess: () => {
+        setAsked(null);
+        // What has begun cannot begin again: from now on it would.
+        const undo = () => putBack.mutate({ areaId, fromAt: Math.max(fromAt, now), untilAt, beds, reason });
+        announce(`The exception of ${nameOf(areaId)} was taken back.`, undo);
+      },
+    });
+  }
   const nameOf = (id: string) => site.areas.find((area) => area.id === id)?.name ?? 'An area of earlier';
   return (
     <section className="grid grid-cols-1 gap-4" aria-labelledby="exceptions">
@@ -77,6 +89,7 @@ export function Exceptions({
             : []),
         ]}
       />
+      {putBack.error ? <ProblemNotice error={putBack.error} /> : null}
       {mayEdit ? <ExceptionFields site={site} now={now} /> : null}
       <Dialog title="Take this exception back?" open={asked !== null} onClose={() => setAsked(null)}>
         {asked ? (
@@ -90,7 +103,7 @@ export function Exceptions({
               className="justify-self-start"
               busy={remove.isPending}
               busyText="Taking it back…"
-              onClick={() => remove.mutate(asked.id, { onSuccess: () => setAsked(null) })}
+              onClick={() => takeBack(asked)}
             >
               Take it back
             </Button>

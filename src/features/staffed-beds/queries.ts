@@ -81,6 +81,7 @@ export function useSavePlan(siteId: string) {
 export function useAddException(siteId: string) {
   const refresh = useRefresh(siteId);
   return useMutation({
+    meta: { done: 'The exception was added.' },
     mutationFn: (body: AddBedExceptionBody) =>
       call(addBedException, { params: { siteId }, body, kept: 'What you entered is still in the fields.' }),
     onSuccess: refresh,

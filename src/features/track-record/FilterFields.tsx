@@ -1,10 +1,12 @@
 import { trackWeeks, type TrackFilter, type TrackRecord } from '../../../shared/api/track-record.ts';
+import { leadInWords } from '../../../shared/domain/record-lead.ts';
 import { SelectField } from '../../components/Field.tsx';
 
 const measures: Record<TrackFilter['measure'], string> = {
-  need: 'Need, hours ahead',
+  need: 'Need at an hour',
   peak: 'Highest need of a shift',
   arrivals: 'Arrivals of a day',
+  'shift arrivals': 'Arrivals of a shift',
 };
 
 /** What of the record is looked at. */
@@ -17,7 +19,9 @@ export function FilterFields({
   filter: TrackFilter;
   onChange: (parts: Partial<TrackFilter>) => void;
 }) {
-  const leads = [...new Set([...record.leads, filter.lead])].sort((a, b) => a - b);
+  // Where a measure has nothing so far ahead the record shows the nearest, and says so here.
+  const { lead } = record.filter;
+  const leads = [...new Set([...record.leads, lead])].sort((a, b) => a - b);
   return (
     <form
       aria-label="What is looked at"
@@ -35,10 +39,9 @@ export function FilterFields({
         }}
       />
       <SelectField
-        label="Hours ahead"
-        value={String(filter.lead)}
-        disabled={filter.measure !== 'need'}
-        options={leads.map((lead) => ({ value: String(lead), label: `${String(lead)} h` }))}
+        label="How far ahead"
+        value={String(lead)}
+        options={leads.map((hours) => ({ value: String(hours), label: leadInWords(record.filter.measure, hours) }))}
         onChange={(event) => {
           onChange({ lead: Number(event.target.value) });
         }}

@@ -1,8 +1,9 @@
 import { CoverageRows } from '../../../shared/charts/CoverageRows.tsx';
-import { LossLines } from '../../../shared/charts/LossLines.tsx';
+import { LossLines, lossSpan } from '../../../shared/charts/LossLines.tsx';
 import { PitBars } from '../../../shared/charts/PitBars.tsx';
-import { ReliabilityDiagram } from '../../../shared/charts/ReliabilityDiagram.tsx';
+import { ReliabilityDiagram, reliabilitySpan } from '../../../shared/charts/ReliabilityDiagram.tsx';
 import type { TrackRecord } from '../../../shared/api/track-record.ts';
+import { ChartReader } from '../../components/ChartReader.tsx';
 import { DataTable } from '../../components/DataTable.tsx';
 import { formatCount, formatDate, formatNumber } from '../../lib/format.ts';
 import { figure, percent } from './figures.ts';
@@ -49,7 +50,7 @@ export function RecordFindings({ record, timeZone }: { record: TrackRecord; time
             </>
           }
           drawing={
-            <Measured height={320}>{(width) => <ReliabilityDiagram points={summary.chances} width={width} />}</Measured>
+            <Measured height={320}>{(width) => <ChanceReader points={summary.chances} width={width} />}</Measured>
           }
           table={
             <DataTable
@@ -78,7 +79,23 @@ export function RecordFindings({ record, timeZone }: { record: TrackRecord; time
         <Finding
           title="Where in its range did what came fall?"
           sentence={verdict.pit}
-          drawing={<Measured height={170}>{(width) => <PitBars heights={summary.pit} width={width} />}</Measured>}
+          drawing={
+            <Measured height={170}>
+              {(width) => (
+                <ChartReader
+                  label="Share of forecasts by tenth of their range"
+                  start={2}
+                  columnWidth={(width - 4) / summary.pit.length}
+                  readings={summary.pit.map((height, index) => ({
+                    name: `${String(10 * index)} to ${String(10 * index + 10)}\u00a0% of the range`,
+                    text: `${figure(height)} of what there should be`,
+                  }))}
+                >
+                  <PitBars heights={summary.pit} width={width} />
+                </ChartReader>
+              )}
+            </Measured>
+          }
           table={
             <DataTable
               caption="Share of forecasts by tenth of their range (probability integral transform), 1 as there should be"
@@ -98,6 +115,30 @@ export function RecordFindings({ record, timeZone }: { record: TrackRecord; time
         />
       )}
     </div>
+  );
+}
+
+const lossColumn = (width: number, weeks: number) =>
+  (lossSpan(width).right - lossSpan(width).left) / Math.max(1, weeks - 1);
+
+/** The diagram with its points read one by one; between two of them the nearer answers. */
+function ChanceReader({ points, width }: { points: TrackRecord['summary']['chances']; width: number }) {
+  const { left, right } = reliabilitySpan(width);
+  const at = points.map(({ meanChance }) => left + meanChance * (right - left));
+  const between = (index: number) => (index <= 0 ? left : index >= at.length ? right : (at[index - 1] + at[index]) / 2);
+  return (
+    <ChartReader
+      label="Chance said, and how often it came"
+      columnWidth={20}
+      readings={points.map((point, index) => ({
+        name: `Said ${percent(point.meanChance)}`,
+        text: `came in ${percent(point.share)} of ${formatCount(point.n, 'case')}`,
+        x: between(index),
+        width: Math.max(4, between(index + 1) - between(index)),
+      }))}
+    >
+      <ReliabilityDiagram points={points} width={width} />
+    </ChartReader>
   );
 }
 
@@ -125,21 +166,36 @@ function LossFinding({ record, timeZone }: { record: TrackRecord; timeZone: stri
       drawing={
         <Measured height={240}>
           {(width) => (
-            <LossLines
-              width={width}
-              labels={byWeek.map((week, index) =>
-                index % every === 0 ? formatDate(week.from, timeZone).replace(/ \d+$/, '') : '',
-              )}
-              lines={[
-                ...known.map((rule) => ({
-                  name: rules[rule],
-                  look: 'other' as const,
-                  values: drawn.map((week) => week?.baselines[rule] ?? null),
-                })),
-                { name: 'Floor of chance', look: 'floor', values: drawn.map((week) => week?.floorPinball ?? null) },
-                { name: 'This product', look: 'own', values: drawn.map((week) => week?.pinball ?? null) },
-              ]}
-            />
+            <ChartReader
+              label="Loss by week"
+              columnWidth={lossColumn(width, byWeek.length)}
+              start={lossSpan(width).left - lossColumn(width, byWeek.length) / 2}
+              first={byWeek.length - 1}
+              readings={byWeek.map((week) => ({
+                name: `Week of ${formatDate(week.from, timeZone)}`,
+                text: [
+                  `this product ${figure(week.pinball)}`,
+                  `floor ${figure(week.floorPinball)}`,
+                  ...known.map((rule) => `${rules[rule].toLowerCase()} ${figure(week.baselines[rule])}`),
+                ].join('; '),
+              }))}
+            >
+              <LossLines
+                width={width}
+                labels={byWeek.map((week, index) =>
+                  index % every === 0 ? formatDate(week.from, timeZone).replace(/ \d+$/, '') : '',
+                )}
+                lines={[
+                  ...known.map((rule) => ({
+                    name: rules[rule],
+                    look: 'other' as const,
+                    values: drawn.map((week) => week?.baselines[rule] ?? null),
+                  })),
+                  { name: 'Floor of chance', look: 'floor', values: drawn.map((week) => week?.floorPinball ?? null) },
+                  { name: 'This product', look: 'own', values: drawn.map((week) => week?.pinball ?? null) },
+                ]}
+              />
+            </ChartReader>
           )}
         </Measured>
       }

@@ -25,19 +25,27 @@ export function DriftNotice({ drift }: { drift: TrackRecord['drift'] }) {
   );
 }
 
+type Counted = Pick<TrackRecord['weekOutlooks'], 'waiting' | 'withdrawn' | 'notRecorded' | 'overtaken' | 'withoutLaws'>;
+
+/** What became of the outlooks that are not scored. */
+function restOf(counted: Counted, overtaken: string) {
+  return [
+    [counted.waiting, 'wait for a log that tells what came'],
+    [counted.withdrawn, 'are not scored because the log that told was withdrawn'],
+    [counted.notRecorded, 'fell in hours that were not recorded'],
+    [counted.overtaken, overtaken],
+    [counted.withoutLaws, 'were issued before the distributions were kept'],
+  ] as const;
+}
+
 /** How many forecasts are behind the record; every one that was issued is named. */
 export function RecordGrounds({ record, timeZone }: { record: TrackRecord; timeZone: string }) {
-  const { outlooks, summary } = record;
-  const rest = [
-    [outlooks.waiting, 'wait for a log that tells what came'],
-    [outlooks.withdrawn, 'are not scored because the log that told was withdrawn'],
-    [outlooks.notRecorded, 'fell in hours that were not recorded'],
-    [
-      outlooks.overtaken,
-      'were followed by a newer one before anything they would be scored on began (saving a census issues one)',
-    ],
-    [outlooks.withoutLaws, 'were issued before the distributions were kept'],
-  ] as const;
+  const { outlooks, weekOutlooks, summary } = record;
+  const rest = restOf(
+    outlooks,
+    'were followed by a newer one before anything they would be scored on began (saving a census issues one)',
+  );
+  const weekRest = restOf(weekOutlooks, 'were not issued by the daily timetable, which would be no fair sample');
   return (
     <section className="grid gap-2" aria-label="What the record stands on">
       <h2 className="text-h2">What the record stands on</h2>
@@ -52,6 +60,21 @@ export function RecordGrounds({ record, timeZone }: { record: TrackRecord; timeZ
           .join('')}
         .
       </p>
+      {weekOutlooks.issued === 0 ? null : (
+        <p className="max-w-[44rem] text-ink2">
+          Of the week ahead {formatCount(weekOutlooks.issued, 'outlook was', 'outlooks were')} issued:{' '}
+          {formatNumber(weekOutlooks.scored)} are scored
+          {weekRest
+            .filter(([n]) => n > 0)
+            .map(([n, words]) => `, ${formatNumber(n)} ${words}`)
+            .join('')}
+          .
+          {weekOutlooks.recomputed > 0
+            ? ` ${formatNumber(weekOutlooks.recomputed)} of them were recomputed later.`
+            : ''}{' '}
+          They are what stands behind everything more than a day ahead.
+        </p>
+      )}
       {outlooks.recomputed > 0 ? (
         <p className="max-w-[44rem] text-ink2">
           <b className="text-ink">{formatNumber(outlooks.recomputed)} were recomputed later</b>, by the same code from

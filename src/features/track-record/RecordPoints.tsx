@@ -1,8 +1,10 @@
-import { useState } from 'react';
-import { Link } from 'react-router-dom';
-import { RangeColumns, rangeHeight } from '../../../shared/charts/RangeColumns.tsx';
+import { useRef } from 'react';
+import { Link, useNavigate } from 'react-router-dom';
+import { RangeColumns } from '../../../shared/charts/RangeColumns.tsx';
 import type { TrackRecord } from '../../../shared/api/track-record.ts';
+import { ChartReader } from '../../components/ChartReader.tsx';
 import { DataTable } from '../../components/DataTable.tsx';
+import { PictureTools } from '../../components/PictureTools.tsx';
 import { formatDay, formatTime } from '../../lib/format.ts';
 import { paths } from '../../app/paths.ts';
 import { percent } from './figures.ts';
@@ -12,7 +14,8 @@ const columnWidth = 15;
 
 /** The newest forecasts one by one, range and what came; each opens as it was shown then. */
 export function RecordPoints({ record, siteId, timeZone }: { record: TrackRecord; siteId: string; timeZone: string }) {
-  const [chosen, setChosen] = useState<string | null>(null);
+  const ref = useRef<HTMLDivElement>(null);
+  const navigate = useNavigate();
   const points = [...record.points].reverse();
   const drawn = points.flatMap((point, index) => {
     const { low90, high90, low50, high50, median } = point;
@@ -42,30 +45,31 @@ export function RecordPoints({ record, siteId, timeZone }: { record: TrackRecord
       </p>
       {drawn.length === 0 ? null : (
         <div className="overflow-x-auto" role="region" aria-label="Ranges and what came" tabIndex={0}>
-          <div className="relative w-max">
-            <RangeColumns columns={drawn} columnWidth={columnWidth} chosen={chosen} />
-            {drawn.map((column, index) => {
-              const point = points.find((candidate) => keyOf(candidate) === column.key);
-              return point?.outlookId ? (
-                <Link
-                  key={column.key}
-                  to={paths.tonightThen(siteId, point.outlookId)}
-                  tabIndex={-1}
-                  aria-hidden="true"
-                  className="absolute top-0"
-                  style={{ left: 34 + index * columnWidth, width: columnWidth, height: rangeHeight }}
-                  onPointerEnter={() => {
-                    setChosen(column.key);
-                  }}
-                  onPointerLeave={() => {
-                    setChosen(null);
-                  }}
-                />
-              ) : null;
-            })}
+          <div ref={ref} className="w-max">
+            <ChartReader
+              label="The newest forecasts"
+              columnWidth={columnWidth}
+              start={34}
+              first={drawn.length - 1}
+              onOpen={(index) => {
+                const point = points.find((candidate) => keyOf(candidate) === drawn[index].key);
+                const href = point ? hrefOf(siteId, point) : null;
+                if (href !== null) void navigate(href);
+              }}
+              readings={drawn.map((column) => {
+                const point = points.find((candidate) => keyOf(candidate) === column.key);
+                return {
+                  name: point ? nameOf(point, timeZone) : '',
+                  text: `90\u00a0% range ${String(column.low90)} to ${String(column.high90)}, median ${String(column.median)}; ${String(column.observed)} came`,
+                };
+              })}
+            >
+              <RangeColumns columns={drawn} columnWidth={columnWidth} />
+            </ChartReader>
           </div>
         </div>
       )}
+      {drawn.length === 0 ? null : <PictureTools of={ref} title="The newest forecasts, one by one" />}
       <details>
         <summary className="link inline-block min-h-6 cursor-pointer font-semibold text-ink2">
           The same as a table, each opening its forecast
@@ -83,8 +87,9 @@ export function RecordPoints({ record, siteId, timeZone }: { record: TrackRecord
                 rowHeader: true,
                 cell: (point) => {
                   const name = nameOf(point, timeZone);
-                  return point.outlookId ? (
-                    <Link to={paths.tonightThen(siteId, point.outlookId)} className="link inline-block min-h-6">
+                  const href = hrefOf(siteId, point);
+                  return href ? (
+                    <Link to={href} className="link inline-block min-h-6">
                       {name}
                     </Link>
                   ) : (
@@ -129,6 +134,12 @@ export function RecordPoints({ record, siteId, timeZone }: { record: TrackRecord
       </details>
     </section>
   );
+}
+
+/** Where the forecast stands as it was shown then. */
+function hrefOf(siteId: string, { outlookId, weekOutlookId }: Point): string | null {
+  if (outlookId !== null) return paths.tonightThen(siteId, outlookId);
+  return weekOutlookId === null ? null : paths.weekThen(siteId, weekOutlookId);
 }
 
 function keyOf(point: Point): string {

@@ -48,7 +48,8 @@ export function ChooseFile({ guideHref, onChoose }: { guideHref: string; onChoos
         <Button onClick={() => inputRef.current?.click()}>Choose a file</Button>
         <p className="text-ink2">
           or drop it here. CSV with any separator, gzipped or not; the first sheet of an .xlsx workbook; or HL7 FHIR R4
-          Encounters, one a line (NDJSON). Up to {formatNumber(visitLogLimits.bytes / 1e6)} MB of text to send.
+          Encounters, one a line (NDJSON). One row a visit; or, where times may not be shared, one row an hour and care
+          area. Up to {formatNumber(visitLogLimits.bytes / 1e6)} MB of text to send.
         </p>
       </div>
       <div className="prose-column">

@@ -10,6 +10,7 @@ import { visitLogLimits } from '../../../shared/api/visit-logs.ts';
 import { Button } from '../../components/Button.tsx';
 import { DataTable } from '../../components/DataTable.tsx';
 import { formatNumber } from '../../lib/format.ts';
+import { CountGuide } from './CountGuide.tsx';
 import type { AreaName } from './mapping.ts';
 import { saveFile } from '../../lib/save-file.ts';
 
@@ -94,8 +95,9 @@ export function ColumnGuide({ areas }: { areas: readonly AreaName[] }) {
           Save the template (CSV, header only)
         </Button>
       </section>
+      <CountGuide areas={areas} />
       <div className="prose-column">
-        <h2 className="mt-5 mb-1 text-h2">Three rows as an example</h2>
+        <h2 className="mt-5 mb-1 text-h2">Three visits as an example</h2>
         <pre
           className="overflow-x-auto bg-paper px-3 py-2 font-sans font-semibold text-ink"
           tabIndex={0}

@@ -50,6 +50,8 @@ export function MapColumns({
   return (
     <div className="grid grid-cols-[minmax(0,1fr)] gap-6">
       <DataTable
+        // What stands in it is the person’s own file: nothing to save again.
+        file={false}
         caption="Which column is which"
         rows={visitColumns}
         rowKey={(column) => column}

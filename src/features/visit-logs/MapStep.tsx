@@ -1,8 +1,11 @@
 import { Button } from '../../components/Button.tsx';
 import { Notice } from '../../components/Notice.tsx';
 import { formatCount, formatDate, formatNumber } from '../../lib/format.ts';
+import { Choice } from './Choice.tsx';
+import { asksCountOrder, countFaults, emptyCounts, offerCounts } from './count-mapping.ts';
 import { DateOrderQuestion } from './DateOrderQuestion.tsx';
 import { MapColumns } from './MapColumns.tsx';
+import { MapCounts } from './MapCounts.tsx';
 import { MapValues } from './MapValues.tsx';
 import { ambiguousColumns, mappingFaults, remap, stateOrder, type AreaName } from './mapping.ts';
 import { findNews, type LastMapping, type News } from './remember-mapping.ts';
@@ -24,10 +27,11 @@ export function MapStep({
   act: Pick<ReturnType<typeof useUploadWalk>, 'setMapping' | 'check' | 'back'>;
 }) {
   const { survey, mapping, refused } = walk;
-  const faults = mappingFaults(survey, mapping);
-  const asksOrder = ambiguousColumns(survey, mapping).length > 0;
+  const counts = mapping.counts ?? null;
+  const faults = counts ? countFaults(survey, counts) : mappingFaults(survey, mapping);
+  const asksOrder = counts ? asksCountOrder(survey, counts) : ambiguousColumns(survey, mapping).length > 0;
   const news = findNews(survey, mapping, last?.mapping ?? null);
-  const unanswered = asksOrder && mapping.statedOrder === null;
+  const unanswered = asksOrder && (counts ?? mapping).statedOrder === null;
   return (
     <>
       {refused.length > 0 ? (
@@ -43,23 +47,50 @@ export function MapStep({
         </Notice>
       ) : null}
       <SourceNotice survey={survey} />
-      {last ? <LastTime last={last} news={news} timeZone={timeZone} /> : null}
-      <MapColumns
-        survey={survey}
-        mapping={mapping}
-        onMap={(ours, index) => {
-          act.setMapping(remap(survey, mapping, ours, index, areas, last?.mapping ?? null));
+      <Choice
+        legend="What is one row of the file?"
+        name="row-holds"
+        chosen={counts ? 'hour' : 'visit'}
+        error={undefined}
+        options={[
+          { value: 'visit', label: 'A visit, with its times' },
+          { value: 'hour', label: 'An hour of a care area, with how many came (hourly counts)' },
+        ]}
+        onChoose={(holds) => {
+          const offered = holds === 'hour' ? (offerCounts(survey, areas) ?? emptyCounts()) : null;
+          act.setMapping({ ...mapping, counts: offered });
         }}
       />
-      {asksOrder ? (
-        <DateOrderQuestion
-          order={mapping.statedOrder}
-          onState={(order) => {
-            act.setMapping(stateOrder(survey, mapping, order));
+      {counts ? (
+        <MapCounts
+          survey={survey}
+          mapping={counts}
+          areas={areas}
+          onChange={(changed) => {
+            act.setMapping({ ...mapping, counts: changed });
           }}
         />
-      ) : null}
-      <MapValues survey={survey} mapping={mapping} areas={areas} news={news.values} onChange={act.setMapping} />
+      ) : (
+        <>
+          {last ? <LastTime last={last} news={news} timeZone={timeZone} /> : null}
+          <MapColumns
+            survey={survey}
+            mapping={mapping}
+            onMap={(ours, index) => {
+              act.setMapping(remap(survey, mapping, ours, index, areas, last?.mapping ?? null));
+            }}
+          />
+          {asksOrder ? (
+            <DateOrderQuestion
+              order={mapping.statedOrder}
+              onState={(order) => {
+                act.setMapping(stateOrder(survey, mapping, order));
+              }}
+            />
+          ) : null}
+          <MapValues survey={survey} mapping={mapping} areas={areas} news={news.values} onChange={act.setMapping} />
+        </>
+      )}
       {faults.length > 0 ? (
         <Notice kind="caution" title="Before the rows can be checked">
           <ul className="mt-1 list-disc pl-5">

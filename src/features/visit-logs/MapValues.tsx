@@ -89,6 +89,8 @@ function ValueTable({
   const isFresh = ({ spellings }: WordGroup) => spellings.some((spelling) => fresh.has(spelling));
   return (
     <DataTable
+      // What stands in it is the person’s own file: nothing to save again.
+      file={false}
       caption={caption}
       rows={groupWords(values).sort((a, b) => Number(isFresh(b)) - Number(isFresh(a)))}
       rowKey={({ spellings }) => spellings[0]}

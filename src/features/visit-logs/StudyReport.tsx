@@ -15,6 +15,7 @@ export function StudyReport({
   study,
   period,
   goodRows,
+  kind = 'visits',
   logs,
   areas,
   timeZone,
@@ -23,6 +24,7 @@ export function StudyReport({
   /** That the log would state. */
   period: TimeSpan;
   goodRows: number;
+  kind?: VisitLogSummary['kind'];
   logs: readonly VisitLogSummary[];
   areas: readonly AreaName[];
   timeZone: string;
@@ -30,7 +32,7 @@ export function StudyReport({
   const where = (area: number | null) => (area === null ? 'Whole department' : (areas[area]?.name ?? ''));
   return (
     <>
-      <AcceptingChange study={study} period={period} goodRows={goodRows} logs={logs} timeZone={timeZone} />
+      <AcceptingChange {...{ study, period, goodRows, kind, logs, timeZone }} />
       {study.gaps.length + study.levelShifts.length + study.heaps.length === 0 ? (
         <p className="text-ink2">No implausible gap, sudden change of level or heaping was found in the times.</p>
       ) : null}
@@ -128,16 +130,18 @@ function AcceptingChange({
   study,
   period,
   goodRows,
+  kind,
   logs,
   timeZone,
 }: {
   study: FileStudy;
   period: TimeSpan;
   goodRows: number;
+  kind: VisitLogSummary['kind'];
   logs: readonly VisitLogSummary[];
   timeZone: string;
 }) {
-  const change = acceptingChange(period, logs);
+  const change = acceptingChange(period, logs, kind);
   return (
     <section className="max-w-[58rem]" aria-label="What accepting would change">
       <h2 className="font-bold text-ink">What accepting would change</h2>

@@ -8,8 +8,10 @@ import { ProblemNotice } from '../../components/Notice.tsx';
 import { PageHead } from '../../components/PageHead.tsx';
 import { formatCount, formatNumber } from '../../lib/format.ts';
 import { AcceptForm, offerAnswers } from './AcceptForm.tsx';
+import { AcceptCounts, noCountAnswers } from './AcceptCounts.tsx';
 import { CheckReport } from './CheckReport.tsx';
 import { ChooseFile } from './ChooseFile.tsx';
+import { CountReport } from './CountReport.tsx';
 import { MapStep } from './MapStep.tsx';
 import type { AreaName } from './mapping.ts';
 import { Progress } from './Progress.tsx';
@@ -57,6 +59,7 @@ export function UploadWalk({
   });
   const remembered = last?.mapping ?? null;
   const [answers, setAnswers] = useState(() => offerAnswers(remembered));
+  const [countAnswers, setCountAnswers] = useState(noCountAnswers);
   const bodyRef = useRef<HTMLDivElement>(null);
   const lastStep = useRef(walk.step);
   useEffect(() => {
@@ -72,7 +75,15 @@ export function UploadWalk({
     setAnswers((before) => ({ ...before, goodOnly: false }));
     act.check(read, mapping);
   };
-  const period = walk.step === 'report' ? periodOf(walk.report, timeZone, now) : null;
+  const studyReport = ({ study, report, counted }: Extract<Walk, { step: 'report' }>) => {
+    const period = counted
+      ? { from: report.firstArrivalAt ?? 0, to: report.lastTimeAt ?? 0 }
+      : periodOf(report, timeZone, now);
+    if (!study || !period) return null;
+    const arrivals = report.visitsByArea.reduce((sum, { visits }) => sum + visits, 0);
+    const kind = counted ? 'hourly counts' : 'visits';
+    return <StudyReport {...{ study, period, areas, timeZone, logs, kind }} goodRows={arrivals} />;
+  };
   return (
     <>
       <PageHead
@@ -96,6 +107,7 @@ export function UploadWalk({
             guideHref={guideHref}
             onChoose={(file) => {
               setAnswers(offerAnswers(remembered));
+              setCountAnswers(noCountAnswers);
               act.choose(file);
             }}
           />
@@ -119,35 +131,50 @@ export function UploadWalk({
         ) : null}
         {walk.step === 'report' ? (
           <>
-            <CheckReport
-              report={walk.report}
-              mapping={walk.mapping}
-              areas={areas}
-              timeZone={timeZone}
-              payloadBytes={walk.payload?.size ?? 0}
-              study={
-                walk.study && period ? (
-                  <StudyReport
-                    study={walk.study}
-                    period={period}
-                    goodRows={walk.report.goodRows}
-                    logs={logs}
-                    areas={areas}
-                    timeZone={timeZone}
-                  />
-                ) : null
-              }
-              onSaveRows={(chosen) => {
-                const rows = walk.problemRows.filter(
-                  ({ problem, column }) => !chosen || (problem === chosen.problem && column === chosen.column),
-                );
-                saveFile('problem-rows.csv', 'text/csv', problemRowsCsv(rows));
-              }}
-              onRepeatedHour={(repeatedHour) => {
-                recheck(walk, { ...walk.mapping, repeatedHour });
-              }}
-            />
-            {walk.payload ? (
+            {walk.counted ? (
+              <CountReport
+                counted={walk.counted}
+                rows={walk.report.goodRows}
+                areas={areas}
+                payloadBytes={walk.payload?.size ?? 0}
+                study={studyReport(walk)}
+              />
+            ) : (
+              <CheckReport
+                report={walk.report}
+                mapping={walk.mapping}
+                areas={areas}
+                timeZone={timeZone}
+                payloadBytes={walk.payload?.size ?? 0}
+                study={studyReport(walk)}
+                onSaveRows={(chosen) => {
+                  const rows = walk.problemRows.filter(
+                    ({ problem, column }) => !chosen || (problem === chosen.problem && column === chosen.column),
+                  );
+                  saveFile('problem-rows.csv', 'text/csv', problemRowsCsv(rows));
+                }}
+                onRepeatedHour={(repeatedHour) => {
+                  recheck(walk, { ...walk.mapping, repeatedHour });
+                }}
+              />
+            )}
+            {walk.payload && walk.counted ? (
+              <AcceptCounts
+                counted={walk.counted}
+                areas={areas}
+                end={walk.report.lastTimeAt ?? 0}
+                rows={walk.report.goodRows}
+                timeZone={timeZone}
+                now={now}
+                answers={countAnswers}
+                onAnswer={(changed) => {
+                  setCountAnswers((before) => ({ ...before, ...changed }));
+                }}
+                onAccept={(facts, stated) => {
+                  act.send(walk, facts, false, stated);
+                }}
+              />
+            ) : walk.payload ? (
               <AcceptForm
                 report={walk.report}
                 timeZone={timeZone}
@@ -197,7 +224,7 @@ function titleOf(walk: Walk): string {
         ? `All ${formatCount(walk.report.rows, 'row is', 'rows are')} good.`
         : `${formatNumber(walk.report.problemRows)} of ${formatCount(walk.report.rows, 'row has', 'rows have')} a problem.`;
     case 'sending':
-      return `Sending ${formatCount(walk.report.goodRows, 'visit')}.`;
+      return `Sending ${walk.counted ? formatCount(walk.report.goodRows, 'hour') : formatCount(walk.report.goodRows, 'visit')}.`;
   }
 }
 

@@ -47,7 +47,13 @@ export function VisitLogList({
           header: 'State',
           cell: (log) => (log.status === 'loading' && log.jobId ? progressOf(log.jobId) : stateWord(log)),
         },
-        { key: 'rows', header: 'Visits', figure: true, cell: (log) => formatNumber(log.rows) },
+        {
+          key: 'rows',
+          header: 'Rows',
+          figure: true,
+          cell: (log) =>
+            log.kind === 'hourly counts' ? `${formatNumber(log.rows)} hourly counts` : formatNumber(log.rows),
+        },
         { key: 'out', header: 'Rows left out', figure: true, cell: (log) => leftOutInWords(log.leftOutRows) },
         { key: 'file', header: 'File', cell: (log) => <span className="break-all text-ink2">{log.fileName}</span> },
         {

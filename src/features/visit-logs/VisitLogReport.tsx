@@ -25,24 +25,45 @@ export function VisitLogReport({ log, timeZone }: { log: VisitLogDetail; timeZon
           },
         ]
       : []),
-    {
-      name: 'Holds visits that',
-      value: log.facts.selectedBy === 'arrived' ? 'arrived in the period' : 'departed in the period',
-    },
+    ...(log.kind === 'hourly counts'
+      ? [
+          { name: 'Holds', value: 'hourly counts: arrivals by hour and care area, no visit' },
+          {
+            name: 'Length of stay',
+            value: log.statedStays
+              ? `stated: ${formatList(log.statedStays.areas.map(({ name, meanHours }) => `${name} ${formatNumber(meanHours)} h`))} (${log.statedStays.source})`
+              : 'not stated',
+          },
+        ]
+      : [
+          {
+            name: 'Holds visits that',
+            value: log.facts.selectedBy === 'arrived' ? 'arrived in the period' : 'departed in the period',
+          },
+        ]),
     { name: 'Extract taken', value: formatDateTime(log.facts.takenAt, timeZone) },
-    {
-      name: 'A missing departure means',
-      value: log.facts.missingDeparture === 'still present' ? 'still present when the extract was taken' : 'unknown',
-    },
+    ...(log.kind === 'hourly counts'
+      ? []
+      : [
+          {
+            name: 'A missing departure means',
+            value:
+              log.facts.missingDeparture === 'still present' ? 'still present when the extract was taken' : 'unknown',
+          },
+        ]),
     {
       name: 'Arrival time marks',
       value:
         log.facts.arrivalMeaning === null ? 'not asked' : lowerFirst(arrivalMeaningWords[log.facts.arrivalMeaning]),
     },
-    {
-      name: 'Care area is',
-      value: log.facts.areaMeaning === null ? 'not asked' : lowerFirst(areaMeaningWords[log.facts.areaMeaning]),
-    },
+    ...(log.kind === 'hourly counts'
+      ? []
+      : [
+          {
+            name: 'Care area is',
+            value: log.facts.areaMeaning === null ? 'not asked' : lowerFirst(areaMeaningWords[log.facts.areaMeaning]),
+          },
+        ]),
     { name: 'File', value: <span className="break-all">{log.fileName}</span> },
     { name: 'SHA-256 of what was received', value: <span className="tighter break-all">{log.sha256}</span> },
   ];
@@ -70,13 +91,18 @@ export function VisitLogReport({ log, timeZone }: { log: VisitLogDetail; timeZon
         />
         <div className="grid grid-cols-[minmax(0,1fr)] content-start gap-8">
           <DataTable
-            caption="Visits by care area"
+            caption={log.kind === 'hourly counts' ? 'Arrivals by care area' : 'Visits by care area'}
             rows={log.visitsByArea}
             rowKey={({ areaId }) => areaId}
             empty="No visit."
             columns={[
               { key: 'area', header: 'Care area', rowHeader: true, cell: ({ name }) => name },
-              { key: 'visits', header: 'Visits', figure: true, cell: ({ visits }) => formatNumber(visits) },
+              {
+                key: 'visits',
+                header: log.kind === 'hourly counts' ? 'Arrivals' : 'Visits',
+                figure: true,
+                cell: ({ visits }) => formatNumber(visits),
+              },
             ]}
           />
           <DataTable

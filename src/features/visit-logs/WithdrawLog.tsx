@@ -54,8 +54,9 @@ export function WithdrawLog({ siteId, log }: { siteId: string; log: VisitLogDeta
           }}
         >
           <p className="text-ink2">
-            Its {formatCount(log.rows, 'visit')} stop counting at once and are deleted. Models fitted on them stay as
-            they are and say so until a new one is fitted. Older logs that it replaced count again.
+            Its {formatCount(log.rows, log.kind === 'hourly counts' ? 'hourly count' : 'visit')} stop counting at once
+            and are deleted. Models fitted on them stay as they are and say so until a new one is fitted. Older logs
+            that it replaced count again.
           </p>
           <TextArea
             label="Reason"
@@ -69,7 +70,7 @@ export function WithdrawLog({ siteId, log }: { siteId: string; log: VisitLogDeta
           />
           {withdraw.error ? <ProblemNotice error={withdraw.error} /> : null}
           <Button type="submit" className="justify-self-start" busy={withdraw.isPending} busyText="Withdrawing…">
-            Withdraw {formatCount(log.rows, 'visit')}
+            Withdraw {formatCount(log.rows, log.kind === 'hourly counts' ? 'hourly count' : 'visit')}
           </Button>
         </form>
       </Dialog>

@@ -1,10 +1,13 @@
 import { canonicalHeader, canonicalLine } from '../../../shared/domain/canonical-visit.ts';
+import { canonicalCountHeader, canonicalCountLine } from '../../../shared/domain/canonical-count.ts';
+import { countColumns, type CountColumn, type HourlyCount } from '../../../shared/domain/hourly-count.ts';
 import type { TimeSpan } from '../../../shared/domain/file-study.ts';
 import { parseInstant } from '../../../shared/domain/instant.ts';
 import { readLocalTime, type DateOrder } from '../../../shared/domain/local-time.ts';
 import { VisitFileReader, type FileOutcome } from '../../../shared/domain/visit-file.ts';
 import { visitColumns, type VisitColumn, type VisitReading } from '../../../shared/domain/visit-row.ts';
 import { makeZone, type Zone } from '../../../shared/domain/zoned-time.ts';
+import { countReading, type CountMapping } from './count-mapping.ts';
 import { makeRecordParser } from './parse-records.ts';
 import { readSource } from './read-source.ts';
 import type { FileSurvey } from './survey-file.ts';
@@ -25,12 +28,16 @@ export interface FileMapping {
   /** Each value to its code, 255 for not recorded; null leaves its rows out. */
   dispositions: Record<string, number | null>;
   ambulances: Record<string, number | null>;
+  /** Set where the file holds hourly counts; what stands above is then of no account. */
+  counts?: CountMapping | null;
 }
 
 export interface CheckSettings {
   survey: FileSurvey;
   mapping: FileMapping;
   areaIds: readonly string[];
+  /** Names of the areas, in the same order, for what is said of hourly counts. */
+  areaNames?: readonly string[];
   timeZone: string;
   /** Ends of the site's shifts, minutes of the local day. */
   shiftEnds: readonly number[];
@@ -55,12 +62,14 @@ export async function checkFile(
   settings: CheckSettings,
   onBytes: (bytes: number) => void,
 ): Promise<FileCheck> {
-  const { survey, mapping, areaIds, timeZone, shiftEnds, covered, now } = settings;
+  const { survey, mapping, areaIds, areaNames = [], timeZone, shiftEnds, covered, now } = settings;
   const packer = new CompressionStream('gzip');
   const payload = new Response(packer.readable).blob();
   const writer = packer.writable.getWriter();
   const encoder = new TextEncoder();
-  let lines = [canonicalHeader];
+  const counts = mapping.counts ?? null;
+  const zone = makeZone(timeZone);
+  let lines = [counts ? canonicalCountHeader : canonicalHeader];
   const flush = async () => {
     if (lines.length === 0) return;
     const text = `${lines.join('\n')}\n`;
@@ -73,10 +82,23 @@ export async function checkFile(
   >;
   const reader = new VisitFileReader({
     parse: makeRecordParser(survey.form),
-    places: () => ({ places }),
+    places: () => (counts ? { countPlaces: countPlacesOf(counts) } : { places }),
     reading: makeReading(settings),
     now,
-    study: { zone: makeZone(timeZone), shiftEnds, covered },
+    study: { zone, shiftEnds, covered },
+    ...(counts
+      ? {
+          counts: {
+            reading: countReading(survey, counts, areaIds),
+            zone,
+            missingIsNone: counts.missing === 'none came',
+            areaName: (area: number) => areaNames[area] ?? `area ${String(area + 1)}`,
+            onCount: (count: HourlyCount) => {
+              lines.push(canonicalCountLine(count, areaIds[count.area]));
+            },
+          },
+        }
+      : {}),
     onVisit: (visit) => {
       lines.push(canonicalLine(visit, areaIds[visit.area]));
     },
@@ -103,6 +125,13 @@ export async function checkFile(
   const packed = await payload;
   // What a refused file would have sent is dropped here.
   return { outcome, payload: outcome.refused === null && outcome.report.goodRows > 0 ? packed : null };
+}
+
+function countPlacesOf(counts: CountMapping): Record<CountColumn, number> {
+  return Object.fromEntries(countColumns.map((column) => [column, counts.columns[column] ?? -1])) as Record<
+    CountColumn,
+    number
+  >;
 }
 
 const quarterHour = 900;

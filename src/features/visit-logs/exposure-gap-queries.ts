@@ -16,6 +16,7 @@ export function useExposureGaps(siteId: string) {
 export function useDeclareGap(siteId: string) {
   const queryClient = useQueryClient();
   return useMutation({
+    meta: { done: 'The time was declared.' },
     mutationFn: (body: BodyInputOf<typeof declareExposureGap>) =>
       call(declareExposureGap, { params: { siteId }, body, kept: 'What you entered is still in the fields.' }),
     onSuccess: () => queryClient.invalidateQueries({ queryKey: gapsKey(siteId) }),

@@ -9,6 +9,7 @@ import {
   type VisitColumn,
 } from '../../../shared/domain/visit-row.ts';
 import type { FileMapping } from './check-file.ts';
+import { offerCounts } from './count-mapping.ts';
 import type { ColumnSurvey, FileSurvey } from './survey-file.ts';
 import { groupWords, sameWord } from './word-groups.ts';
 
@@ -52,6 +53,7 @@ export function offerMapping(
     areas: {},
     dispositions: {},
     ambulances: {},
+    counts: offerCounts(survey, areas),
   };
   return choiceColumns.reduce((mapping, column) => offerValues(survey, mapping, column, areas, remembered), empty);
 }

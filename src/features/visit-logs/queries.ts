@@ -7,6 +7,7 @@ import {
   listVisitLogs,
   withdrawVisitLog,
   type ExtractFactsInput,
+  type StatedStaysInput,
 } from '../../../shared/api/visit-logs.ts';
 import { call } from '../../lib/api-client.ts';
 
@@ -69,7 +70,8 @@ export function useAcceptVisitLog(siteId: string) {
       goodRowsOnly: boolean;
       facts: ExtractFactsInput;
       leftOutBeforeSending: { rows: number; kinds: { problem: string; rows: number }[] };
-      mapping: RememberedMapping;
+      mapping?: RememberedMapping;
+      statedStays?: StatedStaysInput | undefined;
     }) => call(acceptVisitLog, { params: { siteId }, body, kept: 'The checked file is kept for an hour.' }),
     onSuccess: refresh,
   });

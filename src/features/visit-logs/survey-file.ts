@@ -36,6 +36,7 @@ export interface FileSurvey {
 /** A column with more different values is no list of areas, dispositions or answers. */
 const mostChoices = 100;
 const rowsToJudge = 500;
+const dateOnly = /^\d{1,2}[-/.]\d{1,2}[-/.]\d{2,4}$/;
 const mostScreened = 3000;
 
 /**
@@ -167,7 +168,11 @@ class ColumnStudy {
       if (isTime(value)) this.times += 1;
     }
     if (this.isTime) this.order.add(value);
-    else if (this.filled <= mostScreened) this.screen(value);
+    else {
+      // Hourly counts have dates without a time of day.
+      if (dateOnly.test(value)) this.order.add(value);
+      if (this.filled <= mostScreened) this.screen(value);
+    }
     if (this.values === null) return;
     const seen = this.values.get(value);
     if (seen !== undefined) this.values.set(value, seen + 1);
@@ -199,7 +204,7 @@ class ColumnStudy {
       isChoice: values !== null && filled > 0,
       isBarred: identifier !== null,
       identifier,
-      dateOrder: holdsTimes ? this.order.verdict() : 'not needed',
+      dateOrder: this.order.verdict(),
       contraryDates: this.order.contrary,
       values: identifier === null ? values : null,
     };

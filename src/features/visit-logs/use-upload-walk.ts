@@ -1,6 +1,7 @@
 import { useEffect, useRef, useState } from 'react';
 import type { RememberedMapping } from '../../../shared/api/visit-log-mapping.ts';
-import type { ExtractFactsInput } from '../../../shared/api/visit-logs.ts';
+import type { ExtractFactsInput, StatedStaysInput } from '../../../shared/api/visit-logs.ts';
+import type { CountedFile } from '../../../shared/domain/hourly-count.ts';
 import { screenFileName } from '../../../shared/domain/screen-file-name.ts';
 import type { FileStudy, TimeSpan } from '../../../shared/domain/file-study.ts';
 import type { ProblemRows } from '../../../shared/domain/problem-rows.ts';
@@ -22,6 +23,8 @@ interface Checked extends Read {
   report: VisitReport;
   problemRows: ProblemRows[];
   study: FileStudy | null;
+  /** What a file of hourly counts holds; null for visits. */
+  counted: CountedFile | null;
   payload: Blob | null;
 }
 
@@ -119,7 +122,16 @@ export function useUploadWalk({
 
   const check = ({ file, survey }: Read, mapping: FileMapping) => {
     const from: Walk = { step: 'map', file, survey, mapping, refused: [] };
-    const settings = { survey, mapping, areaIds: areas.map(({ id }) => id), timeZone, shiftEnds, covered, now };
+    const settings = {
+      survey,
+      mapping,
+      areaIds: areas.map(({ id }) => id),
+      areaNames: areas.map(({ name }) => name),
+      timeZone,
+      shiftEnds,
+      covered,
+      now,
+    };
     void run(from, { ...from, step: 'checking', bytes: 0, total: file.size }, async (signal, onBytes) => {
       const { outcome, payload } = await checkOnThread(file, settings, signal, onBytes);
       return outcome.refused === null
@@ -131,13 +143,19 @@ export function useUploadWalk({
             report: outcome.report,
             problemRows: outcome.problemRows,
             study: outcome.study,
+            counted: outcome.counted,
             payload,
           }
         : { ...from, refused: outcome.refused };
     });
   };
 
-  const send = (checked: Checked, facts: ExtractFactsInput, wasAskedMissing: boolean) => {
+  const send = (
+    checked: Checked,
+    facts: ExtractFactsInput,
+    wasAskedMissing: boolean,
+    statedStays?: StatedStaysInput,
+  ) => {
     const { payload, report } = checked;
     if (payload === null) return;
     const from: Walk = { ...checked, step: 'report' };
@@ -154,7 +172,10 @@ export function useUploadWalk({
           rows: report.problemRows,
           kinds: [...leftOut].map(([problem, rows]) => ({ problem, rows })),
         },
-        mapping: rememberedFrom(checked.survey, checked.mapping, facts, wasAskedMissing),
+        // How visits were read stays remembered while counts are loaded.
+        ...(checked.counted
+          ? { statedStays }
+          : { mapping: rememberedFrom(checked.survey, checked.mapping, facts, wasAskedMissing) }),
       });
       onAccepted(logId);
       return null;

@@ -39,6 +39,19 @@ export function AdmissionDays({ outlook, site, until }: { outlook: WeekOutlook; 
     1,
     ...rows.map((index) => Math.max(admittedLeaving.p97_5[index], arrivalsToAdmit.p97_5[index])),
   );
+  if (outlook.model.staysFrom) {
+    return (
+      <section aria-labelledby="admissions-title">
+        <h2 id="admissions-title" className="text-section">
+          Admissions by day
+        </h2>
+        <p className="mt-1 max-w-3xl text-ink2">
+          Not known: the model in use is fitted on hourly counts, which do not say who was admitted. Load visits with
+          dispositions to have them forecast.
+        </p>
+      </section>
+    );
+  }
   return (
     <section aria-labelledby="admissions-title">
       <h2 id="admissions-title" className="text-section">

@@ -12,13 +12,25 @@ export function EveryShift({ board, outlook }: { board: WeekBoard; outlook: Week
   return (
     <div className="grid grid-cols-[minmax(0,1fr)] gap-8">
       {board.areas.map((row) => (
-        <ShiftTable key={row.area.id} row={row} board={board} risk={risk} />
+        <ShiftTable key={row.area.id} row={row} board={board} outlook={outlook} risk={risk} />
       ))}
     </div>
   );
 }
 
-function ShiftTable({ row, board, risk }: { row: WeekArea; board: WeekBoard; risk: string }) {
+function ShiftTable({
+  row,
+  board,
+  outlook,
+  risk,
+}: {
+  row: WeekArea;
+  board: WeekBoard;
+  outlook: WeekOutlook;
+  risk: string;
+}) {
+  const { waits, areas } = outlook.result;
+  const own = waits?.areas[areas.findIndex(({ areaId }) => areaId === row.area.id)];
   const figure = (key: string, header: string, cell: (index: number) => string) => ({
     key,
     header,
@@ -57,6 +69,14 @@ function ShiftTable({ row, board, risk }: { row: WeekArea; board: WeekBoard; ris
             );
           },
         },
+        ...(waits
+          ? [
+              figure('wait', `Wait over ${formatNumber(waits.limitMinutes)} min`, (index) => {
+                const share = own?.[board.places[index]].overLimit;
+                return share === undefined || share === null ? 'not known' : formatChance(share);
+              }),
+            ]
+          : []),
       ]}
     />
   );

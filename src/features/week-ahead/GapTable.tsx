@@ -5,6 +5,7 @@ import { RiskMark } from '../../../shared/charts/RiskMark.tsx';
 import { formatChance, riskStep, riskWord } from '../../../shared/domain/risk-word.ts';
 import { byLastChance, mayStillBook, weekGaps } from '../../../shared/forecasting/week-gaps.ts';
 import type { WeekGap } from '../../../shared/forecasting/week-gaps.ts';
+import { lentBeds } from '../../../shared/forecasting/lent-beds.ts';
 import { riskInWords } from '../../../shared/forecasting/week-sentence.ts';
 import { Button } from '../../components/Button.tsx';
 import { ChanceFigure } from '../../components/ChanceFigure.tsx';
@@ -24,6 +25,8 @@ export function orderedGaps(outlook: WeekOutlook, now: number, until: number, or
   const gaps = weekGaps(outlook.result, now, until);
   return order === 'worst' ? gaps : byLastChance(gaps, now);
 }
+
+const keyOf = (gap: WeekGap) => `${gap.areaId} ${String(gap.shift.from)}`;
 
 /** Each stroke a bed space: short ones planned, tall ones not in the plan. */
 function Strokes({ planned, missing }: { planned: number; missing: number }) {
@@ -78,7 +81,12 @@ export function GapTable({
   const [all, setAll] = useState(false);
   const gaps = orderedGaps(outlook, now, until, order);
   const risk = riskInWords(outlook.result.planningRisk);
-  const areaOf = (gap: WeekGap) => site.areas.find(({ id }) => id === gap.areaId);
+  const nameOf = (areaId: string) => site.areas.find(({ id }) => id === areaId)?.name ?? areaId;
+  // The worst gap is lent to first, whichever order is looked at.
+  const worstFirst = weekGaps(outlook.result, now, until);
+  const lent = new Map(lentBeds(outlook.result, worstFirst, site.areas).map((beds, g) => [keyOf(worstFirst[g]), beds]));
+  const lends = [...lent.values()].some((beds) => beds.length > 0);
+  const mayLend = gaps.some(({ areaId }) => site.areas.some(({ lendsTo }) => lendsTo.includes(areaId)));
   const stated = gaps.some(({ need }) => need.nurseHours !== null);
   const columns: Column<WeekGap>[] = [
     {
@@ -94,7 +102,7 @@ export function GapTable({
         </span>
       ),
     },
-    { key: 'area', header: 'Area', cell: (gap) => areaOf(gap)?.name ?? gap.areaId },
+    { key: 'area', header: 'Area', cell: (gap) => nameOf(gap.areaId) },
     {
       key: 'strokes',
       header: <span className="sr-only">Drawn</span>,
@@ -124,6 +132,24 @@ export function GapTable({
         </>
       ),
     },
+    ...(lends
+      ? [
+          {
+            key: 'lent',
+            header: 'Could be lent',
+            cell: (gap: WeekGap) => {
+              const beds = lent.get(keyOf(gap)) ?? [];
+              return beds.length === 0
+                ? 'none'
+                : beds.map((one) => (
+                    <span key={one.areaId} className="block whitespace-nowrap">
+                      {formatNumber(one.beds)} by {nameOf(one.areaId)}
+                    </span>
+                  ));
+            },
+          },
+        ]
+      : []),
     { key: 'chance', header: 'Some time short', cell: ({ need }) => <Chance chance={need.someTime} /> },
     {
       key: 'every',
@@ -169,6 +195,11 @@ export function GapTable({
         To add: what brings the chance of any shortfall in the shift to {risk}, in the area’s own steps. Each stroke is
         a bed space; tall strokes are not in the plan. The last chance to book is the shift’s lead time, or the area’s
         notice where that is longer.
+        {lends
+          ? ' Could be lent: what areas that may lend to it have beyond their own planning risk and safe minimum all through the shift; every bed is counted once, for the worst gap first.'
+          : mayLend
+            ? ' No area that may lend to another can spare beds in these shifts and stay within its own planning risk.'
+            : ''}
         {stated ? ' Nurse hours by your site’s own ratio.' : ''}
       </p>
       <DataTable
@@ -176,7 +207,7 @@ export function GapTable({
         captionHidden
         columns={columns}
         rows={all ? gaps : gaps.slice(0, shownFirst)}
-        rowKey={(gap) => `${gap.areaId} ${String(gap.shift.from)}`}
+        rowKey={keyOf}
         empty={`At a ${risk} risk no shift of these days needs more than is planned.`}
       />
       {gaps.length > shownFirst ? (

@@ -51,7 +51,8 @@ export function LastWeek({ week, site }: { week: WeekAhead; site: Site }) {
         </h2>
         <p className="max-w-3xl text-ink2">
           No forecast of the week was issued a week ago, so there is nothing to compare yet. One is issued each day;
-          from the eighth day on last week’s stands here.
+          from the eighth day on last week’s stands here. Where the track record has been recomputed, one made
+          afterwards from what was known then stands here before.
         </p>
       </section>
     );
@@ -65,8 +66,11 @@ export function LastWeek({ week, site }: { week: WeekAhead; site: Site }) {
         Last week against actual
       </h2>
       <p className="mb-2 max-w-3xl text-quiet text-ink2">
-        {lastWeekInWords(days)} Forecast of {formatDateTime(lastWeek.issuedAt, site.timeZone)}, exactly as it was
-        issued; the stroke is what came.
+        {lastWeekInWords(days)}{' '}
+        {lastWeek.recomputed
+          ? `No forecast had been issued then: this one was made afterwards, from the visits known on ${formatDateTime(lastWeek.issuedAt, site.timeZone)} alone.`
+          : `Forecast of ${formatDateTime(lastWeek.issuedAt, site.timeZone)}, exactly as it was issued.`}{' '}
+        The stroke is what came.
       </p>
       <DataTable
         caption="Last week: arrivals forecast and what came"

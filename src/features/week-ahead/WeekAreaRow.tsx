@@ -4,6 +4,7 @@ import { formatChance, riskWord } from '../../../shared/domain/risk-word.ts';
 import { riskInWords } from '../../../shared/forecasting/week-sentence.ts';
 import { BoardRow } from '../../components/BoardRow.tsx';
 import { ChanceTable } from '../../components/ChanceTable.tsx';
+import { ReadNeed } from '../../components/ReadNeed.tsx';
 import type { StripRow } from '../../components/ChanceTable.tsx';
 import { formatSigned } from '../../lib/format.ts';
 import { stepsOf } from './week-board.ts';
@@ -105,16 +106,18 @@ export function WeekAreaRow({
             {`${area.name}: highest chance of any shortfall in a shift ${formatChance(most)}, ${riskWord(most)}, ` +
               `${names[chances.indexOf(most)] ?? ''}. ${String(gaps)} of ${String(chances.length)} shifts need more than is planned at a ${riskInWords(planningRisk)} risk.`}
           </p>
-          <NeedStrip
-            id={id}
-            columns={row.columns}
-            staffed={stepsOf(row.columns)}
-            unit=""
-            columnWidth={columnWidth}
-            height={open ? 92 : 48}
-            tall={open}
-            counted
-          />
+          <ReadNeed label={`${area.name}, need by shift`} columns={row.columns} names={names} columnWidth={columnWidth}>
+            <NeedStrip
+              id={id}
+              columns={row.columns}
+              staffed={stepsOf(row.columns)}
+              unit=""
+              columnWidth={columnWidth}
+              height={open ? 92 : 48}
+              tall={open}
+              counted
+            />
+          </ReadNeed>
           <ChanceTable
             caption={`${area.name}, shift by shift`}
             hourNames={names}

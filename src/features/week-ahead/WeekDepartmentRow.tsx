@@ -4,6 +4,7 @@ import { RiskMark } from '../../../shared/charts/RiskMark.tsx';
 import { formatChance, riskStep, riskWord } from '../../../shared/domain/risk-word.ts';
 import { BoardRow } from '../../components/BoardRow.tsx';
 import { ChanceTable } from '../../components/ChanceTable.tsx';
+import { ReadNeed } from '../../components/ReadNeed.tsx';
 import { formatSigned } from '../../lib/format.ts';
 import { stepsOf } from './week-board.ts';
 import type { WeekBoard } from './week-board.ts';
@@ -59,16 +60,18 @@ export function WeekDepartmentRow({
               : ''}
             {counted ? '' : ' The first day starts from what the model expects.'}
           </p>
-          <NeedStrip
-            id={id}
-            columns={columns}
-            staffed={stepsOf(columns)}
-            unit=""
-            columnWidth={columnWidth}
-            height={96}
-            tall
-            counted
-          />
+          <ReadNeed label="Whole department, need by shift" columns={columns} names={names} columnWidth={columnWidth}>
+            <NeedStrip
+              id={id}
+              columns={columns}
+              staffed={stepsOf(columns)}
+              unit=""
+              columnWidth={columnWidth}
+              height={96}
+              tall
+              counted
+            />
+          </ReadNeed>
           <ChanceTable
             caption="Whole department, shift by shift"
             hourNames={names}

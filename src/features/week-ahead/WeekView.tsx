@@ -21,6 +21,7 @@ import { weekFiles } from './week-csv.ts';
 import { WeekBoard } from './WeekBoard.tsx';
 import { WeekHead } from './WeekHead.tsx';
 import { WeekHeatMap } from './WeekHeatMap.tsx';
+import { WeekWaits } from './WeekWaits.tsx';
 
 const titles = {
   'no model': 'There is no week ahead: no arrival model is in use.',
@@ -37,6 +38,7 @@ export function WeekView({
   emptyActions,
   links,
   calendarLink,
+  setLimit,
   how,
 }: {
   week: WeekAhead;
@@ -47,6 +49,8 @@ export function WeekView({
   links: ReactNode;
   /** Where the site's own calendar is kept, for those who keep it. */
   calendarLink: ReactNode;
+  /** Where the site's wait limit is kept, for those who keep it. */
+  setLimit: ReactNode;
   how: ReactNode;
 }) {
   const [choices, change] = useWeekChoices();
@@ -122,6 +126,9 @@ export function WeekView({
           </PanelBoundary>
         </div>
         <div className={part}>
+          <WeekWaits {...{ outlook, site, setLimit }} until={board.until} />
+        </div>
+        <div className={part}>
           <PanelBoundary className="py-4">
             <WeekHeatMap
               {...{ outlook, site }}
@@ -150,7 +157,8 @@ export function WeekView({
           <ArrivalDays {...{ outlook, site }} until={board.until} />
           <p className="text-quiet text-ink2">
             Need: patients who would be in the area with bed spaces unlimited, at its highest in each shift. Planned:
-            the fewest staffed beds of the shift. Hour by hour the same figures are in the CSV files.
+            the fewest staffed beds of the shift’s own hours, until the next one begins. Hour by hour the same figures
+            are in the CSV files.
           </p>
         </div>
       </Dialog>

@@ -1,5 +1,6 @@
 import type { WeekAhead, WeekOutlook } from '../../../shared/api/week-outlooks.ts';
 import type { Site } from '../../../shared/api/sites.ts';
+import { lentBeds } from '../../../shared/forecasting/lent-beds.ts';
 import { weekGaps } from '../../../shared/forecasting/week-gaps.ts';
 import type { CountColumns, NeedColumns, WeekSpan } from '../../../shared/forecasting/week-outlook-types.ts';
 import { hourOfWeekName } from '../../components/HourOfWeekMap.tsx';
@@ -81,13 +82,16 @@ export function weekFiles(week: WeekAhead, outlook: WeekOutlook, site: Site, unt
         'planned (most)',
         'to add',
         'of which do not exist',
+        'could be lent',
         'chance of any shortfall',
         'chance with every space',
         'nurse hours',
         'last chance to book',
       ],
-      () =>
-        weekGaps(result, week.now, until).map(({ areaId, shift, need }) => [
+      () => {
+        const gaps = weekGaps(result, week.now, until);
+        const lent = lentBeds(result, gaps, site.areas);
+        return gaps.map(({ areaId, shift, need }, g) => [
           shift.name,
           at(shift.from),
           at(shift.to),
@@ -96,11 +100,13 @@ export function weekFiles(week: WeekAhead, outlook: WeekOutlook, site: Site, unt
           need.staffedMost,
           need.bedsToAdd,
           need.bedsThatDoNotExist,
+          lent[g].map((one) => `${String(one.beds)} by ${nameOf(one.areaId)}`).join('; '),
           need.someTime,
           need.someTimeWithEverySpace,
           need.nurseHours,
           at(need.lastChanceAt),
-        ]),
+        ]);
+      },
     ),
     file(
       'Every shift: need at its peak against the plan',
@@ -118,11 +124,15 @@ export function weekFiles(week: WeekAhead, outlook: WeekOutlook, site: Site, unt
         'to staff in steps',
         'to add',
         'chance of any shortfall',
+        'share of arrivals past the wait limit',
+        'mean wait, minutes',
+        'to add for the wait limit',
         'last chance to book',
       ],
       () =>
         shown(result.shifts).flatMap((s) =>
-          result.areas.map(({ areaId, shifts }): Cell[] => {
+          result.areas.map(({ areaId, shifts }, a): Cell[] => {
+            const waits = result.waits?.areas[a]?.[s];
             const shift = result.shifts[s];
             const { peak, ...need } = shifts[s];
             return [
@@ -149,6 +159,9 @@ export function weekFiles(week: WeekAhead, outlook: WeekOutlook, site: Site, unt
               need.bedsToStaff,
               need.bedsToAdd,
               need.someTime,
+              waits?.overLimit ?? 'not known',
+              waits?.meanMinutes ?? 'not known',
+              waits ? (waits.bedsToAdd ?? 'every space is not enough') : 'not known',
               at(need.lastChanceAt),
             ];
           }),
@@ -176,7 +189,8 @@ export function weekFiles(week: WeekAhead, outlook: WeekOutlook, site: Site, unt
     arrivals('Arrivals by shift', 'arrivals-by-shift', 'shifts'),
     arrivals('Arrivals by day', 'arrivals-by-day', 'days'),
     file('Admissions by day', 'admissions-by-day', ['day', 'whose', 'figure', ...countNames], () =>
-      shown(result.days).flatMap((d) => {
+      // A model fitted on hourly counts knows no admissions; no rows are better than noughts.
+      (outlook.model.staysFrom ? [] : shown(result.days)).flatMap((d) => {
         const of = (whose: string, own: typeof result.department.admissions): Cell[][] => [
           [result.days[d].name, whose, 'admitted patients leaving', ...counts(own.admittedLeaving, d)],
           [result.days[d].name, whose, 'arrivals expected to need admission', ...counts(own.arrivalsToAdmit, d)],

@@ -131,7 +131,7 @@ describe('issueOutlook', () => {
   });
 
   it('the boarding patients it says to move out bring the rest of the shift to the limit; the simulation of it agrees', () => {
-    const tight = withArea(0, { staffedBeds: [{ at: input.issuedAt - 3600, beds: 23 }] });
+    const tight = withArea(0, { staffedBeds: [{ at: input.issuedAt - 3600, beds: 24 }] });
     const asked = issueOutlook(model, tight).areas[0];
     expect(asked.boardingOut).not.toBeNull();
     const { patients, by } = asked.boardingOut ?? { patients: 0, by: 0 };
@@ -147,7 +147,7 @@ describe('issueOutlook', () => {
       for (let h = first; h <= last; h += 1) {
         const short = part.need
           .subarray(h * part.size, (h + 1) * part.size)
-          .reduce((sum, count, n) => (n > 23 ? sum + count : sum), 0);
+          .reduce((sum, count, n) => (n > 24 ? sum + count : sum), 0);
         most = Math.max(most, short / tight.replications);
       }
       return most;
@@ -201,10 +201,10 @@ describe('issueOutlook', () => {
 describe('length of stay used', () => {
   it('is exponential where stays are, and their own shape where it moves the 90th percentile', () => {
     const { arrival, stay, calendar } = buildOutlookModel();
-    const undated = { arrival, calendar, stay: { ...stay, decisions: stay.decisions.map(() => null) } };
+    const undated = { arrival, calendar, stay: { ...stay, toDecision: undefined } };
     expect(issueOutlook(undated, buildOutlookInput({ replications: 10 })).lengthOfStay).toBe('exponential');
-    // With decision times, those not yet decided still have all of their boarding ahead: that is not exponential.
-    expect(result.lengthOfStay).toBe('empirical');
+    // Two exponential stages in turn.
+    expect(result.lengthOfStay).toBe('exponential');
     expect(issueOutlook(buildOutlookModel(4), buildOutlookInput({ replications: 50 })).lengthOfStay).toBe('empirical');
   });
 });

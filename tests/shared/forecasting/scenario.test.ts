@@ -64,6 +64,7 @@ function exactOf(plan: NeedPlan): ExactOutlook {
       startMeans: null,
       boarders: area.boarding ?? 0,
       boarderStream: boardingStream,
+      staged: false,
       arrivalVariance: 0,
       outflowNodes: [{ value: 1, weight: 1 }],
     })),
@@ -192,14 +193,14 @@ describe('compared pairs', () => {
 
 describe('a plan on fitted models', () => {
   const model = buildOutlookModel();
-  const input = buildOutlookInput({ replications: 600 });
+  const input = buildOutlookInput({ replications: 600, waitLimitMinutes: 60 });
   const first = input.hours[0];
   const changes: PlanChange[] = [
     { kind: 'beds', areaId: 'acute', from: first, to: first + 9 * hour, beds: 2 },
     { kind: 'demand', areaId: 'resuscitation', percent: 20 },
   ];
   const prepared = prepareScenario(model, input, changes);
-  const result = scenarioFromParts(input, prepared.lengthOfStay, [compareScenarioPart(prepared, 0, 600)]);
+  const result = scenarioFromParts(input, prepared, [compareScenarioPart(prepared, 0, 600)]);
 
   it('gives the same digits again, from parts and from what went through JSON', () => {
     const stored = JSON.parse(JSON.stringify({ model, input, changes })) as {
@@ -212,13 +213,11 @@ describe('a plan on fitted models', () => {
       [400, 600],
       [0, 400],
     ].map(([from, to]) => compareScenarioPart(again, from, to));
-    expect(scenarioFromParts(stored.input, again.lengthOfStay, parts)).toEqual(result);
+    expect(scenarioFromParts(stored.input, again, parts)).toEqual(result);
     const other = { ...input, seed: input.seed + 1 };
     const reseeded = prepareScenario(model, other, changes);
-    expect(scenarioFromParts(other, reseeded.lengthOfStay, [compareScenarioPart(reseeded, 0, 600)])).not.toEqual(
-      result,
-    );
-    expect(() => scenarioFromParts(input, 'exponential', parts.slice(1))).toThrow(/parts hold/);
+    expect(scenarioFromParts(other, reseeded, [compareScenarioPart(reseeded, 0, 600)])).not.toEqual(result);
+    expect(() => scenarioFromParts(input, prepared, parts.slice(1))).toThrow(/parts hold/);
   });
 
   it('has intervals about every difference, and one of 3 / n where no pair differed', () => {
@@ -231,9 +230,39 @@ describe('a plan on fitted models', () => {
       expect(low < difference && difference < high).toBe(true);
     }
     const none = prepareScenario(model, input, [{ kind: 'demand', areaId: null, percent: 0 }]);
-    const same = scenarioFromParts(input, none.lengthOfStay, [compareScenarioPart(none, 0, 600)]);
+    const same = scenarioFromParts(input, none, [compareScenarioPart(none, 0, 600)]);
     // Rule of three: Hanley & Lippman-Hand (1983), JAMA 249, 1743.
     expect(same.rows[0].shifts[0]).toMatchObject({ difference: 0, low: -0.005, high: 0.005 });
+  });
+
+  it('compares who waits past the limit, on the same random numbers: fewer with beds, more with arrivals, none where nothing changes', () => {
+    const [acute, resuscitation, department] = result.rows;
+    expect(result.waitLimitMinutes).toBe(60);
+    expect(acute.waits?.[0].high).toBeLessThan(0);
+    expect(resuscitation.waits?.[1].low).toBeGreaterThan(0);
+    department.waits?.forEach(({ difference }, s) => {
+      const sum = (acute.waits?.[s].difference ?? NaN) + (resuscitation.waits?.[s].difference ?? NaN);
+      expectWithin(difference, sum, 1e-9, `shift ${s}`);
+    });
+    const waitsOf = (tried: PlanChange[], over: typeof model = model, about = input) => {
+      const one = prepareScenario(over, about, tried);
+      return scenarioFromParts({ ...about, replications: 60 }, one, [compareScenarioPart(one, 0, 60)]).rows.map(
+        ({ waits }) => waits,
+      );
+    };
+    for (const rows of waitsOf([{ kind: 'demand', areaId: null, percent: 0 }])) {
+      for (const { difference } of rows ?? []) expect(difference).toBe(0);
+    }
+    // A closed area sends nobody to wait there, and more to the other.
+    const span = { from: input.issuedAt, to: input.hours[23] };
+    const closed = waitsOf([{ kind: 'closed', areaId: 'resuscitation', ...span, toAreaId: 'acute' }]);
+    const surge = waitsOf([{ kind: 'surge', areaId: 'acute', ...span, patients: 20 }]);
+    const longer = waitsOf([{ kind: 'stay', areaId: 'acute', who: 'admitted', percent: 50 }]);
+    expect(closed[1]?.[1].plan).toBe(0);
+    for (const rows of [closed, surge, longer]) expect(rows[0]?.[1].difference).toBeGreaterThan(0);
+    const without = { ...model, stay: { ...model.stay, bedSpace: [model.stay.bedSpace[0], null] } };
+    expect(waitsOf(changes, without).map((rows) => rows === null)).toEqual([false, true, true]);
+    expect(waitsOf(changes, model, { ...input, waitLimitMinutes: null })).toEqual([null, null, null]);
   });
 
   it('is answered in the browser as on the server, to the digits that are sent', () => {

@@ -1,7 +1,12 @@
 import { describe, expect, it } from 'vitest';
 import { finiteBeds } from '../../../shared/forecasting/finite-beds.ts';
 import { staffForDelay } from '../../../shared/forecasting/staff-for-delay.ts';
-import { finishWaiting, prepareWaiting } from '../../../shared/forecasting/waiting-outlook.ts';
+import {
+  prepareWaiting,
+  prepareWaitingGround,
+  segmentsWithin,
+  shiftWaits,
+} from '../../../shared/forecasting/waiting-outlook.ts';
 import { simulateWaitingPart } from '../../../shared/forecasting/waiting-simulation.ts';
 import type { WaitingPlan } from '../../../shared/forecasting/waiting-simulation.ts';
 import { mmcMeasures, serversForDelay } from '../../../shared/stochastic/erlang.ts';
@@ -103,6 +108,16 @@ describe('simulateWaitingPart', () => {
     expectRelative(seconds / arrivals / 3600, one.Wq, 0.05, 'mean wait');
   });
 
+  // Source: in M/M/c, first in, first out, P(wait > t) = P(wait > 0)·e^{−(cμ − λ)t} (Erlang 1917; the first factor from queue-formulas.json).
+  it('has the share of waits over a limit of M/M/c after a long time', () => {
+    const one = queues.mmc.find((row) => row.lambda === 4 && row.c === 20);
+    if (one === undefined) throw new Error('the reference lacks its queue of 20 servers');
+    const long = plan({ ratePerHour: new Float64Array(400).fill(one.lambda), waitLimitHours: 0.5, inBedSpaces: [16] });
+    const part = simulateWaitingPart(long, 0, 1000);
+    const { overLimit } = shiftWaits([part], segmentsWithin(long, 100, 376));
+    expectRelative(overLimit ?? NaN, one.P_wait * Math.exp(-(20 * 0.25 - one.lambda) * 0.5), 0.05, 'share over');
+  });
+
   it('the first to come is the first served, and a closing bed closes when its patient leaves', () => {
     // One bed, occupied until about 1 / 100 h; three wait, nobody comes: they are served one after the other.
     const served = simulateWaitingPart(
@@ -159,11 +174,13 @@ describe('simulateWaitingPart', () => {
 
   it('gives the same digits split or whole, and no NaN at the edges', () => {
     const one = plan({ ratePerHour: Float64Array.of(3, 0, 5, 2), impatiencePerHour: 0.2, waiting: 4 });
-    const whole = finishWaiting([simulateWaitingPart(one, 0, 90)], [1, 2, 3, 4]);
-    const split = finishWaiting([simulateWaitingPart(one, 0, 31), simulateWaitingPart(one, 31, 90)], [1, 2, 3, 4]);
-    expect(split).toEqual(whole);
-    expect(whole.meanWaitMinutes[1]).toBeNull();
-    expect(whole.overLimit[1]).toBeNull();
+    const whole = simulateWaitingPart(one, 0, 90);
+    const split = [simulateWaitingPart(one, 0, 31), simulateWaitingPart(one, 31, 90)];
+    for (const segments of [[0], [1], [0, 1, 2, 3]]) {
+      expect(shiftWaits(split, segments)).toEqual(shiftWaits([whole], segments));
+    }
+    expect(shiftWaits([whole], [1])).toEqual({ arrivals: 0, meanMinutes: null, overLimit: null });
+    expect(segmentsWithin(one, 1, 3)).toEqual([1, 2]);
     const empty = simulateWaitingPart(plan({ ratePerHour: new Float64Array(2), inBedSpaces: [0] }), 0, 3);
     expect(empty.present[0]).toBe(3);
   });
@@ -182,7 +199,7 @@ describe('simulateWaitingPart', () => {
     for (const [more, message] of refused) {
       expect(() => simulateWaitingPart({ ...good, ...more }, 0, 1)).toThrow(message);
     }
-    expect(() => finishWaiting([], [])).toThrow(/parts/);
+    expect(() => shiftWaits([], [])).toThrow(/parts/);
   });
 });
 
@@ -190,7 +207,7 @@ describe('prepareWaiting', () => {
   it('takes beds, patients and hazards from fitted bed-space times; without them there is no waiting to tell', () => {
     const model = buildOutlookModel();
     const input = buildOutlookInput();
-    const one = prepareWaiting(model, input, 0, 1);
+    const one = prepareWaiting(prepareWaitingGround(model, input), 0, 1);
     if (one === null) throw new Error('the model has bed-space times');
     const { census } = input.areas[0];
     expect(one.inBedSpaces.reduce((a, b) => a + b, 0) + one.waiting).toBe(census?.present);
@@ -202,11 +219,37 @@ describe('prepareWaiting', () => {
       0.02,
       'hazard',
     );
-    const result = finishWaiting([simulateWaitingPart(one, 0, 200)], input.hours);
-    expect(result.waiting.p50.length).toBe(input.hours.length);
-    expect(result.meanWaitMinutes.every((value) => value === null || Number.isFinite(value))).toBe(true);
+    const waits = shiftWaits([simulateWaitingPart(one, 0, 200)], segmentsWithin(one, 0, 12));
+    expect(waits.overLimit).toBeGreaterThan(0);
+    expect(waits.overLimit).toBeLessThan(1);
+    expect(Number.isFinite(waits.meanMinutes)).toBe(true);
     const without = { ...model, stay: { ...model.stay, bedSpace: [null, null] } };
-    expect(prepareWaiting(without, input, 0, 1)).toBeNull();
+    expect(prepareWaiting(prepareWaitingGround(without, input), 0, 1)).toBeNull();
+  });
+
+  it('takes beds at their own half hours and counts what a plan changes', () => {
+    const model = buildOutlookModel();
+    const plain = buildOutlookInput();
+    const half = plain.hours[3] + 1800;
+    const areas = plain.areas.map((area, a) =>
+      a === 0 ? { ...area, staffedBeds: [area.staffedBeds[0], { at: half, beds: 17 }] } : area,
+    );
+    const ground = prepareWaitingGround(model, { ...plain, areas });
+    const changed = prepareWaiting(ground, 0, 1, {
+      rate: (rates, k) => 2 * rates[0][k] + rates[1][k],
+      stay: [2, 2, 2],
+    });
+    const asIs = prepareWaiting(ground, 0, 1);
+    const other = prepareWaiting(ground, 1, 1);
+    if (!changed || !asIs || !other) throw new Error('the model has bed-space times');
+    const k = asIs.segmentAt.indexOf((half - plain.issuedAt) / 3600);
+    expect([asIs.beds[k - 1], asIs.beds[k]]).toEqual([24, 17]);
+    expect(changed.ratePerHour[k]).toBeCloseTo(2 * asIs.ratePerHour[k] + other.ratePerHour[k], 9);
+    expect(changed.hazardPerHour[1][k]).toBeCloseTo(asIs.hazardPerHour[1][k] / 2, 9);
+    changed.redraw?.(3);
+    asIs.redraw?.(3);
+    other.redraw?.(3);
+    expect(changed.ratePerHour[k]).toBeCloseTo(2 * asIs.ratePerHour[k] + other.ratePerHour[k], 9);
   });
 });
 

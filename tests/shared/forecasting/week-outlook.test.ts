@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { bedsAt } from '../../../shared/domain/bed-schedule.ts';
+import { withOwnEnds } from '../../../shared/domain/in-charge-spans.ts';
 import { issueOutlook } from '../../../shared/forecasting/issue-outlook.ts';
 import { chanceAbove, histogramQuantile } from '../../../shared/forecasting/need-histogram.ts';
 import {
@@ -126,6 +127,34 @@ function histogram(values: readonly number[]): number[] {
   return counts;
 }
 
+describe('a shift’s own half hours', () => {
+  it('beds of the incoming shift at handover are not those of the outgoing one, and a shift that only hands over keeps its end', () => {
+    // Nights end at 08:00, days begin at 07:30: 30 beds from then on are the day's.
+    const areas = input.areas.map((area, a) =>
+      a === 0
+        ? {
+            ...area,
+            staffedBeds: area.staffedBeds.map(({ at, beds }) => ({
+              at: beds === 22 ? at - hour / 2 : at,
+              beds: beds === 22 ? 30 : beds,
+            })),
+          }
+        : area,
+    );
+    const own = issueWeekOutlook(model, { ...input, areas, replications: 40 });
+    // After the last night no shift is known.
+    own.shifts.slice(0, -1).forEach(({ name }, s) => {
+      const { staffedLeast, staffedMost } = own.areas[0].shifts[s];
+      expect([staffedLeast, staffedMost]).toEqual(name === 'Night' ? [18, 18] : [30, 30]);
+    });
+    const [night, day] = input.shifts;
+    const [first] = withOwnEnds([night, day], night.from);
+    expect(first).toEqual({ ...night, to: day.from });
+    expect(withOwnEnds([night, day], day.from)[0]).toBe(night);
+    expect(withOwnEnds([day], day.from)).toEqual([day]);
+  });
+});
+
 describe('what is recorded', () => {
   const hand = byHand(0);
   const area = result.areas[0];
@@ -247,6 +276,23 @@ describe('calendar', () => {
     expectWithin(ratio(place), Math.sqrt(1.3 * 1.5), 0.03, 'the day’s arrivals');
     expectWithin(ratio(place - 1), 1, 0.01, 'the day before');
     expectWithin(ratio(place + 1), 1, 0.01, 'the day after');
+  });
+
+  it('a day taken out since the fit moves nothing any more, neither the week, nor Tonight, nor waits', () => {
+    const fair = {
+      date,
+      kind: 'local event' as const,
+      name: 'Lantern fair',
+      statedEffect: [2, 2.2] as [number, number],
+    };
+    const known = { ...model, calendar: [fair], arrival: { ...model.arrival, calendar: [fair] } };
+    const few = buildWeekInput({ calendar: [], replications: 20, waitLimitMinutes: 60 });
+    const week = issueWeekOutlook(known, few);
+    expect(week).toEqual(issueWeekOutlook(model, few));
+    expect(week.calendar).toEqual([]);
+    const hours = few.hours.slice(0, 36);
+    const tonight = { ...few, hours, shifts: few.shifts.filter(({ from }) => from < hours[35]) };
+    expect(issueOutlook(known, tonight)).toEqual(issueOutlook(model, tonight));
   });
 
   it('tells the effect as a range and on what ground it stands', () => {

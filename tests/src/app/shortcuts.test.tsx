@@ -45,7 +45,7 @@ describe('Shortcuts', () => {
   it('lists the keys on "?"', async () => {
     show();
     await userEvent.keyboard('?');
-    expect(screen.getByRole('dialog', { name: 'Keyboard shortcuts' })).toBeTruthy();
+    expect(screen.getByRole('dialog', { name: 'Keyboard shortcuts' })).toBeInTheDocument();
   });
 
   it('leaves what is typed into a field alone', async () => {

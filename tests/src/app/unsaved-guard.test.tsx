@@ -56,26 +56,26 @@ describe('UnsavedGuard', () => {
   it('lets a page without unsaved work go', async () => {
     show();
     await press('All logs');
-    expect(await screen.findByRole('heading', { name: 'Logs' })).toBeTruthy();
+    expect(await screen.findByRole('heading', { name: 'Logs' })).toBeInTheDocument();
   });
 
   it('asks before unsaved work is left, and stays or leaves as told', async () => {
     show();
     await press('Begin');
     await press('All logs');
-    expect(await screen.findByText(/You have a file that is not loaded yet/)).toBeTruthy();
+    expect(await screen.findByText(/You have a file that is not loaded yet/)).toBeInTheDocument();
     await press('Stay on this page');
     expect(screen.queryByRole('heading', { name: 'Logs' })).toBeNull();
     await press('All logs');
     await press('Leave without saving');
-    expect(await screen.findByRole('heading', { name: 'Logs' })).toBeTruthy();
+    expect(await screen.findByRole('heading', { name: 'Logs' })).toBeInTheDocument();
   });
 
   it('does not ask once the work was saved', async () => {
     show();
     await press('Begin');
     await press('Accept');
-    expect(await screen.findByRole('heading', { name: 'Logs' })).toBeTruthy();
+    expect(await screen.findByRole('heading', { name: 'Logs' })).toBeInTheDocument();
   });
 
   it('has the browser ask before the tab is closed', async () => {

@@ -43,18 +43,18 @@ describe('JudgeModel', () => {
   it('does not offer approval to the person who fitted it, and says why', () => {
     show({ ...candidate, fittedByCaller: true });
     expect(screen.queryByRole('button', { name: /Approve/ })).toBeNull();
-    expect(screen.getByText('You fitted this model, so somebody else has to approve it.')).toBeTruthy();
-    expect(screen.getByRole('button', { name: 'Retire' })).toBeTruthy();
+    expect(screen.getByText('You fitted this model, so somebody else has to approve it.')).toBeInTheDocument();
+    expect(screen.getByRole('button', { name: 'Retire' })).toBeInTheDocument();
   });
 
   it('asks for a reason before anything is sent, and refuses one that names a person', async () => {
     show(candidate);
     const user = userEvent.setup();
     await user.click(screen.getByRole('button', { name: 'Approve and put into use' }));
-    expect(await screen.findByText('Say why')).toBeTruthy();
+    expect(await screen.findByText('Say why')).toBeInTheDocument();
     await user.type(screen.getByRole('textbox'), 'Looked at with Dr Jones');
     await user.click(screen.getByRole('button', { name: 'Approve and put into use' }));
-    expect(await screen.findByText(/Leave out anything that could identify a person/)).toBeTruthy();
+    expect(await screen.findByText(/Leave out anything that could identify a person/)).toBeInTheDocument();
     expect(fetched).not.toHaveBeenCalled();
   });
 
@@ -76,7 +76,7 @@ describe('JudgeModel', () => {
     const user = userEvent.setup();
     await user.type(screen.getByRole('textbox'), 'Fits the last four weeks');
     await user.click(screen.getByRole('button', { name: 'Approve and put into use' }));
-    expect(await screen.findByText('Not approved')).toBeTruthy();
+    expect(await screen.findByText('Not approved')).toBeInTheDocument();
     expect(fetched.mock.calls[0][0]).toBe('/api/sites/general/arrival-models/m2/approval');
     expect(JSON.parse(fetched.mock.calls[0][1]?.body as string)).toEqual({ reason: 'Fits the last four weeks' });
     expect(screen.getByRole<HTMLTextAreaElement>('textbox').value).toBe('Fits the last four weeks');

@@ -35,7 +35,7 @@ const made = (ofHours: number[], change: Partial<Acknowledgement> = {}): Acknowl
 });
 
 function show(tonight: Tonight, acknowledge = true) {
-  render(
+  return render(
     <MemoryRouter>
       <QueryClientProvider client={new QueryClient({ defaultOptions: { mutations: { networkMode: 'always' } } })}>
         <TonightView
@@ -44,7 +44,7 @@ function show(tonight: Tonight, acknowledge = true) {
           site={buildSite()}
           census={buildCensus()}
           rights={{ enterCensus: false, changeBeds: false, acknowledge }}
-          refreshError={null}
+          stale={null}
           emptyActions={null}
           howHref="/how"
           nightLog={null}
@@ -59,7 +59,7 @@ describe('the panel past the limit', () => {
   it('sends what was done with Enter, for the area and the outlook on the page', async () => {
     fetched.mockResolvedValue(new Response(JSON.stringify(made(hours.slice(1, 4))), { status: 201 }));
     show(buildTonight());
-    expect(screen.getByText('Call the site manager.')).toBeTruthy();
+    expect(screen.getByText('Call the site manager.')).toBeInTheDocument();
     await userEvent.type(note(), 'Site manager called{Enter}');
     await waitFor(() => expect(note().value).toBe(''));
     const [address, request] = fetched.mock.calls[0];
@@ -74,7 +74,7 @@ describe('the panel past the limit', () => {
   it('refuses what could identify a patient before anything is sent, and an empty note', async () => {
     show(buildTonight());
     await userEvent.type(note(), 'Moved Mr Smith{Enter}');
-    expect(await screen.findByText(/This looks like a name/)).toBeTruthy();
+    expect(await screen.findByText(/This looks like a name/)).toBeInTheDocument();
     expect(checkNote(' ')).toBe('Say what was done, without patient details');
     expect(checkNote('Two bays open from 20:30')).toBeNull();
     expect(fetched).not.toHaveBeenCalled();
@@ -84,32 +84,46 @@ describe('the panel past the limit', () => {
     fetched.mockRejectedValue(new TypeError('Failed to fetch'));
     show(buildTonight());
     await userEvent.type(note(), 'Site manager called{Enter}');
-    expect(await screen.findByText('Your note is still in its field.')).toBeTruthy();
+    expect(await screen.findByText('Your note is still in its field.')).toBeInTheDocument();
     expect(note().value).toBe('Site manager called');
   });
 
   it('acknowledged, it folds to who, when and what; more can be added', async () => {
     show(buildTonight({ acknowledgements: [made(hours.slice(1, 4))] }));
-    expect(screen.getByText('Acknowledged 19:06 by A. Brandt.')).toBeTruthy();
-    expect(screen.getByText('Site manager called.')).toBeTruthy();
+    expect(screen.getByText('Acknowledged 19:06 by A. Brandt.')).toBeInTheDocument();
+    expect(screen.getByText('Site manager called.')).toBeInTheDocument();
     expect(screen.queryByText('Call the site manager.')).toBeNull();
     await userEvent.click(screen.getByText('Add to this note', { selector: 'button' }));
-    expect(note()).toBeTruthy();
-    expect(screen.getByText('Call the site manager.')).toBeTruthy();
+    expect(note()).toBeInTheDocument();
+    expect(screen.getByText('Call the site manager.')).toBeInTheDocument();
   });
 
   it('asks again where an hour passes the limit that nobody acknowledged, and names it', () => {
     show(buildTonight({ acknowledgements: [made(hours.slice(1, 3))] }));
     // 23:00 at 30 %, limit 25 %.
-    expect(screen.getByText('Not acknowledged yet: 23:00.')).toBeTruthy();
-    expect(screen.getByText('Acknowledged 19:06 by A. Brandt.')).toBeTruthy();
-    expect(note()).toBeTruthy();
+    expect(screen.getByText('Not acknowledged yet: 23:00.')).toBeInTheDocument();
+    expect(screen.getByText('Acknowledged 19:06 by A. Brandt.')).toBeInTheDocument();
+    expect(note()).toBeInTheDocument();
+  });
+
+  it('asks the shift that comes in again, and keeps what the one before said', () => {
+    // Late runs 14:00 to 21:30, Night from 21:00: the overlap is the incoming shift's.
+    const acknowledgements = [made(hours.slice(1, 4))];
+    const at = (time: number) => buildTonight({ acknowledgements, now: time });
+    const nightStarts = Date.UTC(2026, 11, 1, 21) / 1000;
+    const { unmount } = show(at(nightStarts - 60));
+    expect(screen.queryByLabelText('What was done, no patient details')).toBeNull();
+    unmount();
+    show(at(nightStarts));
+    expect(screen.getByText('Acknowledged 19:06 by A. Brandt.')).toBeInTheDocument();
+    expect(screen.getByText(/^Acknowledged by the shift before; not by this one yet: 22:00, 23:00\.$/)).toBeInTheDocument();
+    expect(note()).toBeInTheDocument();
   });
 
   it('takes no acknowledgement of another area for its own, and offers none to those who only read', () => {
     show(buildTonight({ acknowledgements: [made(hours.slice(1, 4), { areaId: 'obs' })] }), false);
     expect(screen.queryByText(/Acknowledged/)).toBeNull();
-    expect(screen.getByText('Call the site manager.')).toBeTruthy();
+    expect(screen.getByText('Call the site manager.')).toBeInTheDocument();
     expect(screen.queryByLabelText('What was done, no patient details')).toBeNull();
   });
 
@@ -121,6 +135,6 @@ describe('the panel past the limit', () => {
     expect(screen.getAllByText(/past the limit$/, { selector: 'td .sr-only' }).map((cell) => cell.textContent)).toEqual(
       ['40 %, Possible, 21:00, past the limit', '28 %, Possible, 22:00, past the limit'],
     );
-    expect(screen.getByText(/^Past the 25 % limit from 21:00 to 22:00\s*\.$/)).toBeTruthy();
+    expect(screen.getByText(/^Past the 25 % limit from 21:00 to 22:00\s*\.$/)).toBeInTheDocument();
   });
 });

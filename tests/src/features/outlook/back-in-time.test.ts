@@ -62,6 +62,7 @@ describe('the bed meeting', () => {
       name: 'Acute',
       present: 22,
       boarding: 6,
+      countedAt: tonight.outlook!.census[0].takenAt,
       need: [
         { p50: 18, p90: 22, staffed: 20 },
         { p50: 18, p90: 22, staffed: 20 },
@@ -70,7 +71,14 @@ describe('the bed meeting', () => {
     });
     expect(askInWords(acute, 'bed', time)).toBe('3 more beds from 21:00; or 2 boarding patients out by 21:00');
     // Missing never looks calm.
-    expect(obs).toEqual({ name: 'Observation', present: null, boarding: null, need: [null, null], ask: null });
+    expect(obs).toEqual({
+      name: 'Observation',
+      present: null,
+      boarding: null,
+      countedAt: null,
+      need: [null, null],
+      ask: null,
+    });
     expect(askInWords(obs, 'bed', time)).toBe('Count it first');
   });
 

@@ -40,7 +40,7 @@ function view(
         site={site}
         census={census}
         rights={rights}
-        refreshError={null}
+        stale={null}
         emptyActions={null}
         howHref="/how"
         nightLog={null}
@@ -80,7 +80,7 @@ describe('the census on Tonight', () => {
     );
     show();
     const user = await type('Acute, waiting', '5');
-    expect(screen.getByText(/Waiting was 3/)).toBeTruthy();
+    expect(screen.getByText(/Waiting was 3/)).toBeInTheDocument();
     await user.keyboard('{Enter}');
     await screen.findByText(/Census saved at 19:0/);
     const [address, request] = fetched.mock.calls[0];
@@ -97,7 +97,7 @@ describe('the census on Tonight', () => {
     const user = await type('Acute, waiting', '5');
     await user.click(saveButtons()[0]);
     await screen.findByText('The server cannot be reached');
-    expect(screen.getByText('Your figures are still in the fields.')).toBeTruthy();
+    expect(screen.getByText('Your figures are still in the fields.')).toBeInTheDocument();
     expect(field('Acute, waiting').value).toBe('5');
     expect(saveButtons().length).toBeGreaterThan(0);
   });
@@ -108,14 +108,14 @@ describe('the census on Tonight', () => {
     again(buildTonight(), buildCensus(4));
     await waitFor(() => expect(field('Observation, waiting').value).toBe('4'));
     expect(field('Acute, waiting').value).toBe('5');
-    expect(screen.getByText(/Waiting was 4/)).toBeTruthy();
+    expect(screen.getByText(/Waiting was 4/)).toBeInTheDocument();
   });
 
   it('sends nothing that the server would refuse, and says why beside the row', async () => {
     show();
     const user = await type('Acute, waiting', '17');
     await user.keyboard('{Enter}');
-    expect(await screen.findByText(/Waiting and boarding together cannot exceed present/)).toBeTruthy();
+    expect(await screen.findByText(/Waiting and boarding together cannot exceed present/)).toBeInTheDocument();
     expect(fetched).not.toHaveBeenCalled();
   });
 
@@ -153,12 +153,12 @@ describe('staffed beds tonight', () => {
     const why = field('Reason');
     await user.type(why, 'Nurse called in sick');
     await user.click(screen.getByText('Change beds', { selector: 'button' }));
-    expect(await screen.findByText('Not below the safe minimum of 12')).toBeTruthy();
+    expect(await screen.findByText('Not below the safe minimum of 12')).toBeInTheDocument();
     await type('Acute, staffed beds now: Not below the safe minimum of 12', '20');
     await user.clear(why);
     await user.type(why, 'Bed for Mr Smith');
     await user.click(screen.getByText('Change beds', { selector: 'button' }));
-    expect(await screen.findByText(/Leave out anything that could identify a patient/)).toBeTruthy();
+    expect(await screen.findByText(/Leave out anything that could identify a patient/)).toBeInTheDocument();
     expect(fetched).not.toHaveBeenCalled();
   });
 });
@@ -170,16 +170,16 @@ describe('the board', () => {
     expect(screen.getByText('Acute', { selector: 'h3 button' }).getAttribute('aria-expanded')).toBe('true');
     expect(screen.getByText('Observation', { selector: 'h3 button' }).getAttribute('aria-expanded')).toBe('false');
     const strip = table('Acute, hour by hour');
-    expect(within(strip).getByText('64 %, Likely, 21:00, past the limit')).toBeTruthy();
-    expect(within(strip).getByText('10 %, Unlikely, 20:00')).toBeTruthy();
-    expect(screen.getByText('Call the site manager.')).toBeTruthy();
+    expect(within(strip).getByText('64 %, Likely, 21:00, past the limit')).toBeInTheDocument();
+    expect(within(strip).getByText('10 %, Unlikely, 20:00')).toBeInTheDocument();
+    expect(screen.getByText('Call the site manager.')).toBeInTheDocument();
   });
 
   it('prints the chance within the hour for an area of eight spaces or fewer', () => {
     show();
     const strip = table('Observation, hour by hour');
-    expect(within(strip).getByText('4 %, Remote, 20:00')).toBeTruthy();
-    expect(within(strip).getByText('Chance, in the hour')).toBeTruthy();
+    expect(within(strip).getByText('4 %, Remote, 20:00')).toBeInTheDocument();
+    expect(within(strip).getByText('Chance, in the hour')).toBeInTheDocument();
   });
 
   it('gives an area without a census an outline and no word', () => {
@@ -189,7 +189,7 @@ describe('the board', () => {
       census,
     );
     const strip = table('Observation, hour by hour');
-    expect(within(strip).getByText('80 %, not counted, 20:00')).toBeTruthy();
+    expect(within(strip).getByText('80 %, not counted, 20:00')).toBeInTheDocument();
     expect(within(strip).queryByText(/Very likely/)).toBeNull();
     // The area, and the row of those whose area is not decided.
     expect(screen.getAllByText('Not counted', { selector: 'h3 ~ p' })).toHaveLength(2);
@@ -203,7 +203,7 @@ describe('the board', () => {
       }),
     );
     expect(document.querySelector('h1')?.textContent).toBe('There is no outlook: no arrival model is in use.');
-    expect(screen.getByText('Fit one on an accepted log and have it approved.')).toBeTruthy();
+    expect(screen.getByText('Fit one on an accepted log and have it approved.')).toBeInTheDocument();
     expect(field('Acute, present').value).toBe('22');
   });
 });

@@ -117,7 +117,7 @@ test('the answers of the last file are there already; one that changes says what
   const { onAccept, user, send } = show({ problemRows: 0 }, remembered);
   expect(screen.queryByText(/The last file said/)).toBeNull();
   await user.click(screen.getByLabelText('The patient registered at the desk'));
-  expect(screen.getByText(/^The last file said: The patient handed over by the ambulance crew/)).toBeTruthy();
+  expect(screen.getByText(/^The last file said: The patient handed over by the ambulance crew/)).toBeInTheDocument();
   await user.click(send);
   expect(onAccept).toHaveBeenCalledWith(
     {

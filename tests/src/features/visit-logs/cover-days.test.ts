@@ -9,6 +9,7 @@ function log(id: string, ...counts: [from: string, to: string][]): VisitLogSumma
   const spans = counts.map(([from, to]) => ({ from: at(from), to: at(to) }));
   return {
     id,
+    kind: 'visits' as const,
     status: 'ready',
     fileName: `${id}.csv`,
     rows: 1,

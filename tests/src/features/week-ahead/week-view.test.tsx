@@ -34,6 +34,7 @@ function show(week: WeekAhead, address = '/', refreshError: unknown = null) {
         emptyActions={<a href="/models">Go to Arrival model</a>}
         links={null}
         calendarLink={null}
+        setLimit={null}
         how={null}
       />
       <Address />
@@ -147,7 +148,11 @@ describe('the week ahead', () => {
       count,
     });
     const days = [past(4, 180), past(5, 198), past(6, 208), past(7, 230), past(8, null)];
-    show(buildWeek(gaps, { lastWeek: { outlookId: 'w', issuedAt: Date.UTC(2026, 10, 23, 5) / 1000, days } }));
+    show(
+      buildWeek(gaps, {
+        lastWeek: { outlookId: 'w', recomputed: false, issuedAt: Date.UTC(2026, 10, 23, 5) / 1000, days },
+      }),
+    );
     const rows = rowsOf('Last week: arrivals forecast and what came');
     expect(rows.map((row) => row.lastElementChild?.textContent)).toEqual([
       'within the 50 % range',
@@ -157,6 +162,53 @@ describe('the week ahead', () => {
       'no log speaks of it',
     ]);
     expect(screen.getByText(/2 of 4 days fell within the 80 % range/)).toBeInTheDocument();
+  });
+
+  it('says of a forecast of last week that was made afterwards that it was', () => {
+    const lastWeek = { outlookId: 'w', recomputed: true, issuedAt: Date.UTC(2026, 10, 23, 5) / 1000, days: [] };
+    show(buildWeek(gaps, { lastWeek }));
+    expect(screen.getByText(/No forecast had been issued then: this one was made afterwards/)).toBeInTheDocument();
+  });
+
+  it('tells who waits past the site’s limit, what beds it takes, and where that cannot be known', () => {
+    const week = buildWeek(gaps);
+    const result = week.outlook?.result;
+    if (!result) throw new Error('the week has an outlook');
+    const shift = (overLimit: number, bedsToAdd: number | null) => ({
+      arrivals: 30,
+      meanMinutes: 41,
+      overLimit,
+      bedsToAdd,
+    });
+    const waits = {
+      limitMinutes: 60,
+      share: 0.1,
+      replications: 400,
+      areas: result.areas.map((_, a) =>
+        a === 0
+          ? result.shifts.map((_, s) =>
+              s === saturdayNight ? shift(0.31, 4) : s === fridayNight ? shift(0.2, null) : shift(0.02, 0),
+            )
+          : null,
+      ),
+    };
+    const withWaits = (own: typeof waits | null) =>
+      ({ ...week, outlook: week.outlook && { ...week.outlook, result: { ...result, waits: own } } }) as WeekAhead;
+    const shown = show(withWaits(waits));
+    expect(
+      screen.getByText(/In 2 shifts more than 10.% of arrivals are expected to wait longer than 60 minutes/),
+    ).toBeInTheDocument();
+    const rows = rowsOf('Waits for a bed space by shift').map((row) => row.textContent);
+    expect(rows).toHaveLength(2);
+    expect(rows[0]).toMatch(/31 %41 minutes30\+4$/);
+    expect(rows[1]).toMatch(/every space is not enough$/);
+    expect(screen.getByText(/Not known for/)).toBeInTheDocument();
+    shown.unmount();
+    const unknown = show(withWaits({ ...waits, areas: result.areas.map(() => null) }));
+    expect(screen.getByText(/cannot be known: the logs hold no bed-space times/)).toBeInTheDocument();
+    unknown.unmount();
+    show(withWaits(null));
+    expect(screen.getByText(/Your site has stated no wait limit/)).toBeInTheDocument();
   });
 
   it('prints every value of the heat map, of the whole department or of the area in the address', async () => {

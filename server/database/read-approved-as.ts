@@ -1,5 +1,5 @@
 import type { EntityManager } from 'typeorm';
-import { ArrivalModelRow } from '../../entities/ArrivalModelRow.ts';
+import { ArrivalModelRow } from '../entities/ArrivalModelRow.ts';
 
 /** The model that was approved, by every row that its level was moved on to. */
 export async function readApprovedAs(read: EntityManager, siteId: string): Promise<Record<string, string>> {

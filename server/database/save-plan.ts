@@ -1,12 +1,12 @@
 import type { EntityManager } from 'typeorm';
-import { withArticle } from '../../../shared/domain/identifier-kind.ts';
-import { planFaults } from '../../../shared/domain/plan-faults.ts';
-import { screenNote } from '../../../shared/domain/screen-note.ts';
-import { newId } from '../../database/new-id.ts';
-import { readAreas } from '../../database/read-site.ts';
-import { StaffedBedPlan } from '../../entities/StaffedBedPlan.ts';
-import { StaffedBedPlanArea } from '../../entities/StaffedBedPlanArea.ts';
-import { badInput, conflict, type Fault } from '../../errors.ts';
+import { withArticle } from '../../shared/domain/identifier-kind.ts';
+import { planFaults } from '../../shared/domain/plan-faults.ts';
+import { screenNote } from '../../shared/domain/screen-note.ts';
+import { newId } from './new-id.ts';
+import { readAreas } from './read-site.ts';
+import { StaffedBedPlan } from '../entities/StaffedBedPlan.ts';
+import { StaffedBedPlanArea } from '../entities/StaffedBedPlanArea.ts';
+import { badInput, conflict, type Fault } from '../errors.ts';
 
 /** A plan to save: every care area by half hour of week. */
 export interface PlanInput {
