@@ -35,7 +35,9 @@ it('keeps the last good outlook readable across a reload without the server, for
   expect(await page.getByRole('heading', { level: 1 }).innerText()).toBe(headline);
   const note = page.getByRole('alert').filter({ hasText: 'Nothing can be saved until the server answers' });
   await note.waitFor();
-  expect(await note.innerText()).toMatch(/This device kept the outlook of \d\d:\d\d, (under a minute|\d+ min(utes?)?) old/);
+  expect(await note.innerText()).toMatch(
+    /This device kept the outlook of \d\d:\d\d, (under a minute|\d+ min(utes?)?) old/,
+  );
   expect(await page.getByLabel('Acute, present').inputValue()).toBe('23');
   await page.getByRole('button', { name: 'Save census' }).last().click();
   await page.getByText('Your figures are still in the fields.').first().waitFor();

@@ -116,7 +116,9 @@ describe('the panel past the limit', () => {
     unmount();
     show(at(nightStarts));
     expect(screen.getByText('Acknowledged 19:06 by A. Brandt.')).toBeInTheDocument();
-    expect(screen.getByText(/^Acknowledged by the shift before; not by this one yet: 22:00, 23:00\.$/)).toBeInTheDocument();
+    expect(
+      screen.getByText(/^Acknowledged by the shift before; not by this one yet: 22:00, 23:00\.$/),
+    ).toBeInTheDocument();
     expect(note()).toBeInTheDocument();
   });
 
