@@ -99,6 +99,19 @@ export const drift = z.object({
 });
 export type Drift = z.infer<typeof drift>;
 
+/** Outlooks by how far they are scored. */
+const outlookCounts = {
+  issued: z.int(),
+  scored: z.int(),
+  waiting: z.int(),
+  withdrawn: z.int(),
+  notRecorded: z.int(),
+  overtaken: z.int(),
+  /** Issued before the distributions behind an outlook were kept. */
+  withoutLaws: z.int(),
+  recomputed: z.int(),
+};
+
 export const trackRecord = z.object({
   filter: z.object({
     measure: z.enum(trackMeasures),
@@ -115,29 +128,12 @@ export const trackRecord = z.object({
   models: z.array(z.object({ id, name: z.string() })),
   /** Every outlook ever issued for the site, by how far it is scored; none is left out. */
   outlooks: z.object({
-    issued: z.int(),
-    scored: z.int(),
-    waiting: z.int(),
-    withdrawn: z.int(),
-    notRecorded: z.int(),
-    overtaken: z.int(),
-    /** Issued before the distributions behind an outlook were kept. */
-    withoutLaws: z.int(),
-    recomputed: z.int(),
+    ...outlookCounts,
     replicationsRecomputed: z.int().nullable(),
     firstAt: instant.nullable(),
   }),
   /** The same of the week ahead; one that was not issued by the daily timetable counts as overtaken. */
-  weekOutlooks: z.object({
-    issued: z.int(),
-    scored: z.int(),
-    waiting: z.int(),
-    withdrawn: z.int(),
-    notRecorded: z.int(),
-    overtaken: z.int(),
-    withoutLaws: z.int(),
-    recomputed: z.int(),
-  }),
+  weekOutlooks: z.object(outlookCounts),
   summary: recordSummary,
   /** Hours and shifts whose risk somebody acknowledged: what was done about them may have changed what came. */
   acknowledged: z.object({ n: z.int(), meanChance: figure, share: figure }),

@@ -156,17 +156,7 @@ function issueOne(model: ModelParameters, input: OutlookInput): RecomputedWeek['
   const prepared = prepareOutlook(model, input);
   const parts = [simulateOutlookPart(prepared, 0, input.replications)];
   const outlook = outlookFromParts(prepared, parts);
-  const result = JSON.stringify(outlook);
-  return {
-    issuedAt: input.issuedAt,
-    seed: input.seed,
-    replications: input.replications,
-    computeMilliseconds: performance.now() - startedAt,
-    input: JSON.stringify(input),
-    result,
-    laws: JSON.stringify(outlookLaws(prepared, parts, outlook, model)),
-    digest: createHash('sha256').update(result).digest('hex'),
-  };
+  return asStored(input, startedAt, outlook, outlookLaws(prepared, parts, outlook, model));
 }
 
 function issueOneWeek(model: ModelParameters, input: WeekOutlookInput): RecomputedWeek['weekOutlooks'][number] {
@@ -174,16 +164,23 @@ function issueOneWeek(model: ModelParameters, input: WeekOutlookInput): Recomput
   const prepared = prepareWeek(model, input);
   const parts = [simulateWeekPart(prepared, 0, input.replications)];
   const outlook = weekFromParts(prepared, parts);
+  return {
+    ...asStored(input, startedAt, outlook, weekLaws(prepared, parts, outlook)),
+    calendar: JSON.stringify(input.calendar),
+  };
+}
+
+/** The columns that outlooks of both kinds are stored in. */
+function asStored(input: OutlookInput | WeekOutlookInput, startedAt: number, outlook: object, laws: object) {
   const result = JSON.stringify(outlook);
   return {
     issuedAt: input.issuedAt,
     seed: input.seed,
     replications: input.replications,
     computeMilliseconds: performance.now() - startedAt,
-    calendar: JSON.stringify(input.calendar),
     input: JSON.stringify(input),
     result,
-    laws: JSON.stringify(weekLaws(prepared, parts, outlook)),
+    laws: JSON.stringify(laws),
     digest: createHash('sha256').update(result).digest('hex'),
   };
 }
