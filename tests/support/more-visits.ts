@@ -36,7 +36,9 @@ export function multiplyVisits(dataDir: string, atLeast: number): number {
         // Whole weeks, so that the hours of the week stay what they are.
         const back = round * Math.ceil((periodTo - periodFrom) / 604_800) * 604_800;
         const values = { number, next, back };
-        const id = { id: `'copy-' || @next`, number: '@next', sha256: `'copy-' || @next` };
+        // A number is bound as a REAL and would read "9.0".
+        const name = `'copy-' || CAST(@next AS INTEGER)`;
+        const id = { id: name, number: '@next', sha256: name };
         const times = { periodFrom: earlier('periodFrom'), periodTo: earlier('periodTo') };
         copy('visit_log', { ...id, ...times }, 'number = @number', values);
         const moved = ['arrivalAt', 'bedSpaceAt', 'admissionDecisionAt', 'departureAt'].map((name) => [

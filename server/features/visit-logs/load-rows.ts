@@ -1,21 +1,55 @@
 import { once } from 'node:events';
+import { setImmediate } from 'node:timers/promises';
 import { MessageChannel } from 'node:worker_threads';
+import type { EntityManager } from 'typeorm';
 import type { FileOutcome } from '../../../shared/domain/visit-file.ts';
 import type { Dependencies } from '../../dependencies.ts';
 import type { CareArea } from '../../entities/CareArea.ts';
-import type { VisitLog } from '../../entities/VisitLog.ts';
+import { VisitLog } from '../../entities/VisitLog.ts';
 import { workerUrl } from '../../simulation/pool.ts';
 import type { ReadVisitLogInput, RowsMessage } from './read-visit-log.worker.ts';
 
-const insertVisits = `INSERT INTO "visit" ("logNumber", "rowNumber", "areaCode", "arrivalAt", "bedSpaceAt", "admissionDecisionAt", "departureAt", "disposition", "byAmbulance")
-SELECT ?, value ->> 0, value ->> 1, value ->> 2, value ->> 3, value ->> 4, value ->> 5, value ->> 6, value ->> 7 FROM json_each(?)
-WHERE EXISTS (SELECT 1 FROM "visit_log" WHERE "number" = ? AND "status" = 'loading')`;
-const insertCounts = `INSERT INTO "hourly_count" ("logNumber", "rowNumber", "areaCode", "localHour", "arrivals", "departures")
-SELECT ?, value ->> 0, value ->> 1, value ->> 2, value ->> 3, value ->> 4 FROM json_each(?)
-WHERE EXISTS (SELECT 1 FROM "visit_log" WHERE "number" = ? AND "status" = 'loading')`;
+/** Table and columns after the log's number, in the order of the cells. */
+const targets = {
+  visits: {
+    table: 'visit',
+    columns: [
+      ...['rowNumber', 'areaCode', 'arrivalAt', 'bedSpaceAt', 'admissionDecisionAt', 'departureAt'],
+      ...['disposition', 'byAmbulance'],
+    ],
+  },
+  'hourly counts': { table: 'hourly_count', columns: ['rowNumber', 'areaCode', 'localHour', 'arrivals', 'departures'] },
+} as const;
+/** Rows of one statement: half the time a row of a statement for each, and of JSON taken apart by SQLite. */
+const rowsAStatement = 50;
+
+/** Inserts a piece, unless the log is no longer loading. */
+async function insertPiece(
+  manager: EntityManager,
+  { table, columns }: (typeof targets)[keyof typeof targets],
+  logNumber: number,
+  { cells, rows }: RowsMessage,
+): Promise<void> {
+  if (!(await manager.existsBy(VisitLog, { number: logNumber, status: 'loading' }))) return;
+  const width = columns.length;
+  const names = ['logNumber', ...columns].map((column) => `"${column}"`).join(', ');
+  const places = `(${['logNumber', ...columns].map(() => '?').join(', ')})`;
+  for (let from = 0; from < rows; from += rowsAStatement) {
+    const to = Math.min(rows, from + rowsAStatement);
+    const values: (number | null)[] = [];
+    for (let row = from; row < to; row += 1) {
+      values.push(logNumber);
+      for (let at = row * width; at < (row + 1) * width; at += 1) {
+        values.push(Number.isNaN(cells[at]) ? null : cells[at]);
+      }
+    }
+    const each = Array.from({ length: to - from }, () => places).join(', ');
+    await manager.query(`INSERT INTO "${table}" (${names}) VALUES ${each}`, values);
+  }
+}
 
 /**
- * Parses a file on a thread and writes its good rows in short transactions, some thousands each. The
+ * Parses a file on a thread and writes its good rows in short transactions, a thousand each. The
  * thread waits while the database is behind, so memory does not grow with the file.
  * Writes nothing once the log is no longer loading: it may be cancelled between two pieces.
  * @param now the clock at which the file was checked, so that it is judged the same
@@ -34,18 +68,20 @@ export async function loadRows(
   signal: AbortSignal,
   onRows: (rows: number) => void,
 ): Promise<FileOutcome> {
-  const insert = task.kind === 'visits' ? insertVisits : insertCounts;
+  const target = targets[task.kind];
   const { port1: near, port2: far } = new MessageChannel();
   const stop = new AbortController();
   let failure: { error: unknown } | null = null;
   let written = 0;
   let tail: Promise<void> = Promise.resolve();
-  near.on('message', ({ json, rows }: RowsMessage) => {
+  near.on('message', (piece: RowsMessage) => {
     tail = tail
       .then(async () => {
         if (failure || signal.aborted) return;
-        await deps.database.write((manager) => manager.query(insert, [task.logNumber, json, task.logNumber]));
-        written += rows;
+        await deps.database.write((manager) => insertPiece(manager, target, task.logNumber, piece));
+        // Promises alone would write all the pieces that wait before anybody else is answered.
+        await setImmediate();
+        written += piece.rows;
         onRows(written);
         near.postMessage(null);
       })
@@ -102,6 +138,6 @@ export async function deleteRows(
     if (rows === 0) return;
     deleted += rows;
     onRows?.(deleted);
-    await new Promise((resolve) => setImmediate(resolve));
+    await setImmediate();
   }
 }

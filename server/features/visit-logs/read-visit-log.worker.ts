@@ -16,22 +16,29 @@ export interface ReadVisitLogInput {
   now: number;
   areas: { id: string; name: string; code: number }[];
   timeZone: string;
-  /** Gets good rows as JSON arrays, some thousands at a time, and answers each with anything; null to check only. */
+  /** Gets good rows in pieces and answers each with anything; null to check only. */
   port: MessagePort | null;
   /** What a study of the times needs; null for none. */
   study: { shiftEnds: number[]; covered: TimeSpan[] } | null;
 }
 
-/** One piece of good rows: [rowNumber, areaCode, arrival, bed space, admission decision, departure, disposition, byAmbulance]; of hourly counts [rowNumber, areaCode, localHour, arrivals, departures]. */
+/**
+ * One piece of good rows, cell by cell, NaN for what is not recorded: [rowNumber, areaCode, arrival, bed space, admission
+ * decision, departure, disposition, byAmbulance]; of hourly counts [rowNumber, areaCode, localHour, arrivals, departures].
+ */
 export interface RowsMessage {
-  json: string;
+  cells: Float64Array;
   rows: number;
 }
 
+const visitCells = 8;
+const countCells = 5;
+
 const pieceBytes = 1 << 20;
-/** Each piece is one write on the main thread: 1,000 rows hold it for 20 ms or so. */
+/** Each piece is one write on the main thread: 1,000 rows hold it for some milliseconds. */
 const rowsAMessage = 1000;
-const mostUnanswered = 3;
+/** More than a piece of the file holds: the main thread writes while this one reads the next. */
+const mostUnanswered = 32;
 
 /** Reads a file that stands on the disk, checks every row, and hands on the good ones. */
 export default async function readVisitLog({
@@ -62,15 +69,15 @@ export default async function readVisitLog({
       areaName: (code) => areas.find((area) => area.code === code)?.name ?? '',
       onCount: ({ area, localHour, arrivals, departures }) => {
         counts += 1;
-        out?.add(`[${[counts, area, localHour, arrivals, departures ?? 'null'].join(',')}]`);
+        out?.add(countCells, [counts, area, localHour, arrivals, departures ?? NaN]);
       },
     },
     ...(out
       ? {
           onVisit: (visit, rowNumber) => {
-            out.add(
-              `[${String(rowNumber)},${String(visit.area)},${String(visit.arrivalAt)},${orNull(visit.bedSpaceAt)},${orNull(visit.admissionDecisionAt)},${orNull(visit.departureAt)},${codeOrNull(visit.disposition)},${codeOrNull(visit.byAmbulance)}]`,
-            );
+            const { area, arrivalAt, bedSpaceAt, admissionDecisionAt, departureAt } = visit;
+            const codes = [known(visit.disposition), known(visit.byAmbulance)];
+            out.add(visitCells, [rowNumber, area, arrivalAt, bedSpaceAt, admissionDecisionAt, departureAt, ...codes]);
           },
         }
       : {}),
@@ -80,8 +87,7 @@ export default async function readVisitLog({
   return outcome;
 }
 
-const orNull = (value: number) => (Number.isNaN(value) ? 'null' : String(value));
-const codeOrNull = (code: number) => (code === notRecorded ? 'null' : String(code));
+const known = (code: number) => (code === notRecorded ? NaN : code);
 
 async function readAll(file: string, reader: VisitFileReader, out: RowsOut | null): Promise<FileOutcome> {
   const refuse = (message: string): FileOutcome => ({ refused: [{ at: 'file', message }], identifying: false });
@@ -112,8 +118,9 @@ async function readAll(file: string, reader: VisitFileReader, out: RowsOut | nul
 /** Sends rows on in pieces and waits while too many are unanswered, so that memory stays small. */
 class RowsOut {
   private readonly port: MessagePort;
-  private lines: string[] = [];
-  private waiting: string[][] = [];
+  private cells = new Float64Array(0);
+  private rows = 0;
+  private waiting: RowsMessage[] = [];
   private unanswered = 0;
   private wake: (() => void) | null = null;
 
@@ -126,12 +133,12 @@ class RowsOut {
     });
   }
 
-  add(line: string): void {
-    this.lines.push(line);
-    if (this.lines.length < rowsAMessage) return;
-    this.waiting.push(this.lines);
-    this.lines = [];
-    this.send();
+  /** @param width cells of every row of this file. */
+  add(width: number, row: readonly number[]): void {
+    if (this.rows === 0) this.cells = new Float64Array(width * rowsAMessage);
+    this.cells.set(row, this.rows * width);
+    this.rows += 1;
+    if (this.rows === rowsAMessage) this.pass(width);
   }
 
   /** Resolves once all that was added is sent or nearly so. */
@@ -140,20 +147,23 @@ class RowsOut {
   }
 
   async finish(): Promise<void> {
-    if (this.lines.length > 0) this.waiting.push(this.lines);
-    this.lines = [];
-    this.send();
+    if (this.rows > 0) this.pass(this.cells.length / rowsAMessage);
     while (this.waiting.length > 0 || this.unanswered > 0) await this.answer();
     this.port.close();
   }
 
+  private pass(width: number): void {
+    this.waiting.push({ cells: this.cells.slice(0, this.rows * width), rows: this.rows });
+    this.rows = 0;
+    this.send();
+  }
+
   private send(): void {
     while (this.unanswered < mostUnanswered) {
-      const lines = this.waiting.shift();
-      if (!lines) return;
+      const message = this.waiting.shift();
+      if (!message) return;
       this.unanswered += 1;
-      const message: RowsMessage = { json: `[${lines.join(',')}]`, rows: lines.length };
-      this.port.postMessage(message);
+      this.port.postMessage(message, [message.cells.buffer as ArrayBuffer]);
     }
   }
 
