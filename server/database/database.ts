@@ -2,14 +2,13 @@ import { mkdirSync } from 'node:fs';
 import { join } from 'node:path';
 import type { DataSource, EntityManager } from 'typeorm';
 import { makeReadSource, makeWriteSource } from './data-source.ts';
-import { makeWriteGate, type Write } from './write-gate.ts';
+import { makeWriteGate, type WriteGate } from './write-gate.ts';
 
 /** The database as the rest of the server sees it: one way to read, one way to write. */
-export interface Database {
+export interface Database extends WriteGate {
   file: string;
   /** Committed rows only; cannot write. */
   read: EntityManager;
-  write: Write;
   close(): Promise<void>;
 }
 
@@ -42,7 +41,7 @@ export async function openDatabase(dataDir: string): Promise<Database> {
   return {
     file,
     read: reader.manager,
-    write: makeWriteGate(writer),
+    ...makeWriteGate(writer),
     async close() {
       await reader.destroy();
       await writer.destroy();

@@ -5,7 +5,18 @@ import { lockWaitMilliseconds, rawConnection } from './data-source.ts';
 import { databaseFaultOf } from './database-fault.ts';
 
 /** Runs work in a transaction, alone: no other write runs meanwhile. */
-export type Write = <T>(work: (manager: EntityManager) => Promise<T>) => Promise<T>;
+export type Write = <T>(work: (manager: EntityManager) => Promise<T>, options?: WriteOptions) => Promise<T>;
+
+interface WriteOptions {
+  /** Nobody can see it yet, as with the rows of a log that is still being loaded: it is not counted. */
+  unseen?: boolean;
+}
+
+/** The gate, and how often something was stored through it so far that somebody may see. */
+export interface WriteGate {
+  write: Write;
+  writes: () => number;
+}
 
 interface Mark {
   open: boolean;
@@ -29,10 +40,11 @@ interface Mark {
  * Another process's lock is waited for here, five seconds from when the write was asked for: SQLite's own waiting
  * would stop every request meanwhile, and each write in the queue would begin its wait anew.
  */
-export function makeWriteGate(source: DataSource): Write {
+export function makeWriteGate(source: DataSource): WriteGate {
   const inside = new AsyncLocalStorage<Mark>();
   let tail: Promise<unknown> = Promise.resolve();
-  return function write<T>(work: (manager: EntityManager) => Promise<T>): Promise<T> {
+  let writes = 0;
+  const write: Write = (work, { unseen = false } = {}) => {
     const outer = inside.getStore();
     if (outer?.open) {
       const joined = work(outer.manager);
@@ -43,7 +55,7 @@ export function makeWriteGate(source: DataSource): Write {
     const giveUpAt = performance.now() + lockWaitMilliseconds;
     const turn = tail.then(async () => {
       await untilUnlocked(source, giveUpAt);
-      return source.transaction(async (manager) => {
+      const stored = await source.transaction(async (manager) => {
         const mark: Mark = { open: true, manager, joined: [] };
         try {
           return await inside.run(mark, () => work(manager));
@@ -53,10 +65,13 @@ export function makeWriteGate(source: DataSource): Write {
           mark.open = false;
         }
       });
+      if (!unseen) writes += 1;
+      return stored;
     });
     tail = turn.catch(() => leaveTransaction(source));
     return turn;
   };
+  return { write, writes: () => writes };
 }
 
 /** Waits until no other process holds the write lock, without stopping the thread; past the time it throws SQLite's error. */

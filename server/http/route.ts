@@ -8,6 +8,7 @@ import type { Site } from '../entities/Site.ts';
 import { actorOf, type Actor } from './actor.ts';
 import { authorize } from './authorize.ts';
 import type { Caller } from './caller.ts';
+import { SharedReplies } from './shared-replies.ts';
 
 /** What a handler is given. Everything in it is checked. */
 export interface RouteContext<C = unknown> {
@@ -38,6 +39,12 @@ export type ActorContext<C> = RouteContext<C> & { actor: Actor; site: Site };
 /** Either sends the reply itself (returns undefined) or returns what the contract's reply schema holds. */
 type Handler<C> = (context: RouteContext<C>) => Promise<ReplyOf<C> | undefined>;
 
+/**
+ * On a route whose reply is the same for everybody who may ask: what it depends on besides database, clock and query.
+ * Such a reply is made once for all who ask within the same second.
+ */
+type SharedBy = (site: Site) => string;
+
 /** Every registered contract, for the API description and for the test that tries every route. */
 export interface RouteTable {
   contracts: Contract[];
@@ -53,8 +60,10 @@ export function addRoute<C extends Contract>(
   deps: Dependencies,
   contract: C,
   handler: Handler<C>,
+  sharedBy?: SharedBy,
 ): void {
   table.contracts.push(contract);
+  const shared = new SharedReplies(deps.database.writes);
   app[contract.method](contract.path, async (req, res) => {
     const now = deps.clock();
     const { caller, site, token } = await authorize(deps, req, contract, now);
@@ -67,7 +76,7 @@ export function addRoute<C extends Contract>(
       });
     }
     const body = check(contract.body, req.body, 'body');
-    const reply = await handler({
+    const context = {
       deps,
       params: params as ParamsOf<C>,
       query: query as QueryOf<C>,
@@ -80,7 +89,19 @@ export function addRoute<C extends Contract>(
       address: req.ip ?? '',
       req,
       res,
-    });
+    };
+    if (sharedBy && site) {
+      const key = `${site.id} ${JSON.stringify(query)}`;
+      const make = async () => JSON.stringify(contract.reply.parse(await handler(context)));
+      const text = await shared.of(key, now, sharedBy(site), make);
+      res.setHeader('cache-control', 'no-store');
+      res
+        .status(contract.status ?? 200)
+        .type('application/json')
+        .send(text);
+      return;
+    }
+    const reply = await handler(context);
     if (res.headersSent || res.writableEnded) return;
     const status = contract.status ?? 200;
     res.setHeader('cache-control', 'no-store');
@@ -96,13 +117,15 @@ export function addSiteRoute<C extends Contract>(
   deps: Dependencies,
   contract: C,
   handler: (context: SiteContext<C>) => Promise<ReplyOf<C> | undefined>,
+  sharedBy?: SharedBy,
 ): void {
   if (!contract.path.startsWith('/api/sites/:siteId')) throw new RangeError(`${contract.path} is not a path of a site`);
-  addRoute(app, table, deps, contract, (context) => {
+  const forSite: Handler<C> = (context) => {
     const { caller, site } = context;
     if (!caller || !site) throw new Error('a route of a site was reached without a caller');
     return handler({ ...context, caller, site });
-  });
+  };
+  addRoute(app, table, deps, contract, forSite, sharedBy);
 }
 
 /** Adds routes of a site that its own systems may call too, with a machine token: the handler is told who acts. */

@@ -107,6 +107,8 @@ export function makeNeedRecorder(
     }
     const { wholeHour } = plan.areas[a];
     for (let h = 0; h < hours; h += 1) {
+      // Nowhere within the hour is need above the beds.
+      if (hourExcess[h] === 0) continue;
       const last = plan.hourTo[h] - 1;
       let n = lastNeed[hourTo[h] - 1];
       let needed = 0;

@@ -16,7 +16,7 @@ beforeEach(async () => {
   folder = mkdtempSync(join(tmpdir(), 'shoalmark-gate-'));
   source = await makeWriteSource(join(folder, 'gate.sqlite')).initialize();
   await source.runMigrations();
-  write = makeWriteGate(source);
+  ({ write } = makeWriteGate(source));
 });
 afterEach(async () => {
   await source.destroy();

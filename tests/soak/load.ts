@@ -17,6 +17,7 @@ import { listBackups } from '../../server/database/backup-files.ts';
 import { databaseFile } from '../../server/database/database.ts';
 import { restoreBackup } from '../../server/database/restore-backup.ts';
 import { antiForgeryToken } from '../../server/http/anti-forgery.ts';
+import { cancelRecomputing } from '../bench/demo-server.ts';
 import { startBuiltDemo, type RunningDemo } from '../support/journey.ts';
 import { multiplyVisits } from '../support/more-visits.ts';
 import type { Soak } from './soak.ts';
@@ -73,6 +74,7 @@ async function measure(dataDir: string, print: (line: string) => void): Promise<
     const [charge, steward, admin] = ['charge', 'steward', 'admin'].map((name) => callAs(demo, dataDir, name));
     const cookies = Array.from({ length: people }, () => signIn(dataDir, 'charge').cookie);
     const files = [0, 1, 2, 3, 4, 5].map(makeFile);
+    await cancelRecomputing(steward);
     const { times, errors, done } = await underLoad(demo, cookies, async (going) => {
       const [censuses, imports] = await Promise.all([
         saveCensuses(charge, going),

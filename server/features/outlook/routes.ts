@@ -31,10 +31,22 @@ const noOutlook: Record<NonNullable<Issued['reason']>, string> = {
 export function addOutlookRoutes(app: Express, table: RouteTable, deps: Dependencies, issuer: OutlookIssuer): void {
   const { read } = deps.database;
 
-  addSiteRoute(app, table, deps, getTonight, ({ site, now }) => presentTonight(deps, issuer, site, now));
+  addSiteRoute(
+    app,
+    table,
+    deps,
+    getTonight,
+    ({ site, now }) => presentTonight(deps, issuer, site, now),
+    ({ id }) => String(issuer.computing(id)),
+  );
 
-  addSiteRoute(app, table, deps, getCensus, ({ site, now }) =>
-    readNewestCensus(read, site.id, now - censusDroppedAfterSeconds, now),
+  addSiteRoute(
+    app,
+    table,
+    deps,
+    getCensus,
+    ({ site, now }) => readNewestCensus(read, site.id, now - censusDroppedAfterSeconds, now),
+    () => '',
   );
 
   addActorRoute(app, table, deps, enterContract, async (context) => {

@@ -78,7 +78,7 @@ export async function loadRows(
     tail = tail
       .then(async () => {
         if (failure || signal.aborted) return;
-        await deps.database.write((manager) => insertPiece(manager, target, task.logNumber, piece));
+        await deps.database.write((manager) => insertPiece(manager, target, task.logNumber, piece), { unseen: true });
         // Promises alone would write all the pieces that wait before anybody else is answered.
         await setImmediate();
         written += piece.rows;
