@@ -127,7 +127,6 @@ export function createApp(
       resave: false,
       saveUninitialized: false,
       rolling: false,
-      unset: 'destroy',
       cookie: { httpOnly: true, sameSite: 'lax', secure: config.production, path: '/' },
     }),
     requireAntiForgeryToken(config.sessionSecret),

@@ -1,8 +1,12 @@
 import type { ErrorRequestHandler } from 'express';
+import { signIn, signInCallback } from '../../shared/api/session.ts';
 import { databaseFaultOf, type DatabaseFaultKind } from '../database/database-fault.ts';
 import { HttpError, notFound } from '../errors.ts';
 import { loggedPath, type Logger } from '../log.ts';
 import { requestIdOf } from './route.ts';
+import { localPath, problemPage } from './sign-in-page.ts';
+
+const signInPaths: readonly string[] = [signIn.path, signInCallback.path];
 
 /** The one place that turns an error into a reply: an RFC 9457 problem document. */
 export function makeErrorHandler(logger: Logger): ErrorRequestHandler {
@@ -16,6 +20,11 @@ export function makeErrorHandler(logger: Logger): ErrorRequestHandler {
     const fault = known ? null : databaseFaultOf(error);
     if (!known)
       logger.error({ err: error, requestId, method: req.method, path: loggedPath(req.path) }, 'a request failed');
+    // A person is sent here by the browser, not a page of ours: words to read, instead of a document for programs.
+    if (req.method === 'GET' && signInPaths.includes(req.path) && (known === null || known.status === 429)) {
+      res.redirect(problemPage(known ? 'busy' : 'fault', localPath(req.query.returnTo)));
+      return;
+    }
     if (fault?.kind === 'locked') res.setHeader('retry-after', '5');
     const answer =
       known ??

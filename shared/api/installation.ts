@@ -159,3 +159,20 @@ export const removeArea = defineContract({
   params: oneSite.extend({ areaId: id }),
   reply: installationSite,
 });
+
+export const orderAreas = defineContract({
+  id: 'orderAreas',
+  method: 'put',
+  path: `${base}/sites/:id/area-order`,
+  access,
+  summary: 'Set the order in which a site names its care areas; every area once. No figure moves.',
+  params: oneSite,
+  body: z.object({
+    areaIds: z
+      .array(id)
+      .min(1, 'Name every care area')
+      .max(500)
+      .refine((ids) => new Set(ids).size === ids.length, 'A care area is named twice'),
+  }),
+  reply: installationSite,
+});

@@ -1,6 +1,7 @@
 import { z } from 'zod';
 import { defineContract } from './contract.ts';
 import { id, instant, note, siteParams } from './common.ts';
+import { caution } from './outlooks.ts';
 
 const wholeNumber = 'Whole numbers only';
 const percent = (least: number, most: number) =>
@@ -108,6 +109,8 @@ export const getWhatIf = defineContract({
     basis: whatIfBasis.nullable(),
     /** Why there is nothing to try plans against, and what to do. */
     missing: z.object({ reason: z.string(), next: z.string() }).nullable(),
+    /** What is to be said now of the model and the logs behind it. */
+    cautions: z.array(caution),
   }),
 });
 

@@ -41,6 +41,9 @@ export const getSession = defineContract({
   reply: session,
 });
 
+/** What may have gone wrong with a sign-in, as it stands in the address of the sign-in page (`problem`), which has the words. */
+export type SignInProblem = 'unreachable' | 'refused' | 'expired' | 'fault' | 'busy';
+
 export const signIn = defineContract({
   id: 'signIn',
   method: 'get',

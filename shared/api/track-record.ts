@@ -27,6 +27,7 @@ export type TrackFilter = z.infer<typeof trackFilter>;
 
 const figure = z.number().nullable();
 const rule = z.object({ n: z.int(), mase: figure, pinball: figure, ownPinball: figure });
+const weekRule = z.object({ mase: figure, pinball: figure });
 
 /** What the scores say together; the meaning of each figure stands with the engine's RecordSummary. */
 export const recordSummary = z.object({
@@ -63,6 +64,7 @@ const sentences = z.object({
   accuracy: z.string(),
   pit: z.string(),
   parts: z.string(),
+  acknowledged: z.string(),
 });
 
 const part = z.object({
@@ -135,8 +137,8 @@ export const trackRecord = z.object({
   /** The same of the week ahead; one that was not issued by the daily timetable counts as overtaken. */
   weekOutlooks: z.object(outlookCounts),
   summary: recordSummary,
-  /** Hours and shifts whose risk somebody acknowledged: what was done about them may have changed what came. */
-  acknowledged: z.object({ n: z.int(), meanChance: figure, share: figure }),
+  /** Hours and shifts whose risk somebody acknowledged ('yes'), the others ('no') and both ('all'); empty where nobody did. */
+  acknowledged: z.array(part),
   verdict: sentences,
   byWeek: z.array(
     z.object({
@@ -147,7 +149,7 @@ export const trackRecord = z.object({
       floorMase: figure,
       pinball: figure,
       floorPinball: figure,
-      baselines: z.object({ lastWeek: figure, fourWeeks: figure, year: figure }),
+      baselines: z.object({ lastWeek: weekRule, fourWeeks: weekRule, year: weekRule }),
       coverage90: figure,
       expected90: figure,
     }),

@@ -220,7 +220,7 @@ export const getWeekOutlook = defineContract({
   method: 'get',
   path: '/api/sites/:siteId/week-outlooks/:weekOutlookId',
   access: 'outlook:read',
-  summary: 'One issued week outlook, exactly as it was issued.',
+  summary: 'One issued week outlook, exactly as it was issued, and the shifts before it.',
   params: siteParams.extend({ weekOutlookId: id }),
-  reply: weekOutlook,
+  reply: weekOutlook.extend({ past: weekAhead.shape.past }),
 });

@@ -1,9 +1,8 @@
 import { Group } from '@visx/group';
-import { scaleLinear } from '@visx/scale';
 import { Bar } from '@visx/shape';
 import { ActualStep } from './ActualStep.tsx';
 import { halo, labelStyle } from './label-look.ts';
-import { bandsOf, needDomain } from './need-columns.ts';
+import { bandsOf, needDomain, needScale } from './need-columns.ts';
 import type { NeedColumn, NeedStripProps } from './need-columns.ts';
 import { PercentileNames } from './PercentileNames.tsx';
 import { StaffedLine } from './StaffedLine.tsx';
@@ -18,7 +17,7 @@ export function NeedStrip(props: NeedStripProps) {
   const { id, columns, columnWidth, height, tall = false, counted } = props;
   const width = columns.length * columnWidth;
   const { low, high, cut } = needDomain(columns, tall);
-  const y = scaleLinear<number>({ domain: [low, high], range: [height, labelRoom] });
+  const y = needScale(low, high, height, labelRoom);
   const top = (need: number) => y(Math.max(low, need));
   const barWidth = columnWidth - 1;
 

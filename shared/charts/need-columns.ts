@@ -109,3 +109,11 @@ export function needDomain(
   const low = mayCut ? Math.floor(lowest - (high - lowest) * 0.35) : 0;
   return low >= 4 ? { low, high, cut: true } : { low: 0, high, cut: false };
 }
+
+/**
+ * Where a need lies in a drawing, px from its upper edge: `low` at `foot`, `high` at `top`, straight between them. Written
+ * out because it stands on the night's first view: a scale that can also be of colours and dates weighs 11 kB there.
+ */
+export function needScale(low: number, high: number, foot: number, top: number): (need: number) => number {
+  return (need) => foot + ((need - low) / (high - low)) * (top - foot);
+}

@@ -77,6 +77,7 @@ function headline({ weeks, weeksAlike }: ModelComparison, parts: readonly Named[
 
 function partSentence(what: string, parts: readonly Named[]): string {
   const { better, worse, alike } = sorted(parts);
+  if (alike.length === parts.length) return `${what}: nothing beyond chance tells the two apart.`;
   const said = [
     better.length > 0 ? `the candidate’s whole range was nearer for ${listed(better)}` : '',
     worse.length > 0 ? `the one in use was nearer for ${listed(worse)}` : '',

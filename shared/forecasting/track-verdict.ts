@@ -16,6 +16,14 @@ export interface VerdictPart {
   se: number | null;
 }
 
+/** Scores that were told apart because somebody had acknowledged the risk ('yes'), and the others ('no'). */
+interface AcknowledgedPart {
+  key: string;
+  n: number;
+  meanChance: number | null;
+  share: number | null;
+}
+
 export interface Verdict {
   headline: string;
   coverage: string;
@@ -23,6 +31,7 @@ export interface Verdict {
   accuracy: string;
   pit: string;
   parts: string;
+  acknowledged: string;
 }
 
 /** Fewer than this say nothing. */
@@ -44,7 +53,12 @@ const ofHundred = (share: number): string =>
 const grouped = (n: number): string => String(n).replace(/\B(?=(\d{3})+$)/g, ',');
 
 /** The verdict in plain words: each sentence says what a drawing means. */
-export function trackVerdict(summary: RecordSummary, subject: VerdictSubject, parts: readonly VerdictPart[]): Verdict {
+export function trackVerdict(
+  summary: RecordSummary,
+  subject: VerdictSubject,
+  parts: readonly VerdictPart[],
+  acknowledged: readonly AcknowledgedPart[] = [],
+): Verdict {
   const ninety = summary.coverage.find(({ level }) => level === 0.9);
   const [observed, expected] = [ninety?.observed ?? null, ninety?.expected ?? null];
   const fit = fitOf(observed, expected, ninety?.se ?? null, summary.n);
@@ -56,6 +70,7 @@ export function trackVerdict(summary: RecordSummary, subject: VerdictSubject, pa
     accuracy: accuracySentence(summary, subject),
     pit: pitSentence(summary),
     parts: partsSentence(parts),
+    acknowledged: acknowledgedSentence(acknowledged, subject),
   };
 }
 
@@ -184,4 +199,17 @@ function partsSentence(parts: readonly VerdictPart[]): string {
   if (judged.length === 0) return 'Too few to tell the parts apart.';
   if (!worst) return 'No lead, area, shift or model stands out: none had ranges that were too narrow.';
   return `Ranges were ${degree(gapOf(worst))}too narrow for ${worst.name}: ${ofHundred(worst.coverage90 ?? 0)} in 100 within the 90 % range, where ${ofHundred(worst.expected90 ?? 0)} were to be.`;
+}
+
+/** Who acknowledges does so because the risk has risen, and then does something: both move these cases, in opposite ways. */
+function acknowledgedSentence(parts: readonly AcknowledgedPart[], { chanceOf }: VerdictSubject): string {
+  if (chanceOf === null) return 'No chance of shortfall was issued for these, so none was acknowledged.';
+  const [seen, open] = ['yes', 'no'].map((key) => parts.find((part) => part.key === key));
+  if (!seen) return `Nobody acknowledged a risk in these ${chanceOf}.`;
+  const said = ({ meanChance, share }: AcknowledgedPart): string =>
+    `${ofHundred(meanChance ?? 0)} chances in 100 on average, and a shortfall came in ${ofHundred(share ?? 0)}`;
+  const one = chanceOf.slice(0, -1);
+  const first = `${grouped(seen.n)} ${seen.n === 1 ? one : chanceOf} with an acknowledged risk ${seen.n === 1 ? 'was' : 'were'} given ${said(seen)}`;
+  const others = open ? `; the others ${said(open)}` : '';
+  return `${first}${others}. A risk is acknowledged once it has risen, and what is then done may hold a shortfall off: the chances above leave these ${chanceOf} out, the ranges count them.`;
 }

@@ -19,7 +19,7 @@ export function BoardRow({
 }) {
   return (
     <section className={classNames('flex flex-col sm:flex-row', className)}>
-      <div className="sticky left-0 z-20 w-screen shrink-0 bg-water pl-page max-sm:pr-page sm:w-[calc(var(--gutter)+var(--page-pad))] sm:pr-4">
+      <div className="sticky left-0 z-20 print:relative w-screen shrink-0 bg-water pl-page max-sm:pr-page sm:w-[calc(var(--gutter)+var(--page-pad))] sm:pr-4">
         <div className={classNames('h-full pt-2 pb-2', ruled && 'border-t border-hair')}>{gutter}</div>
       </div>
       <div className="board-strip relative">{strip}</div>

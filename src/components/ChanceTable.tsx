@@ -107,7 +107,7 @@ function RowName({ short, children }: { short: string; children: ReactNode }) {
     <th
       scope="row"
       // Stays at the edge of the gutter when the hours slide, so that a figure never stands without its name.
-      className="sticky left-[calc(var(--covered)-var(--hidden))] z-[11] bg-water p-0 pr-2 text-right align-middle text-small font-semibold whitespace-nowrap text-ink2 tighter"
+      className="sticky left-[calc(var(--covered)-var(--hidden))] z-[11] bg-water print:static p-0 pr-2 text-right align-middle text-small font-semibold whitespace-nowrap text-ink2 tighter"
     >
       <span className="max-lg:sr-only">{children}</span>
       <span aria-hidden="true" className="lg:hidden">

@@ -1,4 +1,5 @@
 import { Navigate, useSearchParams } from 'react-router-dom';
+import type { SignInProblem } from '../../shared/api/session.ts';
 import { paths } from '../app/paths.ts';
 import { Notice } from '../components/Notice.tsx';
 import { useDocumentTitle } from '../components/PageHead.tsx';
@@ -11,7 +12,7 @@ export function safeReturnTo(given: string | null): string {
   return given && /^\/(?![/\\])/.test(given) ? given : '/';
 }
 
-const problems: Partial<Record<string, { title: string; text: string }>> = {
+const problems: Record<SignInProblem, { title: string; text: string }> = {
   unreachable: {
     title: 'The hospital account cannot be reached',
     text: 'The service that confirms who you are does not answer. Try again in a few minutes; if it stays, tell your administrator.',
@@ -24,6 +25,14 @@ const problems: Partial<Record<string, { title: string; text: string }>> = {
     title: 'Signing in did not work',
     text: 'The hospital account did not confirm who you are. Try again; if it stays, tell your administrator.',
   },
+  fault: {
+    title: 'Signing in could not be finished',
+    text: 'This server could not finish it, and the fault is ours. You are not signed in, and nothing was changed. Try again in a minute; if it stays, tell your administrator.',
+  },
+  busy: {
+    title: 'Too many sign-ins at once',
+    text: 'More people tried to sign in within a minute than the server takes. Wait a minute and try again.',
+  },
 };
 
 /** Sign-in by the hospital account. A link, since a form that is sent on elsewhere is refused by the content policy. */
@@ -31,7 +40,7 @@ export function SignInPage() {
   useDocumentTitle('Sign in');
   const [search] = useSearchParams();
   const returnTo = safeReturnTo(search.get('returnTo'));
-  const problem = problems[search.get('problem') ?? ''];
+  const problem = (problems as Partial<Record<string, { title: string; text: string }>>)[search.get('problem') ?? ''];
   const session = useSessionQuery();
   if (session.data?.person) return <Navigate to={returnTo} replace />;
   return (
@@ -43,6 +52,7 @@ export function SignInPage() {
         {problem ? (
           <Notice kind="caution" className="mt-5" title={problem.title}>
             <p>{problem.text}</p>
+            {session.data?.administratorContact ? <p>Administrator: {session.data.administratorContact}</p> : null}
           </Notice>
         ) : null}
         <a

@@ -1,10 +1,10 @@
 import { useParams } from 'react-router-dom';
 import { paths } from '../app/paths.ts';
+import { BoardSkeleton } from '../components/BoardLoading.tsx';
 import { ButtonLink } from '../components/Button.tsx';
 import { ProblemNotice } from '../components/Notice.tsx';
 import { useDocumentTitle } from '../components/PageHead.tsx';
 import { PanelBoundary } from '../components/PanelBoundary.tsx';
-import { Skeleton } from '../components/Skeleton.tsx';
 import { NightLogPanel } from '../features/outlook/NightLogPanel.tsx';
 import { TonightView } from '../features/outlook/TonightView.tsx';
 import { useTonightParts } from '../features/outlook/use-tonight-parts.ts';
@@ -20,7 +20,7 @@ export function TonightPage() {
   const { parts } = loading;
 
   if (!parts) {
-    if (!loading.error) return <TonightSkeleton />;
+    if (!loading.error) return <BoardSkeleton label="Loading tonight" rows={6} />;
     return (
       <div className="page-pad max-w-3xl py-8">
         <ProblemNotice error={loading.error} retrying={loading.fetching} onRetry={loading.refetch} />
@@ -51,10 +51,12 @@ export function TonightPage() {
       }
       emptyActions={
         <>
-          {permissions.includes('arrival-model:read') ? (
+          {permissions.includes('staffed-beds:plan') && parts.tonight.missing?.reason === 'no staffed-bed plan' ? (
+            <ButtonLink to={paths.staffedBeds(siteId)}>Go to Staffed beds</ButtonLink>
+          ) : permissions.includes('arrival-model:read') ? (
             <ButtonLink to={paths.arrivalModels(siteId)}>Go to Arrival model</ButtonLink>
           ) : null}
-          {permissions.includes('visit-log:upload') ? (
+          {permissions.includes('visit-log:upload') && parts.tonight.missing?.reason === 'no model' ? (
             <ButtonLink look="second" to={paths.newVisitLog(siteId)}>
               Load a visit log
             </ButtonLink>
@@ -62,22 +64,5 @@ export function TonightPage() {
         </>
       }
     />
-  );
-}
-
-function TonightSkeleton() {
-  return (
-    <div className="page-pad min-h-dvh pt-4">
-      <Skeleton className="h-11 w-3/5" label="Loading tonight" />
-      <Skeleton className="mt-3 h-6 w-2/5" />
-      <div className="mt-8 grid gap-6">
-        {Array.from({ length: 6 }, (_, index) => (
-          <div key={index} className="flex gap-6">
-            <Skeleton className="h-20 w-gutter shrink-0" />
-            <Skeleton className="h-20 flex-1 max-sm:hidden" />
-          </div>
-        ))}
-      </div>
-    </div>
   );
 }

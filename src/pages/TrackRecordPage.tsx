@@ -6,6 +6,7 @@ import { PageHead } from '../components/PageHead.tsx';
 import { SkeletonLines } from '../components/Skeleton.tsx';
 import { JobProgress } from '../features/jobs/JobProgress.tsx';
 import { useSession } from '../features/sign-in/session.ts';
+import { AcknowledgedApart } from '../features/track-record/AcknowledgedApart.tsx';
 import { useFilter } from '../features/track-record/filter-in-address.ts';
 import { FilterFields } from '../features/track-record/FilterFields.tsx';
 import { useTrackRecord } from '../features/track-record/queries.ts';
@@ -81,6 +82,7 @@ export function TrackRecordPage() {
           <>
             <RecordFindings record={record} timeZone={site.timeZone} />
             <RecordParts record={record} filter={filter} />
+            <AcknowledgedApart record={record} />
             <RecordPoints record={record} siteId={siteId} timeZone={site.timeZone} />
           </>
         )}

@@ -1,9 +1,8 @@
 import { Link, useParams } from 'react-router-dom';
 import { paths } from '../app/paths.ts';
+import { BoardLoading } from '../components/BoardLoading.tsx';
 import { ButtonLink } from '../components/Button.tsx';
-import { ProblemNotice } from '../components/Notice.tsx';
 import { useDocumentTitle } from '../components/PageHead.tsx';
-import { Skeleton } from '../components/Skeleton.tsx';
 import { useSession } from '../features/sign-in/session.ts';
 import { useSite, useWeekAhead } from '../features/week-ahead/queries.ts';
 import { WeekView } from '../features/week-ahead/WeekView.tsx';
@@ -16,22 +15,7 @@ export function WeekAheadPage() {
   const site = useSite(siteId);
   const week = useWeekAhead(siteId);
 
-  if (!site.data || !week.data) {
-    const failed = [site, week].find((query) => query.error && !query.data);
-    if (!failed) return <WeekSkeleton />;
-    return (
-      <div className="page-pad max-w-3xl py-8">
-        <ProblemNotice
-          error={failed.error}
-          retrying={failed.isFetching}
-          onRetry={() => {
-            void site.refetch();
-            void week.refetch();
-          }}
-        />
-      </div>
-    );
-  }
+  if (!site.data || !week.data) return <BoardLoading parts={[site, week]} label="Loading the week ahead" rows={6} />;
   return (
     <WeekView
       week={week.data}
@@ -87,22 +71,5 @@ export function WeekAheadPage() {
         </Link>
       }
     />
-  );
-}
-
-function WeekSkeleton() {
-  return (
-    <div className="page-pad min-h-dvh pt-4">
-      <Skeleton className="h-11 w-3/5" label="Loading the week ahead" />
-      <Skeleton className="mt-3 h-6 w-2/5" />
-      <div className="mt-8 grid gap-6">
-        {Array.from({ length: 6 }, (_, index) => (
-          <div key={index} className="flex gap-6">
-            <Skeleton className="h-20 w-gutter shrink-0" />
-            <Skeleton className="h-20 flex-1 max-sm:hidden" />
-          </div>
-        ))}
-      </div>
-    </div>
   );
 }

@@ -1,8 +1,8 @@
 import { Link, useParams } from 'react-router-dom';
 import { paths } from '../app/paths.ts';
-import { Notice, ProblemNotice } from '../components/Notice.tsx';
+import { BoardLoading } from '../components/BoardLoading.tsx';
+import { Notice } from '../components/Notice.tsx';
 import { useDocumentTitle } from '../components/PageHead.tsx';
-import { Skeleton } from '../components/Skeleton.tsx';
 import { useSite, useWeekThen } from '../features/week-ahead/queries.ts';
 import { WeekView } from '../features/week-ahead/WeekView.tsx';
 import { formatDateTime, formatNumber } from '../lib/format.ts';
@@ -13,29 +13,7 @@ export function WeekThenPage() {
   useDocumentTitle('The week ahead as it stood');
   const site = useSite(siteId);
   const then = useWeekThen(siteId, weekOutlookId);
-  const failed = [site, then].find((query) => query.error && !query.data);
-  if (failed) {
-    return (
-      <div className="page-pad max-w-3xl py-8">
-        <ProblemNotice
-          error={failed.error}
-          retrying={failed.isFetching}
-          onRetry={() => {
-            void site.refetch();
-            void then.refetch();
-          }}
-        />
-      </div>
-    );
-  }
-  if (!site.data || !then.data) {
-    return (
-      <div className="page-pad min-h-dvh pt-4">
-        <Skeleton className="h-11 w-3/5" label="Loading the week outlook" />
-        <Skeleton className="mt-3 h-6 w-2/5" />
-      </div>
-    );
-  }
+  if (!site.data || !then.data) return <BoardLoading parts={[site, then]} label="Loading the week outlook" />;
   const outlook = then.data;
   const { replications } = outlook.result;
   return (
@@ -67,11 +45,12 @@ export function WeekThenPage() {
           missing: null,
           cautions: [],
           plan: null,
-          past: [],
+          past: outlook.past,
           actual: [],
           lastWeek: null,
         }}
         site={site.data}
+        then
         refreshError={null}
         emptyActions={null}
         links={null}

@@ -55,7 +55,7 @@ export function WhatIfPage() {
       </div>
     );
   }
-  const { basis, missing } = whatIf.data;
+  const { basis, missing, cautions } = whatIf.data;
   if (!basis) {
     return (
       <>
@@ -73,6 +73,7 @@ export function WhatIfPage() {
     <WhatIfView
       site={site}
       basis={basis}
+      cautions={cautions}
       plans={plans.data}
       opened={search.getAll('plan')}
       rights={{ save: may('scenario:save'), adopt: may('staffed-beds:plan') }}

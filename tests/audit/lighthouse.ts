@@ -2,10 +2,12 @@ import { createServer, type AddressInfo } from 'node:net';
 import { parseArgs } from 'node:util';
 import lighthouse, { desktopConfig, type Flags, type Result } from 'lighthouse';
 import { openBrowser, openPage, signIn, startBuiltDemo } from '../support/journey.ts';
+import { firstViewOfTonight, longestFirstView } from './first-view.ts';
 
 /**
  * `npm run audit:lighthouse`, after a build and with nothing else running: Tonight and Week ahead with demo data, on the
- * desktop and on the throttled mobile profile. `-- --url ADDRESS` looks at a demo that is running already. Below what is
+ * desktop and on the throttled mobile profile, and how long the first view of Tonight takes on the throttled tablet
+ * (`first-view.ts`). `-- --url ADDRESS` looks at a demo that is running already. Below what is
  * asked for it says what cost the points and ends with 1.
  */
 const { values: asked } = parseArgs({ options: { url: { type: 'string' }, only: { type: 'string' } } });
@@ -88,6 +90,15 @@ try {
       );
       if (!lhr.finalDisplayedUrl.includes(path)) print(`    landed on ${lhr.finalDisplayedUrl}`);
       if (below) for (const cost of costs(lhr)) print(`    ${cost}`);
+    }
+    if (name === 'tonight') {
+      const took = await firstViewOfTonight(browser, url + path, await page.context().storageState());
+      const late = took >= longestFirstView;
+      if (late) short += 1;
+      print(
+        `${name.padEnd(12)}  first view on the throttled tablet, cold cache: ${String(Math.round(took))} ms ` +
+          `(under ${String(longestFirstView)} asked for)${late ? ': too late' : ''}`,
+      );
     }
     await page.context().close();
   }

@@ -12,6 +12,7 @@ import { isMet, type Bench, type Figure } from './measure.ts';
 import { servedBenches } from './served.ts';
 import { demoModel, now } from './site-log.ts';
 import { speedTable } from './speed-lines.ts';
+import { recordBenches } from './track-record.ts';
 import { waitingBenches } from './waiting.ts';
 import { whatIfBenches } from './what-if.ts';
 
@@ -67,6 +68,7 @@ const benches: Bench[] = [
   ...firstLoadBenches,
   ...servedBenches,
   ...historyBenches,
+  ...recordBenches,
   ...importBenches,
   ...browserBenches,
 ];

@@ -1,6 +1,6 @@
 import { startBuiltDemo } from '../support/journey.ts';
 import { multiplyOutlooks } from '../support/more-outlooks.ts';
-import { cancelRecomputing, otherSites, servedSite, signIn, sitePath } from './demo-server.ts';
+import { cancelRecomputing, servedSite, signIn, sitePath } from './demo-server.ts';
 import { milliseconds, summarise, type Bench, type Figure } from './measure.ts';
 
 const outlooks = 5000;
@@ -15,7 +15,6 @@ const pause = (ms: number) => new Promise((resolve) => setTimeout(resolve, ms));
 async function benchRecord(): Promise<Figure[]> {
   const demo = await startBuiltDemo();
   try {
-    await cancelRecomputing(demo, otherSites);
     const steward = await signIn(demo, 'steward');
     const recomputing = async () =>
       ((await steward.get(`${sitePath}/track-record`)) as { recomputing: string | null }).recomputing !== null;
@@ -27,6 +26,8 @@ async function benchRecord(): Promise<Figure[]> {
     await demo.pause();
     const held = multiplyOutlooks(demo.dataDir, servedSite.id, outlooks);
     await demo.resume();
+    // Of the other sites.
+    await cancelRecomputing(await signIn(demo, 'steward'));
     const caller = await signIn(demo, 'operations');
     const times: number[] = [];
     for (let turn = 0; turn < reads + filters.length; turn += 1) {

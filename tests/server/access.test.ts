@@ -163,6 +163,7 @@ const table: Record<string, 'public' | 'signed-in' | 'installation' | Role[]> = 
   addArea: 'installation',
   changeArea: 'installation',
   removeArea: 'installation',
+  orderAreas: 'installation',
   getServerStatus: 'installation',
   askBackup: 'installation',
   retryJob: 'installation',

@@ -96,7 +96,7 @@ describe('cautions', () => {
       ),
     ).map(({ text }) => text);
     expect(texts).toEqual([
-      'Not counted: Resuscitation, Children. Nothing is said of them until a count is entered.',
+      'Not counted: Resuscitation, Children. What is printed for them is what the model expects on such a night, not what is there. Count them before you act.',
       'Census 3 h 0 min old. Enter a new one before you act.',
       'Not forecast: Children. The model in use does not know this area. Fit a new one.',
       'Little history: 7 weeks of visits. The forecast is coarse; trust 24 hours at most.',

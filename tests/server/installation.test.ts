@@ -137,6 +137,58 @@ describe('a care area', () => {
   });
 });
 
+describe('the order of care areas', () => {
+  let site: InstallationSite;
+  let path: string;
+  const names = async () =>
+    ((await admin.get('/api/installation/sites')).body as { sites: InstallationSite[] }).sites
+      .find(({ id }) => id === site.id)
+      ?.areas.map(({ name }) => name);
+  const events = () => server.deps.database.read.findBy(AuditEvent, { siteId: site.id, event: 'area.order-changed' });
+
+  beforeAll(async () => {
+    const areas = [acute, chairs, { ...acute, name: 'Resuscitation' }];
+    const body = { ...place(), name: 'Ordered', areas };
+    site = (await admin.send('post', '/api/installation/sites', body)).body as InstallationSite;
+    path = `/api/installation/sites/${site.id}/area-order`;
+  });
+
+  test('is saved, told to the site’s own people, and audited once', async () => {
+    const [first, second, third] = site.areas.map(({ id }) => id);
+    const areaIds = [third, first, second];
+    const reply = await admin.send('put', path, { areaIds });
+    expect((reply.body as InstallationSite).areas.map(({ id }) => id)).toEqual(areaIds);
+    expect(await names()).toEqual(['Resuscitation', 'Acute', 'Chairs']);
+    const charge = await server.signedInAs(
+      (await buildPerson(server.deps.database, [{ role: 'charge', siteId: site.id }])).id,
+    );
+    const own = (await charge.get(`/api/sites/${site.id}`)).body as SiteReply;
+    expect(own.areas.map(({ name }) => name)).toEqual(['Resuscitation', 'Acute', 'Chairs']);
+    expect((await admin.send('put', path, { areaIds })).status).toBe(200);
+    expect((await events()).map(({ actor, detail }) => [actor, JSON.parse(detail) as object])).toEqual([
+      ['Ada Min', { before: 'Acute, Chairs, Resuscitation', order: 'Resuscitation, Acute, Chairs' }],
+    ]);
+  });
+
+  test('is refused where an area is missing, named twice, unknown or another site’s; nothing moves', async () => {
+    const [first, second, third] = site.areas.map(({ id }) => id);
+    const before = await names();
+    expect((await admin.send('put', path, { areaIds: [first, second] })).status).toBe(409);
+    expect((await admin.send('put', path, { areaIds: [first, second, third, 'nothing'] })).status).toBe(409);
+    expect((await admin.send('put', path, { areaIds: [first, second, made.areas[0].id] })).status).toBe(409);
+    expect(faultsOf((await admin.send('put', path, { areaIds: [first, second, second] })).body)).toEqual(['areaIds']);
+    const missing = await admin.send('put', '/api/installation/sites/nothing/area-order', { areaIds: [first] });
+    expect(missing.status).toBe(404);
+    expect(await names()).toEqual(before);
+    expect(await events()).toHaveLength(1);
+  });
+
+  test('goes on with an area that is added: it stands last', async () => {
+    await admin.send('post', `/api/installation/sites/${site.id}/areas`, { ...chairs, name: 'Children' });
+    expect(await names()).toEqual(['Resuscitation', 'Acute', 'Chairs', 'Children']);
+  });
+});
+
 test('time zones and countries to choose from are those that the server computes with', async () => {
   const { timeZones, countries } = (await admin.get('/api/installation/places')).body as {
     timeZones: string[];

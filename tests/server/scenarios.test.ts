@@ -9,7 +9,7 @@ import { previewNeed } from '../../shared/forecasting/preview-need.ts';
 import { readExactWire } from '../../shared/forecasting/read-exact-wire.ts';
 import { needChangeOf } from '../../shared/forecasting/scenario.ts';
 import { readPlan, readStaffedBedSteps } from '../../server/database/read-staffed-beds.ts';
-import type { ArrivalModelRow } from '../../server/entities/ArrivalModelRow.ts';
+import { ArrivalModelRow } from '../../server/entities/ArrivalModelRow.ts';
 import { AuditEvent } from '../../server/entities/AuditEvent.ts';
 import { BedChange } from '../../server/entities/BedChange.ts';
 import type { CareArea } from '../../server/entities/CareArea.ts';
@@ -110,6 +110,17 @@ describe('as is, for the browser', () => {
     const after = (await desk()).basis!;
     expect(after.digest).not.toBe(before.digest);
     expect([after.planVersion, after.areas[0].staffedBeds[0].beds]).toEqual([2, 13]);
+  });
+
+  test('tells of a model that was fitted on hourly counts', async () => {
+    const siteId = built.site.id;
+    const setFrom = (staysFrom: 'stated mean' | null) =>
+      server.deps.database.write((manager) => manager.update(ArrivalModelRow, { siteId }, { staysFrom }));
+    const kinds = async () => (await desk()).cautions.map(({ kind }) => kind);
+    expect(await kinds()).not.toContain('hourly counts');
+    await setFrom('stated mean');
+    expect(await kinds()).toContain('hourly counts');
+    await setFrom(null);
   });
 
   test('says what is missing and what to do', async () => {

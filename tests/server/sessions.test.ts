@@ -1,4 +1,4 @@
-import { afterAll, beforeAll, beforeEach, describe, expect, test } from 'vitest';
+import { afterAll, beforeAll, beforeEach, describe, expect, test, vi } from 'vitest';
 import type { Problem } from '../../shared/api/common.ts';
 import type { Session } from '../../shared/api/session.ts';
 import { AuditEvent } from '../../server/entities/AuditEvent.ts';
@@ -83,6 +83,18 @@ describe('a session that ended', () => {
     });
     expect(await server.deps.database.read.existsBy(SessionRow, { sid })).toBe(false);
     expect((await client.get(path())).status).toBe(401);
+  });
+
+  test('is not one that could not be read: the request fails, and the next one finds the person signed in', async () => {
+    // As when the disk does not answer or another program holds the file for a moment.
+    vi.spyOn(server.sessions, 'get').mockImplementationOnce((_, done) => {
+      done(new Error('the database is locked'));
+    });
+    const failed = await client.get(path());
+    expect(failed.status).toBe(500);
+    expect(failed.headers['set-cookie']).toBeUndefined();
+    expect((await client.get(path())).status).toBe(200);
+    expect(await server.deps.database.read.existsBy(SessionRow, { sid })).toBe(true);
   });
 
   test('everywhere: every browser of the person, and nobody else’s; it is audited', async () => {

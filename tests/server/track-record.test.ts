@@ -1,5 +1,6 @@
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import type { TrackRecord } from '../../shared/api/track-record.ts';
+import type { WeekAhead } from '../../shared/api/week-outlooks.ts';
 import { ForecastScore } from '../../server/entities/ForecastScore.ts';
 import { OutlookLawsRow } from '../../server/entities/OutlookLawsRow.ts';
 import { OutlookRow } from '../../server/entities/OutlookRow.ts';
@@ -155,6 +156,13 @@ describe('past weeks recomputed', () => {
       expect(ahead, measure).toBeGreaterThan((measure === 'arrivals' ? 60 : 48) * 3600);
       const then = await operations.get(`/api/sites/${siteId}/week-outlooks/${row.id}`);
       expect(then.body).toMatchObject({ issuedAt: row.issuedAt, trigger: 'recomputed' });
+      // The three shifts before it stand on the board to the left of then, with what the log tells of them.
+      const { past } = then.body as WeekAhead;
+      expect(past).toHaveLength(3);
+      for (const shift of past) {
+        expect(shift.to).toBeLessThanOrEqual(row.issuedAt + 9 * 3600);
+        expect(shift.most).not.toBeNull();
+      }
     }
     // Where a measure has nothing at the lead asked for, the nearest to the event is shown.
     expect((await record('?measure=shift%20arrivals')).filter.lead).toBe(24);

@@ -2,6 +2,7 @@ import type { Express } from 'express';
 import * as api from '../../../shared/api/installation.ts';
 import { holidayCountries } from '../../database/holiday-regions.ts';
 import { newId } from '../../database/new-id.ts';
+import { readAreas } from '../../database/read-site.ts';
 import type { Dependencies } from '../../dependencies.ts';
 import type { CareArea } from '../../entities/CareArea.ts';
 import { HealthGroup } from '../../entities/HealthGroup.ts';
@@ -12,7 +13,7 @@ import { recordAudit } from '../../http/audit.ts';
 import { addRoute, type RouteContext, type RouteTable } from '../../http/route.ts';
 import { checkSite, timeZones } from './check-site.ts';
 import { hasData, presentSite } from './present.ts';
-import { deleteArea, insertArea, updateArea } from './save-area.ts';
+import { deleteArea, insertArea, setAreaOrder, updateArea } from './save-area.ts';
 
 /** What a site begins with, so that Tonight has a shift to speak of; common practice, no source. */
 const firstShifts = [
@@ -143,5 +144,19 @@ export function addInstallationRoutes(
   addRoute(app, table, deps, api.removeArea, (context) => {
     const { id, areaId } = context.params;
     return changeArea(context, id, 'area.removed', (manager) => deleteArea(manager, id, areaId));
+  });
+  addRoute(app, table, deps, api.orderAreas, async (context) => {
+    const { id } = context.params;
+    await write(async (manager) => {
+      const site = await manager.findOneBy(Site, { id });
+      if (!site) throw notFound('This site');
+      const before = (await readAreas(manager, id)).map(({ name }) => name);
+      const after = (await setAreaOrder(manager, id, context.body.areaIds)).map(({ name }) => name);
+      // A wish for the order that stands leaves no trace.
+      if (after.join('\n') === before.join('\n')) return;
+      const detail = { before: before.join(', '), order: after.join(', ') };
+      await recordAudit(manager, { ...context, site }, 'area.order-changed', id, detail);
+    });
+    return presentSite(read, id, context.now);
   });
 }

@@ -1,6 +1,7 @@
 import type { EntityManager } from 'typeorm';
 import type { AreaBody } from '../../../shared/api/installation.ts';
 import { newId } from '../../database/new-id.ts';
+import { readAreas } from '../../database/read-site.ts';
 import { readPlan } from '../../database/read-staffed-beds.ts';
 import { CareArea } from '../../entities/CareArea.ts';
 import { VisitLog } from '../../entities/VisitLog.ts';
@@ -70,6 +71,23 @@ export async function deleteArea(manager: EntityManager, siteId: string, areaId:
     throw error;
   }
   return area;
+}
+
+/** Sets the order in which a site names its care areas; refuses a list that is not of the areas that there are now. */
+export async function setAreaOrder(
+  manager: EntityManager,
+  siteId: string,
+  areaIds: readonly string[],
+): Promise<CareArea[]> {
+  const areas = await readAreas(manager, siteId);
+  if (areas.length !== areaIds.length || areas.some(({ id }) => !areaIds.includes(id))) {
+    throw conflict(
+      'A care area was added or removed since the list was shown.',
+      'Look at the care areas as they are now and set the order again.',
+    );
+  }
+  for (const [position, id] of areaIds.entries()) await manager.update(CareArea, { id }, { position });
+  return readAreas(manager, siteId);
 }
 
 async function checkName(manager: EntityManager, siteId: string, name: string, ownId: string | null): Promise<void> {

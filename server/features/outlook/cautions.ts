@@ -34,7 +34,7 @@ export function cautionsNow(facts: CautionFacts): Caution[] {
     if (uncounted.length > 0) {
       cautions.push({
         kind: 'area not counted',
-        text: `Not counted: ${uncounted.map((area) => area.name).join(', ')}. Nothing is said of ${uncounted.length === 1 ? 'it' : 'them'} until a count is entered.`,
+        text: `Not counted: ${uncounted.map((area) => area.name).join(', ')}. What is printed for ${uncounted.length === 1 ? 'it' : 'them'} is what the model expects on such a night, not what is there. Count ${uncounted.length === 1 ? 'it' : 'them'} before you act.`,
       });
     }
     const oldest = Math.max(...ages);

@@ -90,7 +90,10 @@ async function whyMissing(deps: Dependencies, site: Site, now: number): Promise<
     };
   }
   if (!(await readPlan(read, site.id))) {
-    return { reason: 'no staffed-bed plan', next: 'An operations manager saves the staffed-bed plan of this site.' };
+    return {
+      reason: 'no staffed-bed plan',
+      next: 'An operations manager saves the plan under Staffed beds; then Tonight begins by itself. A census entered meanwhile is kept and counts from then on.',
+    };
   }
   const newest = (await readNewestOutlooks(read, site.id, 1, now)).at(0);
   if (!newest || newest.issuedAt < now - (36 - leastHoursAhead) * 3600) {

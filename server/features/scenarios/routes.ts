@@ -13,6 +13,7 @@ import { comparePlan, digestOf } from './compare-plan.ts';
 import { confirmJobKind } from './confirm-scenario.job.ts';
 import { presentLine, presentScenario, readScenario } from './present.ts';
 import { saveScenario } from './save-scenario.ts';
+import { whatIfCautions } from './what-if-cautions.ts';
 import { WhatIfDesk } from './what-if-desk.ts';
 
 /** Plans against as is: tried in the browser, saved, confirmed by simulation, adopted into the staffed-bed plan. */
@@ -28,11 +29,12 @@ export function addScenarioRoutes(
 
   addSiteRoute(app, table, deps, api.getWhatIf, async ({ site, now, res }) => {
     const open = await desk.open(site, now);
-    if (!('basis' in open)) return { now, basis: null, missing: open };
+    if (!('basis' in open)) return { now, basis: null, missing: open, cautions: [] };
     // Text made on a thread, sent as it is: checking tens of thousands of numbers again would hold every other request up.
     const text = await open.text;
+    const cautions = JSON.stringify(await whatIfCautions(read, site, now));
     res.setHeader('cache-control', 'no-store');
-    res.type('application/json').send(`{"now":${String(now)},"missing":null,"basis":${text}}`);
+    res.type('application/json').send(`{"now":${String(now)},"missing":null,"cautions":${cautions},"basis":${text}}`);
     return undefined;
   });
 

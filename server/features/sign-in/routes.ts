@@ -13,11 +13,13 @@ import { recordAudit } from '../../http/audit.ts';
 import { addRoute, type RouteContext, type RouteTable } from '../../http/route.ts';
 import type { SessionStore } from '../../http/session-store.ts';
 import { sessionCookie } from '../../http/session-cookie.ts';
+import { localPath, problemPage } from '../../http/sign-in-page.ts';
 import { isLocked } from '../../http/session-use.ts';
 import { addOwnSessionRoutes } from './own-sessions.ts';
 import { nameDevice } from './name-device.ts';
 import { presentSession } from './present.ts';
 import { makeProvider } from './provider.ts';
+import { isProviderOutOfOrder } from './provider-fault.ts';
 import { readGroups, recognisePerson } from './recognise-person.ts';
 
 const signInMinutes = 15;
@@ -86,8 +88,10 @@ export function addSignInRoutes(app: Express, table: RouteTable, deps: Dependenc
         ...(underWay.fresh ? { maxAge: signInMinutes * 60 } : {}),
       });
     } catch (error) {
-      logger.warn({ err: error }, 'a sign-in was refused');
-      res.redirect(problemPage('refused', underWay.returnTo));
+      const outOfOrder = isProviderOutOfOrder(error);
+      if (outOfOrder) logger.error({ err: error }, 'the identity provider did not finish a sign-in');
+      else logger.warn({ err: error }, 'a sign-in was refused');
+      res.redirect(problemPage(outOfOrder ? 'unreachable' : 'refused', underWay.returnTo));
       return undefined;
     }
     const claims = tokens.claims();
@@ -174,18 +178,6 @@ export function addSignInRoutes(app: Express, table: RouteTable, deps: Dependenc
     await saveSession(req);
     return null;
   });
-}
-
-/** Only a path of this application may be returned to; never another host. */
-function localPath(path: string | undefined): string {
-  if (path === undefined || !/^\/(?!\/)[^\\\p{Cc}]*$/u.test(path)) return '/';
-  return path;
-}
-
-/** The sign-in page with what went wrong; where the person was going stays in the address. */
-function problemPage(problem: 'unreachable' | 'refused' | 'expired', returnTo = '/'): string {
-  const search = new URLSearchParams({ problem, ...(returnTo === '/' ? {} : { returnTo }) });
-  return `/sign-in?${search.toString()}`;
 }
 
 function saveSession(req: Request): Promise<void> {

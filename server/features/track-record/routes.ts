@@ -11,7 +11,8 @@ import { recordAudit } from '../../http/audit.ts';
 import { addSiteRoute, type RouteTable } from '../../http/route.ts';
 import { presentDriftOfModelInUse } from './present-drift.ts';
 import { presentRecord } from './read-record.ts';
-import { recomputeFrom, recomputeJobKind, recomputePayload } from './recompute-record.job.ts';
+import { recomputeJobKind, recomputePayload } from './recompute-record.job.ts';
+import { recomputeFrom } from './recompute-times.ts';
 import { sendScores } from './send-scores.ts';
 
 /** The track record: how past forecasts did, the watch over the model in use, and past weeks recomputed on request. */

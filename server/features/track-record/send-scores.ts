@@ -8,8 +8,8 @@ import { leadInWords, type RecordMeasure } from '../../../shared/domain/record-l
 import { meanPinball } from '../../../shared/forecasting/score-issued.ts';
 import { readAreas } from '../../database/read-site.ts';
 import type { SiteContext } from '../../http/route.ts';
-import { nearestLead, readLeads } from './read-record.ts';
 import { filterCondition } from './read-points.ts';
+import { nearestLead, readLeads } from './week-sums.ts';
 
 const rowsPerRead = 500;
 const cautions = [

@@ -5,6 +5,7 @@ import type { Dependencies } from '../../dependencies.ts';
 import { WeekOutlookRow } from '../../entities/WeekOutlookRow.ts';
 import { notFound } from '../../errors.ts';
 import { addSiteRoute, type RouteTable } from '../../http/route.ts';
+import { readPastShifts } from './past-shifts.ts';
 import { presentWeekAhead, presentWeekOutlook } from './present.ts';
 import type { WeekTrigger } from './week-outlook-due.ts';
 
@@ -30,6 +31,9 @@ export function addWeekAheadRoutes(app: Express, table: RouteTable, deps: Depend
   addSiteRoute(app, table, deps, getWeekOutlook, async ({ site, params }) => {
     const stored = await readWeekOutlook(read, site.id, params.weekOutlookId);
     if (!stored) throw notFound('This week outlook');
-    return presentWeekOutlook(read, stored);
+    return {
+      ...(await presentWeekOutlook(read, stored)),
+      past: await readPastShifts(read, site, stored.row.issuedAt),
+    };
   });
 }

@@ -50,7 +50,12 @@ export function ModelComparison({
       {comparison?.status === 'running' ? progressOf(comparison.jobId) : null}
       {comparison?.status === 'failed' ? (
         <Notice kind="caution" title={comparison.error ?? 'The comparison ended without a reason.'}>
-          <p>Both models are as they were. Try again once the cause is mended.</p>
+          <p>
+            Both models are as they were.{' '}
+            {comparison.error === 'Cancelled.'
+              ? 'You can try both again at any time.'
+              : 'Try again once the cause is mended.'}
+          </p>
         </Notice>
       ) : null}
       {comparison?.result ? (

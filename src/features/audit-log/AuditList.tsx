@@ -40,6 +40,8 @@ export function AuditList({
         captionHidden
         rows={events}
         rowKey={({ id }) => String(id)}
+        // The page itself filters, and saves with the digests.
+        file={false}
         empty="Nothing fits. Widen the filter above."
         columns={[
           {
@@ -60,7 +62,9 @@ export function AuditList({
             cell: (row) => (
               <>
                 {auditEventInWords(row.event)}
-                <span className="block text-quiet text-ink2">{detailInWords(row.detail, timeZone)}</span>
+                <span className="block text-quiet [overflow-wrap:anywhere] text-ink2">
+                  {detailInWords(row.detail, timeZone)}
+                </span>
               </>
             ),
           },

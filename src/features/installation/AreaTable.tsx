@@ -5,6 +5,7 @@ import { DataTable } from '../../components/DataTable.tsx';
 import { Dialog } from '../../components/Dialog.tsx';
 import { ProblemNotice } from '../../components/Notice.tsx';
 import { AreaFields } from './AreaFields.tsx';
+import { AreaOrder } from './AreaOrder.tsx';
 import { draftOfArea, emptyArea, readAreas, type AreaDraft } from './area-draft.ts';
 import { useRemoveArea, useSaveArea } from './queries.ts';
 
@@ -14,6 +15,7 @@ export function AreaTable({ site }: { site: InstallationSite }) {
   const remove = useRemoveArea(site.id);
   const [asked, setAsked] = useState<{ areaId: string | null; draft: AreaDraft } | null>(null);
   const [tried, setTried] = useState(false);
+  const [ordering, setOrdering] = useState(false);
   const close = () => {
     setAsked(null);
     setTried(false);
@@ -31,6 +33,7 @@ export function AreaTable({ site }: { site: InstallationSite }) {
         captionHidden
         rows={site.areas}
         rowKey={({ id }) => id}
+        file={false}
         columns={[
           { key: 'name', header: 'Area', rowHeader: true, cell: ({ name }) => name },
           { key: 'kind', header: 'A space is a', cell: ({ spaceKind }) => spaceKind },
@@ -53,9 +56,17 @@ export function AreaTable({ site }: { site: InstallationSite }) {
           },
         ]}
       />
-      <Button look="second" className="justify-self-start" onClick={() => setAsked({ areaId: null, draft: emptyArea })}>
-        Add a care area
-      </Button>
+      <div className="flex flex-wrap gap-4">
+        <Button look="second" onClick={() => setAsked({ areaId: null, draft: emptyArea })}>
+          Add a care area
+        </Button>
+        {site.areas.length > 1 ? (
+          <Button look="second" onClick={() => setOrdering(true)}>
+            Change the order
+          </Button>
+        ) : null}
+      </div>
+      <AreaOrder site={site} open={ordering} onClose={() => setOrdering(false)} />
       <Dialog
         title={asked?.areaId ? `Change ${asked.draft.name || 'the area'}` : 'Add a care area'}
         open={asked !== null}

@@ -44,7 +44,7 @@ export function PlaceFields({
 }) {
   const regions = choices.countries.find(({ code }) => code === place.country)?.regions ?? [];
   return (
-    <div className="grid gap-4 sm:grid-cols-2 lg:grid-cols-3">
+    <div className="grid items-end gap-4 sm:grid-cols-2 lg:grid-cols-3">
       <TextField
         label="Name of the site"
         maxLength={80}

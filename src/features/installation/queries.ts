@@ -55,6 +55,11 @@ export const useSaveArea = (id: string) =>
       : call(api.changeArea, { params: { id, areaId }, body, kept }),
   );
 
+export const useOrderAreas = (id: string) =>
+  useInstallationMutation('The order was saved.', (areaIds: string[]) =>
+    call(api.orderAreas, { params: { id }, body: { areaIds }, kept: 'The order that was saved before stays.' }),
+  );
+
 export const useRemoveArea = (id: string) =>
   useInstallationMutation('The area was removed.', (areaId: string) =>
     call(api.removeArea, { params: { id, areaId }, kept: 'The area stays.' }),

@@ -1,18 +1,16 @@
-import { useState } from 'react';
+import { useRef, useState } from 'react';
 import { acknowledgeBody } from '../../../shared/api/acknowledgements.ts';
-import { withArticle } from '../../../shared/domain/identifier-kind.ts';
-import { screenNote } from '../../../shared/domain/screen-note.ts';
 import { Button } from '../../components/Button.tsx';
 import { TextField } from '../../components/Field.tsx';
 import { ProblemNotice } from '../../components/Notice.tsx';
 import { useAcknowledge } from './queries.ts';
+import { screenTypedNote } from './screen-typed-note.ts';
 
 /** Why a note cannot be sent; null if it can. The server checks the same again. */
-export function checkNote(note: string): string | null {
+export async function checkNote(note: string): Promise<string | null> {
   const parsed = acknowledgeBody.shape.note.safeParse(note);
   if (!parsed.success) return parsed.error.issues[0]?.message ?? 'Check this note';
-  const kind = screenNote(parsed.data);
-  return kind ? `This looks like ${withArticle(kind)}. Leave out anything that could identify a patient.` : null;
+  return screenTypedNote(parsed.data);
 }
 
 /** The note field's element, so that the action bar finds it. */
@@ -38,9 +36,13 @@ export function AcknowledgeForm({
   const acknowledging = useAcknowledge(siteId);
   const [fault, setFault] = useState<string | null>(null);
 
-  function save() {
-    if (acknowledging.isPending) return;
-    const found = checkNote(note);
+  const checking = useRef(false);
+
+  async function save() {
+    if (acknowledging.isPending || checking.current) return;
+    checking.current = true;
+    const found = await checkNote(note);
+    checking.current = false;
     setFault(found);
     if (found) return;
     acknowledging.mutate(
@@ -61,7 +63,7 @@ export function AcknowledgeForm({
       className="mt-2 grid gap-2 print:hidden"
       onSubmit={(event) => {
         event.preventDefault();
-        save();
+        void save();
       }}
     >
       <div className="flex flex-wrap items-end gap-3">

@@ -2,7 +2,6 @@ import { Fragment } from 'react';
 import type { Outlook } from '../../../shared/api/outlooks.ts';
 import type { Site } from '../../../shared/api/sites.ts';
 import { meetingAtHand } from '../../../shared/domain/bed-meeting.ts';
-import { Dialog } from '../../components/Dialog.tsx';
 import { formatCount, formatNumber, formatTime, zoneOf } from '../../lib/format.ts';
 import { meetingHours, meetingReach, meetingRows } from './bed-meeting.ts';
 import type { MeetingNeed, MeetingRow } from './bed-meeting.ts';
@@ -30,21 +29,7 @@ function Need({ need }: { need: MeetingNeed | null }) {
 }
 
 /** The bed meeting's one table: present, boarding, need in four and eight hours, and the ask. */
-export function BedMeeting({
-  board,
-  outlook,
-  site,
-  now,
-  open,
-  onClose,
-}: {
-  board: Board;
-  outlook: Outlook;
-  site: Site;
-  now: number;
-  open: boolean;
-  onClose: () => void;
-}) {
+export function BedMeeting({ board, outlook, site, now }: { board: Board; outlook: Outlook; site: Site; now: number }) {
   const hours = meetingHours(board, now);
   const rows = meetingRows(board, outlook, now);
   const total = (field: 'present' | 'boarding') =>
@@ -61,7 +46,7 @@ export function BedMeeting({
   };
   const meeting = meetingAtHand(zoneOf(site.timeZone), site.bedMeetingMinutes, now);
   return (
-    <Dialog title="Bed meeting" open={open} onClose={onClose}>
+    <>
       <table className="w-full border-collapse text-right max-sm:text-label max-sm:font-stretch-[88%]">
         <caption className="pb-2 text-left font-bold">
           {site.name} at {timeOf(now)}
@@ -133,6 +118,6 @@ export function BedMeeting({
         Need is the median to P90, of the staffed beds in force then. The ask brings every hour of the next eight to the
         area’s limit or under it. Planning aid: a forecast is a range, and your escalation policy comes first.
       </p>
-    </Dialog>
+    </>
   );
 }

@@ -8,7 +8,7 @@ import { formatAge, formatDate, formatDay, formatTime, zoneOf } from '../../lib/
 import { HandoverDone } from './HandoverDone.tsx';
 import { handoverShift } from './handover-shift.ts';
 import { HandoverTable } from './HandoverTable.tsx';
-import { sentenceOf } from './TonightView.tsx';
+import { sentenceOf } from './sentence-of.ts';
 import { buildBoard } from './tonight-board.ts';
 import './handover-sheet.css';
 

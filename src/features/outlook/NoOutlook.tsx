@@ -18,12 +18,15 @@ export function NoOutlook({
   site,
   rights,
   actions,
+  report,
 }: {
   tonight: Tonight;
   site: Site;
   rights: Rights;
   /** Where this person can do something about it. */
   actions: ReactNode;
+  /** What is said when a census came through. */
+  report: ReactNode;
 }) {
   return (
     <>
@@ -39,6 +42,7 @@ export function NoOutlook({
           </>
         }
       />
+      {report}
       {rights.enterCensus ? (
         <div className="page-pad grid max-w-sm gap-4 pt-4">
           <h2 className="text-section">Census</h2>

@@ -1,14 +1,14 @@
-import { useId, useState } from 'react';
+import { useId, useRef, useState } from 'react';
 import { changeBedsBody } from '../../../shared/api/staffed-beds.ts';
 import type { ChangeBedsBody } from '../../../shared/api/staffed-beds.ts';
 import type { CareArea } from '../../../shared/api/sites.ts';
-import { screenNote } from '../../../shared/domain/screen-note.ts';
 import { Button } from '../../components/Button.tsx';
 import { SelectField, TextField } from '../../components/Field.tsx';
 import { ProblemNotice } from '../../components/Notice.tsx';
 import { useUnsavedWork } from '../../lib/unsaved-work.ts';
 import { FigureInput } from './FigureInput.tsx';
 import { useChangeBeds } from './queries.ts';
+import { screenTypedNote } from './screen-typed-note.ts';
 
 interface Draft {
   beds: string;
@@ -18,10 +18,10 @@ interface Draft {
 }
 
 /** Faults of a change before it is sent, by field; the server checks the same again. */
-export function checkBedChange(
+export async function checkBedChange(
   draft: Draft,
   area: Pick<CareArea, 'id' | 'name' | 'safeMinimum' | 'spaces'>,
-): { body: ChangeBedsBody; errors: null } | { body: null; errors: Partial<Record<keyof Draft, string>> } {
+): Promise<{ body: ChangeBedsBody; errors: null } | { body: null; errors: Partial<Record<keyof Draft, string>> }> {
   const number = (value: string) => (value.trim() === '' ? Number.NaN : Number(value));
   const parsed = changeBedsBody.safeParse({
     areaId: area.id,
@@ -43,8 +43,8 @@ export function checkBedChange(
   if (beds + blocked > area.spaces) {
     errors.beds ??= `${area.name} has ${String(area.spaces)} bed spaces; staffed and blocked together pass that`;
   }
-  const kind = screenNote(reason);
-  if (kind) errors.reason = `This looks like a ${kind}. Leave out anything that could identify a patient.`;
+  const identifying = await screenTypedNote(reason);
+  if (identifying) errors.reason = identifying;
   return Object.keys(errors).length > 0 ? { body: null, errors } : { body: parsed.data, errors: null };
 }
 
@@ -66,9 +66,13 @@ export function StaffedTonight({ area, siteId, inForce }: { area: CareArea; site
     setErrors({});
   };
 
-  function save() {
-    if (!draft || changing.isPending) return;
-    const checked = checkBedChange(draft, area);
+  const checking = useRef(false);
+
+  async function save() {
+    if (!draft || changing.isPending || checking.current) return;
+    checking.current = true;
+    const checked = await checkBedChange(draft, area);
+    checking.current = false;
     if (checked.errors) {
       setErrors(checked.errors);
       return;
@@ -83,7 +87,7 @@ export function StaffedTonight({ area, siteId, inForce }: { area: CareArea; site
       noValidate
       onSubmit={(event) => {
         event.preventDefault();
-        save();
+        void save();
       }}
     >
       <FigureInput

@@ -11,7 +11,6 @@ import { formatTime, formatWeekday, zoneOf } from '../../lib/format.ts';
 import { useMediaQuery } from '../../lib/use-media-query.ts';
 import type { Rights } from './AreaGutter.tsx';
 import { AreaRow } from './AreaRow.tsx';
-import { BedMeeting } from './BedMeeting.tsx';
 import { DepartmentRow } from './DepartmentRow.tsx';
 import { RibbonRow } from './RibbonRow.tsx';
 import { RiskKey } from '../../components/RiskKey.tsx';
@@ -21,8 +20,9 @@ import { UndecidedRow } from './UndecidedRow.tsx';
 import type { BoardRows } from './use-board-rows.ts';
 import { useRibbon } from '../../lib/use-ribbon.ts';
 
-// The proof behind the drawing is asked for now and then: its script comes when it is.
+// The proof behind the drawing and the meeting's table are asked for now and then: their scripts come when they are.
 const OutlookTables = lazy(async () => ({ default: (await import('./OutlookTables.tsx')).OutlookTables }));
+const BedMeeting = lazy(async () => ({ default: (await import('./BedMeeting.tsx')).BedMeeting }));
 
 /** The night board: ribbon, department, areas in the site's own order, area not decided, key. */
 export function TonightBoard({
@@ -124,11 +124,21 @@ export function TonightBoard({
         <PictureTools of={ref} title={`${then ? 'As it stood' : 'Tonight'}, ${site.name}`} />
       </div>
       <Dialog title={`The hours ahead, ${site.name}`} open={tableOpen} onClose={() => setTableOpen(false)}>
-        <Suspense fallback={<SkeletonLines lines={8} label="Loading the tables" />}>
-          <OutlookTables {...{ board, site, hourNames }} />
-        </Suspense>
+        <PanelBoundary>
+          <Suspense fallback={<SkeletonLines lines={8} label="Loading the tables" />}>
+            <OutlookTables {...{ board, site, hourNames }} />
+          </Suspense>
+        </PanelBoundary>
       </Dialog>
-      {meeting ? <BedMeeting {...{ board, outlook, site, ...meeting }} now={tonight.now} /> : null}
+      {meeting ? (
+        <Dialog title="Bed meeting" open={meeting.open} onClose={meeting.onClose}>
+          <PanelBoundary>
+            <Suspense fallback={<SkeletonLines lines={8} label="Loading the bed meeting" />}>
+              <BedMeeting {...{ board, outlook, site }} now={tonight.now} />
+            </Suspense>
+          </PanelBoundary>
+        </Dialog>
+      ) : null}
     </>
   );
 }

@@ -7,7 +7,7 @@ import { paths } from '../../app/paths.ts';
 import { PageHead } from '../../components/PageHead.tsx';
 import { formatDay, formatTime, zoneOf } from '../../lib/format.ts';
 import { TonightBoard } from './TonightBoard.tsx';
-import { sentenceOf } from './TonightView.tsx';
+import { sentenceOf } from './sentence-of.ts';
 import { thenInWords } from './then-in-words.ts';
 import { buildBoard } from './tonight-board.ts';
 import { useBoardRows } from './use-board-rows.ts';

@@ -4,15 +4,15 @@ import type { ReactNode } from 'react';
 import type { Outlook, Tonight } from '../../../shared/api/outlooks.ts';
 import type { Site } from '../../../shared/api/sites.ts';
 import type { Census } from '../../../shared/api/censuses.ts';
-import { outlookSentence } from '../../../shared/forecasting/outlook-sentence.ts';
-import type { OutlookSentence } from '../../../shared/forecasting/outlook-sentence.ts';
 import { hoursPastLimit } from '../../../shared/forecasting/hours-past-limit.ts';
 import { paths } from '../../app/paths.ts';
 import { Button, ButtonLink } from '../../components/Button.tsx';
+import { asApiError } from '../../lib/api-error.ts';
 import { formatTime, zoneOf } from '../../lib/format.ts';
 import type { Rights } from './AreaGutter.tsx';
 import { NoOutlook } from './NoOutlook.tsx';
 import { OutlookHead } from './OutlookHead.tsx';
+import { sentenceOf } from './sentence-of.ts';
 import { StaleNote } from './StaleNote.tsx';
 import { TonightBoard } from './TonightBoard.tsx';
 import { noteFieldId } from './AcknowledgeForm.tsx';
@@ -20,25 +20,6 @@ import { askedHours, inChargeSince } from './asked-hours.ts';
 import { useBoardRows } from './use-board-rows.ts';
 import { CensusEntryProvider, useCensusEntry } from './use-census-entry.ts';
 import type { CensusEntry } from './use-census-entry.ts';
-
-/** The headline and lede of an outlook that is on the page. */
-export function sentenceOf(tonight: Tonight, site: Site): OutlookSentence | null {
-  const { outlook } = tonight;
-  if (!outlook) return null;
-  return outlookSentence({
-    result: outlook.result,
-    areas: site.areas.map((area) => ({
-      areaId: area.id,
-      name: area.name,
-      spaceKind: area.spaceKind,
-      spaces: area.spaces,
-      alertLimit: area.alertLimit,
-      censusTakenAt: outlook.census.find((entry) => entry.areaId === area.id)?.takenAt ?? null,
-    })),
-    now: tonight.now,
-    zone: zoneOf(site.timeZone),
-  });
-}
 
 /** Tonight of one site once its parts are loaded: head, board, census entry and what is said when a save came through. */
 export function TonightView({
@@ -106,13 +87,18 @@ export function TonightView({
           />
         </>
       ) : (
-        <NoOutlook {...{ tonight, site, rights }} actions={emptyActions} />
+        <NoOutlook
+          {...{ tonight, site, rights }}
+          actions={emptyActions}
+          report={<SaveReport entry={entry} headline="" timeZone={site.timeZone} computing={tonight.computing} />}
+        />
       )}
       {nightLog}
       {rights.enterCensus && outlook ? (
         <ActionBar
           entry={entry}
           siteId={site.id}
+          timeZone={site.timeZone}
           onAcknowledge={
             asks === null
               ? null
@@ -178,20 +164,37 @@ function SaveReport({
   );
 }
 
+const lowerFirst = (text: string) => text.charAt(0).toLowerCase() + text.slice(1);
+
 /** On a tablet or phone the presses of every round stay at the foot, within reach of a thumb. */
 function ActionBar({
   entry,
   siteId,
+  timeZone,
   onAcknowledge,
 }: {
   entry: CensusEntry;
   siteId: string;
+  timeZone: string;
   /** Null while nothing asks to be acknowledged. */
   onAcknowledge: (() => void) | null;
 }) {
   const edited = entry.form.formState.isDirty;
+  const said = entry.saving
+    ? null
+    : entry.error
+      ? `Not saved: ${lowerFirst(asApiError(entry.error).title)}. Your figures are still in the fields.`
+      : edited || entry.savedAt === null
+        ? null
+        : `Saved at ${formatTime(entry.savedAt, timeZone)}.`;
   return (
     <div className="action-bar sticky bottom-0 z-30 mt-2 flex flex-wrap gap-3 border-t border-hair bg-paper px-page py-2 lg:hidden print:hidden">
+      {/* The row that was saved and the head of the page may be out of view; both are read aloud where they stand. */}
+      {said ? (
+        <p aria-hidden="true" className="w-full text-side font-bold text-ink">
+          {said}
+        </p>
+      ) : null}
       <Button
         className="flex-1"
         onClick={edited ? entry.save : entry.nothingChanged}

@@ -1,6 +1,8 @@
 import { useCallback, useDeferredValue, useMemo } from 'react';
 import type { ReactNode } from 'react';
+import type { Caution } from '../../../shared/api/outlooks.ts';
 import type { ScenarioLine, WhatIfBasis } from '../../../shared/api/scenarios.ts';
+import { RiskMark } from '../../../shared/charts/RiskMark.tsx';
 import { dayAndTime, type PlanChange } from '../../../shared/domain/plan-change.ts';
 import { formatChance } from '../../../shared/domain/risk-word.ts';
 import { Button } from '../../components/Button.tsx';
@@ -28,6 +30,7 @@ const nothing: PlanChange[] = [];
 export function WhatIfView({
   site,
   basis,
+  cautions,
   plans,
   opened,
   rights,
@@ -37,6 +40,8 @@ export function WhatIfView({
 }: {
   site: { id: string; name: string; timeZone: string };
   basis: WhatIfBasis;
+  /** What is to be said now of the model and the logs behind it. */
+  cautions: readonly Caution[];
   plans: readonly ScenarioLine[];
   /** Ids of the saved plans that stand beside as is. */
   opened: readonly string[];
@@ -170,6 +175,12 @@ export function WhatIfView({
             {worst.chance > basis.areas[worst.area].alertLimit ? 'furthest past' : 'nearest'} its limit as it stands:{' '}
             {formatChance(worst.chance).replace(' ', '\u00a0')} on {dayAndTime(zone, hours[worst.hour])}. Seven days,
             full hours, by the exact method.
+            {cautions.map(({ kind, text }) => (
+              <span key={kind + text} className="mt-1 flex gap-2 text-side font-extrabold text-ink">
+                <RiskMark step={3} className="mt-1 h-4 w-5 shrink-0" />
+                {text}
+              </span>
+            ))}
           </p>
         }
         aside={

@@ -17,11 +17,14 @@ export function Measured({ height, children }: { height: number; children: (widt
 export function Finding({
   title,
   sentence,
+  choice,
   drawing,
   table,
 }: {
   title: string;
   sentence: ReactNode;
+  /** What of it is drawn, where there is a choice. */
+  choice?: ReactNode;
   drawing: ReactNode;
   table: ReactNode;
 }) {
@@ -30,6 +33,7 @@ export function Finding({
     <section className="grid min-w-0 grid-cols-[minmax(0,1fr)] content-start gap-2" aria-label={title}>
       <h2 className="text-h2">{title}</h2>
       <p className="max-w-[44rem] text-ink2">{sentence}</p>
+      {choice ? <div className="max-w-md">{choice}</div> : null}
       <div ref={ref}>{drawing}</div>
       <PictureTools of={ref} title={title} />
       <details>

@@ -27,25 +27,29 @@ export function DriftNotice({ drift }: { drift: TrackRecord['drift'] }) {
 
 type Counted = Pick<TrackRecord['weekOutlooks'], 'waiting' | 'withdrawn' | 'notRecorded' | 'overtaken' | 'withoutLaws'>;
 
-/** What became of the outlooks that are not scored. */
-function restOf(counted: Counted, overtaken: string) {
-  return [
-    [counted.waiting, 'wait for a log that tells what came'],
-    [counted.withdrawn, 'are not scored because the log that told was withdrawn'],
-    [counted.notRecorded, 'fell in hours that were not recorded'],
-    [counted.overtaken, overtaken],
-    [counted.withoutLaws, 'were issued before the distributions were kept'],
-  ] as const;
+/** What became of the outlooks that are not scored: "3 wait for a log …, 1 fell in hours …"; each begins with a comma. */
+function restInWords(counted: Counted, overtaken: string): string {
+  const rest: [n: number, one: string, many: string, what: string][] = [
+    [counted.waiting, 'waits', 'wait', 'for a log that tells what came'],
+    [counted.withdrawn, 'is', 'are', 'not scored because the log that told was withdrawn'],
+    [counted.notRecorded, 'fell', 'fell', 'in hours that were not recorded'],
+    [counted.overtaken, 'was', 'were', overtaken],
+    [counted.withoutLaws, 'was', 'were', 'issued before the distributions were kept'],
+  ];
+  return rest
+    .filter(([n]) => n > 0)
+    .map(([n, one, many, what]) => `, ${formatNumber(n)} ${n === 1 ? one : many} ${what}`)
+    .join('');
 }
 
 /** How many forecasts are behind the record; every one that was issued is named. */
 export function RecordGrounds({ record, timeZone }: { record: TrackRecord; timeZone: string }) {
   const { outlooks, weekOutlooks, summary } = record;
-  const rest = restOf(
+  const rest = restInWords(
     outlooks,
-    'were followed by a newer one before anything they would be scored on began (saving a census issues one)',
+    'followed by a newer one before anything to score it on began (saving a census issues one)',
   );
-  const weekRest = restOf(weekOutlooks, 'were not issued by the daily timetable, which would be no fair sample');
+  const weekRest = restInWords(weekOutlooks, 'not issued by the daily timetable and would be no fair sample');
   return (
     <section className="grid gap-2" aria-label="What the record stands on">
       <h2 className="text-h2">What the record stands on</h2>
@@ -53,32 +57,24 @@ export function RecordGrounds({ record, timeZone }: { record: TrackRecord; timeZ
         {formatCount(summary.n, 'score')} over {formatCount(summary.weeks, 'week')} under this filter. In all{' '}
         {formatCount(outlooks.issued, 'outlook was', 'outlooks were')} issued
         {outlooks.firstAt === null ? '' : ` since ${formatDate(outlooks.firstAt, timeZone)}`}; none is left out or
-        changed: {formatNumber(outlooks.scored)} are scored
-        {rest
-          .filter(([n]) => n > 0)
-          .map(([n, words]) => `, ${formatNumber(n)} ${words}`)
-          .join('')}
-        .
+        changed: {formatCount(outlooks.scored, 'is scored', 'are scored')}
+        {rest}.
       </p>
       {weekOutlooks.issued === 0 ? null : (
         <p className="max-w-[44rem] text-ink2">
           Of the week ahead {formatCount(weekOutlooks.issued, 'outlook was', 'outlooks were')} issued:{' '}
-          {formatNumber(weekOutlooks.scored)} are scored
-          {weekRest
-            .filter(([n]) => n > 0)
-            .map(([n, words]) => `, ${formatNumber(n)} ${words}`)
-            .join('')}
-          .
+          {formatCount(weekOutlooks.scored, 'is scored', 'are scored')}
+          {weekRest}.
           {weekOutlooks.recomputed > 0
-            ? ` ${formatNumber(weekOutlooks.recomputed)} of them were recomputed later.`
+            ? ` ${formatCount(weekOutlooks.recomputed, 'of them was', 'of them were')} recomputed later.`
             : ''}{' '}
-          They are what stands behind everything more than a day ahead.
+          {weekOutlooks.issued === 1 ? 'It is' : 'They are'} what stands behind everything more than a day ahead.
         </p>
       )}
       {outlooks.recomputed > 0 ? (
         <p className="max-w-[44rem] text-ink2">
-          <b className="text-ink">{formatNumber(outlooks.recomputed)} were recomputed later</b>, by the same code from
-          what was known at their time: an hour before each shift, with{' '}
+          <b className="text-ink">{formatCount(outlooks.recomputed, 'was', 'were')} recomputed later</b>, by the same
+          code from what was known at their time: an hour before each shift, with{' '}
           {formatNumber(outlooks.replicationsRecomputed ?? 0)} replications each, the counts that the log shows, and the
           staffed beds, areas and limits of today.
         </p>

@@ -60,7 +60,7 @@ export function RecordPoints({ record, siteId, timeZone }: { record: TrackRecord
                 const point = points.find((candidate) => keyOf(candidate) === column.key);
                 return {
                   name: point ? nameOf(point, timeZone) : '',
-                  text: `90\u00a0% range ${String(column.low90)} to ${String(column.high90)}, median ${String(column.median)}; ${String(column.observed)} came`,
+                  text: `90\u00a0% range ${String(column.low90)} to ${String(column.high90)}, median ${String(column.median)}; ${String(column.observed)} came${point?.acknowledged ? '; acknowledged' : ''}`,
                 };
               })}
             >

@@ -24,6 +24,7 @@ export function WeekBoard({
   outlook,
   site,
   worstAreaId,
+  then,
 }: {
   board: Board;
   week: WeekAhead;
@@ -31,6 +32,8 @@ export function WeekBoard({
   site: Site;
   /** The area that opens itself. */
   worstAreaId: string | null;
+  /** An earlier week as it stood. */
+  then: boolean;
 }) {
   const desktop = useMediaQuery('(min-width: 1100px)');
   const columnWidth = desktop ? 38 : 40;
@@ -75,7 +78,7 @@ export function WeekBoard({
             strip={
               <div className="relative pt-1.5">
                 <p className="sr-only">
-                  Shifts from {columns.at(0)?.fullName} to {columns.at(-1)?.fullName}. Now{' '}
+                  Shifts from {columns.at(0)?.fullName} to {columns.at(-1)?.fullName}. {then ? 'Then' : 'Now'}{' '}
                   {formatTime(week.now, site.timeZone)}.{' '}
                   {outlook.result.calendar
                     .map((day) => `${day.name}, ${formatDay(day.from, site.timeZone, 'short')}`)
@@ -86,7 +89,7 @@ export function WeekBoard({
                   className="absolute top-0 z-10 rounded-t-button rounded-br-button bg-act px-2 py-1 text-side leading-tight font-extrabold whitespace-nowrap text-act-ink"
                   style={{ left: board.past.length * columnWidth - 1.5 }}
                 >
-                  Now
+                  {then ? 'Then' : 'Now'}
                 </div>
                 <WeekRibbon
                   columnWidth={columnWidth}

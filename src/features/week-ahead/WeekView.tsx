@@ -40,6 +40,7 @@ export function WeekView({
   calendarLink,
   setLimit,
   how,
+  then = false,
 }: {
   week: WeekAhead;
   site: Site;
@@ -52,6 +53,8 @@ export function WeekView({
   /** Where the site's wait limit is kept, for those who keep it. */
   setLimit: ReactNode;
   how: ReactNode;
+  /** An earlier week as it stood, not the newest. */
+  then?: boolean;
 }) {
   const [choices, change] = useWeekChoices();
   const [tableOpen, setTableOpen] = useState(false);
@@ -98,7 +101,7 @@ export function WeekView({
           ) : null
         }
       />
-      <WeekBoard {...{ board, week, outlook, site }} worstAreaId={sentence.worstAreaId} />
+      <WeekBoard {...{ board, week, outlook, site, then }} worstAreaId={sentence.worstAreaId} />
       <div className="page-pad flex flex-wrap items-center gap-x-6 gap-y-2 border-t border-hair pt-3">
         <RiskKey />
         <button
@@ -110,7 +113,7 @@ export function WeekView({
         </button>
         {how}
         <p className="text-quiet text-ink2">
-          For tonight read Tonight: it knows the newest census. The later a day, the wider its range.
+          {then ? '' : 'For tonight read Tonight: it knows the newest census. '}The later a day, the wider its range.
         </p>
       </div>
       <div className="week-parts page-pad pb-6">
@@ -143,9 +146,11 @@ export function WeekView({
         <div className={part}>
           <CalendarDays {...{ outlook, site }} edit={calendarLink} />
         </div>
-        <div className={part}>
-          <LastWeek {...{ week, site }} />
-        </div>
+        {then ? null : (
+          <div className={part}>
+            <LastWeek {...{ week, site }} />
+          </div>
+        )}
         <p className="mt-10 max-w-3xl text-quiet text-ink2">
           A forecast is a range. Act on the percentile your policy names, not on the median alone. It does not foresee a
           major incident or a sudden closure: use your incident plan.

@@ -55,6 +55,22 @@ describe('the verdict', () => {
     expect(trackVerdict(summary(0.92, 0.1), subject, []).chances).toContain('safe minimum');
   });
 
+  test('tells acknowledged risks apart, and does not call them a failure', () => {
+    const open = { key: 'no', n: 800, meanChance: 0.12, share: 0.11 };
+    const seen = { key: 'yes', n: 37, meanChance: 0.41, share: 0.52 };
+    const said = trackVerdict(summary(0.92, 0.2), subject, [], [seen, open]).acknowledged;
+    expect(said).toContain(
+      '37 hours with an acknowledged risk were given 41 chances in 100 on average, and a shortfall came in 52; the others 12 chances in 100 on average, and a shortfall came in 11.',
+    );
+    expect(said).toContain('what is then done may hold a shortfall off');
+    const one = trackVerdict(summary(0.92, 0.2), subject, [], [{ ...seen, n: 1 }]).acknowledged;
+    expect(one).toContain('1 hour with an acknowledged risk was given 41');
+    expect(trackVerdict(summary(0.92, 0.2), subject, []).acknowledged).toBe(
+      'Nobody acknowledged a risk in these hours.',
+    );
+    expect(trackVerdict(empty, { many: 'daily arrivals', chanceOf: null }, []).acknowledged).toContain('No chance');
+  });
+
   test('names the part whose ranges were worst', () => {
     const part = (name: string, coverage90: number) => ({ name, n: 400, coverage90, expected90: 0.92, se: 0.015 });
     expect(trackVerdict(summary(0.92, 0.2), subject, [part('Night', 0.84), part('Early', 0.87)]).parts).toContain(

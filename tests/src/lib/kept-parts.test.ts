@@ -16,7 +16,12 @@ describe('what the service worker keeps', () => {
   it('is what the page names, and everything that the pages need, each once', () => {
     expect(addressesOf(page('a1'))).toEqual(['/assets/sans-1.woff2', '/assets/index-2.js']);
     const manifest = {
-      'index.html': { file: 'assets/index-2.js', css: ['assets/index-2.css'] },
+      'index.html': {
+        file: 'assets/index-2.js',
+        isEntry: true,
+        css: ['assets/index-2.css'],
+        dynamicImports: ['src/pages/TonightPage.tsx', 'src/pages/WhatIfPage.tsx'],
+      },
       'src/pages/TonightPage.tsx': { file: 'assets/tonight.js', imports: ['index.html', '_board.js'] },
       'src/pages/HandoverPage.tsx': {
         file: 'assets/handover.js',
@@ -24,7 +29,13 @@ describe('what the service worker keeps', () => {
         css: ['assets/handover.css'],
       },
       // Parts may import each other.
-      '_board.js': { file: 'assets/board.js', imports: ['_format.js'] },
+      '_board.js': {
+        file: 'assets/board.js',
+        imports: ['_format.js'],
+        // Opened by a press on Tonight: without the server as well.
+        dynamicImports: ['src/features/outlook/BedMeeting.tsx'],
+      },
+      'src/features/outlook/BedMeeting.tsx': { file: 'assets/meeting.js', imports: ['_format.js'] },
       '_format.js': { file: 'assets/format.js', imports: ['_board.js'] },
       'src/pages/WhatIfPage.tsx': { file: 'assets/what-if.js' },
     };
@@ -36,6 +47,7 @@ describe('what the service worker keeps', () => {
       '/assets/index-2.css',
       '/assets/board.js',
       '/assets/format.js',
+      '/assets/meeting.js',
       '/assets/handover.js',
       '/assets/handover.css',
     ]);

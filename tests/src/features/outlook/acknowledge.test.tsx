@@ -75,8 +75,8 @@ describe('the panel past the limit', () => {
     show(buildTonight());
     await userEvent.type(note(), 'Moved Mr Smith{Enter}');
     expect(await screen.findByText(/This looks like a name/)).toBeInTheDocument();
-    expect(checkNote(' ')).toBe('Say what was done, without patient details');
-    expect(checkNote('Two bays open from 20:30')).toBeNull();
+    expect(await checkNote(' ')).toBe('Say what was done, without patient details');
+    expect(await checkNote('Two bays open from 20:30')).toBeNull();
     expect(fetched).not.toHaveBeenCalled();
   });
 

@@ -206,4 +206,28 @@ describe('the board', () => {
     expect(screen.getByText('Fit one on an accepted log and have it approved.')).toBeInTheDocument();
     expect(field('Acute, present').value).toBe('22');
   });
+
+  it('says that a census was kept where there is no outlook, and why none follows', async () => {
+    fetched.mockResolvedValue(
+      new Response(JSON.stringify({ censusId: 'c1', outlookId: null, reason: 'No plan is saved yet.' }), {
+        status: 201,
+      }),
+    );
+    show(buildTonight({ outlook: null, missing: { reason: 'no staffed-bed plan', next: 'Have the plan saved.' } }));
+    const user = await type('Acute, present', '23');
+    await user.keyboard('{Enter}');
+    const said = await screen.findByText(/^Census saved at/);
+    expect(said.closest('[role=status]')).toHaveTextContent('No plan is saved yet.');
+  });
+
+  it('says at the foot, within reach of the thumb, that a save failed and that nothing typed is lost', async () => {
+    fetched.mockRejectedValue(new TypeError('Failed to fetch'));
+    show();
+    const user = await type('Acute, present', '23');
+    await user.keyboard('{Enter}');
+    expect(
+      await screen.findByText('Not saved: the server cannot be reached. Your figures are still in the fields.'),
+    ).toBeInTheDocument();
+    expect(field('Acute, present').value).toBe('23');
+  });
 });

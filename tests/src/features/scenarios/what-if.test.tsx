@@ -155,6 +155,7 @@ describe('the page', () => {
           <WhatIfView
             site={{ id: 's', name: 'Saltby Bay', timeZone: zoneName }}
             basis={basis}
+            cautions={[{ kind: 'hourly counts', text: 'Fitted on hourly counts: mean stays are stated.' }]}
             plans={[]}
             opened={[]}
             rights={{ save, adopt: save }}
@@ -173,6 +174,7 @@ describe('the page', () => {
   it('answers a change at once beside as is, by number and word, and says by which method', async () => {
     show(true);
     expect(screen.getByText('Not counted: Resuscitation.')).toBeInTheDocument();
+    expect(screen.getByText(/^Fitted on hourly counts: mean stays are stated/)).toBeInTheDocument();
     const table = () => screen.getByRole('table', { name: /Highest chance of shortfall at a full hour in the next/ });
     expect(
       within(table())

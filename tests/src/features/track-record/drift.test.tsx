@@ -90,9 +90,26 @@ describe('what the record stands on', () => {
     render(<RecordGrounds record={record} timeZone="Europe/London" />);
     const all = document.body.textContent.replace(/\u00a0/g, ' ');
     expect(all).toContain(
-      '10 outlooks were issued; none is left out or changed: 3 are scored, 2 wait for a log that tells what came, 4 are not scored because the log that told was withdrawn, 1 were followed',
+      '10 outlooks were issued; none is left out or changed: 3 are scored, 2 wait for a log that tells what came, 4 are not scored because the log that told was withdrawn, 1 was followed',
     );
     expect(all).toContain('Of the week ahead 12 outlooks were issued: 3 are scored');
     expect(all).toContain('5 of them were recomputed later');
+  });
+
+  it('speaks of one outlook as of one', () => {
+    const counted = { scored: 1, waiting: 1, withdrawn: 1, notRecorded: 1, overtaken: 0, withoutLaws: 0 };
+    const record = {
+      outlooks: { ...counted, issued: 4, recomputed: 1, replicationsRecomputed: 500, firstAt: null },
+      weekOutlooks: { ...counted, scored: 0, waiting: 1, withdrawn: 0, notRecorded: 0, issued: 1, recomputed: 1 },
+      summary: { n: 1, weeks: 1 },
+    } as TrackRecord;
+    render(<RecordGrounds record={record} timeZone="Europe/London" />);
+    const all = document.body.textContent.replace(/\u00a0/g, ' ');
+    expect(all).toContain(
+      '1 is scored, 1 waits for a log that tells what came, 1 is not scored because the log that told was withdrawn, 1 fell in hours',
+    );
+    expect(all).toContain('1 outlook was issued: 0 are scored, 1 waits');
+    expect(all).toContain('1 of them was recomputed later. It is what stands behind');
+    expect(all).toContain('1 was recomputed later');
   });
 });

@@ -24,7 +24,7 @@ function Address() {
   return <output data-testid="address">{useLocation().search}</output>;
 }
 
-function show(week: WeekAhead, address = '/', refreshError: unknown = null) {
+function show(week: WeekAhead, address = '/', refreshError: unknown = null, then = false) {
   return render(
     <MemoryRouter initialEntries={[address]}>
       <WeekView
@@ -36,6 +36,7 @@ function show(week: WeekAhead, address = '/', refreshError: unknown = null) {
         calendarLink={null}
         setLimit={null}
         how={null}
+        then={then}
       />
       <Address />
     </MemoryRouter>,
@@ -229,6 +230,14 @@ describe('the week ahead', () => {
     expect(within(dialog).getAllByText('Night, Sat 5 Dec')).toHaveLength(2);
     expect(dialog).toHaveTextContent('Arrivals by day: middle figure and 95 % range');
     expect(dialog).toHaveTextContent('By ambulance');
+  });
+
+  it('as it stood says then instead of now, and compares with no other week', () => {
+    const { container } = show(buildWeek(gaps), '/', null, true);
+    expect(container.querySelector('.week-board')).toHaveTextContent(/Then \d\d:\d\d\./);
+    expect(container.querySelector('.week-board')).not.toHaveTextContent('Now');
+    expect(document.querySelector('#last-week-title')).toBeNull();
+    expect(container).not.toHaveTextContent('For tonight read Tonight');
   });
 
   it('keeps the last good week on the page when a refresh fails', () => {
