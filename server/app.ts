@@ -2,6 +2,7 @@ import { randomUUID } from 'node:crypto';
 import { join } from 'node:path';
 import { constants } from 'node:zlib';
 import compression from 'compression';
+import expressStaticGzip from 'express-static-gzip';
 import express, { type Express } from 'express';
 import rateLimit from 'express-rate-limit';
 import session from 'express-session';
@@ -94,10 +95,20 @@ export function createApp(
   const metrics = makeMetrics(deps);
   app.use(metrics.follow);
   app.use(securityHeaders(config.production));
-  // Scripts and style sheets are a tenth smaller at 5 than at the middleware's own 4, in no more time; from 7 on it takes long.
+  if (clientDir !== null) {
+    // Compressed at build: at each request it would cost a second of a first view.
+    app.use(
+      '/assets',
+      expressStaticGzip(join(clientDir, 'assets'), {
+        enableBrotli: true,
+        orderPreference: ['br'],
+        index: false,
+        serveStatic: { immutable: true, maxAge: '1y' },
+      }),
+    );
+  }
+  // Replies are a tenth smaller at 5 than at the middleware's own 4, in no more time; from 7 on it takes long.
   app.use(compression({ brotli: { params: { [constants.BROTLI_PARAM_QUALITY]: 5 } } }));
-  if (clientDir !== null)
-    app.use('/assets', express.static(join(clientDir, 'assets'), { immutable: true, maxAge: '1y' }));
 
   app.use(
     '/auth',

@@ -88,6 +88,9 @@ export async function startServer(config: Config): Promise<RunningServer> {
   const sessions = new SessionStore(deps.database, deps.clock, config.sessionHours * 3600);
   const app = createApp(deps, issuer, sessions, clientDir());
   const server = createServer(app.express);
+  // Longer than a page's polls and a proxy's minute: a connection that is closed just as it is used again fails its request.
+  server.keepAliveTimeout = 65_000;
+  server.headersTimeout = 70_000;
   try {
     await sweepVisitLogs(deps);
     await listen(server, config);

@@ -1,5 +1,5 @@
 import { AsyncLocalStorage } from 'node:async_hooks';
-import { setTimeout as pause } from 'node:timers/promises';
+import { setImmediate as nextTurn, setTimeout as pause } from 'node:timers/promises';
 import type { DataSource, EntityManager } from 'typeorm';
 import { lockWaitMilliseconds, rawConnection } from './data-source.ts';
 import { databaseFaultOf } from './database-fault.ts';
@@ -35,6 +35,8 @@ interface Mark {
  * when the outer work ends: work that was started inside but not awaited would otherwise carry the mark
  * along and later slip past the gate.
  *
+ * One write a turn of the event loop: requests are answered between two.
+ *
  * Never wait for the network, mail or a worker inside: everybody else's write waits too.
  *
  * Another process's lock is waited for here, five seconds from when the write was asked for: SQLite's own waiting
@@ -44,6 +46,8 @@ export function makeWriteGate(source: DataSource): WriteGate {
   const inside = new AsyncLocalStorage<Mark>();
   let tail: Promise<unknown> = Promise.resolve();
   let writes = 0;
+  // SQLite answers at once, so that promises alone would make all the writes that wait before any request is answered.
+  let wroteInThisTurn = false;
   const write: Write = (work, { unseen = false } = {}) => {
     const outer = inside.getStore();
     if (outer?.open) {
@@ -54,7 +58,12 @@ export function makeWriteGate(source: DataSource): WriteGate {
     }
     const giveUpAt = performance.now() + lockWaitMilliseconds;
     const turn = tail.then(async () => {
+      if (wroteInThisTurn) await nextTurn();
       await untilUnlocked(source, giveUpAt);
+      wroteInThisTurn = true;
+      setImmediate(() => {
+        wroteInThisTurn = false;
+      });
       const stored = await source.transaction(async (manager) => {
         const mark: Mark = { open: true, manager, joined: [] };
         try {

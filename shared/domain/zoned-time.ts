@@ -22,8 +22,20 @@ export interface Zone {
 const quarterHour = 900;
 const scanStep = 7 * 86_400;
 
-/** Makes a zone from its IANA name. Throws a RangeError naming an unknown zone. Cost: one Intl formatter; offsets are cached by week. */
+/** Zones made so far: a formatter costs as much as a page's other figures together. */
+const known = new Map<string, Zone>();
+
+/**
+ * The zone of an IANA name. Throws a RangeError naming an unknown zone. Cost: one Intl formatter the first time; offsets are
+ * cached by week.
+ */
 export function makeZone(name: string): Zone {
+  let zone = known.get(name);
+  if (!zone) known.set(name, (zone = newZone(name)));
+  return zone;
+}
+
+function newZone(name: string): Zone {
   let format: Intl.DateTimeFormat;
   try {
     format = new Intl.DateTimeFormat('en-US', {

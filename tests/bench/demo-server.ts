@@ -1,4 +1,5 @@
 import { readFileSync } from 'node:fs';
+import { setTimeout as pause } from 'node:timers/promises';
 import { signInToDemo, type DemoCaller } from '../../demo/demo-caller.ts';
 import { demoSites } from '../../demo/farrowmere.ts';
 import { startBuiltDemo, type RunningDemo } from '../support/journey.ts';
@@ -28,6 +29,19 @@ export async function cancelRecomputing(steward: Pick<DemoCaller, 'get' | 'send'
       if (!job.kind.startsWith('track-record.') || !['queued', 'running'].includes(job.status)) continue;
       await steward.send('POST', `/api/sites/${id}/jobs/${job.id}/cancel`, {});
     }
+  }
+}
+
+/** Waits until nothing is queued or running at any site: a start catches up with what is due. */
+export async function untilIdle(steward: Pick<DemoCaller, 'get'>): Promise<void> {
+  for (;;) {
+    let busy = 0;
+    for (const { id } of demoSites) {
+      const { jobs } = (await steward.get(`/api/sites/${id}/jobs`)) as { jobs: { status: string }[] };
+      busy += jobs.filter(({ status }) => status === 'queued' || status === 'running').length;
+    }
+    if (busy === 0) return;
+    await pause(1000);
   }
 }
 

@@ -1,3 +1,4 @@
+import { execFileSync } from 'node:child_process';
 import { createHmac, randomBytes } from 'node:crypto';
 import { cpSync, mkdtempSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
@@ -17,7 +18,7 @@ import { listBackups } from '../../server/database/backup-files.ts';
 import { databaseFile } from '../../server/database/database.ts';
 import { restoreBackup } from '../../server/database/restore-backup.ts';
 import { antiForgeryToken } from '../../server/http/anti-forgery.ts';
-import { cancelRecomputing } from '../bench/demo-server.ts';
+import { cancelRecomputing, untilIdle } from '../bench/demo-server.ts';
 import { startBuiltDemo, type RunningDemo } from '../support/journey.ts';
 import { multiplyVisits } from '../support/more-visits.ts';
 import type { Soak } from './soak.ts';
@@ -69,12 +70,15 @@ export const load: Soak = {
 
 /** One run of the load on a data folder; throws at any error, and where the backup made under it is not whole. */
 async function measure(dataDir: string, print: (line: string) => void): Promise<Times> {
+  // What was just copied or added is on the disk before anything is timed.
+  execFileSync('sync');
   const demo = await startBuiltDemo({ DATA_DIR: dataDir });
   try {
     const [charge, steward, admin] = ['charge', 'steward', 'admin'].map((name) => callAs(demo, dataDir, name));
     const cookies = Array.from({ length: people }, () => signIn(dataDir, 'charge').cookie);
     const files = [0, 1, 2, 3, 4, 5].map(makeFile);
     await cancelRecomputing(steward);
+    await untilIdle(steward);
     const { times, errors, done } = await underLoad(demo, cookies, async (going) => {
       const [censuses, imports] = await Promise.all([
         saveCensuses(charge, going),

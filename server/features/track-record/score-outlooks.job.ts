@@ -20,12 +20,12 @@ const worker = workerUrl(import.meta.url, 'score.worker');
 const day = 86_400;
 /** Issued outlooks scored by one task of a thread, and stored in one write. */
 const chunkSeconds = 28 * day;
-const outlooksPerWrite = 25;
+const outlooksPerWrite = 8;
 /** An outlook of tonight speaks of up to this long after it was issued, one of the week ahead of so much longer. */
 const reachSeconds = 4 * day;
 const weekReachSeconds = 5 * day;
 /** One of the week ahead holds some hundred scores. */
-const weekOutlooksPerWrite = 4;
+const weekOutlooksPerWrite = 2;
 
 /**
  * The job that scores what was said about the time of a log: when it lands, or is withdrawn (then what it told is un-scored).
@@ -166,7 +166,7 @@ async function storeScores(
   });
 }
 
-const weeksPerSum = 8;
+const weeksPerSum = 4;
 
 async function storeSums(deps: Dependencies, siteId: string, weeks: number[], signal: AbortSignal): Promise<void> {
   for (let i = 0; i < weeks.length; i += weeksPerSum) {

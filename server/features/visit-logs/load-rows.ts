@@ -1,5 +1,4 @@
 import { once } from 'node:events';
-import { setImmediate } from 'node:timers/promises';
 import { MessageChannel } from 'node:worker_threads';
 import type { EntityManager } from 'typeorm';
 import type { FileOutcome } from '../../../shared/domain/visit-file.ts';
@@ -79,8 +78,6 @@ export async function loadRows(
       .then(async () => {
         if (failure || signal.aborted) return;
         await deps.database.write((manager) => insertPiece(manager, target, task.logNumber, piece), { unseen: true });
-        // Promises alone would write all the pieces that wait before anybody else is answered.
-        await setImmediate();
         written += piece.rows;
         onRows(written);
         near.postMessage(null);
@@ -138,6 +135,5 @@ export async function deleteRows(
     if (rows === 0) return;
     deleted += rows;
     onRows?.(deleted);
-    await setImmediate();
   }
 }

@@ -1,4 +1,4 @@
-import { useQuery } from '@tanstack/react-query';
+import { queryOptions, useQuery } from '@tanstack/react-query';
 import { createContext, use } from 'react';
 import { getSession } from '../../../shared/api/session.ts';
 import type { Session } from '../../../shared/api/session.ts';
@@ -25,12 +25,17 @@ async function fetchSession(signal: AbortSignal, known: boolean): Promise<Device
   }
 }
 
+/** Who is signed in; also asked for before the first page's code is there. */
+export const sessionQuery = queryOptions({
+  queryKey: sessionKey,
+  queryFn: ({ signal, client }) => fetchSession(signal, client.getQueryData(sessionKey) !== undefined),
+  staleTime: 60_000,
+});
+
 /** Who is signed in; asked once, and again whenever the window is looked at: another tab may have signed out, or in. */
 export function useSessionQuery() {
   return useQuery({
-    queryKey: sessionKey,
-    queryFn: ({ signal, client }) => fetchSession(signal, client.getQueryData(sessionKey) !== undefined),
-    staleTime: 60_000,
+    ...sessionQuery,
     refetchInterval: ({ state }) => (state.data?.keptAt === undefined ? false : lookForServerEveryMilliseconds),
     refetchOnWindowFocus: 'always',
   });
