@@ -160,21 +160,25 @@ export function simulateWaitingPart(plan: WaitingPlan, from: number, to: number)
     for (let i = beds[0]; i < occupied; i += 1) heap.removeFirst();
     let k = 0;
     let t = segmentAt[0];
+    let rate = ratePerHour[0];
+    let segmentEnd = segmentAt[1];
     let queue = plan.waiting;
     for (;;) {
       if (queue > 0) queue -= 1;
       else {
         let gap = stream.exponential();
-        let room = ratePerHour[k] * (segmentAt[k + 1] - t);
+        let room = rate * (segmentEnd - t);
         while (gap >= room) {
           gap -= room;
           k += 1;
           if (k === segments) break;
-          t = segmentAt[k];
-          room = ratePerHour[k] * (segmentAt[k + 1] - t);
+          t = segmentEnd;
+          rate = ratePerHour[k];
+          segmentEnd = segmentAt[k + 1];
+          room = rate * (segmentEnd - t);
         }
         if (k === segments) break;
-        t += gap / ratePerHour[k];
+        t += gap / rate;
       }
       let s = 0;
       if (streams > 1) {

@@ -79,7 +79,7 @@ const began = performance.now();
 print(`${String(cpus().length)} cores, ${cpus()[0]?.model ?? ''}, Node ${process.version}`);
 try {
   for (const bench of benches) {
-    if (only && !only.some((part) => bench.name.includes(part))) continue;
+    if (only ? !only.some((part) => bench.name.includes(part)) : bench.onlyByName) continue;
     for (const figure of await bench.run()) {
       figures.push(figure);
       print(describe(figure));
