@@ -8,7 +8,7 @@ import { demoSeed } from '../../demo/farrowmere.ts';
 import { finishJob } from '../../demo/live-history.ts';
 import { makeVisitLog } from '../../demo/make-visit-log.ts';
 import { writeVisitCsv } from '../../demo/write-visit-csv.ts';
-import { memoryOf, servedDemo, servedSite, signIn, sitePath } from './demo-server.ts';
+import { memoryOf, servedDemo, servedSite, signIn, sitePath, untilIdle } from './demo-server.ts';
 import { growthFigures, growthSteps } from './growth.ts';
 import { milliseconds, single, summarise, type Bench, type Figure } from './measure.ts';
 import { askMeanwhile } from './other-requests.ts';
@@ -68,11 +68,8 @@ async function benchImport(): Promise<Figure[]> {
   const restarted = async () => {
     const steward = await signIn(demo, 'steward');
     // What the last load asked for (scores, the level) ends first, so that the memory is that of one load.
-    for (;;) {
-      await setTimeout(settling);
-      const { jobs } = (await steward.get(`${sitePath}/jobs`)) as { jobs: { status: string }[] };
-      if (!jobs.some(({ status }) => status === 'queued' || status === 'running')) break;
-    }
+    await setTimeout(settling);
+    await untilIdle(steward);
     await demo.pause();
     await demo.resume();
     await setTimeout(settling);
